@@ -1,0 +1,123 @@
+"""Problems are values, collected and shown together; the errors that carry them.
+
+::
+
+    CalcError
+      ProblemsFound      the inputs or the call are wrong: a list of Problem (exit 2)
+      NotConverged       a case has no solution: with the history of the attempt (exit 3)
+      IntegrityError     a package or a printed number does not prove (exit 4)
+      StorageError       disk or permission (exit 5)
+      EquationError      an equation is badly declared (ours, raised at import)
+      Unresolved         a printed number has no line in the ledger (ours, stops publishing)
+
+A criterion not met is a verdict and a doubtful practice is a finding; neither is a problem.
+"""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
+
+from calc.marks import Mark
+
+
+class CalcError(Exception):
+    """The root of every error this program raises on purpose."""
+
+
+@dataclass(frozen=True, slots=True, order=True)
+class Problem:
+    """One thing wrong in the inputs.
+
+    Attributes
+    ----------
+    mark : Mark
+        Where it stands.
+    code : str
+        A stable word for the sort of problem, such as ``unknown-unit``.
+    path : str
+        The place in the project, such as ``pipes.upper-main.bore``.
+    found, expected : str
+        What stands there and what should; a sentence is made of the two.
+    hint : str
+        A way out, or empty.
+    """
+
+    mark: Mark
+    code: str
+    path: str
+    found: str
+    expected: str
+    hint: str = ""
+
+    def sentence(self) -> str:
+        """Return ``path: found; expected …``."""
+        head = f"{self.path}: " if self.path else ""
+        tail = f"; expected {self.expected}" if self.expected else ""
+        return f"{head}{self.found}{tail}"
+
+
+class ProblemsFound(CalcError):
+    """The project is wrong.
+
+    Attributes
+    ----------
+    problems : tuple of Problem
+        Sorted by place.
+    texts : mapping of str to str
+        The text of each file read, so that the line at fault can be shown.
+    """
+
+    def __init__(self, problems: Iterable[Problem], texts: Mapping[str, str] | None = None) -> None:
+        self.problems = tuple(sorted(set(problems)))
+        self.texts = dict(texts or {})
+        super().__init__(f"{len(self.problems)} problem(s)")
+
+    def __str__(self) -> str:
+        """Return every problem in full, in the order of their places."""
+        return "\n".join(show(problem, self.texts) for problem in self.problems)
+
+
+class NotConverged(CalcError):
+    """A case has no solution, or none was found; carries why."""
+
+
+class IntegrityError(CalcError):
+    """Something printed or filed does not prove."""
+
+
+class StorageError(CalcError):
+    """A file or folder cannot be read or written."""
+
+
+class EquationError(CalcError):
+    """An equation that is badly declared: ours, raised at import."""
+
+
+class Unresolved(CalcError):
+    """A number that has no line in the ledger: ours, stops publishing."""
+
+
+def show(problem: Problem, texts: Mapping[str, str]) -> str:
+    """Return a problem as shown to the user: place and sentence, the line, carets, the hint."""
+    mark = problem.mark
+    shown = [f"{mark}: {problem.sentence()}"]
+    lines = texts.get(mark.file, "").splitlines()
+    if 0 < mark.line <= len(lines):
+        source = lines[mark.line - 1].replace("\t", " ")
+        gutter = f"{mark.line:>3}"
+        length = max(1, min(mark.length, len(source) - mark.column + 1))
+        shown += [
+            f"{gutter} | {source}",
+            f"{' ' * len(gutter)} | {' ' * (mark.column - 1)}{'^' * length}",
+        ]
+    if problem.hint:
+        shown.append(f"  hint: {problem.hint}")
+    return "\n".join(shown)
+
+
+def nearest(word: str, known: Sequence[str]) -> str:
+    """Return "did you mean 'x'?" for the known word nearest to ``word``, or an empty string."""
+    near = difflib.get_close_matches(word, known, 1)
+    return f"did you mean '{near[0]}'?" if near else ""
