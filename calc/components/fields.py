@@ -1,0 +1,99 @@
+"""The words in which a component declares its fields."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from calc.kinds import NUMBER, Kind
+
+
+@dataclass(frozen=True, slots=True)
+class Quantity:
+    """A number with a unit of a kind, within bounds in SI."""
+
+    kind: Kind = NUMBER
+    above: float | None = None
+    at_least: float | None = None
+    at_most: float | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Count:
+    """A whole number."""
+
+    at_least: int = 1
+    at_most: int = 1000
+
+
+@dataclass(frozen=True, slots=True)
+class Word:
+    """One of a few words."""
+
+    options: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Text:
+    """Free text."""
+
+
+@dataclass(frozen=True, slots=True)
+class Flag:
+    """``true`` or ``false``; ``yes`` and ``no`` are read as the words they are."""
+
+
+@dataclass(frozen=True, slots=True)
+class Node:
+    """The id of a reservoir or junction."""
+
+
+@dataclass(frozen=True, slots=True)
+class Ends:
+    """Losses at the reservoir ends of a pipe, by shape or by coefficients."""
+
+
+@dataclass(frozen=True, slots=True)
+class Fittings:
+    """A list of fittings, each by its kind in the shipped table or by its own coefficients."""
+
+
+Form = Quantity | Count | Word | Text | Flag | Node | Ends | Fittings
+
+
+@dataclass(frozen=True, slots=True)
+class Field:
+    """A field of a component.
+
+    Attributes
+    ----------
+    name : str
+        The YAML key, which is also the ledger name and the heading.
+    form : Form
+        What may stand there.
+    required : bool
+        Whether it must be stated.
+    words : str
+        What it is, for schemas and input tables.
+    """
+
+    name: str
+    form: Form
+    required: bool = False
+    words: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Schema:
+    """The fields of a group of components.
+
+    ``excludes`` are pairs of fields that say the same thing, of which at most one may stand.
+    """
+
+    group: str
+    singular: str
+    fields: tuple[Field, ...]
+    excludes: tuple[tuple[str, str], ...] = ()
+
+    def field(self, name: str) -> Field | None:
+        """Return the field of that name, or None."""
+        return next((f for f in self.fields if f.name == name), None)

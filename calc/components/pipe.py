@@ -1,0 +1,202 @@
+"""A pipe: its fields, and the chain of laws from its flow to the head it loses."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Generic, TypeVar
+
+from calc.components.fields import Count, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Word
+from calc.equation import Evaluator, Labels
+from calc.equation.evaluation import Rows
+from calc.kinds import BORE, LENGTH, NUMBER, PRESSURE, ROUGHNESS
+from calc.physics import energy, fitting, friction, velocity
+
+SCHEMA = Schema(
+    "pipes",
+    "pipe",
+    (
+        Field("from", Node(), required=True, words="node at which the pipe begins"),
+        Field("to", Node(), required=True, words="node at which the pipe ends"),
+        Field("length", Quantity(LENGTH, above=0.0), required=True, words="length along the pipe"),
+        Field("bore", Quantity(BORE, above=0.0), required=True, words="bore"),
+        Field("roughness", Quantity(ROUGHNESS, at_least=0.0), words="roughness height"),
+        Field("friction_factor", Quantity(NUMBER, above=0.0), words="Darcy f, fixed"),
+        Field("law", Word(friction.LAW_NAMES), words="friction law"),
+        Field("ends", Ends(), words="losses at reservoir ends"),
+        Field("fittings", Fittings(), words="fittings"),
+        Field("parallel", Count(), words="identical pipes in parallel"),
+        Field("open", Flag(), words="whether it is open"),
+        Field("pressure_rating", Quantity(PRESSURE, above=0.0), words="pressure rating"),
+    ),
+)
+
+FITTING_SCHEMA = Schema(
+    "fittings",
+    "fitting",
+    (
+        Field("kind", Word(()), words="kind in the shipped table"),
+        Field("K", Quantity(NUMBER, at_least=0.0), words="loss coefficient, flow forward"),
+        Field("K_reverse", Quantity(NUMBER, at_least=0.0), words="loss coefficient, flow in reverse"),
+        Field("count", Count(), words="number of like fittings"),
+        Field("bore", Quantity(BORE, above=0.0), words="bore on which the coefficient stands"),
+    ),
+    excludes=(("kind", "K"),),
+)
+"""The options of ``kind`` are the entries of the shipped table, which the reader supplies."""
+
+LAW_INPUT = {**dict.fromkeys(friction.ROUGH_PIPE_LAWS, "roughness"), "fixed": "friction_factor"}
+"""The field that each friction law needs."""
+
+T = TypeVar("T")
+
+
+@dataclass(frozen=True)
+class FittingTerms(Generic[T]):
+    """Inputs of the fittings and pipe ends of all pipes, one row each; ``pipe`` is the row of the pipe it is in."""
+
+    rows: tuple[str, ...]
+    pipe: Rows
+    count: T
+    coefficient_forward: T
+    coefficient_reverse: T
+    bore: T
+
+
+@dataclass(frozen=True)
+class PipeTerms(Generic[T]):
+    """Inputs of the chain for all pipes, one row each; the last four have one row for all.
+
+    Attributes
+    ----------
+    roughness, friction_factor : T
+        NaN (arrays) or absent (columns) where the law does not use it.
+    law : Labels
+        The friction law of each pipe.
+    """
+
+    rows: tuple[str, ...]
+    length: T
+    bore: T
+    roughness: T
+    friction_factor: T
+    parallel: T
+    law: Labels
+    fittings: FittingTerms[T]
+    viscosity: T
+    gravity: T
+    laminar_below: T
+    turbulent_above: T
+
+
+@dataclass(frozen=True)
+class TransitionLimits(Generic[T]):
+    """Darcy f at the two ends of the transition; the same for every flow."""
+
+    laminar: T
+    turbulent: T
+
+
+@dataclass(frozen=True)
+class PipeResults(Generic[T]):
+    """What the chain gives, in its order; losses and velocity carry the sign of the flow, flow is per pipe of n."""
+
+    flow_each: T
+    velocity: T
+    reynolds: T
+    friction_factor: T
+    friction_loss: T
+    fitting_velocity: T
+    fitting_coefficient: T
+    each_fitting_loss: T
+    fitting_loss: T
+    head_loss: T
+
+
+def transition_limits(on: Evaluator[T], pipe: PipeTerms[T]) -> TransitionLimits[T]:
+    """Return Darcy f at the ends of the transition, for pipes whose law has one."""
+    return TransitionLimits(
+        on.apply(
+            "constants.factor_laminar", friction.factor_at_laminar_limit, laminar_below=pipe.laminar_below
+        ),
+        on.apply(
+            "pipes.factor_turbulent",
+            friction.AT_TURBULENT_LIMIT,
+            by=pipe.law,
+            roughness=pipe.roughness,
+            bore=pipe.bore,
+            reynolds=pipe.turbulent_above,
+        ),
+    )
+
+
+def losses(on: Evaluator[T], pipe: PipeTerms[T], limits: TransitionLimits[T], flow: T) -> PipeResults[T]:
+    """Return the head that full pipes lose, and all that lies between, from their flows.
+
+    Parameters
+    ----------
+    on : Evaluator
+        Arrays in the solver, columns in the ledger.
+    pipe : PipeTerms
+        Inputs, in SI.
+    limits : TransitionLimits
+        From `transition_limits` on the same inputs.
+    flow : T
+        Flow of each row, total of its parallel pipes, m³/s, positive from ``from`` to ``to``.
+    """
+    each = on.apply("pipes.flow_each", velocity.flow_each, flow=flow, parallel=pipe.parallel)
+    mean = on.apply("pipes.velocity", velocity.mean_velocity, flow_each=each, bore=pipe.bore)
+    reynolds = on.apply(
+        "pipes.reynolds", velocity.reynolds_number, velocity=mean, bore=pipe.bore, viscosity=pipe.viscosity
+    )
+    factor = on.apply(
+        "pipes.friction_factor",
+        friction.FRICTION_FACTOR,
+        by=pipe.law,
+        reynolds=reynolds,
+        roughness=pipe.roughness,
+        bore=pipe.bore,
+        friction_factor=pipe.friction_factor,
+        laminar_below=pipe.laminar_below,
+        turbulent_above=pipe.turbulent_above,
+        factor_laminar=limits.laminar,
+        factor_turbulent=limits.turbulent,
+    )
+    friction_loss = on.apply(
+        "pipes.friction_loss",
+        friction.FRICTION_LOSS,
+        by=pipe.law,
+        reynolds=reynolds,
+        laminar_below=pipe.laminar_below,
+        factor=factor,
+        length=pipe.length,
+        bore=pipe.bore,
+        velocity=mean,
+        gravity=pipe.gravity,
+        viscosity=pipe.viscosity,
+        flow_each=each,
+    )
+    fitted = _fitting_losses(on, pipe, each)
+    head = on.apply("pipes.head_loss", energy.head_loss, friction_loss=friction_loss, fitting_loss=fitted[-1])
+    return PipeResults(each, mean, reynolds, factor, friction_loss, *fitted, head)
+
+
+def _fitting_losses(on: Evaluator[T], pipe: PipeTerms[T], each: T) -> tuple[T, T, T, T]:
+    part = pipe.fittings
+    through = on.gather(each, part.pipe, part.rows)
+    mean = on.apply("fittings.velocity", velocity.mean_velocity, flow_each=through, bore=part.bore)
+    coefficient = on.apply(
+        "fittings.coefficient",
+        fitting.COEFFICIENT,
+        flow_each=through,
+        coefficient_forward=part.coefficient_forward,
+        coefficient_reverse=part.coefficient_reverse,
+    )
+    loss = on.apply(
+        "fittings.loss",
+        fitting.fitting_loss,
+        count=part.count,
+        coefficient=coefficient,
+        velocity=mean,
+        gravity=pipe.gravity,
+    )
+    return mean, coefficient, loss, on.total("pipes.fitting_loss", loss, part.pipe, pipe.rows)
