@@ -136,6 +136,7 @@ def evaluate_leaf(leaf: Leaf, inputs: Mapping[str, Any]) -> Value:
 def _root(law: Implicit, inputs: Mapping[str, Any]) -> Value:
     plain = {name: value_of(value) for name, value in inputs.items()}
     x = np.atleast_1d(np.asarray(evaluate_leaf(law.start, plain), dtype=np.float64))
+    step = np.full_like(x, np.inf)
     for _ in range(STEPS):
         read = law.residual.body(**{law.unknown: Slope(x, np.ones_like(x))}, **plain)
         step = read.value / read.slope
@@ -168,8 +169,12 @@ class Arrays:
     def total(self, name: str, value: Value, into: Rows, rows: tuple[str, ...], /) -> Value:  # noqa: ARG002
         """Sum by destination."""
         if isinstance(value, Slope):
-            return Slope(np.bincount(into, value.value, len(rows)), np.bincount(into, value.slope, len(rows)))
-        return np.bincount(into, np.asarray(value), len(rows)).astype(np.float64)
+            return Slope(_sums(value.value, into, len(rows)), _sums(value.slope, into, len(rows)))
+        return _sums(value, into, len(rows))
+
+
+def _sums(terms: Array, into: Rows, count: int) -> Array:
+    return np.bincount(into, terms, count).astype(np.float64)
 
 
 ARRAYS = Arrays()

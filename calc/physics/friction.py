@@ -5,7 +5,7 @@
 
 import numpy as np
 
-from calc.equation import Bound, Choice, Implicit, Reference, Regimes, equation
+from calc.equation import Bound, Choice, Implicit, Law, Reference, Regimes, equation
 from calc.physics import symbols as s
 
 WEISBACH_1845 = Reference(
@@ -150,7 +150,11 @@ colebrook_white = Implicit(
     start=haaland,
 )
 
-ROUGH_PIPE_LAWS = {"colebrook-white": colebrook_white, "swamee-jain": swamee_jain, "haaland": haaland}
+ROUGH_PIPE_LAWS: dict[str, Law] = {
+    "colebrook-white": colebrook_white,
+    "swamee-jain": swamee_jain,
+    "haaland": haaland,
+}
 """Laws that take a roughness height and hold above the transition. A new one is a line here."""
 
 LAW_NAMES = (*ROUGH_PIPE_LAWS, "fixed")
@@ -161,13 +165,13 @@ AT_TURBULENT_LIMIT = Choice(
 )
 
 
-def _regimes(law: object) -> Regimes:
+def _regimes(law: Law) -> Regimes:
     return Regimes(
         name="friction_factor",
         title="Darcy f",
         by="reynolds",
         bounds=(Bound(0.0, strict=True), Bound("laminar_below"), Bound("turbulent_above")),
-        laws=(None, laminar_factor, transition_factor, law),  # type: ignore[arg-type]
+        laws=(None, laminar_factor, transition_factor, law),
         labels=("at rest", "laminar", "transition", "turbulent"),
     )
 

@@ -1,0 +1,133 @@
+"""The evaluator that keeps the books: laws on columns, each result entered with its origin."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+import numpy as np
+
+from calc.equation import Choice, Labels, Law, Leaf, Regimes, select
+from calc.equation.evaluation import evaluate_leaf, part
+from calc.equation.law import gives, takes
+from calc.ledger.column import ABSENT, Column, Rows, View
+from calc.ledger.ledger import Ledger
+from calc.ledger.origin import Combined, Derived
+
+
+class Accountant:
+    """Applies laws to views of columns and enters the results under one case.
+
+    Parameters
+    ----------
+    ledger : Ledger
+        Where results are entered.
+    case : str
+        Id of the case; empty for numbers that belong to none.
+    of : str
+        The component whose history is being entered, empty otherwise.
+    """
+
+    def __init__(self, ledger: Ledger, case: str, of: str = "") -> None:
+        self.ledger = ledger
+        self.case = case
+        self.of = of
+
+    def apply(self, name: str, law: Law, /, *, by: Labels | None = None, **inputs: View) -> View:
+        """Apply a law to views and enter the result; rows for which the law defines no value stay absent."""
+        owner = next((view for view in inputs.values() if not view.shared), None)
+        shared = owner is None
+        rows = next(iter(inputs.values())).rows[:1] if owner is None else owner.rows
+        arrays: dict[str, Any] = {n: view.values for n, view in inputs.items()}
+        if by is not None:
+            arrays["by"] = by
+        values = np.full(len(rows), np.nan)
+        which = np.full(len(rows), ABSENT, dtype=np.int64)
+        leaves: list[Leaf] = []
+        labels: list[str] = []
+        for at, leaf, label in select(law, arrays, len(rows)):
+            if leaf is None:
+                continue
+            which[at] = len(leaves)
+            leaves.append(leaf)
+            labels.append(label if isinstance(law, Regimes | Choice) else "")
+            values[at] = evaluate_leaf(leaf, {n: part(arrays[n], at) for n in takes(leaf)})
+        return self._entered(name, law, rows, values, which, leaves, labels, inputs, shared=shared)
+
+    def _entered(
+        self,
+        name: str,
+        law: Law,
+        rows: Sequence[str],
+        values: Any,  # noqa: ANN401
+        which: Rows,
+        leaves: Sequence[Leaf],
+        labels: Sequence[str],
+        inputs: Mapping[str, View],
+        *,
+        shared: bool,
+    ) -> View:
+        kept = np.flatnonzero(which != ABSENT)
+        if not len(kept):
+            empty = np.full(len(rows), ABSENT, dtype=np.int64)
+            return View((), empty, np.zeros(len(rows), dtype=np.int64), tuple(rows))
+        needed = {n for leaf in leaves for n in takes(leaf)}
+        origin = Derived(
+            law,
+            tuple(leaves),
+            which[kept],
+            tuple(labels),
+            {n: view.take(kept) for n, view in inputs.items() if n in needed},
+        )
+        column = self.ledger.enter(
+            name,
+            gives(leaves[0]).kind,
+            [rows[int(k)] for k in kept],
+            values[kept],
+            origin,
+            case=self.case,
+            of=self.of,
+        )
+        at = np.zeros(len(rows), dtype=np.int64)
+        at[kept] = np.arange(len(kept))
+        return View((column,), np.where(which == ABSENT, ABSENT, 0), at, tuple(rows), shared)
+
+    def gather(self, value: View, at: Rows, rows: tuple[str, ...], /) -> View:
+        """Return one number for each of ``rows``."""
+        return value.take(at, rows)
+
+    def total(self, name: str, value: View, into: Rows, rows: tuple[str, ...], /) -> View:
+        """Enter for each of ``rows`` the sum of the numbers that go into it."""
+        column = self.combine(name, "sum", value, into, rows, words="sum")
+        return View.whole(column)
+
+    def combine(
+        self,
+        name: str,
+        operation: str,
+        terms: View,
+        into: Rows,
+        rows: Sequence[str],
+        *,
+        words: str,
+        signs: Any = None,  # noqa: ANN401
+        kind: Any = None,  # noqa: ANN401
+    ) -> Column:
+        """Enter a sum, or the largest or least, of signed terms for each row."""
+        signed = np.ones(len(into)) if signs is None else np.asarray(signs, dtype=np.float64)
+        origin = Combined(operation, terms, into, signed, words)
+        kind = kind or terms.sources[0].kind
+        values = combined(operation, signed * terms.values, into, len(rows))
+        return self.ledger.enter(name, kind, rows, values, origin, case=self.case, of=self.of)
+
+
+def combined(operation: str, terms: Any, into: Rows, count: int) -> Any:  # noqa: ANN401
+    """Return the sum, largest, least or largest size of terms for each of ``count`` rows."""
+    if operation == "sum":
+        return np.bincount(into, terms, count).astype(np.float64)
+    if operation == "largest size":
+        terms = np.abs(terms)
+    at = np.minimum if operation == "least" else np.maximum
+    values = np.full(count, np.inf if operation == "least" else -np.inf)
+    at.at(values, into, terms)
+    return values

@@ -1,0 +1,131 @@
+"""The ledger as data: complete enough that a reader without this program can replay each derived value."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+
+from calc.equation import Equation, Implicit, Leaf, linear
+from calc.ledger.column import Column, View
+from calc.ledger.ledger import Ledger
+from calc.ledger.origin import Combined, Converted, Derived, Given, Judged, Library, Program, Solved
+
+FORMAT = "headtrace-ledger/1"
+
+
+def exported(ledger: Ledger) -> dict[str, Any]:
+    """Return the ledger as plain data, in SI.
+
+    Every input of a derived value is ``{"column": k}`` (row for row), ``{"column": k, "row": r}`` (one number for all
+    rows), or ``{"columns": [...], "rows": [...]}`` (a pair for each row, null where not taken). Formulas name inputs
+    as the ``inputs`` do, with ``+ - * / ^``, ``pi`` and the functions abs, sqrt, ln, log10, exp.
+    """
+    number = {id(column): k for k, column in enumerate(ledger.columns)}
+    return {
+        "format": FORMAT,
+        "columns": [_column(column, number) for column in ledger.columns],
+    }
+
+
+def _column(column: Column, number: dict[int, int]) -> dict[str, Any]:
+    told: dict[str, Any] = {"name": column.name, "case": column.case}
+    if column.of:
+        told["of"] = column.of
+    return {
+        **told,
+        "kind": column.kind.name,
+        "unit": column.kind.unit,
+        "rows": list(column.rows),
+        "values": column.values.tolist(),
+        "origin": _origin(column, number),
+    }
+
+
+def _origin(column: Column, number: dict[int, int]) -> dict[str, Any]:
+    origin = column.origin
+    match origin:
+        case Given() | Library():
+            return {"kind": "given" if isinstance(origin, Given) else "library", **_stated(origin)}
+        case Converted():
+            told = {"numbers": list(origin.numbers), "units": list(origin.units)}
+            told |= {"factors": list(origin.factors), "offsets": list(origin.offsets)}
+            return {"kind": "converted", **_stated(origin), **told}
+        case Derived():
+            return _derived(origin, number)
+        case Combined():
+            return {
+                "kind": "total",
+                "operation": origin.operation,
+                "meaning": origin.words,
+                "terms": _view(origin.terms, number),
+                "into": origin.into.tolist(),
+                "signs": origin.signs.tolist(),
+            }
+        case Solved():
+            told = {"statement": origin.statement, "method": origin.method, "iterations": origin.iterations}
+            return {"kind": "solved", **told, "proof": list(origin.proof)}
+        case Judged():
+            return {
+                "kind": "judged",
+                "rule": "1 if margin >= 0 else 0",
+                "margin": _view(origin.margin, number),
+            }
+        case Program():
+            return {"kind": "program", "statement": origin.statement}
+
+
+def _stated(origin: Given | Converted | Library) -> dict[str, Any]:
+    return {
+        "marks": [str(mark) for mark in origin.marks],
+        "written": list(origin.written),
+        "bases": list(origin.bases),
+    }
+
+
+def _derived(origin: Derived, number: dict[int, int]) -> dict[str, Any]:
+    told: dict[str, Any] = {"kind": "derived", "law": origin.law.name}
+    if len(origin.leaves) == 1:
+        told |= _leaf(origin.leaves[0])
+        if origin.labels[0]:
+            told["regime"] = origin.labels[0]
+    else:
+        told["laws"] = [
+            {**_leaf(leaf), "regime": label} for leaf, label in zip(origin.leaves, origin.labels, strict=True)
+        ]
+        told["law_of_row"] = origin.which.tolist()
+    told["inputs"] = {name: _view(view, number) for name, view in origin.inputs.items()}
+    return told
+
+
+def _leaf(leaf: Leaf) -> dict[str, Any]:
+    equation: Equation = leaf.residual if isinstance(leaf, Implicit) else leaf
+    told = {
+        "equation": equation.name,
+        "title": equation.title,
+        "formula": linear(equation.expression, lambda name: name),
+        "printed": equation.formula(),
+        "source": equation.source.text,
+        "range": equation.valid,
+    }
+    if isinstance(leaf, Implicit):
+        told |= {"root_of": leaf.unknown, "printed": f"0 = {equation.formula().partition(' = ')[2]}"}
+    return told
+
+
+def _view(view: View, number: dict[int, int]) -> dict[str, Any]:
+    if view.shared:
+        return {"column": number[id(view.sources[view.which[0]])], "row": int(view.at[0])}
+    columns = [number[id(column)] for column in view.sources]
+    if (
+        len(columns) == 1
+        and np.array_equal(view.at, np.arange(len(view.sources[0].rows)))
+        and not view.which.any()
+    ):
+        return {"column": columns[0]}
+    if len(columns) == 1 and not view.which.any():
+        return {"column": columns[0], "rows": view.at.tolist()}
+    return {
+        "columns": [None if w < 0 else columns[w] for w in view.which.tolist()],
+        "rows": [None if w < 0 else a for w, a in zip(view.which.tolist(), view.at.tolist(), strict=True)],
+    }

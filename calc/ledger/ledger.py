@@ -1,0 +1,133 @@
+"""The ledger itself: columns entered once, found by id."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, field
+from typing import NamedTuple
+
+import numpy as np
+import numpy.typing as npt
+
+from calc.kinds import Kind
+from calc.ledger.column import Column, View
+from calc.ledger.origin import Origin
+from calc.problems import CalcError, Unresolved, nearest
+
+_ID = re.compile(
+    r"(?P<group>[\w-]+)\.(?P<rest>[^@#]+?)(?:@(?P<case>[\w-]+))?(?:#(?P<trial>\d+))?",
+)
+
+
+class Spot(NamedTuple):
+    """One number: a column and a row in it."""
+
+    column: Column
+    row: int
+
+    @property
+    def id(self) -> str:
+        """Its id."""
+        return self.column.id(self.row)
+
+    @property
+    def value(self) -> float:
+        """Its value, in SI."""
+        return float(self.column.values[self.row])
+
+
+@dataclass
+class Ledger:
+    """Columns in the order of their making.
+
+    ``parents`` says which case a case builds upon: a number that a case does not state is its parent's.
+    """
+
+    parents: Mapping[str, str] = field(default_factory=dict)
+    columns: list[Column] = field(default_factory=list)
+    _named: dict[tuple[str, str, str], list[Column]] = field(default_factory=dict)
+
+    def enter(
+        self,
+        name: str,
+        kind: Kind,
+        rows: Sequence[str],
+        values: npt.ArrayLike,
+        origin: Origin,
+        *,
+        case: str = "",
+        of: str = "",
+    ) -> Column:
+        """Enter a column and return it.
+
+        Raises
+        ------
+        CalcError
+            If a number is not finite, or a row of that name and case stands already.
+        """
+        array = np.array(values, dtype=np.float64).reshape(-1)
+        if len(array) != len(rows):
+            raise CalcError(f"{name}@{case}: {len(array)} numbers for {len(rows)} rows")
+        if not np.all(np.isfinite(array)):
+            bad = rows[int(np.flatnonzero(~np.isfinite(array))[0])]
+            raise CalcError(f"{name}@{case}: the number of {bad} is not finite")
+        column = Column(name, case, of, kind, tuple(rows), array, origin)
+        standing = self._named.setdefault((name, case, of), [])
+        if any(row in other.index for other in standing for row in column.rows):
+            raise CalcError(f"{name}@{case}: a row stands already")
+        standing.append(column)
+        self.columns.append(column)
+        return column
+
+    def find(self, name: str, case: str = "", of: str = "") -> list[Column]:
+        """Return the columns of a name in a case, nearest first through the cases it builds upon, then of no case."""
+        found: list[Column] = []
+        while True:
+            found += self._named.get((name, case, of), [])
+            if not case:
+                return found
+            case = self.parents.get(case, "")
+
+    def spot(self, id_: str) -> Spot:
+        """Return the number of an id.
+
+        Raises
+        ------
+        Unresolved
+            If there is none; the message names the nearest.
+        """
+        for spot in self._spots(id_):
+            return spot
+        raise Unresolved(f"no number has the id '{id_}'. {self._hint(id_)}".strip())
+
+    def _spots(self, id_: str) -> Iterator[Spot]:
+        match = _ID.fullmatch(id_)
+        if match is None:
+            return
+        subject, dot, quantity = match["rest"].rpartition(".")
+        if not dot:
+            return
+        name, case, trial = f"{match['group']}.{quantity}", match["case"] or "", match["trial"]
+        if trial is None and not case and not self.find(name):
+            case = "base"
+        row = subject if trial is None else trial
+        for column in self.find(name, case, "" if trial is None else subject):
+            if row in column.index:
+                yield Spot(column, column.index[row])
+
+    def _hint(self, id_: str) -> str:
+        known = [column.id(row) for column in self.columns for row in range(min(len(column.rows), 200))]
+        return nearest(id_, known)
+
+    def view(self, name: str, case: str, rows: Sequence[str]) -> View:
+        """Return the given rows of a name in a case, absent where nothing states them."""
+        return View.assembled(self.find(name, case), rows)
+
+    def shared(self, name: str, case: str = "") -> View:
+        """Return the single number of a name, to serve every row."""
+        columns = self.find(name, case)
+        if not columns:
+            raise Unresolved(f"no column is named {name}@{case}")
+        one = np.zeros(1, dtype=np.int64)
+        return View((columns[0],), one, one, columns[0].rows[:1], shared=True)

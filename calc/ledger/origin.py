@@ -1,0 +1,135 @@
+"""The origins of columns: a closed union."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+
+from calc.equation import Law, Leaf
+from calc.ledger.column import View
+from calc.marks import Mark
+
+Rows = npt.NDArray[np.int64]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Given:
+    """Read from the user's files, in SI: a mark, the text as written and what it rests on, per row."""
+
+    marks: tuple[Mark, ...]
+    written: tuple[str, ...]
+    bases: tuple[str, ...]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Converted:
+    """Read from the user's files in another unit: value = number · factor + offset, per row."""
+
+    marks: tuple[Mark, ...]
+    written: tuple[str, ...]
+    bases: tuple[str, ...]
+    numbers: tuple[float, ...]
+    units: tuple[str, ...]
+    factors: tuple[float, ...]
+    offsets: tuple[float, ...]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Library:
+    """From a table or default that ships with the program: a mark in it, the text and its source, per row."""
+
+    marks: tuple[Mark, ...]
+    written: tuple[str, ...]
+    bases: tuple[str, ...]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Derived:
+    """Computed by a law from other columns.
+
+    Attributes
+    ----------
+    law : Law
+        As declared.
+    leaves : tuple of Leaf
+        The equations (or implicit laws) that governed some row.
+    which : ndarray of int
+        For each row, the leaf that governed it. Shape (n,).
+    labels : tuple of str
+        For each leaf, the regime or choice it stands for; empty where the law is one equation.
+    inputs : mapping of str to View
+        Aligned with the rows, or shared; absent where the governing leaf does not take it.
+    """
+
+    law: Law
+    leaves: tuple[Leaf, ...]
+    which: Rows
+    labels: tuple[str, ...]
+    inputs: Mapping[str, View]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Solved:
+    """Found by iteration: what makes it the answer, and the columns that prove it.
+
+    Attributes
+    ----------
+    statement : str
+        The condition that it satisfies, in words and symbols.
+    method : str
+        How it was found.
+    iterations : int
+        Rows of the history.
+    proof : tuple of str
+        Names of the columns of the same case in which the condition is evaluated at the answer.
+    """
+
+    statement: str
+    method: str
+    iterations: int
+    proof: tuple[str, ...]
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Combined:
+    """A sum, or the largest or least, of several numbers per row.
+
+    Attributes
+    ----------
+    operation : str
+        ``sum``, ``largest``, ``least`` or ``largest size`` (greatest absolute value).
+    terms : View
+        All numbers combined. Shape (k,).
+    into : ndarray of int
+        For each term, the row that it enters. Shape (k,).
+    signs : ndarray
+        +1 or -1 for each term. Shape (k,).
+    words : str
+        What the combination means.
+    """
+
+    operation: str
+    terms: View
+    into: Rows
+    signs: npt.NDArray[np.float64]
+    words: str
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Judged:
+    """A verdict: 1 where the margin is not negative, 0 where it is."""
+
+    margin: View
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Program:
+    """A fact of the program's own: a count, a tolerance, a version."""
+
+    statement: str
+
+
+Origin = Given | Converted | Library | Derived | Solved | Combined | Judged | Program

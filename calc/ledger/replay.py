@@ -1,0 +1,81 @@
+"""Replay: every derived number computed again, alone, from what it cites."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+import numpy as np
+
+from calc.equation.evaluation import evaluate_leaf
+from calc.equation.law import takes
+from calc.ledger.accountant import combined
+from calc.ledger.column import Column
+from calc.ledger.ledger import Ledger
+from calc.ledger.origin import Combined, Converted, Derived, Judged
+
+TOLERANCE = 1e-12
+"""Relative to the largest operand of a sum or to the value: archives cross machines, so bits may differ."""
+
+
+@dataclass(frozen=True, slots=True)
+class Disagreement:
+    """A number that did not come out again."""
+
+    id: str
+    stands: float
+    replayed: float
+
+
+def replay(ledger: Ledger, *, columns: list[Column] | None = None) -> tuple[int, list[Disagreement]]:
+    """Recompute each number that has a rule, from its inputs alone.
+
+    Returns
+    -------
+    count : int
+        Numbers replayed.
+    disagreements : list of Disagreement
+        Those that differ by more than the tolerance; empty when all is well.
+    """
+    count, wrong = 0, []
+    for column in ledger.columns if columns is None else columns:
+        for row, (again, size) in enumerate(_again(column)):
+            count += 1
+            stands = float(column.values[row])
+            if not abs(again - stands) <= TOLERANCE * max(abs(stands), size):
+                wrong.append(Disagreement(column.id(row), stands, again))
+    return count, wrong
+
+
+def _again(column: Column) -> Iterator[tuple[float, float]]:
+    origin = column.origin
+    match origin:
+        case Derived():
+            yield from _derived(origin, len(column.rows))
+        case Combined():
+            terms = origin.signs * origin.terms.values
+            sizes = combined("sum", np.abs(terms), origin.into, len(column.rows))
+            values = combined(origin.operation, terms, origin.into, len(column.rows))
+            yield from zip(values.tolist(), sizes.tolist(), strict=True)
+        case Converted():
+            parts = zip(origin.numbers, origin.factors, origin.offsets, strict=True)
+            for number, factor, offset in parts:
+                yield number * factor + offset, 0.0
+        case Judged():
+            for margin in origin.margin.values.tolist():
+                yield float(margin >= 0), 0.0
+        case _:
+            return
+
+
+def _derived(origin: Derived, count: int) -> Iterator[tuple[float, float]]:
+    arrays = {name: view.values for name, view in origin.inputs.items()}
+    for row in range(count):
+        leaf = origin.leaves[origin.which[row]]
+        one = {}
+        for name in takes(leaf):
+            array = arrays[name]
+            one[name] = array if origin.inputs[name].shared else array[row : row + 1]
+        alike = [v for n, v in one.items() if takes(leaf)[n].kind.dimension == leaf.gives.kind.dimension]
+        size = max((abs(float(v[0])) for v in alike), default=0.0)
+        yield float(np.asarray(evaluate_leaf(leaf, one)).reshape(-1)[0]), size

@@ -1,0 +1,97 @@
+"""Trace: one number's whole derivation as text, down to file, line and column."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from calc.equation import Implicit, linear
+from calc.equation.law import takes
+from calc.ledger.column import Column
+from calc.ledger.ledger import Ledger, Spot
+from calc.ledger.origin import Combined, Converted, Derived, Given, Judged, Library, Program, Solved
+
+MANY = 12
+"""Terms of a sum shown one by one; beyond, the rest is counted."""
+
+
+def trace(ledger: Ledger, spot: Spot) -> Iterator[str]:
+    """Yield the derivation of a number, outermost first, inputs indented beneath what they enter.
+
+    A number met again is not repeated: its line says "shown above".
+    """
+    yield from _Tracer(ledger).lines(spot, 0)
+
+
+class _Tracer:
+    def __init__(self, ledger: Ledger) -> None:
+        self.ledger = ledger
+        self.shown: set[str] = set()
+
+    def lines(self, spot: Spot, depth: int) -> Iterator[str]:
+        pad = "  " * depth
+        column, row = spot
+        unit = f" {column.kind.unit}" if column.kind.unit else ""
+        head = f"{pad}{spot.id} = {spot.value:.9g}{unit}"
+        if spot.id in self.shown:
+            yield f"{head}   (shown above)"
+            return
+        self.shown.add(spot.id)
+        origin = column.origin
+        match origin:
+            case Given() | Converted() | Library():
+                yield f"{head}   {_stated(origin, row)}"
+            case Derived():
+                yield from self._derived(head, origin, row, depth)
+            case Combined():
+                yield from self._combined(head, origin, row, depth)
+            case Solved():
+                yield f"{head}   solved: {origin.statement} ({origin.method}, {origin.iterations} iterations); proof:"
+                yield from self._proof(column, row, origin, depth)
+            case Judged():
+                yield f"{head}   {'met' if spot.value else 'not met'}: the margin is {'not ' * bool(spot.value)}negative"
+                yield from self._inputs([origin.margin.spot(row)], depth)
+            case Program(statement=statement):
+                yield f"{head}   {statement}"
+
+    def _derived(self, head: str, origin: Derived, row: int, depth: int) -> Iterator[str]:
+        leaf = origin.leaves[origin.which[row]]
+        label = origin.labels[origin.which[row]]
+        equation = leaf.residual if isinstance(leaf, Implicit) else leaf
+        root = f"root {leaf.gives.text} of 0 = " if isinstance(leaf, Implicit) else ""
+        formula = (
+            equation.formula() if not root else linear(equation.expression, lambda n: equation.takes[n].text)
+        )
+        said = f", {label}" if label else ""
+        yield f"{head}   {root}{formula}   [{equation.title}{said}; {equation.source.key}]"
+        yield from self._inputs([origin.inputs[name].spot(row) for name in takes(leaf)], depth)
+
+    def _combined(self, head: str, origin: Combined, row: int, depth: int) -> Iterator[str]:
+        terms = [k for k, into in enumerate(origin.into.tolist()) if into == row]
+        signs = "" if all(origin.signs[k] > 0 for k in terms) else ", signed"
+        yield f"{head}   {origin.operation} of {len(terms)}{signs}: {origin.words}"
+        yield from self._inputs([origin.terms.spot(k) for k in terms[:MANY]], depth)
+        if len(terms) > MANY:
+            yield f"{'  ' * (depth + 1)}and {len(terms) - MANY} more"
+
+    def _proof(self, column: Column, row: int, origin: Solved, depth: int) -> Iterator[str]:
+        for name in origin.proof:
+            for proof in self.ledger.find(name, column.case):
+                found = proof.index.get(column.of or column.rows[row])
+                if found is not None and not column.of:
+                    yield from self.lines(Spot(proof, found), depth + 1)
+
+    def _inputs(self, spots: list[tuple[Column, int] | None], depth: int) -> Iterator[str]:
+        for spot in spots:
+            if spot is not None:
+                yield from self.lines(Spot(*spot), depth + 1)
+
+
+def _stated(origin: Given | Converted | Library, row: int) -> str:
+    said = "shipped" if isinstance(origin, Library) else "given"
+    basis = f" [{origin.bases[row]}]" if origin.bases[row] else ""
+    turned = ""
+    if isinstance(origin, Converted):
+        turned = f", {origin.numbers[row]:.12g} × {origin.factors[row]:.12g}"
+        if origin.offsets[row]:
+            turned += f" + {origin.offsets[row]:.12g}"
+    return f"{said} as '{origin.written[row]}' at {origin.marks[row]}{turned}{basis}"
