@@ -1,0 +1,103 @@
+"""How a ledger value is written: unit, figures, sign; and the same rule read back for the seal."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from calc.kinds import Kind
+from calc.units import factor
+
+THIN = "\u202f"
+MINUS = "−"
+LARGE, SMALL = 1e7, 1e-3
+"""Beyond these, numbers with significant figures are written as a power of ten."""
+GROUPED = 5
+"""Whole digits from which thousands are set apart."""
+
+
+@dataclass(frozen=True, slots=True)
+class Format:
+    """A way of writing a quantity.
+
+    Attributes
+    ----------
+    unit : str
+        Unit printed, such as ``L/s``; empty for pure numbers.
+    decimals : int or None
+        Figures after the point; or
+    significant : int or None
+        significant figures, written as a power of ten when very large or small.
+    plus : bool
+        Whether a positive number carries its sign.
+    bound : float or None
+        In the printed unit: a value smaller than this is written ``< bound``, for residuals.
+    """
+
+    unit: str = ""
+    decimals: int | None = None
+    significant: int | None = None
+    plus: bool = False
+    bound: float | None = None
+
+    @property
+    def spec(self) -> str:
+        """The format as one word, which `parsed` reads back."""
+        figures = f"d{self.decimals}" if self.decimals is not None else f"s{self.significant}"
+        bound = "" if self.bound is None else f"{self.bound!r}"
+        return "|".join((self.unit, figures, "+" if self.plus else "", bound))
+
+
+def parsed(spec: str) -> Format:
+    """Return the format that a spec stands for."""
+    unit, figures, plus, bound = spec.split("|")
+    count = int(figures[1:])
+    return Format(
+        unit,
+        count if figures[0] == "d" else None,
+        count if figures[0] == "s" else None,
+        bool(plus),
+        float(bound) if bound else None,
+    )
+
+
+def written(value: float, kind: Kind, form: Format) -> str:
+    """Return a value in SI as text in a format.
+
+    Minus is U+2212, thousands are set apart by U+202F, a power of ten is ``1.3 × 10^−6`` (the caret is set as a raised
+    exponent). A value that rounds to zero has no sign.
+    """
+    number = value * factor(form.unit, kind)
+    if form.bound is not None and abs(number) < form.bound:
+        return f"< {_figures(form.bound, Format(significant=1))}"
+    sign = MINUS if number < 0 else "+" if form.plus and number > 0 else ""
+    text = _figures(abs(number), form)
+    return text if not any(c in "123456789" for c in text) else sign + text
+
+
+def _figures(number: float, form: Format) -> str:
+    if form.decimals is not None:
+        return _grouped(f"{number:.{form.decimals}f}")
+    figures = form.significant or 1
+    if number == 0:
+        return "0"
+    if not SMALL <= number < LARGE:
+        mantissa, _, power = f"{number:.{figures - 1}e}".partition("e")
+        return f"{mantissa} × 10^{str(int(power)).replace('-', MINUS)}"
+    place = math.floor(math.log10(float(f"{number:.{figures - 1}e}")))
+    return _grouped(f"{round(number, figures - 1 - place):.{max(0, figures - 1 - place)}f}")
+
+
+def _grouped(text: str) -> str:
+    whole, point, rest = text.partition(".")
+    if len(whole) >= GROUPED:
+        head = len(whole) % 3 or 3
+        whole = THIN.join([whole[:head], *(whole[k : k + 3] for k in range(head, len(whole), 3))])
+    return whole + point + rest
+
+
+def read_back(text: str) -> float:
+    """Return the number that a written text stands for, in the printed unit (its bound where it begins with ``<``)."""
+    plain = text.removeprefix("< ").replace(THIN, "").replace(MINUS, "-").removeprefix("+")
+    mantissa, _, power = plain.partition(" × 10^")
+    return float(mantissa) * 10.0 ** int(power or 0)
