@@ -24,8 +24,10 @@ LIMIT = 200
 HEAD_TOLERANCE = 1e-10  # m, or rounding where that is more
 HEAD_LIMIT = 1e-7  # m, the most that rounding may excuse
 FLOW_TOLERANCE = (1e-10, 1e-13)  # of the largest flow, and m³/s
+STILL_LOSS = 1e-13  # m, that of a pipe as good as at rest
 ROUNDING = 16 * float(np.finfo(np.float64).eps)
 TRIES = 60
+BEYOND = "the numbers grew beyond what can be computed"
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -91,7 +93,9 @@ def form_opinion(works: Works) -> Opinion:
             iterations=0,
             reason=reason,
         )
-    level = np.nan_to_num(works.level, nan=0.0)
+    # Above the lowest reservoir, so that small differences of high levels keep all their digits.
+    held = ~np.isnan(works.level)
+    level = np.where(held, works.level - np.min(works.level, where=held, initial=np.inf), 0.0)
     content = Content(
         pipes=pipes,
         loops=close_loops(works, tree),
@@ -99,10 +103,11 @@ def form_opinion(works: Works) -> Opinion:
         given=np.where(works.open, level[works.start] - level[works.end], 0.0),
         scale=np.where(works.open, np.abs(level[works.start]) + np.abs(level[works.end]), 0.0),
     )
-    flow, iterations, reason = minimise(content)
+    with np.errstate(all="ignore"):  # what is not finite is found and told below
+        flow, iterations, reason = minimise(content)
     head = walk_heads(works, tree, head_loss(pipes, flow)[0])
     if not (np.all(np.isfinite(flow)) and np.all(np.isfinite(head))):
-        reason = "the numbers grew beyond what can be computed"
+        reason = BEYOND
     return Opinion(
         flow=flow, head=head, converged=not reason, method=METHOD, iterations=iterations, reason=reason
     )
@@ -127,13 +132,13 @@ def minimise(content: Content) -> tuple[Floats, int, str]:
         loss, slope = head_loss(pipes, flow)
         error = loops.T @ (loss - content.given)
         if not np.all(np.isfinite(error)):
-            return flow, iteration, "the numbers grew beyond what can be computed"
+            return flow, iteration, BEYOND
         rounding = content.rounding(state, loss, slope)
         step = solve_loops(content, curvature(pipes, flow, slope), -error)
         change = loops @ step
         settled = bool(np.all(np.abs(error) <= np.maximum(HEAD_TOLERANCE, rounding)))
         largest = float(np.max(np.abs(change)))
-        still = largest <= FLOW_TOLERANCE[0] * float(np.max(np.abs(flow))) + FLOW_TOLERANCE[1]
+        still = largest <= still_flow(flow)
         # Below rounding a step need not shrink any more; it has then done what arithmetic can do.
         spent = bool(np.all(np.abs(error) <= rounding)) and largest >= 0.9 * best
         if settled and (still or spent):
@@ -154,22 +159,36 @@ def start_flows(content: Content) -> Floats:
 
 
 def curvature(pipes: Pipes, flow: Floats, slope: Floats) -> Floats:
-    """Return slopes for the second derivative alone, kept above zero where a fixed f is at rest."""
-    least = FLOW_TOLERANCE[0] * float(np.max(np.abs(flow))) + FLOW_TOLERANCE[1]
+    """Return slopes for the second derivative alone, kept above zero where a fixed f is at rest.
+
+    They are kept at what they are in a flow too small to matter, by itself and by its loss.
+    """
+    least = np.minimum(still_flow(flow), np.sqrt(STILL_LOSS / resistance(pipes.works)))
     resting = np.abs(flow) < least
-    if not np.any(resting):
-        return slope
-    return np.where(resting, np.maximum(slope, head_loss(pipes, np.full(len(flow), least))[1]), slope)
+    return np.where(resting, np.maximum(slope, head_loss(pipes, least)[1]), slope)
+
+
+def still_flow(flow: Floats) -> float:
+    """Return the change of flow that no longer counts, in m³/s."""
+    return FLOW_TOLERANCE[0] * float(np.max(np.abs(flow))) + FLOW_TOLERANCE[1]
 
 
 def solve_loops(content: Content, slope: Floats, right: Floats) -> Floats:
-    """Return the loop flows that Cᵀ diag(slope) C takes to the right-hand side, shape (k,)."""
+    """Return the loop flows that Cᵀ diag(slope) C takes to the right-hand side, shape (k,).
+
+    NaN where there are none: a loop whose pipes resist nothing, or numbers beyond range.
+    """
     loops = content.loops
     matrix = csc_array(loops.T @ diags_array(slope) @ loops)
     root = 1.0 / np.sqrt(matrix.diagonal())
+    if not np.all(np.isfinite(root)):
+        return np.full(len(right), np.nan)
     scaled = csc_array(diags_array(root) @ matrix @ diags_array(root))
     symmetric = {"SymmetricMode": True}
-    factors = splu(scaled, permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options=symmetric)
+    try:
+        factors = splu(scaled, permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options=symmetric)
+    except RuntimeError:  # singular
+        return np.full(len(right), np.nan)
     answer: Floats = root * factors.solve(root * right)
     return answer
 
@@ -184,9 +203,9 @@ def shorten(content: Content, flow: Floats, change: Floats) -> float:
     def rise(part: float) -> float:
         return float(change @ (head_loss(content.pipes, flow + part * change)[0] - content.given))
 
-    enough = 0.3 * abs(rise(0.0))
     low, high, part = 0.0, 1.0, 1.0
-    at_low, at_high = rise(0.0), rise(1.0)
+    at_low, at_high = rise(low), rise(high)
+    enough = 0.3 * abs(at_low)
     if at_high <= enough or at_low >= 0.0:
         return 1.0
     for turn in range(TRIES):

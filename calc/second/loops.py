@@ -141,8 +141,10 @@ def close_loops(works: Works, tree: Branching) -> csc_array:
     neighbours: Neighbours = [{} for _ in range(works.node_count + 1)]
 
     def join(pipe: int) -> None:
-        neighbours[start[pipe]].setdefault(end[pipe], (pipe, 1))
-        neighbours[end[pipe]].setdefault(start[pipe], (pipe, -1))
+        # The latest pipe between two nodes stands for them: pipes side by side then close loops in a
+        # row, each with the one before, and not all with the first, which would fill the matrix.
+        neighbours[start[pipe]][end[pipe]] = (pipe, 1)
+        neighbours[end[pipe]][start[pipe]] = (pipe, -1)
 
     for pipe, _, _, _ in tree.order:
         join(pipe)
