@@ -52,7 +52,7 @@ apt_install() {
   fi
   for package in "$@"; do
     # a name without a candidate is one that this release does not have
-    if apt-cache policy "$package" 2>/dev/null | grep -q 'Candidate: [^(]'; then known+=("$package"); fi
+    if [[ $(apt-cache policy "$package" 2>/dev/null) =~ Candidate:\ [^\(] ]]; then known+=("$package"); fi
   done
   [[ ${#known[@]} -gt 0 ]] || return 1
   say "installing ${known[*]}"
