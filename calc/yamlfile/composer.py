@@ -2,19 +2,19 @@
 
 from __future__ import annotations
 
-import gc
-from contextlib import contextmanager
 from typing import TYPE_CHECKING, Any
 
 import yaml
 
 from calc.marks import Mark
 from calc.problems import Problem
+from calc.yamlfile.collector import without_collector
 from calc.yamlfile.node import Entry, Mapping, Node, Scalar, Sequence
-from calc.yamlfile.wording import syntax_problem
+from calc.yamlfile.source import FORBIDDEN, MOST_PROBLEMS, too_many
+from calc.yamlfile.wording import shown, syntax_problem
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Iterator
+    from collections.abc import Callable
 
 DEEPEST = 30
 MOST_NODES = 3_000_000
@@ -68,12 +68,15 @@ class _Composer:
             if level.entries is None:
                 written += f"[{len(level.items) + 1}]"
             elif level.key is not None:
-                written += f".{level.key.text}"
+                written += f".{shown(level.key.text)}"
         return written.removeprefix(".")
 
     def report(self, mark: Mark, code: str, found: str, expected: str, hint: str = "") -> None:
-        """Add a problem at the present place."""
+        """Add a problem at the present place; give up the file after too many."""
         self.problems.append(Problem(mark, code, self.path(), found, expected, hint))
+        if len(self.problems) >= MOST_PROBLEMS:
+            self.problems.append(too_many(mark))
+            raise _AbandonedError
 
     def mark(self, event: Any) -> Mark:  # noqa: ANN401 - the two parsers share no class of events
         """Return the mark of an event, as long as its first line."""
@@ -90,15 +93,18 @@ class _Composer:
         if event.anchor is not None or event.tag is not None:
             self.refuse_properties(event, mark)
         self.count(mark)
+        if event.style == '"' and (forbidden := FORBIDDEN.search(event.value)):
+            found = f"an escape stands for the invisible character U+{ord(forbidden[0]):04X}"
+            self.report(mark, "control-character", found, "text that shows on paper")
         self.place(Scalar(event.value, mark, bool(event.style)))
 
-    def take_alias(self, event: yaml.AliasEvent) -> None:
+    def take_alias(self, event: Any) -> None:  # noqa: ANN401 - as above
         """Report an alias and place the text it is written as."""
         mark = self.mark(event)
         self.report(
             mark,
             "yaml-alias",
-            f"the alias '*{event.anchor}' stands for a value written elsewhere",
+            f"the alias '*{shown(event.anchor)}' stands for a value written elsewhere",
             "the value itself",
             "write the value here; a text that begins with '*' stands in quotes",
         )
@@ -107,10 +113,12 @@ class _Composer:
     def refuse_properties(self, event: Any, mark: Mark) -> None:  # noqa: ANN401 - as above
         """Report an anchor or a tag."""
         if event.anchor is not None:
-            found = f"the anchor '&{event.anchor}' marks a value for use elsewhere"
+            found = f"the anchor '&{shown(event.anchor)}' marks a value for use elsewhere"
             self.report(mark, "yaml-anchor", found, "the value alone", "remove the anchor")
         if event.tag is not None:
-            self.report(mark, "yaml-tag", f"the tag {event.tag!r}", "the value alone", "remove the tag")
+            self.report(
+                mark, "yaml-tag", f"the tag '{shown(event.tag)}'", "the value alone", "remove the tag"
+            )
 
     def count(self, mark: Mark) -> None:
         """Count a node; end the file at the limit."""
@@ -118,7 +126,7 @@ class _Composer:
         if self.nodes > MOST_NODES:
             found = f"the file holds more than {MOST_NODES} values"
             self.report(mark, "too-large", found, "a smaller file", "divide it into several files")
-            self.abandon()
+            raise _AbandonedError
 
     def open(self, event: Any) -> None:  # noqa: ANN401 - as above
         """Begin a mapping or a sequence."""
@@ -129,7 +137,7 @@ class _Composer:
         self.count(mark)
         if len(self.stack) >= DEEPEST:
             self.report(mark, "too-deep", f"nested more than {DEEPEST} deep", "a flatter file")
-            self.abandon()
+            raise _AbandonedError
         self.stack.append(_Open(mark, is_mapping=isinstance(event, yaml.MappingStartEvent)))
 
     def close(self, _event: object) -> None:
@@ -171,7 +179,7 @@ class _Composer:
             self.report(node.mark, "complex-key", "a list or mapping stands as a key", "a text as key")
         elif node.text in entries:
             first = entries[node.text].key.mark
-            found = f"the key '{node.text}' stands twice, first at {first}"
+            found = f"the key '{shown(node.text)}' stands twice, first at {first}"
             self.report(node.mark, "duplicate-key", found, "each key once", "remove or rename one of the two")
         elif node.text:
             found = "a merge key '<<' takes values from elsewhere"
@@ -192,25 +200,9 @@ class _Composer:
         """End the file."""
         self.finished = True
 
-    def abandon(self) -> None:
-        """Give up the file: what follows is not read."""
-        raise _AbandonedError
-
 
 class _AbandonedError(Exception):
     """The rest of a file is not worth reading; the reason is among the problems."""
-
-
-@contextmanager
-def _without_collector() -> Iterator[None]:
-    """Pause the cycle collector: nodes hold no cycles, and it would walk millions of them again and again."""
-    enabled = gc.isenabled()
-    gc.disable()
-    try:
-        yield
-    finally:
-        if enabled:
-            gc.enable()
 
 
 def compose(name: str, text: str, loader: type[Any] = LOADER) -> tuple[Node | None, list[Problem]]:
@@ -236,7 +228,7 @@ def compose(name: str, text: str, loader: type[Any] = LOADER) -> tuple[Node | No
     parser = loader(text)
     actions = composer.actions
     try:
-        with _without_collector():
+        with without_collector():
             while not composer.finished:
                 event = parser.get_event()
                 actions[type(event)](event)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
@@ -10,12 +9,12 @@ from calc.marks import Mark
 from calc.problems import Problem
 from calc.yamlfile.composer import LOADER, compose
 from calc.yamlfile.node import Entry, Mapping, Scalar
-from calc.yamlfile.source import SourceFile, decode, fetch, place_of
+from calc.yamlfile.source import SourceFile, decode, fetch
+from calc.yamlfile.wording import shown
 
 if TYPE_CHECKING:
     from pathlib import Path
 
-_TAB_LINE = re.compile("^([^\t\n\r]*)\t+", re.MULTILINE)
 _MOST_TABS = 20
 
 
@@ -88,11 +87,12 @@ def _tabs(name: str, text: str) -> tuple[list[Problem], bool]:
     hopeless = False
     if "\t" not in text:
         return problems, hopeless
-    for found in _TAB_LINE.finditer(text):
-        indenting = not found[1].strip()
+    for number, line in enumerate(text.splitlines(), 1):
+        before, tab, _ = line.partition("\t")
+        indenting = bool(tab) and not before.strip()
         hopeless = hopeless or indenting
-        if len(problems) < _MOST_TABS:
-            mark = place_of(name, text, found.end(1), found.end() - found.end(1))
+        if tab and len(problems) < _MOST_TABS:
+            mark = Mark(name, number, len(before) + 1)
             what = "a tab stands in the indentation" if indenting else "a tab stands here"
             problems.append(Problem(mark, "tab", "", what, "spaces", "replace each tab by spaces"))
     return problems, hopeless
@@ -164,8 +164,10 @@ def _add(sources: Sources, entry: Entry) -> None:
     """Add a top-level key, or the problem that it stands in two files."""
     first = sources.top.setdefault(entry.key.text, entry)
     if first is not entry:
-        found = f"the key '{entry.key.text}' stands twice, first at {first.key.mark}"
+        found = f"the key '{shown(entry.key.text)}' stands twice, first at {first.key.mark}"
         hint = "move both into one file, under one key"
         sources.problems.append(
-            Problem(entry.key.mark, "duplicate-key", entry.key.text, found, "each top-level key once", hint)
+            Problem(
+                entry.key.mark, "duplicate-key", shown(entry.key.text), found, "each top-level key once", hint
+            )
         )

@@ -16,7 +16,10 @@ if TYPE_CHECKING:
 
 LARGEST_FILE = 20_000_000
 _BREAK = re.compile("\r\n|[\n\r\x85\u2028\u2029]")
-_FORBIDDEN = re.compile(
+MOST_PROBLEMS = 1000
+"""A file with more is given up; the first are enough to begin with."""
+
+FORBIDDEN = re.compile(
     "[^\t\n\r -~\x85\xa0-\ud7ff\ue000-\ufffd\U00010000-\U0010ffff]|[\ufeff\u202a-\u202e\u2066-\u2069]"
 )
 _MARKS_OF_OTHER_ENCODINGS = (b"\xff\xfe", b"\xfe\xff")
@@ -105,6 +108,12 @@ def _bytes_within(folder: Path, name: str) -> bytes:
         return stream.read(LARGEST_FILE + 1)
 
 
+def too_many(mark: Mark) -> Problem:
+    """Return the problem that ends a file with too many of them."""
+    found = f"this file has {MOST_PROBLEMS} problems up to here; what follows is not read"
+    return Problem(mark, "too-many-problems", "", found, "", "mend these first")
+
+
 def place_of(name: str, text: str, index: int, length: int = 1) -> Mark:
     """Return the mark of a character by its index in a text."""
     line, start = 1, 0
@@ -137,7 +146,7 @@ def decode(name: str, content: bytes | str) -> tuple[str, list[Problem]]:
             text = content.decode("utf-8").removeprefix("\ufeff")
         except UnicodeDecodeError as error:
             return _not_utf8(name, content, error.start)
-    found = _FORBIDDEN.search(text)
+    found = FORBIDDEN.search(text)
     if found is None:
         return text, []
     problem = Problem(

@@ -8,15 +8,18 @@ from typing import TYPE_CHECKING, NamedTuple
 
 from calc.marks import Mark
 from calc.problems import Problem
+from calc.yamlfile.collector import without_collector
 from calc.yamlfile.node import Entry, Mapping, Scalar
-from calc.yamlfile.source import SourceFile, decode, fetch
+from calc.yamlfile.source import MOST_PROBLEMS, SourceFile, decode, fetch, too_many
+from calc.yamlfile.wording import shown
 
 if TYPE_CHECKING:
     from pathlib import Path
 
-_HEADER = re.compile(r"([^\[\]]*?) *(?:\[ *([^\[\]]*?) *\])?")
+_HEADING = re.compile(r"([^\[\]]+)(?:\[([^\[\]]*)\])?")
+MOST_COLUMNS = 100
 _NUMBER = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?", re.ASCII)
-_CELL = re.compile(r'([ \t]*)(?:"((?:[^"]|"")*)"|([^",]*?))[ \t]*(,|$)')
+_CELL = re.compile(r'([ \t]*+)(?:"([^"]*+(?:""[^"]*+)*+)"[ \t]*+|([^",]*+))(,|\Z)')
 
 
 class _Cell(NamedTuple):
@@ -79,7 +82,8 @@ def read_table(folder: Path, name: Scalar, path: str = "") -> Table:
         return Table(Mapping((), name.mark), [file], None, "")
     text, problems = decode(name.text, file.content)
     reading = _Reading(name.text, path, problems)
-    rows = Mapping((), Mark(name.text, 1, 1)) if problems else reading.read(text.splitlines())
+    with without_collector():
+        rows = Mapping((), Mark(name.text, 1, 1)) if problems else reading.read(text.splitlines())
     return Table(rows, sorted(reading.problems), file, text)
 
 
@@ -99,7 +103,7 @@ def _split(line: str) -> list[_Cell] | None:
         if match is None:
             return None
         blanks, inside, plain, end = match.groups()
-        text = plain if inside is None else inside.replace('""', '"')
+        text = plain.rstrip(" \t") if inside is None else inside.replace('""', '"')
         cells.append(_Cell(text, place + len(blanks) + 1, inside is not None))
         place, more = match.end(), end == ","
     return cells
@@ -117,7 +121,7 @@ class _Reading:
 
     def report(self, mark: Mark, code: str, words: tuple[str, str, str], *names: str) -> None:
         """Add a problem; ``words`` are found, expected and hint."""
-        path = ".".join(part for part in (self.path, *names) if part)
+        path = ".".join(shown(part) for part in (self.path, *names) if part)
         self.problems.append(Problem(mark, code, path, *words))
 
     def read(self, lines: list[str]) -> Mapping:
@@ -133,6 +137,9 @@ class _Reading:
         if self.read_header(header, number):
             for number, line in numbered[1:]:
                 self.read_row(line, number, entries)
+                if len(self.problems) >= MOST_PROBLEMS:
+                    self.problems.append(too_many(Mark(self.name, number, 1)))
+                    break
         return Mapping(tuple(entries.values()), mark)
 
     def read_header(self, line: str, number: int) -> bool:
@@ -146,6 +153,10 @@ class _Reading:
             words = ("the columns are not divided by commas", "commas", "save the table with ',' as divider")
             self.report(whole, "table-divider", words)
             return False
+        if len(cells) > MOST_COLUMNS:
+            words = (f"{len(cells)} columns", f"at most {MOST_COLUMNS}", "")
+            self.report(Mark(self.name, number, 1), "too-large", words)
+            return False
         sound = all([self.read_heading(cell, number) for cell in cells])  # noqa: C419 - every problem, not the first
         if sound and self.id_at < 0:
             self.report(whole, "no-id-column", ("no column is headed 'id'", "a column 'id'", ""))
@@ -154,15 +165,23 @@ class _Reading:
     def read_heading(self, cell: _Cell, number: int) -> bool:
         """Read one field name with its unit; return whether it is sound."""
         mark = Mark(self.name, number, cell.column, len(cell.text) or 1)
-        match = _HEADER.fullmatch(cell.text)
-        if match is None or not match[1]:
-            words = (f"the heading '{cell.text}'", "a field name, alone or with its unit: 'bore [mm]'", "")
+        match = _HEADING.fullmatch(cell.text)
+        if match is None or not match[1].strip():
+            words = (
+                f"the heading '{shown(cell.text)}'",
+                "a field name, alone or with its unit: 'bore [mm]'",
+                "",
+            )
             self.report(mark, "bad-heading", words)
             return False
-        field, unit = match[1], match[2] or ""
+        field, unit = match[1].strip(), (match[2] or "").strip()
         for column in self.columns:
             if column.key.text == field:
-                words = (f"a second column '{field}', first at {column.key.mark}", "each field once", "")
+                words = (
+                    f"a second column '{shown(field)}', first at {column.key.mark}",
+                    "each field once",
+                    "",
+                )
                 self.report(mark, "duplicate-heading", words)
                 return False
         if field == "id":
@@ -189,7 +208,7 @@ class _Reading:
             self.report(key.mark, "missing-id", ("no id in this row", "an id", ""))
         elif key.text in entries:
             words = (
-                f"the id '{key.text}' stands twice, first at {entries[key.text].key.mark}",
+                f"the id '{shown(key.text)}' stands twice, first at {entries[key.text].key.mark}",
                 "each id once",
                 "",
             )
@@ -207,9 +226,9 @@ class _Reading:
             text = cell.text
             if column.unit:
                 if _NUMBER.fullmatch(text) is None:
-                    heading = f"'{column.key.text} [{column.unit}]'"
+                    heading = f"'{shown(column.key.text)} [{shown(column.unit)}]'"
                     words = (
-                        f"'{text}' stands under {heading}",
+                        f"'{shown(text)}' stands under {heading}",
                         "a number alone",
                         "the unit stands in the header",
                     )

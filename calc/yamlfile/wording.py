@@ -56,6 +56,15 @@ _WORDS: tuple[tuple[tuple[str, ...], str, str], ...] = (
 )
 
 
+_LONGEST_SHOWN = 60
+
+
+def shown(text: str) -> str:
+    """Return text from a file for a message: printable, on one line and of bearable length."""
+    short = text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 1] + "…"
+    return "".join(letter if letter.isprintable() else "?" for letter in short)
+
+
 def syntax_problem(name: str, text: str, error: yaml.YAMLError) -> Problem:
     """Return the problem of a file that does not parse.
 
