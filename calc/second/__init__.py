@@ -18,8 +18,8 @@ when the steps are shortened by the sign of its slope.
 
 from __future__ import annotations
 
-from calc.second.content import form_opinion
 from calc.second.evaluation import evaluate
+from calc.second.opinion import form_opinion
 from calc.second.works import Evaluation, Opinion, Works
 
 __all__ = ["Evaluation", "Opinion", "Works", "evaluate", "form_opinion"]

@@ -15,11 +15,9 @@ import numpy as np
 from scipy.sparse import csc_array, diags_array
 from scipy.sparse.linalg import splu
 
-from calc.second.friction import Pipes, head_loss, prepare
-from calc.second.loops import branch_out, carry_withdrawals, close_loops, walk_heads
-from calc.second.works import Floats, Opinion, Works
+from calc.second.friction import Pipes, head_loss, resistance
+from calc.second.works import Floats
 
-METHOD = "loop flows: least content by damped Newton"
 LIMIT = 200
 HEAD_TOLERANCE = 1e-10  # m, or rounding where that is more
 HEAD_LIMIT = 1e-7  # m, the most that rounding may excuse
@@ -62,64 +60,6 @@ class Content:
         return np.minimum(most, HEAD_LIMIT)
 
 
-def form_opinion(works: Works) -> Opinion:
-    """Solve one case by loop flows.
-
-    Parameters
-    ----------
-    works : Works
-        The case.
-
-    Returns
-    -------
-    Opinion
-        Flows and heads that satisfy continuity and, round each independent loop, the laws to 1e-10 m or
-        rounding. Not converged, with the reason, where a junction has no open path to a reservoir or the
-        iteration ends elsewhere.
-    """
-    pipes = prepare(works)
-    measure = resistance(works)
-    tree = branch_out(works, np.floor(np.log10(measure)).astype(np.int64).tolist())
-    alone = np.isnan(works.level)
-    alone[[far for _, _, _, far in tree.order]] = False
-    if np.any(alone):
-        names = ", ".join(str(node) for node in np.flatnonzero(alone)[:5])
-        reason = f"{np.count_nonzero(alone)} junction(s) have no open path to a reservoir: nodes {names}"
-        return Opinion(
-            flow=np.zeros(len(works.start)),
-            head=works.level.copy(),
-            converged=False,
-            method=METHOD,
-            iterations=0,
-            reason=reason,
-        )
-    # Above the lowest reservoir, so that small differences of high levels keep all their digits.
-    held = ~np.isnan(works.level)
-    level = np.where(held, works.level - np.min(works.level, where=held, initial=np.inf), 0.0)
-    content = Content(
-        pipes=pipes,
-        loops=close_loops(works, tree),
-        carried=carry_withdrawals(works, tree),
-        given=np.where(works.open, level[works.start] - level[works.end], 0.0),
-        scale=np.where(works.open, np.abs(level[works.start]) + np.abs(level[works.end]), 0.0),
-    )
-    with np.errstate(all="ignore"):  # what is not finite is found and told below
-        flow, iterations, reason = minimise(content)
-    head = walk_heads(works, tree, head_loss(pipes, flow)[0])
-    if not (np.all(np.isfinite(flow)) and np.all(np.isfinite(head))):
-        reason = BEYOND
-    return Opinion(
-        flow=flow, head=head, converged=not reason, method=METHOD, iterations=iterations, reason=reason
-    )
-
-
-def resistance(works: Works) -> Floats:
-    """Return a rough quadratic resistance of each pipe, in s²/m⁵, to rank them by: Darcy f as 0.02."""
-    friction = 0.16 * works.length / (math.pi**2 * works.gravity * works.bore**5)
-    fittings = np.maximum(works.loss_forward, works.loss_reverse)
-    return (friction + fittings) / works.parallel**2
-
-
 def minimise(content: Content) -> tuple[Floats, int, str]:
     """Return the flows of least content, the Newton steps taken, and why they are not it, or empty."""
     loops, pipes = content.loops, content.pipes
@@ -127,26 +67,35 @@ def minimise(content: Content) -> tuple[Floats, int, str]:
         return content.carried, 0, ""
     state = start_flows(content)
     best = math.inf
-    for iteration in range(LIMIT + 1):
-        flow = content.carried + loops @ state
-        loss, slope = head_loss(pipes, flow)
-        error = loops.T @ (loss - content.given)
+    for iteration in range(LIMIT):
+        flow, slope, error, rounding = look(content, state)
         if not np.all(np.isfinite(error)):
             return flow, iteration, BEYOND
-        rounding = content.rounding(state, loss, slope)
         step = solve_loops(content, curvature(pipes, flow, slope), -error)
         change = loops @ step
         settled = bool(np.all(np.abs(error) <= np.maximum(HEAD_TOLERANCE, rounding)))
         largest = float(np.max(np.abs(change)))
-        still = largest <= still_flow(flow)
         # Below rounding a step need not shrink any more; it has then done what arithmetic can do.
         spent = bool(np.all(np.abs(error) <= rounding)) and largest >= 0.9 * best
-        if settled and (still or spent):
+        if settled and (largest <= still_flow(flow) or spent):
             return flow, iteration, ""
         best = min(best, largest) if settled else math.inf
         state = state + shorten(content, flow, change) * step
+    flow, _, error, _ = look(content, state)
     worst = float(np.max(np.abs(error)))
     return flow, LIMIT, f"a loop still lacks {worst:.3g} m after {LIMIT} steps"
+
+
+def look(content: Content, state: Floats) -> tuple[Floats, Floats, Floats, Floats]:
+    """Return what loop flows come to.
+
+    Flow and slope of each pipe, shape (m,), in m³/s and s/m²; energy error of each loop and what of it
+    rounding alone may leave, shape (k,), in m.
+    """
+    flow = content.carried + content.loops @ state
+    loss, slope = head_loss(content.pipes, flow)
+    error = content.loops.T @ (loss - content.given)
+    return flow, slope, error, content.rounding(state, loss, slope)
 
 
 def start_flows(content: Content) -> Floats:

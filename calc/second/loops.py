@@ -12,13 +12,12 @@ from __future__ import annotations
 import heapq
 from dataclasses import dataclass
 from itertools import pairwise
-from typing import TYPE_CHECKING, TypeAlias
+from typing import TypeAlias
 
 import numpy as np
 from scipy.sparse import csc_array
 
-if TYPE_CHECKING:
-    from calc.second.works import Floats, Works
+from calc.second.works import Floats, Works
 
 Step: TypeAlias = tuple[int, int]  # a pipe and +1 when walked from its start to its end, else -1
 Neighbours: TypeAlias = list[dict[int, Step]]
