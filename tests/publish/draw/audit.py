@@ -1,0 +1,47 @@
+"""Prove a sheet clean: measured by the renderer on the finished drawing, not by the code that placed the texts."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from matplotlib import rc_context
+from matplotlib.text import Text
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
+
+TOLERANCE = 0.6  # pt that two boxes may share: the ends of tails and accents
+
+
+def texts(figure: Figure) -> list[Text]:
+    """Return every text on the sheet."""
+    return [t for t in figure.findobj(Text) if t.get_visible() and t.get_text().strip()]
+
+
+def ink(text: Text, renderer) -> tuple[float, float, float, float]:
+    """Return the box of what a text prints, from its baseline and the extent of its own letters."""
+    width, height, below = renderer.get_text_width_height_descent(text.get_text(), text.get_fontproperties(), False)
+    across, baseline = text.get_transform().transform(text.get_position())
+    left = across - {"left": 0.0, "center": width / 2, "right": width}[text.get_horizontalalignment()]
+    return left, baseline - below, left + width, baseline - below + height
+
+
+def faults(figure: Figure) -> list[tuple[str, str, str]]:
+    """Return texts on texts, texts off the sheet and texts below 8 pt (6 pt for an exponent)."""
+    renderer = figure.canvas.get_renderer()
+    found = []
+    with rc_context({"text.hinting": "none"}):  # as on paper, not as on a screen of 72 dots to the inch
+        measured = [(t.get_text(), ink(t, renderer), t.get_fontsize()) for t in texts(figure)]
+    width, height = figure.bbox.width, figure.bbox.height
+    for k, (text, box, size) in enumerate(measured):
+        if box[0] < -TOLERANCE or box[1] < -TOLERANCE or box[2] > width + TOLERANCE or box[3] > height + TOLERANCE:
+            found.append(("off the sheet", text, ""))
+        exponent = text.startswith("\u2212") and text[1:].isdigit()
+        if size < (6.0 if exponent else 8.0):
+            found.append(("too small", text, str(size)))
+        for other, beside, _ in measured[k + 1 :]:
+            across = min(box[2], beside[2]) - max(box[0], beside[0])
+            up = min(box[3], beside[3]) - max(box[1], beside[1])
+            if across > TOLERANCE and up > TOLERANCE:
+                found.append(("text on text", text, other))
+    return found
