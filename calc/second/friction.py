@@ -139,7 +139,7 @@ def head_loss(pipes: Pipes, flow: Floats) -> tuple[Floats, Floats]:
     single = flow / works.parallel
     speed = np.abs(single)
     factor, exponent = factors(pipes, pipes.reynolds * speed)
-    laminar = np.isnan(exponent)
+    laminar = ~pipes.chosen["fixed"] & (pipes.reynolds * speed < works.laminar_below)
     friction = np.where(laminar, pipes.laminar, pipes.drag * factor * speed)
     fittings = np.where(single >= 0.0, works.loss_forward, works.loss_reverse) * speed
     slope = np.where(laminar, pipes.laminar, (2.0 + exponent) * friction) + 2.0 * fittings
