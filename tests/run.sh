@@ -20,7 +20,7 @@ check() {
 
 bin=$root/.venv/bin
 check "ruff check" "$bin/ruff" check --no-cache --output-format concise calc tests .build
-check "ruff format" "$bin/ruff" format --check --no-cache --output-format concise calc tests .build
+check "ruff format" "$bin/ruff" format --check --no-cache calc tests .build
 check "mypy" "$bin/mypy" calc .build/cutting.py
 check "import contracts" "$bin/lint-imports" --no-cache
 check "tests" "$bin/pytest" -n 2 --cov --cov-branch --cov-report=term "$@"
