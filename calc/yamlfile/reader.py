@@ -67,7 +67,8 @@ def read_text(
     tabs, hopeless = _tabs(name, text)
     if hopeless:
         return None, tabs
-    node, problems = compose(name, text.replace("\t", " "), loader)
+    # The two parsers place an empty value differently where the last line is not ended.
+    node, problems = compose(name, text.replace("\t", " ") + "\n" * (text[-1:] not in "\r\n"), loader)
     problems = sorted(tabs + problems)
     if isinstance(node, Mapping):
         return node, problems

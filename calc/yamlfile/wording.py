@@ -18,7 +18,7 @@ _WORDS: tuple[tuple[tuple[str, ...], str, str], ...] = (
     ),
     (("unknown escape", "escape sequence"), "an unknown '\\' escape", "use single quotes, or write '\\\\'"),
     (
-        ("mapping values are not allowed", "mapping keys are not allowed"),
+        ("mapping values are not allowed", "mapping keys are not allowed", "unexpected ':'"),
         "a ':' stands where no key can be",
         "put a text that holds ': ' in quotes, or mend the indentation",
     ),
@@ -93,6 +93,8 @@ def syntax_problem(name: str, text: str, error: yaml.YAMLError) -> Problem:
         code, found, hint = "too-deep", "nested too deep to read", "write a flatter file"
     if "begins here" in found:
         place = getattr(error, "context_mark", None) or place
+    if "node content" in reported and place and place.index >= len(text.rstrip()):
+        found, hint = "the file ends before a bracket or brace is closed", "add the closing ']' or '}'"
     lines = text.splitlines() or [""]
     line, column = (place.line, place.column) if place else (0, 0)
     if line >= len(lines):
