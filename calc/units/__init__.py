@@ -13,7 +13,7 @@ Why this way
     The text is hostile until read: a grammar of ours admits whitelisted names with whole powers, and pint
     is asked only for the worth of a name on the list, never to evaluate text. Its registry runs on
     fractions, so factors are exact and a value is rounded once: ``384.4 mm`` is the float nearest 0.3844.
-    Pint is imported at the first name asked for, so that importing this package costs nothing.
+    Its definitions are read at the first name asked for, once a run.
 """
 
 from __future__ import annotations

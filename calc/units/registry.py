@@ -4,13 +4,12 @@ from __future__ import annotations
 
 from fractions import Fraction
 from functools import lru_cache
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import Any, NamedTuple
+
+import pint
 
 from calc.kinds import Dimension
 from calc.units.words import WORDS
-
-if TYPE_CHECKING:
-    import pint
 
 _AXES = {"[length]": "length", "[mass]": "mass", "[time]": "time", "[temperature]": "temperature"}
 
@@ -34,8 +33,6 @@ class Worth(NamedTuple):
 @lru_cache(maxsize=1)
 def _registry() -> pint.UnitRegistry[Any]:
     """Return pint's own definitions on fractions, without a cache folder or a user's settings."""
-    import pint  # noqa: PLC0415 - a third of a second, paid only by runs that read a unit
-
     return pint.UnitRegistry(cache_folder=None, non_int_type=Fraction)
 
 

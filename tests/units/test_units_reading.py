@@ -290,6 +290,11 @@ def test_what_a_unit_measures() -> None:
         assert measures(text) is None
 
 
-def test_importing_the_package_does_not_import_pint() -> None:
-    code = "import sys, calc.units; sys.exit('pint' in sys.modules)"
+def test_definitions_are_read_when_a_unit_is_first_asked_for() -> None:
+    code = (
+        "import calc.units.registry as r, calc.units as u, calc.kinds as k;"
+        "assert r._registry.cache_info().currsize == 0;"
+        "u.read('2.5', k.NUMBER); assert r._registry.cache_info().currsize == 0;"
+        "u.read('2.5 m', k.LENGTH); u.read('2.5 ft', k.LENGTH); assert r._registry.cache_info().misses == 1"
+    )
     assert subprocess.run([sys.executable, "-c", code], check=False).returncode == 0
