@@ -1,0 +1,224 @@
+"""A case as arrays: base values once, then the lines of the case, row by row at numpy's speed."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from weakref import WeakKeyDictionary
+
+import numpy as np
+import numpy.typing as npt
+
+from calc.components import Network, Record
+from calc.components.pipe import LAW_INPUT, FittingTerms, PipeTerms
+from calc.equation import Labels
+from calc.physics.friction import LAW_NAMES
+from calc.project.cases import chain, follows_friction
+from calc.project.model import Line, Project
+
+Array = npt.NDArray[np.float64]
+Rows = npt.NDArray[np.int64]
+
+_CODES = {name: code for code, name in enumerate(LAW_NAMES)}
+
+
+@dataclass(frozen=True)
+class _Fittings:
+    """Ends and fittings of all pipes in their order; ``own_bore`` is NaN where the pipe's bore serves."""
+
+    rows: tuple[str, ...]
+    pipe: Rows
+    count: Array
+    forward: Array
+    reverse: Array
+    own_bore: Array
+
+
+class _Base:
+    """The inputs as they stand, column by column; kept as long as the project is."""
+
+    def __init__(self, project: Project) -> None:
+        self.groups = {
+            name: dict(project.group(name))
+            for name in ("reservoirs", "junctions", "pipes", "fluid", "site", "constants", "friction")
+        }
+        self.index = {
+            name: {row: at for at, row in enumerate(group)} for name, group in self.groups.items()
+        }
+        self.nodes = dict(project.nodes)
+        self.friction = project.friction
+        self.follows = np.array([follows_friction(project, one) for one in project.pipes.values()], dtype=bool)
+        self.columns: dict[tuple[str, str], Array] = {}
+
+    def column(self, group: str, field: str) -> Array:
+        """Return a column; NaN where a record does not state the field."""
+        key = (group, field)
+        if key not in self.columns:
+            records = self.groups[group].values()
+            self.columns[key] = np.array([record.number(field) for record in records], dtype=np.float64)
+        return self.columns[key]
+
+    @cached_property
+    def law(self) -> Rows:
+        """The friction law of each pipe; −1 where it could not be read."""
+        pipes = self.groups["pipes"].values()
+        return np.array([_CODES.get(pipe.text("law"), -1) for pipe in pipes], dtype=np.int64)
+
+    @cached_property
+    def ends(self) -> tuple[Rows, Rows]:
+        """The nodes at ``from`` and ``to``."""
+        pipes = self.groups["pipes"].values()
+        start, end = ([self.nodes[pipe.text(name)] for pipe in pipes] for name in ("from", "to"))
+        return np.array(start, dtype=np.int64), np.array(end, dtype=np.int64)
+
+    @cached_property
+    def fittings(self) -> _Fittings:
+        """Ends and fittings: those of each pipe in the order end at ``from``, fittings, end at ``to``."""
+        found: list[Record] = []
+        pipe: list[int] = []
+        own: list[float] = []
+        for at, record in enumerate(self.groups["pipes"].values()):
+            parts = in_order(record)
+            found += parts
+            pipe += [at] * len(parts)
+            own += [np.nan if stands_on_pipe(record, part) else part.number("bore") for part in parts]
+        return _Fittings(
+            tuple(part.id for part in found),
+            np.array(pipe, dtype=np.int64),
+            *(np.array([part.number(name) for part in found]) for name in ("count", "K", "K_reverse")),
+            np.array(own, dtype=np.float64),
+        )
+
+
+def in_order(pipe: Record) -> list[Record]:
+    """Return the end at ``from``, the fittings and the end at ``to`` of a pipe, in the order of the water."""
+    ends = pipe.parts.get("ends", ())
+    first = [end for end in ends if end.id.endswith("/from")]
+    last = [end for end in ends if end.id.endswith("/to")]
+    return [*first, *pipe.parts.get("fittings", ()), *last]
+
+
+def stands_on_pipe(pipe: Record, part: Record) -> bool:
+    """Return whether a fitting's coefficient stands on the bore of its pipe, whatever a case makes of that."""
+    return part.stated.get("bore") is pipe.stated.get("bore")
+
+
+_KEPT: WeakKeyDictionary[Project, _Base] = WeakKeyDictionary()
+
+
+class Effective:
+    """The values of a case, after all changes in force.
+
+    Parameters
+    ----------
+    project : Project
+        The project.
+    case : str
+        Id of the case.
+    """
+
+    def __init__(self, project: Project, case: str) -> None:
+        self.base = _KEPT.get(project) or _KEPT.setdefault(project, _Base(project))
+        self.lines = tuple(line for one in chain(project.cases, case) for line in one.lines)
+
+    def rows(self, line: Line) -> Rows | slice:
+        """Return where in its group a line acts."""
+        index = self.base.index[line.group]
+        if len(line.rows) == len(index):
+            return slice(None)
+        return np.array([index[row] for row in line.rows], dtype=np.int64)
+
+    def numbers(self, group: str, field: str) -> Array:
+        """Return a field of all rows of a group in SI, flags as 0 and 1, NaN where it is not stated."""
+        found = self.base.column(group, field).copy()
+        for line in self.lines:
+            if line.group == group and line.field == field:
+                at = self.rows(line)
+                found[at] = line.stated.si if line.how == "with" else found[at] * line.stated.si
+        return found
+
+    def number(self, group: str, row: str, field: str) -> float:
+        """Return one value in SI."""
+        return float(self.numbers(group, field)[self.base.index[group][row]])
+
+    def law(self) -> Labels:
+        """Return the friction law of each pipe."""
+        codes, follows = self.base.law.copy(), self.base.follows.copy()
+        for line in self.lines:
+            if line.group == "friction":
+                codes[follows] = _CODES[line.stated.text]
+            elif line.group == "pipes" and line.field == "law":
+                at = self.rows(line)
+                codes[at], follows[at] = _CODES[line.stated.text], False
+        return Labels(LAW_NAMES, codes)
+
+
+def network(project: Project, case: str, viscosity: float) -> Network:
+    """Return a case as arrays in SI.
+
+    Parameters
+    ----------
+    project : Project
+        The project.
+    case : str
+        Id of the case.
+    viscosity : float
+        Kinematic viscosity of the liquid in this case, m²/s.
+
+    Returns
+    -------
+    Network
+        Nodes are the reservoirs, then the junctions; all rows in the order of the files. An inflow is a negative
+        withdrawal.
+    """
+    now = Effective(project, case)
+    level = now.numbers("reservoirs", "level")
+    taken = np.nan_to_num(now.numbers("junctions", "withdrawal"), nan=0.0)
+    brought = np.nan_to_num(now.numbers("junctions", "inflow"), nan=0.0)
+    start, end = now.base.ends
+    return Network(
+        nodes=tuple(project.nodes),
+        level=np.concatenate([level, np.full(len(taken), np.nan)]),
+        withdrawal=np.concatenate([np.zeros(len(level)), taken - brought]),
+        start=start.copy(),
+        end=end.copy(),
+        open=now.numbers("pipes", "open") != 0.0,
+        pipes=_pipe_terms(now, viscosity),
+    )
+
+
+def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
+    part = now.base.fittings
+    bore = now.numbers("pipes", "bore")
+    law = now.law()
+    return PipeTerms(
+        rows=tuple(now.base.groups["pipes"]),
+        length=now.numbers("pipes", "length"),
+        bore=bore,
+        roughness=_where_used(now, "roughness", law),
+        friction_factor=_where_used(now, "friction_factor", law),
+        parallel=now.numbers("pipes", "parallel"),
+        law=law,
+        fittings=FittingTerms(
+            rows=part.rows,
+            pipe=part.pipe.copy(),
+            count=part.count.copy(),
+            coefficient_forward=part.forward.copy(),
+            coefficient_reverse=part.reverse.copy(),
+            bore=np.where(np.isnan(part.own_bore), bore[part.pipe], part.own_bore),
+        ),
+        viscosity=np.array([viscosity]),
+        gravity=now.numbers("site", "gravity"),
+        laminar_below=now.numbers("constants", "laminar_below"),
+        turbulent_above=now.numbers("constants", "turbulent_above"),
+    )
+
+
+def _where_used(now: Effective, field: str, law: Labels) -> Array:
+    """Return a field where the law of the pipe needs it, NaN elsewhere."""
+    return np.where(needing(field, law), now.numbers("pipes", field), np.nan)
+
+
+def needing(field: str, law: Labels) -> npt.NDArray[np.bool_]:
+    """Return the pipes whose law needs a field."""
+    return np.isin(law.codes, [code for name, code in _CODES.items() if LAW_INPUT[name] == field])

@@ -1,0 +1,58 @@
+"""Bounds of quantities: those a field declares, and beyond them those within which numbers stay computable."""
+
+from __future__ import annotations
+
+from calc.components import Quantity
+from calc.kinds import TEMPERATURE, Kind
+
+COMPUTABLE: dict[str, tuple[float, float]] = {
+    "pure number": (-1e9, 1e9),
+    "length": (1e-3, 1e8),
+    "bore": (1e-3, 100.0),
+    "roughness": (0.0, 100.0),
+    "elevation": (-12_000.0, 12_000.0),
+    "head": (-1e5, 1e5),
+    "area": (0.0, 1e12),
+    "flow": (-1e6, 1e6),
+    "velocity": (-1e4, 1e4),
+    "kinematic viscosity": (1e-9, 1e3),
+    "dynamic viscosity": (1e-7, 1e5),
+    "pressure": (-1e10, 1e10),
+    "gradient": (-1e6, 1e6),
+}
+"""By kind, in SI: far wider than any works, and narrow enough that no power of a value overflows."""
+
+_SLACK = 1e-12
+"""Relative; a bound in °C is not exact in kelvin."""
+
+
+def outside(form: Quantity, si: float) -> str:
+    """Return what is expected where a value lies outside its bounds, or an empty text where it lies within.
+
+    Parameters
+    ----------
+    form : Quantity
+        Declared bounds and kind.
+    si : float
+        The value, in SI.
+    """
+    kind = form.kind
+    low, high = COMPUTABLE.get(kind.name, (-1e30, 1e30))
+    slack = _SLACK * abs(si)
+    least = low if form.at_least is None else form.at_least
+    most = high if form.at_most is None else form.at_most
+    if form.above is not None and si <= form.above:
+        return f"{kind.phrase} above {_show(form.above, kind)}"
+    if least - slack <= si <= most + slack:
+        return ""
+    if form.at_least is not None and form.at_most is not None:
+        return f"{kind.phrase} from {_show(least, kind)} to {_show(most, kind)}"
+    return f"{kind.phrase} of " + (
+        f"at least {_show(least, kind)}" if si < least else f"at most {_show(most, kind)}"
+    )
+
+
+def _show(si: float, kind: Kind) -> str:
+    if kind is TEMPERATURE:
+        return f"{round(si - 273.15, 9):.12g} °C"
+    return f"{si:.12g} {kind.unit}".rstrip()

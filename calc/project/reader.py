@@ -1,0 +1,321 @@
+"""Reading one value: a node becomes a Stated, or a problem is noted."""
+
+from __future__ import annotations
+
+import re
+import unicodedata
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, field, replace
+from functools import lru_cache
+
+from calc import units
+from calc.components import NO_BASIS, Basis, Count, Flag, Quantity, Record, Stated, Text, Word
+from calc.components.fields import Form
+from calc.kinds import NUMBER, Kind
+from calc.marks import Mark
+from calc.problems import Problem, nearest
+from calc.project import later
+from calc.project.bounds import outside
+from calc.yamlfile import Mapping, Node, Scalar
+from calc.yamlfile import Sequence as ListNode
+
+GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
+"""How well a value is known, as its source shows it."""
+
+BASIS_KEYS = ("source", "page", "grade", "note")
+_VALUE_KEYS = ("value", *BASIS_KEYS, "range", "deviation")
+_ID = re.compile(r"[A-Za-z0-9_-]{1,64}", re.ASCII)
+_WHOLE = re.compile(r"[0-9]{1,9}", re.ASCII)
+_UNPRINTABLE = {"Cc", "Cs", "Co", "Cn", "Zl", "Zp"}
+_TURNING = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
+_LONGEST_SHOWN = 60
+
+
+@lru_cache(maxsize=1 << 16)
+def _quantity(text: str, kind: Kind) -> units.Quantity | units.UnitTrouble:
+    try:
+        return units.read(text, kind)
+    except units.UnitTrouble as trouble:
+        return trouble
+
+
+def quoted(text: str) -> str:
+    """Return a text in quotes, on one line and of bearable length."""
+    shown = text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 1] + "…"
+    return "'" + "".join(letter if letter.isprintable() else "?" for letter in shown) + "'"
+
+
+def listed(words: Sequence[str], last: str = "or") -> str:
+    """Return ``a, b or c``; a long list is cut."""
+    shown = [*words] if len(words) <= 24 else [*words[:24], "…"]
+    return shown[0] if len(shown) == 1 else f"{', '.join(shown[:-1])} {last} {shown[-1]}"
+
+
+@dataclass
+class Reader:
+    """What reading carries along: the problems found, and what later values refer to.
+
+    Attributes
+    ----------
+    problems : list of Problem
+        All found so far.
+    references : frozenset of str
+        Ids that ``source`` may name.
+    nodes : set of str or None
+        Ids that ``from`` and ``to`` may name; None while a group could not be read, when nothing is said.
+    spreads : dict
+        Ranges and deviations by path.
+    defaults : dict
+        Defaults in use by path.
+    """
+
+    problems: list[Problem] = field(default_factory=list)
+    references: frozenset[str] = frozenset()
+    nodes: set[str] | None = None
+    spreads: dict[str, Record] = field(default_factory=dict)
+    defaults: dict[str, Stated] = field(default_factory=dict)
+    _keys_noted: set[Mark] = field(default_factory=set)
+
+    def note(self, mark: Mark, code: str, path: str, found: str, expected: str = "", hint: str = "") -> None:
+        """Note a problem; of a key that heads a column it is noted once, not for every row."""
+        if code in ("unknown-key", "not-yet"):
+            if mark in self._keys_noted:
+                return
+            self._keys_noted.add(mark)
+        self.problems.append(Problem(mark, code, path, found, expected, hint))
+
+    def not_yet(self, mark: Mark, path: str, word: str, hint: str) -> None:
+        """Note a word that is for later."""
+        self.note(mark, "not-yet", path, f"{quoted(word)} is not part of this version yet", "", hint)
+
+    def mapping(self, node: Node, path: str, expected: str) -> Mapping | None:
+        """Return the node if it is a mapping; nothing at all stands for an empty one."""
+        if isinstance(node, Mapping):
+            return node
+        if not empty(node):
+            self.wrong_shape(node, path, expected)
+        return None
+
+    def items(self, node: Node, path: str, expected: str) -> tuple[Node, ...]:
+        """Return the items of a list."""
+        if isinstance(node, ListNode):
+            return tuple(node.items)
+        if not empty(node):
+            self.wrong_shape(node, path, expected)
+        return ()
+
+    def wrong_shape(self, node: Node, path: str, expected: str) -> None:
+        """Note that a list, mapping or text is not what should stand here."""
+        found = {Mapping: "a mapping stands here", ListNode: "a list stands here"}.get(type(node))
+        if found is None:
+            found = f"{quoted(node.text)} stands here" if isinstance(node, Scalar) else "something else"
+        self.note(node.mark, "wrong-shape", path, found, expected)
+
+    def unknown(self, key: Scalar, path: str, known: Sequence[str]) -> None:
+        """Note a key that does not exist."""
+        self.note(
+            key.mark, "unknown-key", path, f"unknown key {quoted(key.text)}",
+            f"one of {listed(known)}", nearest(key.text, known),
+        )  # fmt: skip
+
+    def id(self, key: Scalar, path: str, what: str) -> bool:
+        """Return whether a key may be an id."""
+        if _ID.fullmatch(key.text):
+            return True
+        hint = "" if key.text.isascii() else "a letter here only looks like one of a to z"
+        expected = f"the id of {what}: at most 64 letters, digits, _ and -"
+        self.note(key.mark, "bad-id", path, f"{quoted(key.text)} is not an id", expected, hint)
+        return False
+
+    def word(
+        self, node: Node, path: str, options: Sequence[str], code: str = "bad-word", what: str = "word"
+    ) -> Stated | None:
+        """Return one of some words."""
+        scalar = self.scalar(node, path, f"one of {listed(options)}")
+        if scalar is None:
+            return None
+        if scalar.text in options:
+            return Stated(scalar.text, scalar.text, scalar.mark)
+        if code == "unknown-law" and scalar.text in later.LAWS:
+            self.not_yet(scalar.mark, path, scalar.text, later.LAWS[scalar.text])
+            return None
+        found = f"unknown {what} {quoted(scalar.text)}"
+        self.note(
+            scalar.mark, code, path, found, f"one of {listed(options)}", nearest(scalar.text, options)
+        )
+        return None
+
+    def scalar(self, node: Node, path: str, expected: str) -> Scalar | None:
+        """Return the node if it is a scalar."""
+        if isinstance(node, Scalar):
+            return node
+        self.wrong_shape(node, path, expected)
+        return None
+
+    def text(self, node: Node, path: str) -> Stated | None:
+        """Return a free text, which prints and is not empty."""
+        scalar = self.scalar(node, path, "a text")
+        if scalar is None:
+            return None
+        if not scalar.text.strip():
+            self.note(scalar.mark, "bad-text", path, "nothing is written here", "a text")
+            return None
+        if not scalar.text.isascii() or not scalar.text.isprintable():
+            for letter in scalar.text:
+                if letter in _TURNING or (
+                    unicodedata.category(letter) in _UNPRINTABLE and letter not in "\n\t"
+                ):
+                    found = f"the character U+{ord(letter):04X} does not print"
+                    self.note(scalar.mark, "bad-text", path, found, "text that prints as it stands")
+                    return None
+        return Stated(scalar.text, scalar.text, scalar.mark)
+
+    def quantity(
+        self, scalar: Scalar, path: str, forms: Sequence[Quantity], basis: Basis = NO_BASIS
+    ) -> tuple[Stated, Quantity] | None:
+        """Return a quantity and the first form that it fits."""
+        first: units.UnitTrouble | None = None
+        expected = []
+        for form in forms:
+            got = _quantity(scalar.text, form.kind)
+            if not isinstance(got, units.UnitTrouble):
+                if wanted := outside(form, got.value):
+                    found = f"{quoted(scalar.text)} is out of range"
+                    self.note(scalar.mark, "out-of-range", path, found, wanted)
+                    return None
+                return Stated(
+                    got.value, scalar.text, scalar.mark, got.number, got.unit, got.factor, got.offset, basis
+                ), form
+            first = first or got
+            expected.append(got.expected)
+            if got.code not in ("wrong-dimension", "bare-number"):
+                break
+        if first is not None:
+            self.note(
+                scalar.mark, first.code, path, first.found, " or ".join(dict.fromkeys(expected)), first.hint
+            )
+        return None
+
+    def basis(self, node: Mapping, path: str) -> Basis:
+        """Return what a value rests on, from the keys beside it."""
+        got: dict[str, str] = {}
+        for entry in node.entries:
+            key, at = entry.key.text, f"{path}.{entry.key.text}"
+            if key == "source":
+                stated = self.reference(entry.value, at)
+            elif key == "grade":
+                stated = self.word(entry.value, at, GRADES, what="grade")
+            elif key in BASIS_KEYS:
+                stated = self.text(entry.value, at)
+            else:
+                continue
+            if stated is not None:
+                got[key] = stated.text
+        return Basis(**got)
+
+    def reference(self, node: Node, path: str) -> Stated | None:
+        """Return the id of a reference."""
+        scalar = self.scalar(node, path, "the id of a reference")
+        if scalar is None:
+            return None
+        if scalar.text in self.references:
+            return Stated(scalar.text, scalar.text, scalar.mark)
+        known = sorted(self.references)
+        hint = nearest(scalar.text, known) or f"list it under 'references': {{{scalar.text[:20]}: {{title: …}}}}"
+        found = f"there is no reference {quoted(scalar.text)}"
+        self.note(scalar.mark, "unknown-reference", path, found, "the id of one of the references", hint)
+        return None
+
+    def value(self, form: Form, node: Node, path: str, code: str = "bad-word") -> Stated | None:
+        """Return the value of a field of any scalar form, alone or as ``{value, source, …}``."""
+        if isinstance(form, Text):
+            return self.text(node, path)
+        if isinstance(node, Scalar):
+            return self.plain(form, node, path, code)
+        return self.supported(node, path, lambda scalar, _: self.plain(form, scalar, path, code))
+
+    def plain(self, form: Form, scalar: Scalar, path: str, code: str = "bad-word") -> Stated | None:
+        """Return the value of a scalar."""
+        if isinstance(form, Quantity):
+            got = self.quantity(scalar, path, (form,))
+            return got and got[0]
+        if isinstance(form, Word):
+            return self.word(scalar, path, form.options, code, _NAMES.get(code, "word"))
+        if isinstance(form, Flag):
+            stated = self.word(scalar, path, ("true", "false"))
+            return stated and Stated(stated.text == "true", stated.written, stated.mark)
+        if isinstance(form, Count):
+            return self.count(form, scalar, path)
+        raise TypeError(f"a {type(form).__name__} is not a scalar")
+
+    def count(self, form: Count, scalar: Scalar, path: str) -> Stated | None:
+        """Return a whole number."""
+        expected = f"a whole number from {form.at_least} to {form.at_most}"
+        if not _WHOLE.fullmatch(scalar.text):
+            found = f"{quoted(scalar.text)} is not a whole number"
+            self.note(scalar.mark, "not-a-quantity", path, found, expected)
+            return None
+        if not form.at_least <= int(scalar.text) <= form.at_most:
+            self.note(scalar.mark, "out-of-range", path, f"{quoted(scalar.text)} is out of range", expected)
+            return None
+        return Stated(float(scalar.text), scalar.text, scalar.mark, float(scalar.text))
+
+    def supported(
+        self, node: Node, path: str, read: Callable[[Scalar, str], Stated | None]
+    ) -> Stated | None:
+        """Return a value written as ``{value, source, page, grade, note, range or deviation}``."""
+        if not isinstance(node, Mapping):
+            self.wrong_shape(node, path, "a value, or {value: …, source: …}")
+            return None
+        at = {entry.key.text: entry.value for entry in node.entries}
+        field_name = path.rpartition(".")[2]
+        for key, _ in node.entries:
+            if key.text in later.FIELDS.get(field_name, {}):
+                self.not_yet(key.mark, f"{path}.{key.text}", key.text, later.FIELDS[field_name][key.text])
+                return None
+            if key.text not in _VALUE_KEYS:
+                self.unknown(key, f"{path}.{key.text}", _VALUE_KEYS)
+        if "value" not in at:
+            self.note(node.mark, "missing-key", path, "there is no value here", "'value'")
+            return None
+        basis = self.basis(node, path)
+        scalar = self.scalar(at["value"], path, "a value")
+        stated = scalar and read(scalar, path)
+        if stated is None:
+            return None
+        self._spread(at, path, read)
+        return replace(stated, basis=basis)
+
+    def _spread(
+        self, at: dict[str, Node], path: str, read: Callable[[Scalar, str], Stated | None]
+    ) -> None:
+        """Keep the range or the deviation of a value that is said to be uncertain."""
+        if "range" in at and "deviation" in at:
+            found = "'range' and 'deviation' both stand here"
+            self.note(at["deviation"].mark, "excluded-pair", path, found, "one of the two")
+        elif "range" in at:
+            wanted = "two values: [low, high]"
+            items = self.items(at["range"], f"{path}.range", wanted)
+            got = [read(item, f"{path}.range") for item in items if isinstance(item, Scalar)]
+            if len(got) != 2:
+                self.wrong_shape(at["range"], f"{path}.range", wanted)
+            elif got[0] is not None and got[1] is not None:
+                low, high = got[0], got[1]
+                if isinstance(low.value, float) and low.si >= high.si:
+                    found = f"{quoted(low.written)} is not below {quoted(high.written)}"
+                    self.note(low.mark, "wrong-order", f"{path}.range", found, wanted)
+                self.spreads[path] = Record(path, low.mark, {"low": low, "high": high})
+        elif "deviation" in at and isinstance(scalar := at["deviation"], Scalar):
+            percent = "%" in scalar.text
+            one = self.quantity(scalar, f"{path}.deviation", (Quantity(NUMBER, above=0.0),)) if percent else None
+            stated = one[0] if one else (None if percent else read(scalar, f"{path}.deviation"))
+            if stated is not None:
+                self.spreads[path] = Record(path, stated.mark, {"deviation": stated})
+
+
+_NAMES = {"unknown-law": "friction law", "unknown-kind": "kind"}
+
+
+def empty(node: Node) -> bool:
+    """Return whether nothing is written: ``junctions:`` and no more."""
+    return isinstance(node, Scalar) and not node.quoted and node.text in ("", "~", "null")

@@ -1,0 +1,117 @@
+"""Defaults and tables that ship with the program, read like any other file so that they have places."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from functools import lru_cache
+from importlib import resources
+
+from calc.components import Basis, Quantity, Stated
+from calc.kinds import ACCELERATION, ELEVATION, FLOW, NUMBER, TEMPERATURE, Kind
+from calc.problems import ProblemsFound
+from calc.project.reader import Node, Reader
+from calc.yamlfile import Mapping, Scalar, read_text
+
+FOLDER = "calc/data"
+
+_KINDS: dict[str, Kind] = {
+    "fluid.temperature": TEMPERATURE,
+    "site.altitude": ELEVATION,
+    "site.gravity": ACCELERATION,
+    "constants.transition.laminar_below": NUMBER,
+    "constants.transition.turbulent_above": NUMBER,
+    "junctions.withdrawal": FLOW,
+    "pipes.parallel": NUMBER,
+    "fittings.count": NUMBER,
+    "ends.exit": NUMBER,
+}
+"""Defaults that are quantities; the rest are words."""
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """An entry of a shipped table of losses; for an end, ``forward`` is its entry and ``reverse`` its exit."""
+
+    name: str
+    title: Stated
+    forward: Stated
+    reverse: Stated
+
+
+@lru_cache(maxsize=1)
+def defaults() -> dict[str, Stated]:
+    """Return every default by path, such as ``site.gravity``."""
+    found: dict[str, Stated] = {}
+    reader = Reader()
+    _walk(reader, _read("defaults.yaml"), "", found)
+    _sound(reader)
+    return found
+
+
+@lru_cache(maxsize=1)
+def fittings() -> dict[str, Row]:
+    """Return the shipped kinds of fitting."""
+    return _rows("fittings", "K", "K_reverse")
+
+
+@lru_cache(maxsize=1)
+def ends() -> dict[str, Row]:
+    """Return the shipped shapes of reservoir ends."""
+    return _rows("ends", "entry", "exit")
+
+
+def _read(name: str) -> Mapping:
+    content = resources.files("calc").joinpath("data", name).read_bytes()
+    mapping, problems = read_text(f"{FOLDER}/{name}", content)
+    if mapping is None or problems:
+        raise ProblemsFound(problems)
+    return mapping
+
+
+def _sound(reader: Reader) -> None:
+    if reader.problems:
+        raise ProblemsFound(reader.problems)
+
+
+def _walk(reader: Reader, node: Mapping, path: str, found: dict[str, Stated]) -> None:
+    for key, value in node.entries:
+        at = f"{path}.{key.text}" if path else key.text
+        if isinstance(value, Mapping) and value.get("value") is None:
+            _walk(reader, value, at, found)
+        elif isinstance(value, Mapping):
+            scalar, source = value.get("value"), value.get("source")
+            if isinstance(scalar, Scalar) and isinstance(source, Scalar):
+                found[at] = _stated(reader, scalar, _KINDS.get(at), source.text)
+
+
+def _stated(reader: Reader, scalar: Scalar, kind: Kind | None, source: str) -> Stated:
+    if kind is None:
+        flag = {"true": True, "false": False}.get(scalar.text, scalar.text)
+        return Stated(flag, scalar.text, scalar.mark, basis=Basis(source), shipped=True)
+    got = reader.quantity(scalar, "", (Quantity(kind),))
+    if got is None:
+        raise ProblemsFound(reader.problems)
+    return replace(got[0], basis=Basis(source), shipped=True)
+
+
+def _rows(table: str, forward: str, reverse: str) -> dict[str, Row]:
+    reader = Reader()
+    found: dict[str, Row] = {}
+    node = _read("fittings.yaml").get(table)
+    for key, value in node.entries if isinstance(node, Mapping) else ():
+        if not isinstance(value, Mapping):
+            continue
+        source = _scalar(value.get("source")).text
+        one = _stated(reader, _scalar(value.get(forward)), NUMBER, source)
+        back = value.get(reverse)
+        other = one if back is None else _stated(reader, _scalar(back), NUMBER, source)
+        title = _stated(reader, _scalar(value.get("title")), None, source)
+        found[key.text] = Row(key.text, title, one, other)
+    _sound(reader)
+    return found
+
+
+def _scalar(node: Node | None) -> Scalar:
+    if isinstance(node, Scalar):
+        return node
+    raise TypeError("a shipped table lacks a text")

@@ -1,0 +1,187 @@
+"""Reading the works: reservoirs, junctions and pipes, from YAML or from tables."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
+
+from calc.components import Record, Stated, junction, pipe, reservoir
+from calc.components.pipe import LAW_INPUT
+from calc.marks import Mark
+from calc.project import shipped
+from calc.project.fittings import read_ends, read_fittings
+from calc.project.reader import Reader, empty, quoted
+from calc.project.records import Fields, Parts, read_fields, read_group
+from calc.yamlfile import Entry, Scalar, SourceFile, read_table
+from calc.yamlfile import Mapping as MappingNode
+
+Records = dict[str, Record]
+
+
+@dataclass
+class Works:
+    """The three groups as read, and the tables they came from."""
+
+    reservoirs: Records = field(default_factory=dict)
+    junctions: Records = field(default_factory=dict)
+    pipes: Records = field(default_factory=dict)
+    tables: list[SourceFile] = field(default_factory=list)
+    texts: dict[str, str] = field(default_factory=dict)
+    whole: bool = True
+
+
+def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction: Stated | None) -> Works:
+    """Read reservoirs, junctions and pipes.
+
+    Parameters
+    ----------
+    reader : Reader
+        Takes the problems; its ``nodes`` are set here.
+    folder : Path
+        Where tables lie.
+    top : mapping of str to Entry
+        The top-level keys.
+    friction : Stated or None
+        The default law; None when it could not be read.
+
+    Returns
+    -------
+    Works
+        ``whole`` is False when an id or an end of a pipe is in doubt, so that connections say nothing.
+    """
+    works = Works()
+    before = len(reader.problems)
+    nodes: dict[str, Mark] = {}
+    for name, records, schema in (
+        ("reservoirs", works.reservoirs, reservoir.SCHEMA),
+        ("junctions", works.junctions, junction.SCHEMA),
+    ):
+        for key, member in _members(reader, works, folder, top.get(name), f"a {schema.singular}"):
+            path = f"{name}.{key.text}"
+            stated, _ = read_fields(reader, schema, member, path, key.mark)
+            _complete_node(reader, name, stated, member, path)
+            if key.text in nodes:
+                found = f"{quoted(key.text)} is also the id of a reservoir, at {nodes[key.text]}"
+                reader.note(key.mark, "shared-id", path, found, "an id that no other node has")
+                continue
+            nodes[key.text] = key.mark
+            records[key.text] = Record(key.text, key.mark, stated)
+    doubtful = any(problem.code not in _HARMLESS for problem in reader.problems[before:])
+    reader.nodes = None if doubtful else set(nodes)
+    for key, member in _members(reader, works, folder, top.get("pipes"), "a pipe"):
+        works.pipes[key.text] = _read_pipe(reader, key, member, works, friction)
+    ends = ("from", "to")
+    works.whole = not doubtful and all(end in one.stated for one in works.pipes.values() for end in ends)
+    _expect_some(reader, works, top)
+    return works
+
+
+_HARMLESS = frozenset(
+    """
+    ambiguous-unit bad-text bad-word bare-number excluded-pair missing-key not-a-quantity not-finite not-yet
+    out-of-range unknown-key unknown-reference unknown-unit wrong-dimension wrong-order
+    """.split()
+)
+"""Problems of nodes after which their ids still stand; after others, nothing is said of nodes that seem unknown."""
+
+
+def _members(
+    reader: Reader, works: Works, folder: Path, entry: Entry | None, what: str
+) -> list[tuple[Scalar, MappingNode]]:
+    """Return ids and mappings of a group, from where it stands or from its table."""
+    if entry is None:
+        return []
+    path, node = entry.key.text, entry.value
+    table = node.get("table") if isinstance(node, MappingNode) else None
+    if isinstance(node, MappingNode) and isinstance(table, Scalar):
+        for key, _ in node.entries:
+            if key.text != "table":
+                found = f"{quoted(key.text)} stands beside a table"
+                hint = "put every one of them in the table, or all here"
+                reader.note(key.mark, "excluded-pair", f"{path}.{key.text}", found, "the table alone", hint)
+        read = read_table(folder, table, path)
+        reader.problems.extend(read.problems)
+        if read.file is not None and all(one.name != read.file.name for one in works.tables):
+            works.tables.append(read.file)
+            works.texts[read.file.name] = read.text
+        node = read.rows
+    return read_group(reader, node, path, what)
+
+
+def _complete_node(reader: Reader, group: str, stated: Fields, member: MappingNode, path: str) -> None:
+    if group == "junctions" and not {"withdrawal", "inflow"} & set(member.keys()):
+        default = shipped.defaults()["junctions.withdrawal"]
+        stated["withdrawal"] = reader.defaults["junctions.*.withdrawal"] = default
+    if "low" in stated and "high" in stated and stated["low"].si > stated["high"].si:
+        low, high = stated["low"], stated["high"]
+        found = f"{quoted(low.written)} is above {quoted(high.written)}"
+        reader.note(low.mark, "wrong-order", f"{path}.low", found, "'low' at most 'high'")
+
+
+def _read_pipe(
+    reader: Reader, key: Scalar, member: MappingNode, works: Works, friction: Stated | None
+) -> Record:
+    path = f"pipes.{key.text}"
+    stated, parts = read_fields(reader, pipe.SCHEMA, member, path, key.mark)
+    for name in ("parallel", "open"):
+        if name not in stated:
+            stated[name] = reader.defaults[f"pipes.*.{name}"] = shipped.defaults()[f"pipes.{name}"]
+    present = member.keys()
+    if "law" not in present and friction is not None:
+        stated["law"] = friction
+    _check_pipe(reader, stated, present, path, key.mark)
+    return Record(key.text, key.mark, stated, _read_parts(reader, key.text, stated, parts, works))
+
+
+def _read_parts(
+    reader: Reader, name: str, stated: Fields, parts: Parts, works: Works
+) -> dict[str, tuple[Record, ...]]:
+    found: dict[str, tuple[Record, ...]] = {}
+    bore = stated.get("bore")
+    if "ends" in parts:
+        known = {end: stated[end].text in works.reservoirs for end in ("from", "to") if end in stated}
+        at_reservoir = known if reader.nodes is not None else {}
+        found["ends"] = read_ends(reader, parts["ends"][1], name, bore, at_reservoir)
+    if "fittings" in parts:
+        found["fittings"] = read_fittings(reader, parts["fittings"][1], name, bore)
+    return found
+
+
+def _check_pipe(reader: Reader, stated: Fields, present: tuple[str, ...], path: str, mark: Mark) -> None:
+    """Note what the fields of one pipe say together."""
+    if "from" in stated and "to" in stated and stated["from"].text == stated["to"].text:
+        found = f"the pipe begins and ends at {quoted(stated['to'].text)}"
+        reader.note(stated["to"].mark, "self-loop", f"{path}.to", found, "two different nodes")
+    roughness, bore = stated.get("roughness"), stated.get("bore")
+    if roughness and bore and bore.si <= roughness.si:
+        found = f"{quoted(bore.written)} is no larger than the roughness, {quoted(roughness.written)}"
+        reader.note(bore.mark, "rough-bore", f"{path}.bore", found, "a bore far larger than the roughness")
+    if "law" in stated and (needed := LAW_INPUT[stated["law"].text]) not in present:
+        note_missing_input(reader, mark, f"{path}.{needed}", needed, stated["law"])
+
+
+def note_missing_input(reader: Reader, mark: Mark, path: str, needed: str, law: Stated) -> None:
+    """Note that a pipe does not state what its friction law needs."""
+    found = f"'{needed}' is missing, which the law {law.text} needs"
+    field = pipe.SCHEMA.field(needed)
+    example = getattr(getattr(field, "form", None), "kind").example  # noqa: B009 - every law input is a quantity
+    if needed == "friction_factor":
+        example = "0.02"
+    hint = f"the law is stated at {law.mark}" if not law.shipped else f"{law.text} is the law by default"
+    reader.note(mark, "missing-law-input", path, found, f"'{needed}: {example}'", hint)
+
+
+def _expect_some(reader: Reader, works: Works, top: Mapping[str, Entry]) -> None:
+    """Note that there are no reservoirs or no pipes at all."""
+    for name, records in (("reservoirs", works.reservoirs), ("pipes", works.pipes)):
+        entry = top.get(name)
+        if records or (entry is not None and not empty(entry.value) and not _hollow(entry)):
+            continue
+        first = next(iter(top.values()), None)
+        mark = entry.key.mark if entry else Mark(first.key.mark.file if first else "network.yaml", 1, 1)
+        reader.note(mark, f"no-{name}", name, f"there are no {name}", f"at least one under '{name}'")
+
+
+def _hollow(entry: Entry) -> bool:
+    return isinstance(entry.value, MappingNode) and not entry.value.entries
