@@ -1,0 +1,93 @@
+"""Solving a case: arrays in, heads and flows with their whole history out.
+
+Takes a `Network` and `Settings`; gives a `Solution`, also where there is none (``converged`` is False, the reason
+is in words, the history is kept, heads and flows are NaN). Runs the chain of `calc.components.pipe` on arrays,
+so that the laws solved are the laws printed. Must not know ledger, units, files or the second opinion.
+
+*One unknown head: bracketing.* The imbalance F(H), flow toward the junction less its withdrawal, falls strictly
+with the trial head H, so that its sign tells on which side the answer lies. Trials are made at the levels (only
+those needed), beyond them with doubling steps, then inside by Chandrupatla's method (1997) opened by one false
+position; every rule is an equation in `calc.solve.rules` on earlier rows, for a pocket calculator. Near a
+level dF/dH is unbounded and a small step proves nothing, so two tests must both be met: the imbalance, and a bracket
+of 10⁻⁹ m whose ends have opposite signs (an imbalance that is the rounding of its own sum meets both). Heads are kept to
+twice the digits of a float, for at a level a wide short pipe turns the last digit into litres. Inverse
+interpolation suits the curve: where one branch governs, H is a parabola in F, also through the kinks.
+Measured over 2,000 random stars each of three and of five reservoirs, withdrawal or inflow in half of them, all
+trials counted: Chandrupatla opened by false position mean 8.4 and 8.8, largest 10 and 11; opened by halving 8.8
+and 9.2, largest 12; in a variable that straightens the kinks 8.1 and 9.1, largest 21; bisection 39, largest 57.
+
+*Any number of heads: Newton's method*, the gradient method of Todini & Pilati (1988), in `calc.solve.newton`.
+
+*Branches.* The flow for a head difference is found in `calc.solve.branch` to the last bits. Pipes between two
+reservoirs need nothing more. A junction that no open path joins to a reservoir has no head: no answer, and it is named.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from calc.components.network import Network
+from calc.problems import CalcError
+from calc.solve.bracketing import solve_by_bracketing
+from calc.solve.branch import Branches
+from calc.solve.connection import sentence, unreached
+from calc.solve.newton import solve_by_newton
+from calc.solve.rules import RULES, Rule, inputs_of
+from calc.solve.solution import METHODS, NARROWINGS, Settings, Solution, Steps, StopTest, Trials
+
+__all__ = [
+    "METHODS",
+    "NARROWINGS",
+    "RULES",
+    "Rule",
+    "Settings",
+    "Solution",
+    "Steps",
+    "StopTest",
+    "Trials",
+    "inputs_of",
+    "solve",
+]
+
+DEFAULTS = Settings()
+
+
+def solve(network: Network, settings: Settings = DEFAULTS) -> Solution:
+    """Return the heads and flows of a case, or why there are none.
+
+    Parameters
+    ----------
+    network : Network
+        The case, in SI.
+    settings : Settings
+        Method, tolerance, start and limit.
+
+    Returns
+    -------
+    Solution
+        Never raises for a case without an answer.
+
+    Raises
+    ------
+    CalcError
+        If the settings name no method, or bracketing where not exactly one head is unknown: ours to check first.
+    """
+    unknown = len(network.unknown)
+    method = settings.method or ("bracketing" if unknown == 1 else "newton")
+    _check(method, unknown, settings)
+    if reason := sentence(network, unreached(network)):
+        heads, flows = np.full(len(network.nodes), np.nan), np.full(len(network.open), np.nan)
+        return Solution(False, method, reason, 0, heads, flows)  # noqa: FBT003 - the first field of a result
+    by = solve_by_bracketing if method == "bracketing" else solve_by_newton
+    return by(network, settings, Branches(network))
+
+
+def _check(method: str, unknown: int, settings: Settings) -> None:
+    if method not in METHODS:
+        raise CalcError(f"no method '{method}'; expected one of {', '.join(METHODS)}")
+    if settings.narrowing not in NARROWINGS:
+        raise CalcError(f"no narrowing '{settings.narrowing}'; expected one of {', '.join(NARROWINGS)}")
+    if method == "bracketing" and unknown != 1:
+        raise CalcError(f"bracketing finds exactly one unknown head; this case has {unknown}")
+    if not (settings.tolerance > 0 and settings.limit >= 1):
+        raise CalcError("the tolerance must be above zero and the limit at least 1")
