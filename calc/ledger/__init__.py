@@ -8,7 +8,7 @@ Knows equations and kinds; knows neither physics nor files nor reports.
 """
 
 from calc.ledger.accountant import Accountant
-from calc.ledger.column import Column, View
+from calc.ledger.column import Column, Origin, View
 from calc.ledger.export import exported
 from calc.ledger.ledger import Ledger, Spot
 from calc.ledger.origin import (
@@ -18,7 +18,6 @@ from calc.ledger.origin import (
     Given,
     Judged,
     Library,
-    Origin,
     Program,
     Solved,
 )

@@ -5,19 +5,21 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
-from typing import TYPE_CHECKING
 
 import numpy as np
 import numpy.typing as npt
 
 from calc.kinds import Kind
 
-if TYPE_CHECKING:
-    from calc.ledger.origin import Origin
-
 Array = npt.NDArray[np.float64]
 Rows = npt.NDArray[np.int64]
 ABSENT = -1
+
+
+class Origin:
+    """How a column was obtained; `calc.ledger.origin` holds every sort there is."""
+
+    __slots__ = ()
 
 
 @dataclass(frozen=True, eq=False)
@@ -65,9 +67,13 @@ class Column:
         return self.name.partition(".")[2]
 
     def id(self, row: int) -> str:
-        """Return the id of one number: ``group.row.quantity@case``, with ``#n`` for a trial."""
+        """Return the id of one number: ``group.row.quantity@case``, with ``#n`` for a trial.
+
+        A section that stands once has no row: ``site.gravity@base``.
+        """
         subject, trial = (self.of, f"#{self.rows[row]}") if self.of else (self.rows[row], "")
-        return f"{self.group}.{subject}.{self.quantity}" + (f"@{self.case}" if self.case else "") + trial
+        words = ".".join(word for word in (self.group, subject, self.quantity) if word)
+        return words + (f"@{self.case}" if self.case else "") + trial
 
     @cached_property
     def index(self) -> dict[str, int]:

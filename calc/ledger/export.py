@@ -10,6 +10,7 @@ from calc.equation import Equation, Implicit, Leaf, linear
 from calc.ledger.column import Column, View
 from calc.ledger.ledger import Ledger
 from calc.ledger.origin import Combined, Converted, Derived, Given, Judged, Library, Program, Solved
+from calc.problems import CalcError
 
 FORMAT = "headtrace-ledger/1"
 
@@ -73,6 +74,8 @@ def _origin(column: Column, number: dict[int, int]) -> dict[str, Any]:
             }
         case Program():
             return {"kind": "program", "statement": origin.statement}
+        case _:
+            raise CalcError(f"{column.name}: no form for the origin {type(origin).__name__}")
 
 
 def _stated(origin: Given | Converted | Library) -> dict[str, Any]:

@@ -11,8 +11,7 @@ import numpy as np
 import numpy.typing as npt
 
 from calc.kinds import Kind
-from calc.ledger.column import Column, View
-from calc.ledger.origin import Origin
+from calc.ledger.column import Column, Origin, View
 from calc.problems import CalcError, Unresolved, nearest
 
 _ID = re.compile(
@@ -105,9 +104,7 @@ class Ledger:
         match = _ID.fullmatch(id_)
         if match is None:
             return
-        subject, dot, quantity = match["rest"].rpartition(".")
-        if not dot:
-            return
+        subject, _, quantity = match["rest"].rpartition(".")
         name, case, trial = f"{match['group']}.{quantity}", match["case"] or "", match["trial"]
         if trial is None and not case and not self.find(name):
             case = "base"

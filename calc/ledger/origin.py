@@ -1,4 +1,4 @@
-"""The origins of columns: a closed union."""
+"""The origins of columns: every sort there is."""
 
 from __future__ import annotations
 
@@ -9,14 +9,14 @@ import numpy as np
 import numpy.typing as npt
 
 from calc.equation import Law, Leaf
-from calc.ledger.column import View
+from calc.ledger.column import Origin, View
 from calc.marks import Mark
 
 Rows = npt.NDArray[np.int64]
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Given:
+class Given(Origin):
     """Read from the user's files, in SI: a mark, the text as written and what it rests on, per row."""
 
     marks: tuple[Mark, ...]
@@ -25,7 +25,7 @@ class Given:
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Converted:
+class Converted(Origin):
     """Read from the user's files in another unit: value = number · factor + offset, per row."""
 
     marks: tuple[Mark, ...]
@@ -38,7 +38,7 @@ class Converted:
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Library:
+class Library(Origin):
     """From a table or default that ships with the program: a mark in it, the text and its source, per row."""
 
     marks: tuple[Mark, ...]
@@ -47,7 +47,7 @@ class Library:
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Derived:
+class Derived(Origin):
     """Computed by a law from other columns.
 
     Attributes
@@ -72,7 +72,7 @@ class Derived:
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Solved:
+class Solved(Origin):
     """Found by iteration: what makes it the answer, and the columns that prove it.
 
     Attributes
@@ -94,7 +94,7 @@ class Solved:
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Combined:
+class Combined(Origin):
     """A sum, or the largest or least, of several numbers per row.
 
     Attributes
@@ -119,17 +119,14 @@ class Combined:
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Judged:
+class Judged(Origin):
     """A verdict: 1 where the margin is not negative, 0 where it is."""
 
     margin: View
 
 
 @dataclass(frozen=True, eq=False, slots=True)
-class Program:
+class Program(Origin):
     """A fact of the program's own: a count, a tolerance, a version."""
 
     statement: str
-
-
-Origin = Given | Converted | Library | Derived | Solved | Combined | Judged | Program

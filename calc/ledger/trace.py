@@ -9,6 +9,7 @@ from calc.equation.law import takes
 from calc.ledger.column import Column
 from calc.ledger.ledger import Ledger, Spot
 from calc.ledger.origin import Combined, Converted, Derived, Given, Judged, Library, Program, Solved
+from calc.problems import CalcError
 
 MANY = 12
 """Terms of a sum shown one by one; beyond, the rest is counted."""
@@ -52,6 +53,8 @@ class _Tracer:
                 yield from self._inputs([origin.margin.spot(row)], depth)
             case Program(statement=statement):
                 yield f"{head}   {statement}"
+            case _:
+                raise CalcError(f"{column.name}: no words for the origin {type(origin).__name__}")
 
     def _derived(self, head: str, origin: Derived, row: int, depth: int) -> Iterator[str]:
         leaf = origin.leaves[origin.which[row]]

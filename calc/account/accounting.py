@@ -1,0 +1,116 @@
+"""Keeping the account of a project: from solutions to ledger, verdicts and findings."""
+
+from __future__ import annotations
+
+import hashlib
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Any
+
+from calc.account.findings import Finding, all_findings
+from calc.account.flows import CaseColumns, enter_flows
+from calc.account.history import enter_history, history_rows
+from calc.account.opinion import Agreement, enter_opinion
+from calc.account.paths import Path, enter_paths
+from calc.account.verdicts import CriterionVerdict, enter_verdicts
+from calc.components import Network
+from calc.kinds import FLOW, HEAD, NUMBER
+from calc.ledger import Ledger, Program
+from calc.project import Project
+from calc.solve import Solution
+
+
+@dataclass(frozen=True)
+class CaseAccount:
+    """One case accounted for; ``columns`` and ``agreement`` are None when it has no solution."""
+
+    id: str
+    title: str
+    network: Network
+    solution: Solution
+    columns: CaseColumns | None
+    paths: tuple[Path, ...]
+    agreement: Agreement | None
+    history: list[dict[str, Any]]
+
+
+@dataclass(frozen=True)
+class Account:
+    """A project accounted for: what the report says and ``results.json`` holds comes from here."""
+
+    project: Project
+    ledger: Ledger
+    cases: Mapping[str, CaseAccount]
+    verdicts: tuple[CriterionVerdict, ...]
+    findings: tuple[Finding, ...]
+    digest: str
+
+    @property
+    def solved(self) -> bool:
+        """Whether every case has a solution."""
+        return all(case.solution.converged for case in self.cases.values())
+
+    @property
+    def met(self) -> bool:
+        """Whether every criterion is met in every solved case."""
+        return all(judged.met for judged in self.verdicts)
+
+    @property
+    def confirmed(self) -> bool:
+        """Whether the second opinion agrees with every solution."""
+        return all(case.agreement is None or case.agreement.agrees for case in self.cases.values())
+
+
+def keep_account(project: Project, ledger: Ledger, solved: Mapping[str, tuple[Network, Solution]]) -> Account:
+    """Return the account of a project.
+
+    Parameters
+    ----------
+    project : Project
+        As read.
+    ledger : Ledger
+        The open books of the project; everything is entered into it.
+    solved : mapping
+        For each case its network and solution, in the order of the project.
+    """
+    cases: dict[str, CaseAccount] = {}
+    for name, (network, solution) in solved.items():
+        enter_history(ledger, network, solution, name)
+        columns, paths, agreement = None, (), None
+        if solution.converged:
+            columns = enter_flows(ledger, network, solution, name)
+            paths = enter_paths(ledger, network, columns, name)
+            agreement = enter_opinion(ledger, network, solution, name)
+            _enter_tests(ledger, solution, name)
+        stated = project.cases[name].title
+        title = stated.text if stated else "Inputs as stated"
+        history = history_rows(network, solution)
+        cases[name] = CaseAccount(name, title, network, solution, columns, paths, agreement, history)
+    held = {name: case.columns for name, case in cases.items() if case.columns is not None}
+    verdicts = enter_verdicts(ledger, project, held)
+    findings = all_findings(project, {name: case.agreement for name, case in cases.items()})
+    return Account(project, ledger, cases, verdicts, findings, _digest(project, cases))
+
+
+def _enter_tests(ledger: Ledger, solution: Solution, case: str) -> None:
+    kinds = {"m³/s": FLOW, "m": HEAD}
+    for k, test in enumerate(solution.tests):
+        kind = kinds.get(test.unit, NUMBER)
+        measured, allowed = (
+            Program(f"measured when the search ended: {test.words}"),
+            Program("limit of the test"),
+        )
+        ledger.enter(f"solver.test_{k + 1}", kind, [""], [test.value], measured, case=case)
+        ledger.enter(f"solver.test_{k + 1}_limit", kind, [""], [test.limit], allowed, case=case)
+    said = Program("evaluations in the history of this case")
+    ledger.enter("solver.iterations", NUMBER, [""], [solution.iterations], said, case=case)
+
+
+def _digest(project: Project, cases: Mapping[str, CaseAccount]) -> str:
+    """Return the digest of inputs and solution; numbers enter with ten figures, which every processor gives alike."""
+    digest = hashlib.sha256(project.digest.encode())
+    for name, case in cases.items():
+        digest.update(f"\n{name} {case.solution.converged}".encode())
+        for value in (*case.solution.head.tolist(), *case.solution.flow.tolist()):
+            digest.update(f" {value:.9e}".encode())
+    return f"sha256:{digest.hexdigest()}"

@@ -1,0 +1,258 @@
+"""Opening the books: every number that the project states becomes a ledger column, case by case."""
+
+from __future__ import annotations
+
+from collections import defaultdict
+from collections.abc import Iterable, Mapping, Sequence
+from functools import cache
+from typing import Any
+
+import numpy as np
+
+from calc.components import SCHEMAS, Count, Quantity, Record, Schema, Stated
+from calc.components.liquid import LiquidTerms, liquid
+from calc.components.pipe import FITTING_SCHEMA
+from calc.equation import Equation, Reference, Symbol, equation
+from calc.kinds import (
+    ACCELERATION,
+    DENSITY,
+    DYNAMIC_VISCOSITY,
+    ELEVATION,
+    FLOW,
+    KINEMATIC_VISCOSITY,
+    NUMBER,
+    PRESSURE,
+    TEMPERATURE,
+    Kind,
+)
+from calc.ledger import Accountant, Column, Converted, Given, Ledger, Library, View
+from calc.ledger.column import ABSENT
+from calc.physics import symbols as s
+from calc.project import BASE, Line, Project
+
+PROJECT = Reference("project input", "Project input")
+
+SINGLE: dict[str, dict[str, Kind]] = {
+    "fluid": {
+        "temperature": TEMPERATURE,
+        "density": DENSITY,
+        "viscosity": KINEMATIC_VISCOSITY,
+        "vapour_pressure": PRESSURE,
+    },
+    "site": {"altitude": ELEVATION, "gravity": ACCELERATION},
+    "constants": {"laminar_below": NUMBER, "turbulent_above": NUMBER},
+}
+"""Kinds of the fields of sections that stand once."""
+
+
+@equation(
+    gives=s.WITHDRAWAL,
+    source=PROJECT,
+    valid="an inflow is a negative withdrawal",
+    inflow=Symbol("I", FLOW, "inflow"),
+)
+def withdrawal_of_inflow(*, inflow: Any) -> Any:  # noqa: ANN401
+    """Withdrawal that stands for an inflow."""
+    return -inflow
+
+
+@cache
+def scaled(kind: Kind) -> Equation:
+    """Return the law by which ``times`` multiplies a quantity of a kind."""
+
+    @equation(
+        gives=Symbol("x", kind, "value in this case"),
+        source=PROJECT,
+        valid="as the case states",
+        factor=Symbol("k", NUMBER, "factor of the case"),
+        before=Symbol("x_0", kind, "value before"),
+    )
+    def scaled_value(*, factor: Any, before: Any) -> Any:  # noqa: ANN401
+        """Value times the factor of the case."""
+        return factor * before
+
+    return scaled_value
+
+
+def basis_text(stated: Stated) -> str:
+    """Return what a value rests on, in one line: source, page, grade, note."""
+    basis = stated.basis
+    page = f"p. {basis.page}" if basis.page else ""
+    return ", ".join(part for part in (basis.source, page, basis.grade, basis.note) if part)
+
+
+def enter_stated(
+    ledger: Ledger, name: str, kind: Kind, rows: Sequence[str], values: Sequence[Stated], case: str
+) -> None:
+    """Enter stated values as columns, one for each way in which they were stated."""
+    sorts: dict[str, list[int]] = defaultdict(list)
+    for k, stated in enumerate(values):
+        plain = stated.factor == 1.0 and stated.offset == 0.0
+        sorts["library" if stated.shipped else "given" if plain else "converted"].append(k)
+    for sort, chosen in sorts.items():
+        some = [values[k] for k in chosen]
+        marks, written = tuple(x.mark for x in some), tuple(x.written for x in some)
+        bases = tuple(map(basis_text, some))
+        origin: Given | Converted | Library
+        if sort == "library":
+            origin = Library(marks, written, bases)
+        elif sort == "given":
+            origin = Given(marks, written, bases)
+        else:
+            origin = Converted(
+                marks,
+                written,
+                bases,
+                tuple(x.number for x in some),
+                tuple(x.unit for x in some),
+                tuple(x.factor for x in some),
+                tuple(x.offset for x in some),
+            )
+        ledger.enter(name, kind, [rows[k] for k in chosen], [x.si for x in some], origin, case=case)
+
+
+def numeric_fields(schema: Schema) -> dict[str, Kind]:
+    """Return the fields of a schema that hold numbers, with their kinds."""
+    return {
+        field.name: field.form.kind if isinstance(field.form, Quantity) else NUMBER
+        for field in schema.fields
+        if isinstance(field.form, Quantity | Count)
+    }
+
+
+def open_books(project: Project) -> Ledger:
+    """Return a ledger that holds every number that the project states, and the properties of its liquid."""
+    ledger = Ledger({case.id: case.after or BASE for case in project.cases.values() if case.id != BASE})
+    for schema in SCHEMAS:
+        _enter_group(ledger, schema, project.group(schema.group).values())
+    parts = [
+        part
+        for pipe in project.pipes.values()
+        for sort in ("ends", "fittings")
+        for part in pipe.parts.get(sort, ())
+    ]
+    _enter_group(ledger, FITTING_SCHEMA, parts)
+    for group, kinds in SINGLE.items():
+        for row, record in project.group(group).items():
+            for field, kind in kinds.items():
+                if field in record.stated:
+                    exact = _kind_of(record, field, kind)
+                    name = f"{group}.{_named(field, exact)}"
+                    enter_stated(ledger, name, exact, [row], [record.stated[field]], BASE)
+    _enter_derived(ledger, project, BASE)
+    for case in project.cases.values():
+        if case.id != BASE:
+            _enter_changes(ledger, project, case.id, case.lines)
+            if any(line.group in ("fluid", "site") or line.field in ("inflow",) for line in case.lines):
+                _enter_derived(ledger, project, case.id)
+    return ledger
+
+
+def _enter_group(ledger: Ledger, schema: Schema, records: Iterable[Record]) -> None:
+    held = list(records)
+    for field, kind in numeric_fields(schema).items():
+        having = [record for record in held if field in record.stated]
+        if having:
+            rows = [record.id for record in having]
+            enter_stated(
+                ledger, f"{schema.group}.{field}", kind, rows, [r.stated[field] for r in having], BASE
+            )
+
+
+def _kind_of(record: Record, field: str, kind: Kind) -> Kind:
+    if field == "viscosity" and record.text("viscosity_kind").startswith("dynamic"):
+        return DYNAMIC_VISCOSITY
+    return kind
+
+
+def _named(field: str, kind: Kind) -> str:
+    return "dynamic_viscosity" if kind is DYNAMIC_VISCOSITY else field
+
+
+def _enter_changes(ledger: Ledger, project: Project, case: str, lines: Sequence[Line]) -> None:
+    """Enter what a case's own lines set or multiply; intermediate values of one row have names of their own."""
+    steps: dict[tuple[str, str], dict[str, list[Line]]] = defaultdict(lambda: defaultdict(list))
+    for line in lines:
+        if isinstance(line.stated.value, float | int) and not isinstance(line.stated.value, bool):
+            for row in line.rows:
+                standing = steps[line.group, line.field][row]
+                if line.how == "with":
+                    standing.clear()
+                standing.append(line)
+    for (group, field), by_row in steps.items():
+        kind = _field_kind(project, group, field)
+        name = f"{group}.{_named(field, kind)}"
+        for level in range(max(map(len, by_row.values()))):
+            for how in ("with", "times"):
+                for last in (True, False):
+                    chosen = {
+                        row: standing[level]
+                        for row, standing in by_row.items()
+                        if len(standing) > level
+                        and standing[level].how == how
+                        and (len(standing) == level + 1) == last
+                    }
+                    if chosen:
+                        _enter_step(ledger, name, kind, case, level, chosen, last=last)
+
+
+def _enter_step(
+    ledger: Ledger, name: str, kind: Kind, case: str, level: int, chosen: Mapping[str, Line], *, last: bool
+) -> None:
+    rows = list(chosen)
+    values = [line.stated for line in chosen.values()]
+    result = name if last else f"{name}_step_{level + 1}"
+    if next(iter(chosen.values())).how == "with":
+        enter_stated(ledger, result, kind, rows, values, case)
+        return
+    before_name = name if level == 0 else f"{name}_step_{level}"
+    before = ledger.view(before_name, case, rows)
+    kept = np.flatnonzero(before.which != ABSENT)  # a factor on a value that nothing states changes nothing
+    if not len(kept):
+        return
+    rows = [rows[int(k)] for k in kept]
+    factor_name = f"{name}_factor" if level == 0 else f"{name}_factor_{level + 1}"
+    enter_stated(ledger, factor_name, NUMBER, rows, [values[int(k)] for k in kept], case)
+    factor = ledger.view(factor_name, case, rows)
+    Accountant(ledger, case).apply(result, scaled(kind), factor=factor, before=before.take(kept))
+
+
+def _field_kind(project: Project, group: str, field: str) -> Kind:
+    if group in SINGLE:
+        record = next(iter(project.group(group).values()))
+        return _kind_of(record, field, SINGLE[group][field])
+    schema = next(schema for schema in SCHEMAS if schema.group == group)
+    return numeric_fields(schema)[field]
+
+
+def _enter_derived(ledger: Ledger, project: Project, case: str) -> None:
+    """Enter what follows from the inputs before anything is solved: withdrawals from inflows, the liquid."""
+    rows = sorted({row for column in ledger.find("junctions.inflow", case) for row in column.rows})
+    stated_here = [c for c in ledger.columns if c.name == "junctions.inflow" and c.case == case]
+    if rows and stated_here:
+        here = [row for row in project.junctions if any(row in column.index for column in stated_here)]
+        view = ledger.view("junctions.inflow", case, here)
+        Accountant(ledger, case).apply("junctions.withdrawal", withdrawal_of_inflow, inflow=view)
+    if case == BASE or any(line.group in ("fluid", "site") for line in project.cases[case].lines):
+        liquid(Accountant(ledger, case), liquid_terms(ledger, case))
+
+
+def liquid_terms(ledger: Ledger, case: str) -> LiquidTerms[View]:
+    """Return what is stated of the liquid in a case."""
+
+    def stated(name: str) -> View | None:
+        columns = [c for c in ledger.find(name, case) if not _is_derived(c)]
+        return ledger.shared(name, case) if columns else None
+
+    return LiquidTerms(
+        altitude=ledger.shared("site.altitude", case),
+        temperature=stated("fluid.temperature"),
+        density=stated("fluid.density"),
+        viscosity=stated("fluid.viscosity"),
+        dynamic_viscosity=stated("fluid.dynamic_viscosity"),
+        vapour_pressure=stated("fluid.vapour_pressure"),
+    )
+
+
+def _is_derived(column: Column) -> bool:
+    return not isinstance(column.origin, Given | Converted | Library)

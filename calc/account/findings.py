@@ -1,0 +1,140 @@
+"""Findings: doubtful or missing things that a reviewer would remark on, found from the data.
+
+Each has the number of the comment it answers to; the program may say that no defect was found by a check, never
+that a calculation is checked, approved or safe.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Mapping
+from dataclasses import dataclass
+
+from calc.account.opinion import Agreement
+from calc.components import Record
+from calc.project import Project
+
+
+@dataclass(frozen=True, slots=True, order=True)
+class Finding:
+    """One remark: the comment's id and title, the subject as a path, ``file:line``, and the text."""
+
+    id: str
+    subject: str
+    place: str
+    text: str
+
+
+TITLES = {
+    "D03": "Inputs without a source",
+    "D35": "Fitting losses omitted",
+    "D36": "Entrance and exit losses",
+    "D46": "Independent solution",
+}
+"""The comments that are looked for, in the order in which packages list them."""
+
+
+def unsourced(project: Project) -> Iterator[Finding]:
+    """D03: every value of the user's that names no source, gathered by component."""
+    groups = {
+        "reservoirs": project.reservoirs,
+        "junctions": project.junctions,
+        "pipes": project.pipes,
+        "criteria": project.criteria,
+        "fluid": {"": project.fluid},
+        "site": {"": project.site},
+    }
+    for group, records in groups.items():
+        for record in records.values():
+            bare = sorted(_unsourced(record), key=lambda pair: pair[1])
+            if bare:
+                names = ", ".join(name for name, _ in bare)
+                subject = f"{group}.{record.id}" if record.id and group not in ("fluid", "site") else group
+                verb = "has" if len(bare) == 1 else "have"
+                yield Finding("D03", subject, bare[0][1], f"{names} {verb} no source")
+    for case in project.cases.values():
+        bare_paths = [x for x in case.lines if not x.stated.basis.source and x.field not in WITHOUT_SOURCE]
+        if bare_paths:
+            names = ", ".join(dict.fromkeys(x.path for x in bare_paths))
+            place = bare_paths[0].mark.place
+            yield Finding("D03", f"cases.{case.id}", place, f"values of this case have no source: {names}")
+
+
+WITHOUT_SOURCE = {
+    "from",
+    "to",
+    "law",
+    "open",
+    "parallel",
+    "applies_to",
+    "cases",
+    "kind",
+    "viscosity_kind",
+    "title",
+}
+"""Fields that describe the arrangement and need no source of their own."""
+
+
+def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
+    for name, stated in record.stated.items():
+        if not stated.shipped and name not in WITHOUT_SOURCE and not stated.basis.source:
+            yield name, stated.mark.place
+    for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
+        for name, stated in part.stated.items():
+            if name in ("K", "K_reverse") and not stated.shipped and not stated.basis.source:
+                yield f"{name} of {part.id.rpartition('/')[2]}", stated.mark.place
+
+
+def without_fittings(project: Project) -> Iterator[Finding]:
+    """D35: pipes for which no fitting is stated."""
+    for pipe in project.pipes.values():
+        if not pipe.parts.get("fittings"):
+            yield Finding(
+                "D35",
+                f"pipes.{pipe.id}",
+                pipe.mark.place,
+                "no fittings are stated: bends, valves and meters lose nothing here. State them, or say in an "
+                "assumption why they may be left out",
+            )
+
+
+def bare_ends(project: Project) -> Iterator[Finding]:
+    """D36: reservoir ends of pipes at which nothing is lost, on entering or leaving."""
+    for pipe in project.pipes.values():
+        covered = {part.id.rpartition("/")[2] for part in pipe.parts.get("ends", ())}
+        for end in ("from", "to"):
+            if pipe.text(end) in project.reservoirs and end not in covered:
+                yield Finding(
+                    "D36",
+                    f"pipes.{pipe.id}",
+                    pipe.mark.place,
+                    f"no entrance or exit loss at the end in {pipe.text(end)}: water enters and leaves there "
+                    f"without loss. State 'ends: {{{end}: square}}' or its coefficients",
+                )
+
+
+def unconfirmed(agreements: Mapping[str, Agreement | None]) -> Iterator[Finding]:
+    """D46: cases whose solution a second formulation did not confirm."""
+    for case, agreement in agreements.items():
+        if agreement is None:
+            yield Finding("D46", f"cases.{case}", "", "the case has no solution, so there is none to confirm")
+        elif agreement.evaluated:
+            text = "the second opinion evaluated the laws at the answer and did not solve the case again (large network)"
+            yield Finding("D46", f"cases.{case}", "", text)
+        elif not agreement.agrees:
+            yield Finding(
+                "D46", f"cases.{case}", "", f"the second opinion does not confirm it: {agreement.reason}"
+            )
+
+
+INPUT_CHECKS: tuple[Callable[[Project], Iterator[Finding]], ...] = (unsourced, without_fittings, bare_ends)
+"""Checks that need the inputs alone; `inspect` runs these."""
+
+
+def input_findings(project: Project) -> tuple[Finding, ...]:
+    """Return what the inputs alone give rise to, in the order of the comments."""
+    return tuple(sorted((f for check in INPUT_CHECKS for f in check(project)), key=lambda f: f.id))
+
+
+def all_findings(project: Project, agreements: Mapping[str, Agreement | None]) -> tuple[Finding, ...]:
+    """Return every finding of a project and its solutions, in the order of the comments."""
+    return (*input_findings(project), *unconfirmed(agreements))
