@@ -22,7 +22,7 @@ from calc.ledger.origin import (
     Solved,
 )
 from calc.ledger.replay import Disagreement, replay
-from calc.ledger.trace import trace
+from calc.ledger.trace import proofs, trace
 
 __all__ = [
     "Accountant",
@@ -41,6 +41,7 @@ __all__ = [
     "Spot",
     "View",
     "exported",
+    "proofs",
     "replay",
     "trace",
 ]

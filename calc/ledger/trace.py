@@ -18,15 +18,21 @@ MANY = 12
 def trace(ledger: Ledger, spot: Spot) -> Iterator[str]:
     """Yield the derivation of a number, outermost first, inputs indented beneath what they enter.
 
-    A number met again is not repeated: its line says "shown above".
+    A number met again is not repeated: its line says "shown above". Numbers that were solved for are proved after the
+    tree in which they were met, each under its own line.
     """
-    yield from _Tracer(ledger).lines(spot, 0)
+    tracer = _Tracer(ledger)
+    yield from tracer.lines(spot, 0)
+    while tracer.waiting:
+        yield ""
+        yield from tracer.proof(tracer.waiting.pop(0))
 
 
 class _Tracer:
     def __init__(self, ledger: Ledger) -> None:
         self.ledger = ledger
         self.shown: set[str] = set()
+        self.waiting: list[Spot] = []
 
     def lines(self, spot: Spot, depth: int) -> Iterator[str]:
         pad = "  " * depth
@@ -46,8 +52,10 @@ class _Tracer:
             case Combined():
                 yield from self._combined(head, origin, row, depth)
             case Solved():
-                yield f"{head}   solved: {origin.statement} ({origin.method}, {origin.iterations} iterations); proof:"
-                yield from self._proof(column, row, origin, depth)
+                below = "; proof below" if origin.proof else ""
+                yield f"{head}   solved: {origin.statement} ({origin.method}, {origin.iterations} iterations){below}"
+                if origin.proof:
+                    self.waiting.append(spot)
             case Judged():
                 yield f"{head}   {'met' if spot.value else 'not met'}: the margin is {'not ' * bool(spot.value)}negative"
                 yield from self._inputs([origin.margin.spot(row)], depth)
@@ -76,17 +84,25 @@ class _Tracer:
         if len(terms) > MANY:
             yield f"{'  ' * (depth + 1)}and {len(terms) - MANY} more"
 
-    def _proof(self, column: Column, row: int, origin: Solved, depth: int) -> Iterator[str]:
-        for name in origin.proof:
-            for proof in self.ledger.find(name, column.case):
-                found = proof.index.get(column.of or column.rows[row])
-                if found is not None and not column.of:
-                    yield from self.lines(Spot(proof, found), depth + 1)
+    def proof(self, spot: Spot) -> Iterator[str]:
+        """Yield what proves a number that was solved for."""
+        column, row = spot
+        yield f"proof of {spot.id}:"
+        for proof in proofs(self.ledger, column, row):
+            yield from self.lines(proof, 1)
 
     def _inputs(self, spots: list[tuple[Column, int] | None], depth: int) -> Iterator[str]:
         for spot in spots:
             if spot is not None:
                 yield from self.lines(Spot(*spot), depth + 1)
+
+
+def proofs(ledger: Ledger, column: Column, row: int) -> list[Spot]:
+    """Return the numbers in which the condition of a solved number is evaluated."""
+    origin = column.origin
+    names = origin.proof if isinstance(origin, Solved) and not column.of else ()
+    columns = [c for name in names for c in ledger.find(name, column.case) if c.case == column.case]
+    return [Spot(c, c.index[column.rows[row]]) for c in columns if column.rows[row] in c.index]
 
 
 def _stated(origin: Given | Converted | Library, row: int) -> str:
