@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 from functools import cached_property
 from weakref import WeakKeyDictionary
@@ -13,7 +14,7 @@ from calc.components import Network, Record
 from calc.components.pipe import LAW_INPUT, FittingTerms, PipeTerms
 from calc.equation import Labels
 from calc.physics.friction import LAW_NAMES
-from calc.project.cases import chain, follows_friction
+from calc.project.cases import follows_friction, lines_in
 from calc.project.model import Line, Project
 
 Array = npt.NDArray[np.float64]
@@ -42,20 +43,19 @@ class _Base:
             name: dict(project.group(name))
             for name in ("reservoirs", "junctions", "pipes", "fluid", "site", "constants", "friction")
         }
-        self.index = {
-            name: {row: at for at, row in enumerate(group)} for name, group in self.groups.items()
-        }
+        self.index = {name: {row: at for at, row in enumerate(group)} for name, group in self.groups.items()}
         self.nodes = dict(project.nodes)
         self.friction = project.friction
-        self.follows = np.array([follows_friction(project, one) for one in project.pipes.values()], dtype=bool)
+        self.follows = np.array(
+            [follows_friction(project, one) for one in project.pipes.values()], dtype=bool
+        )
         self.columns: dict[tuple[str, str], Array] = {}
 
     def column(self, group: str, field: str) -> Array:
         """Return a column; NaN where a record does not state the field."""
         key = (group, field)
         if key not in self.columns:
-            records = self.groups[group].values()
-            self.columns[key] = np.array([record.number(field) for record in records], dtype=np.float64)
+            self.columns[key] = _numbers(self.groups[group].values(), field)
         return self.columns[key]
 
     @cached_property
@@ -83,11 +83,17 @@ class _Base:
             pipe += [at] * len(parts)
             own += [np.nan if stands_on_pipe(record, part) else part.number("bore") for part in parts]
         return _Fittings(
-            tuple(part.id for part in found),
-            np.array(pipe, dtype=np.int64),
-            *(np.array([part.number(name) for part in found]) for name in ("count", "K", "K_reverse")),
-            np.array(own, dtype=np.float64),
+            rows=tuple(part.id for part in found),
+            pipe=np.array(pipe, dtype=np.int64),
+            count=_numbers(found, "count"),
+            forward=_numbers(found, "K"),
+            reverse=_numbers(found, "K_reverse"),
+            own_bore=np.array(own, dtype=np.float64),
         )
+
+
+def _numbers(records: Iterable[Record], field: str) -> Array:
+    return np.array([record.number(field) for record in records], dtype=np.float64)
 
 
 def in_order(pipe: Record) -> list[Record]:
@@ -99,7 +105,7 @@ def in_order(pipe: Record) -> list[Record]:
 
 
 def stands_on_pipe(pipe: Record, part: Record) -> bool:
-    """Return whether a fitting's coefficient stands on the bore of its pipe, whatever a case makes of that."""
+    """Return whether a fitting's coefficient stands on its pipe's bore, whatever a case makes of it."""
     return part.stated.get("bore") is pipe.stated.get("bore")
 
 
@@ -119,7 +125,7 @@ class Effective:
 
     def __init__(self, project: Project, case: str) -> None:
         self.base = _KEPT.get(project) or _KEPT.setdefault(project, _Base(project))
-        self.lines = tuple(line for one in chain(project.cases, case) for line in one.lines)
+        self.lines = tuple(line for _, line in lines_in(project, case))
 
     def rows(self, line: Line) -> Rows | slice:
         """Return where in its group a line acts."""
@@ -168,8 +174,8 @@ def network(project: Project, case: str, viscosity: float) -> Network:
     Returns
     -------
     Network
-        Nodes are the reservoirs, then the junctions; all rows in the order of the files. An inflow is a negative
-        withdrawal.
+        Nodes are the reservoirs, then the junctions; all rows in the order of the files. An inflow is a
+        negative withdrawal.
     """
     now = Effective(project, case)
     level = now.numbers("reservoirs", "level")

@@ -1,4 +1,4 @@
-"""Bounds of quantities: those a field declares, and beyond them those within which numbers stay computable."""
+"""Bounds of quantities: those a field declares, and those within which numbers stay computable."""
 
 from __future__ import annotations
 

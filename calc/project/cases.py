@@ -10,11 +10,12 @@ from calc.kinds import NUMBER, TEMPERATURE
 from calc.project.judging import note_unknown_case
 from calc.project.model import BASE, Case, Change, How, Line, Project
 from calc.project.paths import Target, follow
-from calc.project.reader import Node, Reader, empty, quoted
+from calc.project.reader import Reader, empty, quoted
 from calc.project.records import read_group
 from calc.project.settings import VISCOSITIES
-from calc.yamlfile import Entry, Scalar
+from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
+from calc.yamlfile.collector import without_collector
 
 Key = tuple[str, str, str]
 """Group, row and field of a value."""
@@ -70,8 +71,8 @@ def _read_case(
             after = "" if scalar is None or scalar.text == BASE else scalar.text
         else:
             changes = reader.mapping(value, at, "a mapping: {reservoirs.upper.level: 209.20 m}")
-            for where, what in changes.entries if changes else ():
-                line = _read_line(reader, where, what, at, name.text, works, fluid)
+            for change in changes.entries if changes else ():
+                line = _read_line(reader, change, at, name.text, works=works, fluid=fluid)
                 if line is not None:
                     lines.append(line)
     return Case(key.text, key.mark, title, after, tuple(lines))
@@ -79,20 +80,21 @@ def _read_case(
 
 def _read_line(
     reader: Reader,
-    where: Scalar,
-    what: Node,
+    entry: Entry,
     path: str,
     how: str,
+    *,
     works: Mapping[str, Mapping[str, object]],
     fluid: Record,
 ) -> Line | None:
+    where, what = entry
     at = f"{path}.{where.text[:120]}"
     target = follow(reader, where, at, works)
     if target is None or target.field is None:
         return None
     if how == "times":
         stated = _read_factor(reader, target, where, what, at)
-        return stated and _line(where, target, "times", stated)
+        return None if stated is None else _line(where, target, "times", stated)
     form = target.field.form
     if target.group == "fluid" and target.field.name == "viscosity":
         dynamic = fluid.text("viscosity_kind") == VISCOSITIES[1].kind.name
@@ -105,7 +107,7 @@ def _read_line(
         return None
     code = "unknown-law" if target.field.name == "law" else "bad-word"
     stated = reader.value(form, what, at, code)
-    return stated and _line(where, target, "with", stated)
+    return None if stated is None else _line(where, target, "with", stated)
 
 
 def _read_factor(reader: Reader, target: Target, where: Scalar, what: Node, at: str) -> Stated | None:
@@ -116,7 +118,14 @@ def _read_factor(reader: Reader, target: Target, where: Scalar, what: Node, at: 
     name = target.field.name if target.field else ""
     what_it_is = "a temperature" if isinstance(form, Quantity) else "not a quantity"
     found = f"'{name}' is {what_it_is}, and cannot be multiplied"
-    reader.note(where.mark, "fixed-field", at, found, "a quantity", f"set it under 'with': {{{quoted(where.text)}: …}}")
+    reader.note(
+        where.mark,
+        "fixed-field",
+        at,
+        found,
+        "a quantity",
+        f"set it under 'with': {{{quoted(where.text)}: …}}",
+    )
     return None
 
 
@@ -139,7 +148,9 @@ def _check_circles(reader: Reader, cases: dict[str, Case], afters: Mapping[str, 
             node = afters[circle[0]]
             mark = node.mark if node is not None else cases[circle[0]].mark
             found = " after ".join([*circle, circle[0]])
-            reader.note(mark, "case-cycle", f"cases.{circle[0]}.after", found, "cases that begin at the inputs")
+            reader.note(
+                mark, "case-cycle", f"cases.{circle[0]}.after", found, "cases that begin at the inputs"
+            )
         settled.update(trail)
 
 
@@ -152,11 +163,16 @@ def chain(cases: Mapping[str, Case], name: str) -> tuple[Case, ...]:
     return tuple(found)
 
 
+def lines_in(project: Project, case: str) -> list[tuple[Case, Line]]:
+    """Return every line in force in a case with the case that it stands in, in the order of their effect."""
+    return [(one, line) for one in chain(project.cases, case) for line in one.lines]
+
+
 def changes_in(project: Project, case: str) -> dict[Key, tuple[Change, ...]]:
     """Return the changes in force in a case.
 
-    A ``with`` drops all that came before it. A change of ``friction`` is also given for the ``law`` of every pipe
-    that follows it.
+    A ``with`` drops all that came before it. A change of ``friction`` is also given for the ``law`` of every
+    pipe that follows it.
 
     Parameters
     ----------
@@ -172,8 +188,8 @@ def changes_in(project: Project, case: str) -> dict[Key, tuple[Change, ...]]:
     """
     found: dict[Key, tuple[Change, ...]] = {}
     own_law: set[str] = set()
-    for one in chain(project.cases, case):
-        for line in one.lines:
+    with without_collector():
+        for one, line in lines_in(project, case):
             reach = [(line.group, row, line.field) for row in line.rows]
             if line.group == "pipes" and line.field == "law":
                 own_law.update(line.rows)

@@ -1,4 +1,4 @@
-"""What the changes of a case lead to: values out of range, inputs that a law then lacks, pairs that exclude each other."""
+"""What the changes of a case lead to: values out of range, laws that lack an input, excluded pairs."""
 
 from __future__ import annotations
 
@@ -11,7 +11,7 @@ from calc.components import Field, Quantity
 from calc.components.pipe import LAW_INPUT
 from calc.project.arrays import Effective, needing
 from calc.project.bounds import outside
-from calc.project.cases import chain
+from calc.project.cases import lines_in
 from calc.project.model import Case, Line, Project
 from calc.project.paths import GROUPS, SINGLE
 from calc.project.reader import Reader, quoted
@@ -56,7 +56,11 @@ def _check_range(reader: Reader, project: Project, now: Effective, case: Case, l
 def _field(project: Project, line: Line) -> Field | None:
     schema = GROUPS.get(line.group) or SINGLE.get(line.group) or TRANSITION
     field = schema.field(line.field)
-    if line.group == "fluid" and line.field == "viscosity" and project.fluid.text("viscosity_kind").startswith("d"):
+    if (
+        line.group == "fluid"
+        and line.field == "viscosity"
+        and project.fluid.text("viscosity_kind").startswith("d")
+    ):
         return Field("viscosity", VISCOSITIES[1])
     return field
 
@@ -78,13 +82,14 @@ def _check_excluded(reader: Reader, project: Project, case: Case, line: Line) ->
 
 
 def _stands(project: Project, case: Case, group: str, row: str, field: str) -> bool:
-    """Return whether a field is stated, or set by a case in the chain; a liquid's default counts as stated."""
+    """Return whether a field is stated, or set in the chain; a liquid's default counts as stated."""
     stated = project.group(group)[row].stated.get(field)
     if stated is not None and not (stated.shipped and group in GROUPS):
         return True
-    lines = (line for one in chain(project.cases, case.id) for line in one.lines)
+    lines = (line for _, line in lines_in(project, case.id))
     return any(
-        line.group == group and line.field == field and line.how == "with" and row in line.rows for line in lines
+        line.group == group and line.field == field and line.how == "with" and row in line.rows
+        for line in lines
     )
 
 
@@ -118,11 +123,19 @@ def _check_bores(reader: Reader, now: Effective, case: Case) -> None:
     if not lines:
         return
     rough = now.numbers("pipes", "bore") <= now.numbers("pipes", "roughness")
-    _note_last(reader, now, case, lines, rough, "rough-bore", "the bore of {} is no larger than its roughness")
+    _note_last(
+        reader,
+        now,
+        case,
+        lines,
+        rough,
+        code="rough-bore",
+        words="the bore of {} is no larger than its roughness",
+    )
 
 
 def _note_last(
-    reader: Reader, now: Effective, case: Case, lines: Iterable[Line], wrong: Mask, code: str, words: str
+    reader: Reader, now: Effective, case: Case, lines: Iterable[Line], wrong: Mask, *, code: str, words: str
 ) -> None:
     """Note rows that are wrong at the last line that reaches each, once a line."""
     left = wrong.copy()
@@ -142,8 +155,16 @@ def _check_orders(reader: Reader, now: Effective, case: Case) -> None:
     limits = [line for line in case.lines if line.group == "constants"]
     if limits:
         wrong = now.numbers("constants", "laminar_below") >= now.numbers("constants", "turbulent_above")
-        _note_last(reader, now, case, limits, wrong, "wrong-order", "laminar_below of {} is not below turbulent_above")
+        _note_last(
+            reader,
+            now,
+            case,
+            limits,
+            wrong,
+            code="wrong-order",
+            words="laminar_below of {} is not below turbulent_above",
+        )
     levels = [line for line in case.lines if line.group == "reservoirs" and line.field in ("low", "high")]
     if levels:
         wrong = now.numbers("reservoirs", "low") > now.numbers("reservoirs", "high")
-        _note_last(reader, now, case, levels, wrong, "wrong-order", "low of {} is above its high")
+        _note_last(reader, now, case, levels, wrong, code="wrong-order", words="low of {} is above its high")

@@ -1,4 +1,4 @@
-"""Reading the fittings and the reservoir ends of a pipe: each becomes a record with its coefficients both ways."""
+"""Reading the fittings and reservoir ends of a pipe: records with coefficients both ways."""
 
 from __future__ import annotations
 
@@ -10,9 +10,9 @@ from calc.components.pipe import FITTING_SCHEMA
 from calc.kinds import NUMBER
 from calc.marks import Mark
 from calc.project import shipped
-from calc.project.reader import BASIS_KEYS, Node, Reader
+from calc.project.reader import BASIS_KEYS, Reader
 from calc.project.records import Fields, read_fields
-from calc.yamlfile import Mapping, Scalar
+from calc.yamlfile import Mapping, Node, Scalar
 
 COEFFICIENT = Quantity(NUMBER, at_least=0.0)
 
@@ -72,7 +72,7 @@ def _complete(reader: Reader, stated: Fields, member: Mapping, at: str, bore: St
         stated["title"] = row.title
     elif "K" in stated:
         stated.setdefault("K_reverse", stated["K"])
-    elif "kind" not in member.keys() and "K" not in member.keys():
+    elif member.get("kind") is None and member.get("K") is None:
         reader.note(member.mark, "missing-key", at, "no coefficient is stated", "'kind: …' or 'K: …'")
     _count_and_bore(reader, stated, bore)
 
@@ -162,7 +162,7 @@ def _read_own_end(reader: Reader, node: Mapping, path: str, mark: Mark) -> Field
     if "entry" not in stated:
         return None
     if "exit" not in stated:
-        if "exit" in node.keys():
+        if node.get("exit") is not None:
             return None
         stated["exit"] = reader.defaults["ends.*.exit"] = shipped.defaults()["ends.exit"]
     return stated

@@ -20,6 +20,7 @@ from calc.project.section import SectionSchema
 from calc.project.shipped import defaults
 from calc.project.works import Works, read_works
 from calc.yamlfile import Entry, SourceFile, Sources, read_folder
+from calc.yamlfile.collector import without_collector
 
 KEYS = (
     "project",
@@ -70,9 +71,10 @@ def read_project(folder: Path, schemas: Sequence[SectionSchema]) -> Project:
     if any(problem.code not in _PARTIAL for problem in sources.problems):
         raise ProblemsFound(sources.problems, sources.texts)
     reader = Reader()
-    project, works = _read(reader, folder, sources, schemas)
-    if project is not None:
-        check_cases(reader, project)
+    with without_collector():
+        project, works = _read(reader, folder, sources, schemas)
+        if project is not None:
+            check_cases(reader, project)
     seen = {problem.mark for problem in sources.problems}
     problems = [*sources.problems, *(one for one in reader.problems if one.mark not in seen)]
     if problems or project is None:
@@ -124,7 +126,8 @@ def _read(
         criteria=read_criteria(reader, top.get("criteria"), ids, cases),
         cases=cases,
         sections={
-            schema.name: sections.read_section(reader, schema, top.get(schema.name), works) for schema in schemas
+            schema.name: sections.read_section(reader, schema, top.get(schema.name), works)
+            for schema in schemas
         },
         defaults=_in_order(reader.defaults),
         spreads=dict(reader.spreads),

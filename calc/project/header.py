@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-import datetime
+import datetime as dt
 import re
 from pathlib import Path
 
 from calc.components import Field, Record, Schema, Stated, Text, Word
 from calc.marks import Mark
 from calc.project import shipped
-from calc.project.reader import Node, Reader, empty, quoted
+from calc.project.reader import Reader, empty, quoted
 from calc.project.records import read_fields, read_group
-from calc.yamlfile import Entry, Scalar
+from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Sequence as ListNode
 
@@ -40,7 +40,9 @@ ASSUMPTION = Schema(
     (Field("text", Text(), required=True), Field("state", Word(("open", "verified")))),
 )
 REVISION = Schema(
-    "revisions", "revision", _texts("revision", "date", "change", "by", required=("revision", "date", "change"))
+    "revisions",
+    "revision",
+    _texts("revision", "date", "change", "by", required=("revision", "date", "change")),
 )
 
 
@@ -101,7 +103,9 @@ def read_references(reader: Reader, entry: Entry | None) -> dict[str, Record]:
     return found
 
 
-def read_assumptions(reader: Reader, entry: Entry | None) -> tuple[dict[str, Record], list[tuple[Scalar, str]]]:
+def read_assumptions(
+    reader: Reader, entry: Entry | None
+) -> tuple[dict[str, Record], list[tuple[Scalar, str]]]:
     """Return the assumptions, and the paths they affect, which can be followed once the works are known."""
     found = {}
     affects: list[tuple[Scalar, str]] = []
@@ -109,7 +113,7 @@ def read_assumptions(reader: Reader, entry: Entry | None) -> tuple[dict[str, Rec
     for key, member in members:
         path = f"assumptions.{key.text}"
         stated, parts = read_fields(reader, ASSUMPTION, member, path, key.mark, extra=("basis", "affects"))
-        if "state" not in member.keys():
+        if member.get("state") is None:
             stated["state"] = reader.defaults["assumptions.*.state"] = shipped.defaults()["assumptions.state"]
         if "basis" in parts and (basis := reader.reference(parts["basis"][1], f"{path}.basis")):
             stated["basis"] = basis
@@ -139,7 +143,9 @@ def joined(parts: list[Scalar], mark: Mark) -> Stated:
 def read_revisions(reader: Reader, entry: Entry | None) -> tuple[Record, ...]:
     """Return the revisions, each with a date of the calendar and a letter or number of its own."""
     found: dict[str, Record] = {}
-    items = reader.items(entry.value, "revisions", "a list: [{revision: …, date: …, change: …}]") if entry else ()
+    items = (
+        reader.items(entry.value, "revisions", "a list: [{revision: …, date: …, change: …}]") if entry else ()
+    )
     for at, item in enumerate(items, 1):
         path = f"revisions[{at}]"
         if not isinstance(item, MappingNode):
@@ -162,9 +168,9 @@ def read_revisions(reader: Reader, entry: Entry | None) -> tuple[Record, ...]:
 def check_date(reader: Reader, date: Stated, path: str) -> None:
     """Note a date that is not one of the calendar, year first."""
     try:
-        if not _DATE.fullmatch(date.text):
-            raise ValueError(date.text)
-        datetime.date.fromisoformat(date.text)
+        sound = _DATE.fullmatch(date.text) and dt.date.fromisoformat(date.text)
     except ValueError:
+        sound = None
+    if not sound:
         found = f"{quoted(date.text)} is not a date"
         reader.note(date.mark, "bad-date", path, found, "year, month and day, such as '2026-11-02'")

@@ -13,9 +13,9 @@ from calc.project import later
 from calc.project.header import joined, scalars
 from calc.project.model import Project
 from calc.project.paths import follow, matching
-from calc.project.reader import BASIS_KEYS, Node, Reader, listed, quoted
+from calc.project.reader import BASIS_KEYS, Reader, listed, quoted
 from calc.project.records import read_fields, read_group
-from calc.yamlfile import Entry, Scalar
+from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 
 BY_ID: dict[str, Criterion] = {criterion.id: criterion for criterion in ALL}
@@ -44,7 +44,7 @@ def read_criteria(
         path = f"criteria.{key.text[:60]}"
         criterion = BY_ID.get(key.text)
         if criterion is not None:
-            found[key.text] = _read(reader, criterion, key, member, works, cases)
+            found[key.text] = _read(reader, criterion, key, member, works=works, cases=cases)
         elif key.text in later.CRITERIA:
             reader.not_yet(key.mark, path, key.text, later.CRITERIA[key.text])
         else:
@@ -60,6 +60,7 @@ def _read(
     criterion: Criterion,
     key: Scalar,
     member: MappingNode,
+    *,
     works: Mapping[str, Mapping[str, object]],
     cases: Collection[str],
 ) -> Record:
@@ -117,12 +118,16 @@ def _read_applies(
         group = scalar.text.partition(".")[0]
         if group in works and group != criterion.group:
             found = f"{quoted(scalar.text)} are {group}"
-            reader.note(scalar.mark, "wrong-group", path, found, f"{criterion.group}, such as '{criterion.group}.*'")
+            reader.note(
+                scalar.mark, "wrong-group", path, found, f"{criterion.group}, such as '{criterion.group}.*'"
+            )
             continue
         target = follow(reader, scalar, path, works, whole=True)
         if target is not None and target.field is not None:
             found = f"{quoted(scalar.text)} is a field"
-            reader.note(scalar.mark, "unknown-path", path, found, f"components, such as '{criterion.group}.*'")
+            reader.note(
+                scalar.mark, "unknown-path", path, found, f"components, such as '{criterion.group}.*'"
+            )
     return joined(written, part[1].mark)
 
 

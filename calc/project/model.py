@@ -26,7 +26,8 @@ class Line:
     path : str
         As written, such as ``junctions.*.withdrawal``.
     group, field : str
-        Where it points; ``group`` is ``fluid``, ``site``, ``constants``, ``friction`` or a group of components.
+        Where it points; ``group`` is ``fluid``, ``site``, ``constants``, ``friction`` or a group of
+        components.
     rows : tuple of str
         The ids it reaches, in the order of the files; ``("",)`` for ``fluid`` and ``site``.
     how : str
@@ -48,7 +49,7 @@ class Line:
 
 @dataclass(frozen=True, slots=True)
 class Case:
-    """An operating case; ``after`` is the case that it changes further, or empty for the inputs as they stand."""
+    """An operating case; ``after`` is the case it changes further, or empty for the inputs as they are."""
 
     id: str
     mark: Mark
@@ -99,8 +100,8 @@ class Project:
     digest : str
         ``sha256:…`` over the names and bytes of ``files``.
     header : Record
-        ``number``, ``title``, ``revision``, ``client``, ``site``, ``datum``. The first three are always there;
-        one that was not stated is ``shipped``, and named in ``missing``.
+        ``number``, ``title``, ``revision``, ``client``, ``site``, ``datum``. The first three are always
+        there; one that was not stated is ``shipped``, and named in ``missing``.
     missing : tuple of str
         Paths of header fields that stand by default: ``project.number`` …
     purpose : tuple of Stated
@@ -110,8 +111,8 @@ class Project:
     revisions : tuple of Record
         In the order of the file.
     fluid, site, transition : Record
-        Defaults filled in. ``fluid`` has ``kind`` and either ``temperature``, or ``density`` and ``viscosity`` with
-        ``viscosity_kind`` naming which viscosity it is, and perhaps ``vapour_pressure``.
+        Defaults filled in. ``fluid`` has ``kind`` and either ``temperature``, or ``density`` and
+        ``viscosity`` with ``viscosity_kind`` naming which viscosity it is, and perhaps ``vapour_pressure``.
     friction : Stated
         The default law.
     reservoirs, junctions, pipes : mapping of str to Record
@@ -159,7 +160,7 @@ class Project:
         return {name: row for row, name in enumerate((*self.reservoirs, *self.junctions))}
 
     def group(self, name: str) -> Mapping[str, Record]:
-        """Return the records of a group by its YAML name; ``fluid``, ``site`` and ``friction`` have the one id ''."""
+        """Return the records of a group; ``fluid``, ``site`` and ``friction`` have the one id ''."""
         if name in ("reservoirs", "junctions", "pipes"):
             return getattr(self, name)  # type: ignore[no-any-return]
         if name == "constants":

@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from calc.components import SCHEMAS, Field, Schema, Word
 from calc.physics.friction import LAW_NAMES
 from calc.problems import nearest
-from calc.project.reader import Reader, listed, quoted
+from calc.project.reader import MOST_TO_COMPARE, Reader, listed, quoted
 from calc.project.settings import FLUID, SITE, TRANSITION
 from calc.yamlfile import Scalar
 
@@ -26,7 +26,7 @@ _WORD = re.compile(r"[A-Za-z0-9_*-]{1,200}", re.ASCII)
 
 @dataclass(frozen=True, slots=True)
 class Target:
-    """Where a path leads: a group, the ids it reaches, and a field; ``field`` is None for whole components."""
+    """Where a path leads: a group, the ids it reaches, and a field, which is None for whole components."""
 
     group: str
     rows: tuple[str, ...]
@@ -44,7 +44,12 @@ def matching(pattern: str, ids: Iterable[str]) -> tuple[str, ...]:
 
 
 def follow(
-    reader: Reader, written: Scalar, path: str, works: Mapping[str, Mapping[str, object]], *, whole: bool = False
+    reader: Reader,
+    written: Scalar,
+    path: str,
+    works: Mapping[str, Mapping[str, object]],
+    *,
+    whole: bool = False,
 ) -> Target | None:
     """Return where a path leads, or note that it leads nowhere.
 
@@ -61,47 +66,56 @@ def follow(
     whole : bool
         Whether a path may end at a component, without a field.
     """
-    parts = written.text.split(".")
-    group = parts[0]
-    if written.text == "friction":
-        return Target("friction", ("",), FRICTION.fields[0])
-    if group in SINGLE and len(parts) == 2:
-        return _field(reader, written, path, SINGLE[group], group, ("",))
-    if parts[:2] == ["constants", "transition"] and len(parts) == 3:
-        return _field(reader, written, path, TRANSITION, "constants", ("transition",))
-    if group not in GROUPS or len(parts) not in ((2, 3) if whole else (3,)) or not _WORD.fullmatch(parts[1]):
-        known = [*GROUPS, *SINGLE, "constants", "friction"]
-        hint = nearest(group, known) if group not in known else ""
-        form = "group.id or group.id.field" if whole else "group.id.field"
-        expected = f"{form} with group one of {listed(list(GROUPS))}; or fluid.field, site.field, friction"
-        _nowhere(reader, written, path, expected, hint)
-        return None
-    ids = works[group]
-    rows = matching(parts[1], ids)
-    if not rows:
-        what = "matches" if "*" in parts[1] else "has the id"
-        hint = nearest(parts[1], list(ids)) if len(ids) <= 2000 else ""
-        found = f"none of the {group} {what} {quoted(parts[1])}"
-        reader.note(written.mark, "unknown-path", path, found, "an id, or * for any", hint)
-        return None
-    if len(parts) == 2:
-        return Target(group, rows, None)
-    return _field(reader, written, path, GROUPS[group], group, rows)
+    match written.text.split("."):
+        case ["friction"]:
+            return Target("friction", ("",), FRICTION.fields[0])
+        case [group, _] if group in SINGLE:
+            return _field(reader, written, path, SINGLE[group], Target(group, ("",), None))
+        case ["constants", "transition", _]:
+            return _field(reader, written, path, TRANSITION, Target("constants", ("transition",), None))
+        case [group, pattern] if whole and group in GROUPS and _WORD.fullmatch(pattern):
+            return _rows(reader, written, path, works, group)
+        case [group, pattern, _] if group in GROUPS and _WORD.fullmatch(pattern):
+            target = _rows(reader, written, path, works, group)
+            return target and _field(reader, written, path, GROUPS[group], target)
+        case parts:
+            _nowhere(reader, written, path, parts[0], whole=whole)
+    return None
 
 
-def _field(
-    reader: Reader, written: Scalar, path: str, schema: Schema, group: str, rows: tuple[str, ...]
+def _rows(
+    reader: Reader, written: Scalar, path: str, works: Mapping[str, Mapping[str, object]], group: str
 ) -> Target | None:
+    """Return the components that a path reaches."""
+    pattern = written.text.split(".")[1]
+    ids = works[group]
+    rows = matching(pattern, ids)
+    if rows:
+        return Target(group, rows, None)
+    what = "matches" if "*" in pattern else "has the id"
+    hint = nearest(pattern, list(ids)) if len(ids) <= MOST_TO_COMPARE else ""
+    found = f"none of the {group} {what} {quoted(pattern)}"
+    reader.note(written.mark, "unknown-path", path, found, "an id, or * for any", hint)
+    return None
+
+
+def _field(reader: Reader, written: Scalar, path: str, schema: Schema, target: Target) -> Target | None:
+    """Return a target with the field that a path ends at."""
     name = written.text.rpartition(".")[2]
     field = schema.field(name)
     if field is not None:
-        return Target(group, rows, field)
+        return Target(target.group, target.rows, field)
     known = [one.name for one in schema.fields]
-    found = f"{group} have no field {quoted(name)}" if group in GROUPS else f"there is no {quoted(written.text)}"
+    group = target.group if target.group in GROUPS else f"'{target.group}'"
+    found = f"there is no field {quoted(name)} in {group}"
     reader.note(written.mark, "unknown-path", path, found, f"one of {listed(known)}", nearest(name, known))
     return None
 
 
-def _nowhere(reader: Reader, written: Scalar, path: str, expected: str, hint: str) -> None:
+def _nowhere(reader: Reader, written: Scalar, path: str, group: str, *, whole: bool) -> None:
+    known = [*GROUPS, *SINGLE, "constants", "friction"]
+    form = "group.id or group.id.field" if whole else "group.id.field"
+    expected = f"{form} with group one of {listed(list(GROUPS))}; or fluid.field, site.field, friction"
+    hint = nearest(group, known) if group not in known else ""
     found = f"{quoted(written.text)} leads nowhere"
     reader.note(written.mark, "unknown-path", path, found, expected, hint)

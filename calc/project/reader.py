@@ -11,7 +11,7 @@ from functools import lru_cache
 from calc import units
 from calc.components import NO_BASIS, Basis, Count, Flag, Quantity, Record, Stated, Text, Word
 from calc.components.fields import Form
-from calc.kinds import NUMBER, Kind
+from calc.kinds import KINDS, NUMBER
 from calc.marks import Mark
 from calc.problems import Problem, nearest
 from calc.project import later
@@ -24,17 +24,22 @@ GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assume
 
 BASIS_KEYS = ("source", "page", "grade", "note")
 _VALUE_KEYS = ("value", *BASIS_KEYS, "range", "deviation")
-_ID = re.compile(r"[A-Za-z0-9_-]{1,64}", re.ASCII)
+LONGEST_ID = 64
+_ID = re.compile(rf"[A-Za-z0-9_-]{{1,{LONGEST_ID}}}", re.ASCII)
 _WHOLE = re.compile(r"[0-9]{1,9}", re.ASCII)
 _UNPRINTABLE = {"Cc", "Cs", "Co", "Cn", "Zl", "Zp"}
 _TURNING = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
 _LONGEST_SHOWN = 60
 
 
+_KINDS = {kind.name: kind for kind in KINDS}
+
+
 @lru_cache(maxsize=1 << 16)
-def _quantity(text: str, kind: Kind) -> units.Quantity | units.UnitTrouble:
+def _quantity(text: str, kind: str) -> units.Quantity | units.UnitTrouble:
+    """Read a quantity; by the name of its kind, which hashes faster."""
     try:
-        return units.read(text, kind)
+        return units.read(text, _KINDS[kind])
     except units.UnitTrouble as trouble:
         return trouble
 
@@ -45,9 +50,14 @@ def quoted(text: str) -> str:
     return "'" + "".join(letter if letter.isprintable() else "?" for letter in shown) + "'"
 
 
+_LONGEST_LIST = 24
+MOST_TO_COMPARE = 2000
+"""Above so many words, none is sought that comes near."""
+
+
 def listed(words: Sequence[str], last: str = "or") -> str:
     """Return ``a, b or c``; a long list is cut."""
-    shown = [*words] if len(words) <= 24 else [*words[:24], "…"]
+    shown = [*words] if len(words) <= _LONGEST_LIST else [*words[:_LONGEST_LIST], "…"]
     return shown[0] if len(shown) == 1 else f"{', '.join(shown[:-1])} {last} {shown[-1]}"
 
 
@@ -76,7 +86,9 @@ class Reader:
     defaults: dict[str, Stated] = field(default_factory=dict)
     _keys_noted: set[Mark] = field(default_factory=set)
 
-    def note(self, mark: Mark, code: str, path: str, found: str, expected: str = "", hint: str = "") -> None:
+    def note(  # noqa: PLR0917 - in the order of a Problem
+        self, mark: Mark, code: str, path: str, found: str, expected: str = "", hint: str = ""
+    ) -> None:
         """Note a problem; of a key that heads a column it is noted once, not for every row."""
         if code in ("unknown-key", "not-yet"):
             if mark in self._keys_noted:
@@ -123,7 +135,7 @@ class Reader:
         if _ID.fullmatch(key.text):
             return True
         hint = "" if key.text.isascii() else "a letter here only looks like one of a to z"
-        expected = f"the id of {what}: at most 64 letters, digits, _ and -"
+        expected = f"the id of {what}: at most {LONGEST_ID} letters, digits, _ and -"
         self.note(key.mark, "bad-id", path, f"{quoted(key.text)} is not an id", expected, hint)
         return False
 
@@ -140,9 +152,7 @@ class Reader:
             self.not_yet(scalar.mark, path, scalar.text, later.LAWS[scalar.text])
             return None
         found = f"unknown {what} {quoted(scalar.text)}"
-        self.note(
-            scalar.mark, code, path, found, f"one of {listed(options)}", nearest(scalar.text, options)
-        )
+        self.note(scalar.mark, code, path, found, f"one of {listed(options)}", nearest(scalar.text, options))
         return None
 
     def scalar(self, node: Node, path: str, expected: str) -> Scalar | None:
@@ -177,7 +187,7 @@ class Reader:
         first: units.UnitTrouble | None = None
         expected = []
         for form in forms:
-            got = _quantity(scalar.text, form.kind)
+            got = _quantity(scalar.text, form.kind.name)
             if not isinstance(got, units.UnitTrouble):
                 if wanted := outside(form, got.value):
                     found = f"{quoted(scalar.text)} is out of range"
@@ -221,7 +231,9 @@ class Reader:
         if scalar.text in self.references:
             return Stated(scalar.text, scalar.text, scalar.mark)
         known = sorted(self.references)
-        hint = nearest(scalar.text, known) or f"list it under 'references': {{{scalar.text[:20]}: {{title: …}}}}"
+        hint = (
+            nearest(scalar.text, known) or f"list it under 'references': {{{scalar.text[:20]}: {{title: …}}}}"
+        )
         found = f"there is no reference {quoted(scalar.text)}"
         self.note(scalar.mark, "unknown-reference", path, found, "the id of one of the references", hint)
         return None
@@ -260,9 +272,7 @@ class Reader:
             return None
         return Stated(float(scalar.text), scalar.text, scalar.mark, float(scalar.text))
 
-    def supported(
-        self, node: Node, path: str, read: Callable[[Scalar, str], Stated | None]
-    ) -> Stated | None:
+    def supported(self, node: Node, path: str, read: Callable[[Scalar, str], Stated | None]) -> Stated | None:
         """Return a value written as ``{value, source, page, grade, note, range or deviation}``."""
         if not isinstance(node, Mapping):
             self.wrong_shape(node, path, "a value, or {value: …, source: …}")
@@ -286,9 +296,7 @@ class Reader:
         self._spread(at, path, read)
         return replace(stated, basis=basis)
 
-    def _spread(
-        self, at: dict[str, Node], path: str, read: Callable[[Scalar, str], Stated | None]
-    ) -> None:
+    def _spread(self, at: dict[str, Node], path: str, read: Callable[[Scalar, str], Stated | None]) -> None:
         """Keep the range or the deviation of a value that is said to be uncertain."""
         if "range" in at and "deviation" in at:
             found = "'range' and 'deviation' both stand here"
@@ -296,18 +304,23 @@ class Reader:
         elif "range" in at:
             wanted = "two values: [low, high]"
             items = self.items(at["range"], f"{path}.range", wanted)
-            got = [read(item, f"{path}.range") for item in items if isinstance(item, Scalar)]
-            if len(got) != 2:
-                self.wrong_shape(at["range"], f"{path}.range", wanted)
-            elif got[0] is not None and got[1] is not None:
-                low, high = got[0], got[1]
-                if isinstance(low.value, float) and low.si >= high.si:
-                    found = f"{quoted(low.written)} is not below {quoted(high.written)}"
-                    self.note(low.mark, "wrong-order", f"{path}.range", found, wanted)
-                self.spreads[path] = Record(path, low.mark, {"low": low, "high": high})
+            match [read(item, f"{path}.range") for item in items if isinstance(item, Scalar)]:
+                case [Stated() as low, Stated() as high]:
+                    if isinstance(low.value, float) and low.si >= high.si:
+                        found = f"{quoted(low.written)} is not below {quoted(high.written)}"
+                        self.note(low.mark, "wrong-order", f"{path}.range", found, wanted)
+                    self.spreads[path] = Record(path, low.mark, {"low": low, "high": high})
+                case [_, _]:
+                    pass  # what is wrong with either is noted
+                case _:
+                    self.wrong_shape(at["range"], f"{path}.range", wanted)
         elif "deviation" in at and isinstance(scalar := at["deviation"], Scalar):
             percent = "%" in scalar.text
-            one = self.quantity(scalar, f"{path}.deviation", (Quantity(NUMBER, above=0.0),)) if percent else None
+            one = (
+                self.quantity(scalar, f"{path}.deviation", (Quantity(NUMBER, above=0.0),))
+                if percent
+                else None
+            )
             stated = one[0] if one else (None if percent else read(scalar, f"{path}.deviation"))
             if stated is not None:
                 self.spreads[path] = Record(path, stated.mark, {"deviation": stated})

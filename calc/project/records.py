@@ -3,13 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from functools import lru_cache
 
 from calc.components import Ends, Field, Fittings, Node, Schema, Stated
 from calc.marks import Mark
 from calc.problems import nearest
 from calc.project import later
-from calc.project.reader import Reader, quoted
+from calc.project.reader import LONGEST_ID, MOST_TO_COMPARE, Reader, quoted
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Node as YamlNode
 from calc.yamlfile import Scalar
@@ -21,9 +20,15 @@ Fields = dict[str, Stated]
 Parts = dict[str, tuple[Scalar, YamlNode]]
 
 
-@lru_cache(maxsize=64)
+_KNOWN: dict[int, tuple[tuple[Field, ...], Mapping[str, Field]]] = {}
+"""By identity, since hashing a schema takes longer than reading a record; the fields kept keep their id."""
+
+
 def _by_name(fields: tuple[Field, ...]) -> Mapping[str, Field]:
-    return {field.name: field for field in fields}
+    kept = _KNOWN.get(id(fields))
+    if kept is None:
+        kept = _KNOWN[id(fields)] = (fields, {field.name: field for field in fields})
+    return kept[1]
 
 
 def read_fields(
@@ -84,7 +89,7 @@ def read_node(reader: Reader, node: YamlNode, path: str) -> Stated | None:
     if scalar is None:
         return None
     if reader.nodes is not None and scalar.text not in reader.nodes:
-        hint = nearest(scalar.text, sorted(reader.nodes)) if len(reader.nodes) <= 2000 else ""
+        hint = nearest(scalar.text, sorted(reader.nodes)) if len(reader.nodes) <= MOST_TO_COMPARE else ""
         found = f"there is no node {quoted(scalar.text)}"
         reader.note(scalar.mark, "unknown-node", path, found, "the id of a reservoir or junction", hint)
         return None
@@ -134,7 +139,7 @@ def read_group(
     group = reader.mapping(node, path, f"a mapping of ids to {what.partition(' ')[2]}s")
     found: list[tuple[Scalar, MappingNode]] = []
     for key, value in group.entries if group else ():
-        at = f"{path}.{key.text}" if len(key.text) <= 64 else f"{path}.…"
+        at = f"{path}.{key.text}" if len(key.text) <= LONGEST_ID else f"{path}.…"
         if ids and not reader.id(key, at, what):
             continue
         member = reader.mapping(value, at, f"a mapping: the fields of {what}")

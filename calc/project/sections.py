@@ -5,11 +5,11 @@ from __future__ import annotations
 from calc.components import Record, Schema
 from calc.marks import Mark
 from calc.project import later
-from calc.project.reader import Node, Reader, empty
+from calc.project.reader import Reader, empty
 from calc.project.records import Fields, read_fields, read_node
 from calc.project.section import SectionSchema
 from calc.project.works import Works
-from calc.yamlfile import Entry, Scalar
+from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 
 
@@ -29,14 +29,21 @@ def read_section(reader: Reader, schema: SectionSchema, entry: Entry | None, wor
     """
     if entry is None or empty(entry.value):
         first = next(iter(works.reservoirs.values()), None)
-        return Record("", entry.key.mark if entry else first.mark if first else Mark("network.yaml", 1, 1), {})
+        return Record(
+            "", entry.key.mark if entry else first.mark if first else Mark("network.yaml", 1, 1), {}
+        )
     node = reader.mapping(entry.value, schema.name, "a mapping")
     if node is None:
         return Record("", entry.key.mark, {})
     kept = MappingNode(tuple(one for one in node.entries if not _for_later(reader, schema, one)), node.mark)
     by_node = {field.name: field for field in schema.by_node}
     stated, parts = read_fields(
-        reader, Schema(schema.name, schema.name, schema.fields), kept, schema.name, entry.key.mark, extra=by_node
+        reader,
+        Schema(schema.name, schema.name, schema.fields),
+        kept,
+        schema.name,
+        entry.key.mark,
+        extra=by_node,
     )
     found = {
         name: _by_node(reader, by_node[name].form, value, f"{schema.name}.{name}")

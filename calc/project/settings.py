@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-
 from calc.components import Field, Quantity, Record, Schema, Stated, Text
 from calc.kinds import (
     ACCELERATION,
@@ -18,9 +16,9 @@ from calc.kinds import (
 from calc.marks import Mark
 from calc.physics.friction import LAW_NAMES
 from calc.project import later, shipped
-from calc.project.reader import Node, Reader, empty, quoted
+from calc.project.reader import Reader, empty, quoted
 from calc.project.records import read_fields
-from calc.yamlfile import Entry, Scalar
+from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 
 VISCOSITIES = (Quantity(KINEMATIC_VISCOSITY, above=0.0), Quantity(DYNAMIC_VISCOSITY, above=0.0))
@@ -33,10 +31,18 @@ FLUID = Schema(
     "fluid",
     (
         Field("kind", Text(), words="liquid"),
-        Field("temperature", Quantity(TEMPERATURE, at_least=273.16, at_most=373.15), words="temperature of water"),
+        Field(
+            "temperature",
+            Quantity(TEMPERATURE, at_least=273.16, at_most=373.15),
+            words="temperature of water",
+        ),
         Field("density", Quantity(DENSITY, at_least=100.0, at_most=20_000.0), words="density"),
         Field("viscosity", VISCOSITIES[0], words="viscosity, kinematic or dynamic"),
-        Field("vapour_pressure", Quantity(PRESSURE, at_least=0.0, at_most=1e6), words="vapour pressure, absolute"),
+        Field(
+            "vapour_pressure",
+            Quantity(PRESSURE, at_least=0.0, at_most=1e6),
+            words="vapour pressure, absolute",
+        ),
     ),
     excludes=tuple(("temperature", name) for name in PROPERTIES),
 )
@@ -44,7 +50,9 @@ SITE = Schema(
     "site",
     "site",
     (
-        Field("altitude", Quantity(ELEVATION, at_least=-430.0, at_most=9000.0), words="altitude above sea level"),
+        Field(
+            "altitude", Quantity(ELEVATION, at_least=-430.0, at_most=9000.0), words="altitude above sea level"
+        ),
         Field("gravity", Quantity(ACCELERATION, at_least=9.7, at_most=9.9), words="gravity"),
     ),
 )
@@ -52,8 +60,14 @@ TRANSITION = Schema(
     "transition",
     "transition",
     (
-        Field("laminar_below", Quantity(NUMBER, at_least=100.0, at_most=1e5), words="end of laminar flow, Re"),
-        Field("turbulent_above", Quantity(NUMBER, at_least=100.0, at_most=1e5), words="begin of turbulent flow, Re"),
+        Field(
+            "laminar_below", Quantity(NUMBER, at_least=100.0, at_most=1e5), words="end of laminar flow, Re"
+        ),
+        Field(
+            "turbulent_above",
+            Quantity(NUMBER, at_least=100.0, at_most=1e5),
+            words="begin of turbulent flow, Re",
+        ),
     ),
 )
 
@@ -100,7 +114,11 @@ def check_transition(reader: Reader, low: Stated | None, high: Stated | None) ->
 
 def read_fluid(reader: Reader, entry: Entry | None) -> Record:
     """Return the liquid: water at a temperature, or any liquid by its density and viscosity."""
-    node = reader.mapping(entry.value, "fluid", "a mapping: {kind: water, temperature: 10 degC}") if entry else None
+    node = (
+        reader.mapping(entry.value, "fluid", "a mapping: {kind: water, temperature: 10 degC}")
+        if entry
+        else None
+    )
     mark = entry.key.mark if entry else _nowhere("fluid.temperature")
     if node is None:
         defaults = {name: _default(reader, f"fluid.{name}") for name in ("kind", "temperature")}
@@ -154,7 +172,7 @@ def _read(reader: Reader, schema: Schema, entry: Entry | None, path: str) -> Rec
     node = node or MappingNode((), mark)
     stated, _ = read_fields(reader, schema, node, path, mark)
     for field in schema.fields:
-        if field.name not in node.keys():
+        if node.get(field.name) is None:
             stated[field.name] = _default(reader, f"{path}.{field.name}")
     return Record(path.rpartition(".")[2] if "." in path else "", mark, stated)
 
@@ -168,5 +186,3 @@ def _default(reader: Reader, path: str) -> Stated:
 def _nowhere(path: str) -> Mark:
     """Return the mark of a record that no file holds: that of its first default."""
     return shipped.defaults()[path].mark
-
-

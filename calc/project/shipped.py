@@ -9,8 +9,8 @@ from importlib import resources
 from calc.components import Basis, Quantity, Stated
 from calc.kinds import ACCELERATION, ELEVATION, FLOW, NUMBER, TEMPERATURE, Kind
 from calc.problems import ProblemsFound
-from calc.project.reader import Node, Reader
-from calc.yamlfile import Mapping, Scalar, read_text
+from calc.project.reader import Reader
+from calc.yamlfile import Mapping, Node, Scalar, read_text
 
 FOLDER = "calc/data"
 
@@ -30,7 +30,7 @@ _KINDS: dict[str, Kind] = {
 
 @dataclass(frozen=True, slots=True)
 class Row:
-    """An entry of a shipped table of losses; for an end, ``forward`` is its entry and ``reverse`` its exit."""
+    """An entry of a shipped table; for an end, ``forward`` is its entry and ``reverse`` its exit."""
 
     name: str
     title: Stated

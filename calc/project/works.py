@@ -78,12 +78,13 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
 
 
 _HARMLESS = frozenset(
-    """
-    ambiguous-unit bad-text bad-word bare-number excluded-pair missing-key not-a-quantity not-finite not-yet
-    out-of-range unknown-key unknown-reference unknown-unit wrong-dimension wrong-order
-    """.split()
+    {
+        *("ambiguous-unit", "bare-number", "not-a-quantity", "not-finite", "unknown-unit", "wrong-dimension"),
+        *("bad-text", "bad-word", "excluded-pair", "missing-key", "not-yet", "out-of-range", "unknown-key"),
+        *("unknown-reference", "wrong-order"),
+    }
 )
-"""Problems of nodes after which their ids still stand; after others, nothing is said of nodes that seem unknown."""
+"""Problems of nodes after which their ids still stand; after others, nothing is said of unknown nodes."""
 
 
 def _members(
@@ -140,8 +141,10 @@ def _read_parts(
     found: dict[str, tuple[Record, ...]] = {}
     bore = stated.get("bore")
     if "ends" in parts:
-        known = {end: stated[end].text in works.reservoirs for end in ("from", "to") if end in stated}
-        at_reservoir = known if reader.nodes is not None else {}
+        at_reservoir: dict[str, bool] = {}
+        for end in ("from", "to"):
+            if end in stated and reader.nodes is not None:
+                at_reservoir[end] = stated[end].text in works.reservoirs
         found["ends"] = read_ends(reader, parts["ends"][1], name, bore, at_reservoir)
     if "fittings" in parts:
         found["fittings"] = read_fittings(reader, parts["fittings"][1], name, bore)
