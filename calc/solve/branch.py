@@ -18,6 +18,13 @@ SMALLEST_DIFFERENCE = 1e-250
 """Heads nearer than this (m) are taken as equal: the flow would be below 10⁻¹²⁰ m³/s."""
 STEPS = 200
 """Steps allowed; four or five are usual, and halving alone would need about 60."""
+ENERGY = 1e-9
+"""Largest closing error of energy accepted along a branch, as a share of the range of heads."""
+
+
+def closing_limit(heads: Array) -> float:
+    """Return the largest closing error of energy accepted among such heads, m, rounding allowed."""
+    return ENERGY * float(np.ptp(heads)) + 8 * ROUNDING * float(np.max(np.abs(heads)))
 
 
 class Branches:
@@ -93,7 +100,7 @@ class Branches:
                 loss = np.abs(loss)
                 low = np.where(loss < wanted, flow, low)
                 high = np.where(loss > wanted, flow, high)
-                new = _step(flow, loss, slope, wanted, low, high)
+                new = _inside(low, high, _step(flow, loss, slope, wanted))
                 closed = (np.abs(new - flow) <= 8 * ROUNDING * flow) | (high <= (1 + 4 * ROUNDING) * low)
                 flow = np.where(settled, flow, new)
                 settled = settled | closed
@@ -103,12 +110,16 @@ class Branches:
         return np.where(moving, sign * flow, 0.0)
 
 
-def _step(flow: Array, loss: Array, slope: Array, wanted: Array, low: Array, high: Array) -> Array:
+def _step(flow: Array, loss: Array, slope: Array, wanted: Array) -> Array:
+    """Return Newton's next flow on the logarithms; the same flow where it loses just what is wanted."""
     power = slope * flow / loss
-    ratio = np.log(wanted / loss)
     near = np.abs(wanted - loss) < 0.5 * loss
-    ratio[near] = np.log1p((wanted - loss)[near] / loss[near])
-    new = flow + flow * np.expm1(ratio / power)
+    ratio = np.where(near, np.log1p(np.where(near, wanted - loss, 0.0) / loss), np.log(wanted / loss))
+    new: Array = flow + flow * np.expm1(ratio / power)
+    return new
+
+
+def _inside(low: Array, high: Array, new: Array) -> Array:
+    """Return flows kept inside the bracket; its geometric middle where they are not."""
     middle = np.where(np.isinf(high), 1e3 * low, np.where(low > 0, np.sqrt(low) * np.sqrt(high), 1e-3 * high))
-    new = np.where((new > low) & (new < high), new, middle)
-    return np.where(loss == wanted, flow, new)
+    return np.where((new >= low) & (new <= high), new, middle)

@@ -43,7 +43,7 @@ class Grid:
     def gathered(self, flow: Array) -> Array:
         """Return the sum of flows toward each junction, shape (junctions,), from flows of shape (m,)."""
         toward = np.bincount(self.end, flow, self.count) - np.bincount(self.start, flow, self.count)
-        return toward[self.unknown]
+        return np.asarray(toward[self.unknown], dtype=np.float64)
 
     def imbalance(self, flow: Array) -> Array:
         """Return the sum of flows toward each junction less its withdrawal, m³/s."""

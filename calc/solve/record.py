@@ -6,10 +6,9 @@ import numpy as np
 
 from calc.components.network import Network
 from calc.solve.branch import Array
+from calc.solve.iteration import State
 from calc.solve.solution import Steps
 
-ENERGY = 1e-9
-"""Largest closing error of energy along a branch, as a share of the range of heads."""
 FULL_PIPES = 12
 """Pipes up to which the heads and flows of every iteration are kept."""
 FULL_ITERATIONS = 60
@@ -31,18 +30,18 @@ class History:
         """Return the number of states, the start included."""
         return len(self._rows)
 
-    def add(self, head: Array, flow: Array, error: Array, imbalance: Array, share: float = np.nan) -> None:
-        """Record a state: heads (n,), flows (m,), energy errors (m,), imbalances (junctions,), share of the step."""
-        worst, where = _largest(imbalance)
-        energy, pipe = _largest(error)
-        change = np.nan if self._last is None else _largest(flow - self._last)[0]
+    def add(self, state: State, share: float = np.nan) -> None:
+        """Record a state and the share of the step that led there; NaN for the start."""
+        worst, where = _largest(state.imbalance)
+        energy, pipe = _largest(state.error)
+        change = np.nan if self._last is None else _largest(state.flow - self._last)[0]
         self._rows.append(
             (worst, int(self._unknown[where]) if where >= 0 else -1, energy, pipe, change, share)
         )
-        self._last = flow
+        self._last = state.flow
         if self._full and len(self._heads) <= FULL_ITERATIONS:
-            self._heads.append(head)
-            self._flows.append(flow)
+            self._heads.append(state.head)
+            self._flows.append(state.flow)
 
     def steps(self) -> Steps:
         """Return the record as columns."""

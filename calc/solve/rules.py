@@ -1,10 +1,10 @@
 """How bracketing chooses the next trial head: one equation for each rule, from earlier rows of the table.
 
-A checker repeats a row by putting the heads and imbalances of the rows it cites into its rule. Point a is the
-latest trial kept, b the end of the bracket across the root from it, c the point that the bracket dropped last.
+A checker repeats a row by putting the heads and imbalances of the rows it cites into its rule. Point a is
+the latest trial kept, b the end of the bracket across the root from it, c the point dropped last.
 """
 
-# ruff: noqa: ANN001, ANN202, ANN201 - bodies are read with several types of operand
+# ruff: noqa: ANN001, ANN201 - bodies are read with several types of operand
 # mypy: disable-error-code="no-untyped-def"
 
 from __future__ import annotations
@@ -36,8 +36,8 @@ BRACKETING = Reference(
 FALSE_POSITION = Reference("false position", "Rule of false position; common practice")
 CHANDRUPATLA_1997 = Reference(
     "Chandrupatla 1997",
-    "T. R. Chandrupatla, A new hybrid quadratic/bisection algorithm for finding the zero of a nonlinear function "
-    "without using derivatives, Advances in Engineering Software 28(3), 1997",
+    "T. R. Chandrupatla, A new hybrid quadratic/bisection algorithm for finding the zero of a nonlinear "
+    "function without using derivatives, Advances in Engineering Software 28(3), 1997",
 )
 
 
@@ -124,8 +124,8 @@ class Rule:
     equation : Equation
         Gives the trial head.
     places : tuple
-        For each input of the equation its name, the column of the table (``level`` and ``start`` are inputs of
-        the case) and where the row stands in ``uses``; None for the row itself.
+        For each input of the equation its name, the column of the table (``level`` and ``start`` are inputs
+        of the case) and where the row stands in ``uses``; None for the row itself.
     """
 
     equation: Equation

@@ -1,7 +1,7 @@
 """The search for the one head at which a junction balances: which head to try next.
 
-Written as a generator that yields a trial and is sent its balance, so that the one who drives it evaluates the
-branches: once for a single case, or in step for many.
+Written as a generator that yields a trial and is sent its balance, so that the one who drives it evaluates
+the branches: of a single case, or of many in step.
 """
 
 from __future__ import annotations
@@ -16,7 +16,7 @@ ROUNDING = 2.0**-52
 WITHIN = 1e-9
 """Width (m) to which the bracket is closed around the head, its ends certified by their signs."""
 SHARE = 1e-10
-"""The imbalance is also brought below this share of the largest flow: on a flat curve it is what pins the head."""
+"""The imbalance is also brought below this share of the largest flow: on a flat curve that pins the head."""
 NOISE = 8 * ROUNDING
 """An imbalance below this share of the sum of all flows is the rounding of that sum: the head is exact."""
 

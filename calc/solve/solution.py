@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -178,3 +178,12 @@ class Solution:
     trials: Trials | None = None
     steps: Steps | None = None
     tests: tuple[StopTest, ...] = ()
+
+
+def unmet(tests: Iterable[StopTest]) -> str:
+    """Return the tests not met in words, empty when all are."""
+    return "; ".join(
+        f"{test.words} {test.value:.3g} {test.unit} against {test.limit:.3g} {test.unit}"
+        for test in tests
+        if not test.met
+    )
