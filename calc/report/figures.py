@@ -1,4 +1,4 @@
-"""The figures of a package as plain values: what is drawn, in display units, with every printed number as text.
+"""The figures of a package as plain values: what is drawn, in display units, every printed number as text.
 
 A figure carries floats to place marks by and texts to print. The drawing never formats a value of the
 ledger; only the scale beside a drawing is formatted there, as it shows no result.
@@ -20,7 +20,7 @@ class Reservoir:
     level : float
         In display units, as in the axis title.
     level_text : str
-        As printed, such as ``214.60 m``.
+        As printed, such as ``214.60 m``. Here and below a power of ten is written ``1 × 10⁻⁶``.
     """
 
     name: str
@@ -70,7 +70,8 @@ class Pipe:
     start, end : str
         Names of the nodes, as in the project's ``from`` and ``to``.
     flow : float
-        Positive from start to end; its sign alone is drawn. Exactly 0 draws no arrowhead.
+        Positive from start to end; its sign alone is drawn. Exactly 0 draws no arrowhead: give 0 where the
+        printed flow is zero.
     flow_text : str
         The size of the flow as printed, without sign, such as ``83.1 L/s``; empty for none.
     length, bore : float

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from itertools import product
-from math import atan2, hypot
+from math import atan2
 from typing import TYPE_CHECKING
 
 from calc.publish.draw import order
@@ -34,6 +34,8 @@ class Arrangement:
         Heights of the solved heads of junctions.
     by_distance : bool
         Whether across is distance and up is elevation; else order and head.
+    area : Box
+        The part of the sheet that the works fill.
     up, across : Scale
         The scales; ``across`` shows nothing where order is drawn.
     """
@@ -42,6 +44,7 @@ class Arrangement:
     sides: dict[str, int]
     heads: dict[str, float]
     by_distance: bool
+    area: Box
     up: Scale
     across: Scale
 
@@ -59,29 +62,29 @@ def is_star(figure: Schematic) -> bool:
     return whole and len(far) == len(set(far)) == len(ends) == len(figure.reservoirs)
 
 
-def levels(figure: Schematic) -> list[float]:
-    """Return every elevation and head that the drawing must hold."""
-    found = [reservoir.level for reservoir in figure.reservoirs] + [junction.head for junction in figure.junctions]
-    if is_star(figure):
+def levels(figure: Schematic, *, by_distance: bool) -> list[float]:
+    """Return every head, and where up is elevation every elevation, that the drawing must hold."""
+    found = [reservoir.level for reservoir in figure.reservoirs] + [
+        junction.head for junction in figure.junctions
+    ]
+    if by_distance:
         found += [j.elevation for j in figure.junctions if j.elevation is not None]
     return found
 
 
-def upright(figure: Schematic, foot: float, top: float) -> Scale:
+def upright(figure: Schematic, foot: float, top: float, *, by_distance: bool) -> Scale:
     """Return the scale up the sheet, with room for names beyond the outermost nodes."""
-    low, high = spanning(levels(figure))
+    low, high = spanning(levels(figure, by_distance=by_distance))
     unit = (high - low) / (top - foot - FOOT_ROOM - HEAD_ROOM)
     return Scale(low - FOOT_ROOM * unit, high + HEAD_ROOM * unit, foot, top)
 
 
-def arrange(figure: Schematic, area: Box) -> Arrangement:
-    """Give every node its place within an area of the sheet."""
-    up = upright(figure, area.foot, area.top)
+def arrange(figure: Schematic, area: Box, *, by_distance: bool) -> Arrangement | None:
+    """Give every node its place within an area of the sheet; None where basins would lie on each other."""
+    up = upright(figure, area.foot, area.top, by_distance=by_distance)
     heads = {junction.name: up.at(junction.head) for junction in figure.junctions}
-    if is_star(figure):
-        found = _star(figure, area, up, heads) if figure.junctions else _lone(figure, area, up)
-        if found is not None:
-            return found
+    if by_distance:
+        return _star(figure, area, up, heads) if figure.junctions else _lone(figure, area, up)
     return _in_order(figure, area, up, heads)
 
 
@@ -94,7 +97,9 @@ def _lone(figure: Schematic, area: Box, up: Scale) -> Arrangement:
         pipe.start: (across.start, up.at(level[pipe.start])),
         pipe.end: (across.end, up.at(level[pipe.end])),
     }
-    return Arrangement(places, {pipe.start: -1, pipe.end: 1}, {}, by_distance=True, up=up, across=across)
+    return Arrangement(
+        places, {pipe.start: -1, pipe.end: 1}, {}, by_distance=True, area=area, up=up, across=across
+    )
 
 
 def _star(figure: Schematic, area: Box, up: Scale, heads: dict[str, float]) -> Arrangement | None:
@@ -117,14 +122,14 @@ def _star(figure: Schematic, area: Box, up: Scale, heads: dict[str, float]) -> A
             where[name] = side
         price = _star_price(figure, places, where, sides)
         if price is not None and (best is None or price < best[0]):
-            best = price, Arrangement(places, where, heads, by_distance=True, up=up, across=across)
+            best = price, Arrangement(places, where, heads, by_distance=True, area=area, up=up, across=across)
     return best[1] if best else None
 
 
 def _star_price(
     figure: Schematic, places: dict[str, Point], where: dict[str, int], sides: tuple[int, ...]
 ) -> float | None:
-    """Price sides: water should come from the left, and pipes on one side stand apart. None where they cannot."""
+    """Price sides: water comes from the left, pipes on one side stand apart; None where they cannot."""
     centre = figure.junctions[0].name
     price = 0.0
     for side, pipe in zip(sides, figure.pipes, strict=True):
@@ -146,14 +151,15 @@ def _star_price(
 def _angle_between(centre: Point, one: Point, other: Point) -> float:
     """Return the angle at the junction between the feet of two basins on one side, rad."""
     a, b = (
-        atan2(point[1] - BASIN_DEPTH - centre[1], max(1e-9, abs(point[0] - centre[0]))) for point in (one, other)
+        atan2(point[1] - BASIN_DEPTH - centre[1], max(1e-9, abs(point[0] - centre[0])))
+        for point in (one, other)
     )
     return abs(a - b)
 
 
 def _in_order(figure: Schematic, area: Box, up: Scale, heads: dict[str, float]) -> Arrangement:
     """Order across, head up."""
-    names = [node.name for node in (*figure.reservoirs, *figure.junctions)]
+    names = [r.name for r in figure.reservoirs] + [j.name for j in figure.junctions]
     level = [reservoir.level for reservoir in figure.reservoirs] + [j.head for j in figure.junctions]
     index = {name: i for i, name in enumerate(names)}
     pairs = [(index[pipe.start], index[pipe.end]) for pipe in figure.pipes]
@@ -164,9 +170,4 @@ def _in_order(figure: Schematic, area: Box, up: Scale, heads: dict[str, float]) 
     spots = order.breathe(slots, level)
     places = {name: (across.at(spots[i]), up.at(level[i])) for i, name in enumerate(names)}
     sides = {reservoir.name: 0 for reservoir in figure.reservoirs}
-    return Arrangement(places, sides, heads, by_distance=False, up=up, across=across)
-
-
-def length_of(line: list[Point]) -> float:
-    """Return the length of a line through points, pt."""
-    return sum(hypot(b[0] - a[0], b[1] - a[1]) for a, b in zip(line, line[1:], strict=False))
+    return Arrangement(places, sides, heads, by_distance=False, area=area, up=up, across=across)

@@ -1,7 +1,7 @@
 """Balance of a single junction: flow toward it in each branch against trial head.
 
-The heavy line is the sum less the withdrawal; it crosses zero at the accepted head. Trials stand on it as numbered open
-circles; beneath, one row a trial shows the bracket that the trial was chosen from.
+The heavy line is the sum less the withdrawal; it crosses zero at the accepted head. Trials stand on it as
+numbered open circles; beneath, one row a trial shows the bracket that the trial was chosen from.
 """
 
 from __future__ import annotations
@@ -13,6 +13,7 @@ from calc.publish.draw import look, margin, marks, scale
 from calc.publish.draw.faces import Voice, voice
 from calc.publish.draw.geometry import Box
 from calc.publish.draw.placing import Label, Surroundings, place
+from calc.publish.draw.settings import plain
 from calc.publish.draw.sheet import Sheet
 
 if TYPE_CHECKING:
@@ -28,6 +29,7 @@ ROW = 11.0  # pt
 TOGETHER = 7.0  # pt: trials closer than this share a label
 POINT = 2.3
 SUM = "sum less withdrawal"
+WIDE = " wide"
 
 
 @dataclass(frozen=True, slots=True)
@@ -64,6 +66,11 @@ def draw(figure: Balance) -> Figure:
     Figure
         165 mm wide.
     """
+    with plain():
+        return _draw(figure).figure
+
+
+def _draw(figure: Balance) -> Sheet:
     say = Voices(
         voice(look.SOFT),
         voice(look.SOFT, slant="italic"),
@@ -80,12 +87,14 @@ def draw(figure: Balance) -> Figure:
     obstacles, labels = _trials(figure, sheet, plan, say)
     head = (plan.across.at(figure.accepted_head), plan.up.at(0.0))
     obstacles.append(marks.head(sheet, head))
-    labels.append(Label(((f"head {figure.accepted_text}", say.accepted),), head, (), "NE SW ENE WSW N S", 6.0, 0))
+    labels.append(
+        Label(((f"head {figure.accepted_text}", say.accepted),), head, (), "NE SW ENE WSW N S", 6.0, 0)
+    )
     lines.append(([(head[0], plan.rows.foot), (head[0], plan.plot.top)], 0.8))
     _rows(figure, sheet, plan, say, shown)
     frame = Box(plan.plot.left + 1, plan.plot.foot + 1, plan.plot.right - 1, plan.plot.top - 1)
     place(sheet, labels, Surroundings(frame, tuple(lines), tuple(obstacles)))
-    return sheet.figure
+    return sheet
 
 
 def alt(figure: Balance) -> str:
@@ -95,8 +104,9 @@ def alt(figure: Balance) -> str:
     bracket = f" Bracket from {widths[0]} wide to {widths[-1]}." if len(widths) > 1 else ""
     return (
         f"{figure.title}. Flow toward {figure.junction} in {len(figure.branches)} "
-        f"branch{'' if len(figure.branches) == 1 else 'es'} against trial head. The sum less the withdrawal is zero at "
-        f"head {figure.accepted_text}. {count} trial{'' if count == 1 else 's'}.{bracket}"
+        f"branch{'' if len(figure.branches) == 1 else 'es'} against trial head. "
+        f"The sum less the withdrawal is zero at head {figure.accepted_text}. "
+        f"{count} trial{'' if count == 1 else 's'}.{bracket}"
     )
 
 
@@ -115,7 +125,9 @@ def _named(figure: Balance) -> tuple[BalanceBranch, ...]:
     return tuple(branch for branch in figure.branches if id(branch) in chosen)
 
 
-def _endings(figure: Balance, say: Voices, named: tuple[BalanceBranch, ...]) -> list[tuple[str, Voice, float]]:
+def _endings(
+    figure: Balance, say: Voices, named: tuple[BalanceBranch, ...]
+) -> list[tuple[str, Voice, float]]:
     """Return the names in the right margin with the flow at which their curves end."""
     found = [(branch.name, say.plain, branch.flows[-1]) for branch in named]
     rest = [branch for branch in figure.branches if branch not in named]
@@ -142,7 +154,7 @@ def _plan(
     up = scale.Scale(low - spare, high + spare, foot, top)
     ends = margin.room([(name, speaker) for name, speaker, _ in _endings(figure, say, named)])
     widths = [trial.width_text for trial in shown if trial]
-    right = max(ends, margin.room([(width, say.soft) for width in widths]))
+    right = max(ends, margin.room([(width + WIDE, say.soft) for width in widths]))
     left = sheet.box.left + max(scale.widest(up, say.soft), say.soft.width("bracket") + 6.0)
     heads = [*figure.heads, *(trial.head for trial in figure.trials), figure.accepted_head]
     heads += [end for trial in figure.trials for end in (trial.low, trial.high) if end is not None]
@@ -165,7 +177,9 @@ def _axes(figure: Balance, sheet: Sheet, plan: Plan, say: Voices) -> None:
     baseline = sheet.box.top - 0.8 * say.italic.size
     sheet.write((sheet.box.left, baseline), say.italic.wrap(title, look.WIDTH * 0.9)[0], say.italic)
     zero = plan.up.at(0.0)
-    sheet.rule([(plan.plot.left, zero), (plan.plot.right, zero)], look.SOFT, look.AXIS_LINE, layer=1.5, name="zero")
+    sheet.rule(
+        [(plan.plot.left, zero), (plan.plot.right, zero)], look.SOFT, look.AXIS_LINE, layer=1.5, name="zero"
+    )
     scale.across_axis(sheet, plan.across, plan.rows.foot, say.soft)
     baseline = plan.rows.foot - scale.TICK - say.soft.line - 1.0 * say.italic.size - 1.0
     for line in say.italic.wrap(_across_title(figure), look.WIDTH * 0.8):
@@ -244,7 +258,8 @@ def _rows(figure: Balance, sheet: Sheet, plan: Plan, say: Voices, shown: tuple[T
             sheet.rule([(end, middle - 2.6), (end, middle + 2.6)], look.INK, 0.8, name="bracket end")
         sheet.dot((plan.across.at(trial.head), middle), 1.7, look.PAPER, look.INK, 0.7)
         sheet.write((low - 4.0, baseline), str(trial.number), say.strong, "right")
-        sheet.write((plan.plot.right + margin.OFF - 4.0, baseline), trial.width_text, say.soft)
+        width = trial.width_text + (WIDE if trial is shown[0] and trial.width_text else "")
+        sheet.write((plan.plot.right + margin.OFF - 4.0, baseline), width, say.soft)
 
 
 def runs(numbers: list[int]) -> str:

@@ -1,13 +1,14 @@
-"""Convergence: each measure of how far from an answer a case was, by trial or iteration, on a scale of decades.
+"""Convergence: each measure of how far from an answer a case was, by step, on a scale of decades.
 
-The tolerance is a dashed line with its value. Where a measure has a sign, filled circles are more toward the junction
-than away, open ones the other way. A value of exactly zero has no decade: it stands on a line of its own
-beneath the scale, named 0.
+The tolerance is a dashed line with its value. Where a measure has a sign, filled circles are more toward the
+junction than away, open ones the other way. A value of exactly zero has no decade: it stands on a line of its
+own beneath the scale, named 0.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 from math import ceil, floor, isfinite, log10
 from typing import TYPE_CHECKING
 
@@ -15,6 +16,7 @@ from calc.publish.draw import key, look, margin, scale
 from calc.publish.draw.faces import Voice, voice
 from calc.publish.draw.geometry import Box
 from calc.publish.draw.placing import Label, Surroundings, place
+from calc.publish.draw.settings import plain
 from calc.publish.draw.sheet import Sheet
 
 if TYPE_CHECKING:
@@ -84,6 +86,11 @@ def draw(figure: Convergence) -> Figure:
     Figure
         165 mm wide.
     """
+    with plain():
+        return _draw(figure).figure
+
+
+def _draw(figure: Convergence) -> Sheet:
     say = Voices(voice(look.SOFT), voice(look.SOFT, slant="italic"), voice(look.INK))
     heights = [(TALL if not k else LOW) * look.POINTS_PER_MM for k in range(len(figure.panels))]
     items = _key(figure)
@@ -98,15 +105,18 @@ def draw(figure: Convergence) -> Figure:
         say.soft.width(text) + scale.TICK + 2.0 for found in decades for _, text in found.ticks()
     )
     right = sheet.box.right - max(
-        margin.room([(_limit(panel), say.soft)]) if panel.tolerance is not None else 14.0 for panel in figure.panels
+        margin.room([(_limit(panel), say.soft)]) if panel.tolerance is not None else 14.0
+        for panel in figure.panels
     )
     steps = scale.Scale(0.4, len(figure.numbers) + 0.6, left, right)
     for panel, found in zip(figure.panels, decades, strict=True):
         _panel(sheet, panel, found, steps, say)
     _foot(figure, sheet, steps, say, foot)
-    area = Box(sheet.box.left, sheet.box.foot, sheet.box.right, sheet.box.foot + key.height(items, say.soft, full))
+    area = Box(
+        sheet.box.left, sheet.box.foot, sheet.box.right, sheet.box.foot + key.height(items, say.soft, full)
+    )
     key.write(sheet, items, say.soft, area)
-    return sheet.figure
+    return sheet
 
 
 def alt(figure: Convergence) -> str:
@@ -121,7 +131,9 @@ def alt(figure: Convergence) -> str:
         parts.append(f"{panel.name[:1].upper()}{panel.name[1:]}: {course}.")
         if panel.tolerance is not None:
             met = abs(known[-1][0]) <= panel.tolerance
-            parts.append(f"The last is {'within' if met else 'outside'} the tolerance of {panel.tolerance_text}.")
+            parts.append(
+                f"The last is {'within' if met else 'outside'} the tolerance of {panel.tolerance_text}."
+            )
     return " ".join(parts)
 
 
@@ -154,13 +166,26 @@ def _panel(sheet: Sheet, panel: Panel, decades: Decades, steps: scale.Scale, say
         say.italic,
     )
     foot = straight.start if decades.zero is None else straight.start - 3.0
-    sheet.rule([(steps.start, foot), (steps.start, straight.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
+    sheet.rule(
+        [(steps.start, foot), (steps.start, straight.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis"
+    )
     for up, text in decades.ticks():
-        sheet.rule([(steps.start - scale.TICK, up), (steps.start, up)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
+        sheet.rule(
+            [(steps.start - scale.TICK, up), (steps.start, up)],
+            look.SOFT,
+            look.AXIS_LINE,
+            layer=1.5,
+            name="axis",
+        )
         sheet.write((steps.start - scale.TICK - 2.0, up - 0.32 * say.soft.size), text, say.soft, "right")
     if decades.zero is not None:
         sheet.rule(
-            [(steps.start, decades.zero), (steps.end, decades.zero)], look.RULE, 0.4, (1.0, 2.0), layer=1.5, name="zero"
+            [(steps.start, decades.zero), (steps.end, decades.zero)],
+            look.RULE,
+            0.4,
+            (1.0, 2.0),
+            layer=1.5,
+            name="zero",
         )
     lines: list[tuple[list[Point], float]] = []
     if panel.tolerance is not None and panel.tolerance > 0:
@@ -169,9 +194,13 @@ def _panel(sheet: Sheet, panel: Panel, decades: Decades, steps: scale.Scale, say
         sheet.rule(line, look.INK, 0.6, look.LIMIT_DASH, layer=2.0, name="tolerance")
         lines.append((line, 1.0))
         margin.write(
-            sheet, steps.end, [margin.Ending(up, _limit(panel), say.soft)], straight.start - 4.0, straight.end + 4.0
+            sheet,
+            steps.end,
+            [margin.Ending(up, _limit(panel), say.soft)],
+            straight.start - 4.0,
+            straight.end + 4.0,
         )
-    _points(sheet, panel, decades, steps, say, lines)
+    _points(sheet, panel, decades, steps, say, lines=lines)
 
 
 def _points(
@@ -180,6 +209,7 @@ def _points(
     decades: Decades,
     steps: scale.Scale,
     say: Voices,
+    *,
     lines: list[tuple[list[Point], float]],
 ) -> None:
     """Draw the values joined in order; a step to zero is dashed, as it has no place on the scale."""
@@ -188,7 +218,7 @@ def _points(
         for k, value in enumerate(panel.values)
         if value is not None and isfinite(value)
     ]
-    for (_, a, start), (_, b, end) in zip(known, known[1:], strict=False):
+    for (_, a, start), (_, b, end) in pairwise(known):
         dash = (2.0, 2.0) if a == 0 or b == 0 else ()
         sheet.rule([start, end], look.INK, look.DATA_LINE, dash, name="course")
         lines.append(([start, end], 1.0))
@@ -205,7 +235,13 @@ def _points(
     ]
     foot = decades.straight.start if decades.zero is None else decades.zero
     frame = Box(steps.start + 1.0, foot - 5.0, sheet.box.right, decades.straight.end + 4.0)
-    written = Box(steps.end, decades.at(panel.tolerance) - 16.0, sheet.box.right, decades.at(panel.tolerance) + 16.0) if panel.tolerance else None
+    written = (
+        Box(
+            steps.end, decades.at(panel.tolerance) - 16.0, sheet.box.right, decades.at(panel.tolerance) + 16.0
+        )
+        if panel.tolerance
+        else None
+    )
     texts = (written,) if written else ()
     place(sheet, labels, Surroundings(frame, tuple(lines), tuple(boxes), texts))
 
@@ -214,7 +250,13 @@ def _point(sheet: Sheet, at: Point, value: float, radius: float, *, signed: bool
     """Draw one value: filled or open by its sign; exactly zero as an upright cross, being neither."""
     if value == 0:
         for across, up in ((radius + 0.8, 0.0), (0.0, radius + 0.8)):
-            sheet.rule([(at[0] - across, at[1] - up), (at[0] + across, at[1] + up)], look.INK, 1.0, layer=6.0, name="mark")
+            sheet.rule(
+                [(at[0] - across, at[1] - up), (at[0] + across, at[1] + up)],
+                look.INK,
+                1.0,
+                layer=6.0,
+                name="mark",
+            )
         return
     filled = value > 0 if signed else True
     sheet.dot(at, radius, look.INK if filled else look.PAPER, look.INK, 0.9)
@@ -251,4 +293,6 @@ def _foot(figure: Convergence, sheet: Sheet, steps: scale.Scale, say: Voices, fo
         sheet.rule([(x, up), (x, up - scale.TICK)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
         if k % every == 0:
             sheet.write((x, up - scale.TICK - say.soft.size), str(value), say.soft, "center")
-    sheet.write((steps.start, up - scale.TICK - say.soft.line - say.italic.size - 1.0), figure.step, say.italic)
+    sheet.write(
+        (steps.start, up - scale.TICK - say.soft.line - say.italic.size - 1.0), figure.step, say.italic
+    )

@@ -1,8 +1,8 @@
 """The faces of the page, read from their files, so that a drawing measures what the page will print.
 
 Nothing is looked up by name on the machine: every text names its file for measuring and its family for the
-page. A character that a face lacks is printed as a question mark, as no other face may step in; the raised minus,
-which it lacks too, is written with its figures as a smaller minus and figures, raised.
+page. A character that a face lacks is printed as a question mark, as no other face may step in; the raised
+minus, which it lacks too, is written with its figures as a smaller minus and figures, raised.
 """
 
 from __future__ import annotations
@@ -11,6 +11,7 @@ import re
 from dataclasses import dataclass, replace
 from functools import lru_cache
 from pathlib import Path
+from typing import Literal
 
 from matplotlib.font_manager import FontProperties
 from matplotlib.ft2font import FT2Font, LoadFlags
@@ -18,6 +19,7 @@ from matplotlib.ft2font import FT2Font, LoadFlags
 from calc.publish import places
 
 UNITS_PER_POINT = 64  # 26.6 fixed point
+Slant = Literal["normal", "italic"]
 LEADING = 1.16
 RAISED = 0.8  # size of an exponent
 EXPONENT = re.compile("(⁻[⁰¹²³⁴⁵⁶⁷⁸⁹]+)")
@@ -48,7 +50,7 @@ class Voice:
     family: str
     size: float
     ink: str
-    slant: str = "normal"
+    slant: Slant = "normal"
     weight: int = 400
 
     @property
@@ -80,10 +82,12 @@ class Voice:
     def clean(self, text: str) -> str:
         """Return the text in one line, with a question mark for every character the face lacks."""
         known = _characters(str(self.file))
-        return "".join(c if ord(c) in known or c in "⁻⁰¹²³⁴⁵⁶⁷⁸⁹" else "?" for c in " ".join(text.split(" ")).strip())
+        return "".join(
+            c if ord(c) in known or c in "⁻⁰¹²³⁴⁵⁶⁷⁸⁹" else "?" for c in " ".join(text.split(" ")).strip()
+        )
 
     def wrap(self, text: str, width: float) -> tuple[str, ...]:
-        """Break a text into lines no wider than ``width`` points: at blanks, else after a hyphen, else anywhere."""
+        """Break a text into lines no wider than ``width`` points, at blanks and hyphens where it can be."""
         lines: list[str] = []
         line = ""
         for piece in _pieces(self.clean(text)):
@@ -98,7 +102,7 @@ class Voice:
         return (*lines, line.rstrip()) if line.strip() or not lines else tuple(lines)
 
 
-def voice(ink: str, *, size: float = 8.0, slant: str = "normal", strong: bool = False) -> Voice:
+def voice(ink: str, *, size: float = 8.0, slant: Slant = "normal", strong: bool = False) -> Voice:
     """Return the small face of the page in an ink; ``strong`` is its semibold."""
     cut = "SemiBold" if strong else "Italic" if slant == "italic" else "Regular"
     file = places.fonts() / f"LedgerSmall-{cut}.ttf"

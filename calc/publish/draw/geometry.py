@@ -24,7 +24,12 @@ class Box(NamedTuple):
     @property
     def corners(self) -> list[Point]:
         """Return the four corners in order."""
-        return [(self.left, self.foot), (self.right, self.foot), (self.right, self.top), (self.left, self.top)]
+        return [
+            (self.left, self.foot),
+            (self.right, self.foot),
+            (self.right, self.top),
+            (self.left, self.top),
+        ]
 
     def grown(self, by: float) -> Box:
         """Return the box with a margin all round."""
@@ -85,4 +90,6 @@ def distance(points: Array, starts: Array, ends: Array) -> Array:
 
 
 def _turn(a: Array, b: Array, c: Array) -> Array:
-    return np.asarray((b[..., 0] - a[..., 0]) * (c[..., 1] - a[..., 1]) - (b[..., 1] - a[..., 1]) * (c[..., 0] - a[..., 0]))
+    return np.asarray(
+        (b[..., 0] - a[..., 0]) * (c[..., 1] - a[..., 1]) - (b[..., 1] - a[..., 1]) * (c[..., 0] - a[..., 0])
+    )

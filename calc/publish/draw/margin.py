@@ -68,8 +68,8 @@ def write(sheet: Sheet, across: float, endings: Sequence[Ending], low: float, hi
 def spread(want: Array, size: Array, low: float, high: float) -> Array:
     """Return middles nearest to those wanted that keep order and size between ``low`` and ``high``.
 
-    Least squared movement by pooling neighbours that would overlap. Where the sizes fill more than the height, they
-    stand from ``low`` upwards.
+    Least squared movement, by pooling neighbours that would overlap. Where the sizes fill more than the
+    height, they stand from ``low`` upwards.
     """
     if len(want) == 0:
         return want

@@ -67,7 +67,9 @@ class Names:
         lines = self._lines(junction.name, self._strong if by_distance or self._full else self._plain)
         if by_distance:
             known = junction.elevation is not None
-            text = f"elevation {junction.elevation_text}" if known else "elevation not given: drawn at its head"
+            text = (
+                f"elevation {junction.elevation_text}" if known else "elevation not given: drawn at its head"
+            )
             return [Label((*lines, (text, self._soft)), at, (), "SW SE S W E SSW SSE", 5.0, 1)]
         lines = (*lines, (junction.head_text, self._violet))
         return [Label(lines, at, (), "NE SW NW SE N S E W", 3.5 + 2 * self._size, 2)]
@@ -85,13 +87,16 @@ class Names:
             return []
         turns = bool(pipe.turns)
         says = "shut" if not pipe.open else pipe.flow_text or "no flow"
-        lines = self._lines(f"{pipe.name} {says}", self._turned_strong if turns else self._strong)
+        speaker = self._turned_strong if turns else self._strong
+        whole = f"{pipe.name} {says}"
+        fits = speaker.width(speaker.clean(whole)) <= self._width
+        lines = ((whole, speaker),) if fits else (*self._lines(pipe.name, speaker), (says, speaker))
         if self._full:
             lines += tuple((text, self._soft) for text in (pipe.size_text, pipe.drive_text) if text)
         if turns and self._full:
             more = len(pipe.turns) - CASES
             cases = ", ".join(pipe.turns[:CASES]) + (f" and {more} more" if more > 0 else "")
-            lines += self._lines(f"the other way in {cases}", self._turned)
+            lines += self._lines(f"the other way in: {cases}", self._turned)
         steep = abs(sin(radians(bearing))) > STEEP
         prefer = "E W NE SW SE NW" if steep else "N S NNE SSW NNW SSE NE SW NW SE"
         return [Label(lines, at, near, prefer, 6.0 * self._size, 1 if turns or pipe.governing else 2)]

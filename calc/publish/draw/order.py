@@ -1,7 +1,8 @@
 """The order of nodes across a schematic: few crossings, short pipes, no pipe over a foreign node.
 
-Whole numbers and simple sums only, so that the order is the same on every machine. The search begins with the nodes
-by falling head, as water runs, and with their distance from the highest water counted in pipes; it keeps the better.
+Whole numbers and simple sums only, so that the order is the same on every machine. The search begins with
+the nodes by falling head, as water runs, and with their distance from the highest water counted in pipes;
+it keeps the better.
 """
 
 from __future__ import annotations

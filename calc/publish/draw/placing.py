@@ -1,8 +1,9 @@
 """Labels find a place of their own.
 
-Each label has candidate boxes on rings about its anchors, each with a price: text on text above all, then text on
-marks, text on lines, leaders through text, distance. Labels are placed by rank, then moved in turn while that is
-cheaper. Nothing is random. A label that finds no free place is left out, lowest rank first, and reported.
+Each label has candidate boxes on rings about its anchors, each with a price: text on text above all, then
+text on marks, text on lines, leaders through text, distance. Labels are placed by rank, then moved in
+turn while that is cheaper. Nothing is random. A label that finds no free place is left out, lowest rank
+first, and reported.
 """
 
 from __future__ import annotations
@@ -12,6 +13,7 @@ from math import cos, pi, sin
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
 
 from calc.publish.draw import look
 from calc.publish.draw.geometry import Array, Box, Point, boxes, crossings, inside, overlap
@@ -22,10 +24,25 @@ if TYPE_CHECKING:
     from calc.publish.draw.faces import Voice
     from calc.publish.draw.sheet import Sheet
 
-COMPASS = {
-    name: number * pi / 8
-    for number, name in enumerate("E ENE NE NNE N NNW NW WNW W WSW SW SSW S SSE SE ESE".split())
-}
+BEARINGS = [
+    "E",
+    "ENE",
+    "NE",
+    "NNE",
+    "N",
+    "NNW",
+    "NW",
+    "WNW",
+    "W",
+    "WSW",
+    "SW",
+    "SSW",
+    "S",
+    "SSE",
+    "SE",
+    "ESE",
+]
+COMPASS = {name: number * pi / 8 for number, name in enumerate(BEARINGS)}
 RINGS = (0.0, 3.0, 7.0, 12.0, 19.0, 28.0, 40.0, 56.0, 76.0, 100.0)
 LEADER_BEYOND = 2.0  # pt from its place beside the anchor
 ROUNDS = 5
@@ -102,13 +119,13 @@ class Surroundings:
 
 @dataclass(frozen=True, slots=True)
 class Candidates:
-    """Places a label may take: boxes (n, 4), price (n,), anchor (n, 2), foot of the leader (n, 2), led (n,)."""
+    """Places a label may take: boxes (n, 4), price (n,), anchors and feet of leaders (n, 2), led (n,)."""
 
     boxes: Array
     price: Array
     anchor: Array
     foot: Array
-    led: Array
+    led: NDArray[np.bool_]
 
 
 def place(sheet: Sheet, labels: Sequence[Label], around: Surroundings) -> tuple[Label, ...]:
@@ -175,7 +192,9 @@ def _side(part: float) -> float:
     return 0.0 if abs(part) < 0.2 else float(np.sign(part)) * min(1.0, abs(part) * 1.5)  # noqa: PLR2004
 
 
-def _fixed_price(box: Array, anchor: Array, foot: Array, led: Array, around: Surroundings) -> Array:
+def _fixed_price(
+    box: Array, anchor: Array, foot: Array, led: NDArray[np.bool_], around: Surroundings
+) -> Array:
     """Return the price of each box (n,) against frame, lines, marks and texts."""
     frame = around.frame
     outside = (
@@ -186,15 +205,18 @@ def _fixed_price(box: Array, anchor: Array, foot: Array, led: Array, around: Sur
     )
     starts, ends, weights = around.segments()
     near = box + np.array([-3, -2, 3, 2])
-    struck = (inside(starts, ends, box) * weights).sum(1) + 0.35 * (inside(starts, ends, near) * weights).sum(1)
+    struck = (inside(starts, ends, box) * weights).sum(1) + 0.35 * (inside(starts, ends, near) * weights).sum(
+        1
+    )
     marks = boxes(list(around.marks) + list(around.texts))
     leaders = np.where(
         led,
-        1.2 * inside(anchor, foot, marks).sum(0) + 2.5 * (crossings(anchor, foot, starts, ends) * weights).sum(1),
+        1.2 * inside(anchor, foot, marks).sum(0)
+        + 2.5 * (crossings(anchor, foot, starts, ends) * weights).sum(1),
         0.0,
     )
     texts = overlap(box, boxes(list(around.texts))).sum(1)
-    return np.asarray(60 * outside + 2.2 * struck + 9 * overlap(box, marks).sum(1) + 40 * texts + leaders)
+    return np.asarray(60 * outside + 3.6 * struck + 9 * overlap(box, marks).sum(1) + 40 * texts + leaders)
 
 
 def _best(i: int, choices: list[Candidates], chosen: dict[int, int]) -> int:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import Counter
 from dataclasses import dataclass
+from itertools import pairwise
 from math import atan2, degrees, hypot
 from typing import TYPE_CHECKING
 
@@ -42,7 +43,7 @@ class Route:
 
     def at(self, share: float) -> tuple[Point, float]:
         """Return the point at a share of the line's length, and the line's bearing there in degrees."""
-        runs = [hypot(b[0] - a[0], b[1] - a[1]) for a, b in zip(self.points, self.points[1:], strict=False)]
+        runs = [hypot(b[0] - a[0], b[1] - a[1]) for a, b in pairwise(self.points)]
         left = share * sum(runs)
         for k, run in enumerate(runs):
             if left <= run or k == len(runs) - 1:
@@ -68,7 +69,7 @@ def route(figure: Schematic, arrangement: Arrangement, size: float) -> list[Rout
             seen[pair] += 1
             points = _beside(start, end, offset if pipe.start < pipe.end else -offset)
         else:
-            points = _clear(start, end, _foreign(pipe, arrangement))
+            points = _clear(start, end, _foreign(pipe, arrangement), arrangement.area)
         routes.append(Route(pipe, points if pipe.flow >= 0 else points[::-1]))
     return routes
 
@@ -113,11 +114,13 @@ def _foreign(pipe: Pipe, arrangement: Arrangement) -> Array:
     return np.asarray(found, dtype=np.float64).reshape(-1, 2)
 
 
-def _clear(start: Point, end: Point, foreign: Array) -> list[Point]:
+def _clear(start: Point, end: Point, foreign: Array, area: Box) -> list[Point]:
     """Return a straight line, or the least bent one that keeps off foreign nodes."""
     best: tuple[float, list[Point]] | None = None
     for aside in ASIDE:
         points = [start, end] if not aside else [start, *_shifted(start, end, (0.5,), aside), end]
+        if not all(area.left <= x <= area.right and area.foot <= y <= area.top for x, y in points[1:-1]):
+            continue
         line = np.asarray(points, dtype=np.float64)
         near = float(distance(foreign, line[:-1], line[1:]).min()) if len(foreign) else CLEAR
         price = 4.0 * max(0.0, CLEAR - near) + 0.3 * abs(aside)

@@ -70,7 +70,9 @@ def decade(power: int) -> str:
 
 def up_axis(sheet: Sheet, scale: Scale, across: float, voice: Voice, *, most: int = 6) -> None:
     """Rule an upright axis at ``across`` with its values on the left."""
-    sheet.rule([(across, scale.start), (across, scale.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
+    sheet.rule(
+        [(across, scale.start), (across, scale.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis"
+    )
     for value, text in scale.ticks(most):
         up = scale.at(value)
         sheet.rule([(across - TICK, up), (across, up)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")

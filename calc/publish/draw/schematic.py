@@ -1,8 +1,8 @@
 """Schematic to elevation: the works of one case.
 
-One junction: across is the distance along each pipe from the junction, up is elevation, and the hydraulic grade runs
-dashed from each level to the solved head. Many junctions: across is order, up is head, so that every pipe falls the
-way its water runs. Lines are straight and say nothing of the ground between.
+One junction: across is the distance along each pipe from the junction, up is elevation, and the hydraulic
+grade runs dashed from each level to the solved head. Many junctions: across is order, up is head, so that
+every pipe falls the way its water runs. Lines are straight and say nothing of the ground between.
 """
 
 from __future__ import annotations
@@ -18,10 +18,11 @@ from calc.publish.draw.faces import Voice, voice
 from calc.publish.draw.geometry import Box
 from calc.publish.draw.naming import Names
 from calc.publish.draw.placing import Label, Surroundings, place
+from calc.publish.draw.settings import plain
 from calc.publish.draw.sheet import Sheet
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Callable, Sequence
 
     from matplotlib.figure import Figure
 
@@ -29,9 +30,13 @@ if TYPE_CHECKING:
     from calc.publish.draw.routes import Route
     from calc.report.figures import Junction, Schematic
 
-FEW, MANY, CROWD = 5, 14, 40  # pipes: sizes of sheet and marks, and where only governing pipes are named
-TALLEST = 212.0  # mm
+FEW, MANY, CROWD = 5, 14, 40  # pipes: sizes of sheet, and where only governing pipes are named
+SIZES, SMALLEST = ((14, 1.0), (28, 0.85), (60, 0.72)), 0.55  # of marks, up to so many pipes
+HEIGHT_PER_LETTER = 0.18  # mm
+TALLEST = 205.0  # mm
+SAID = 6  # of each kind in the alternative text
 TOP_GAP, SIDE_GAP = 8.0, 8.0
+BESIDE, FIRST, LAST = (-0.08, 0.08, -0.16, 0.16), 0.12, 0.88  # shares of a pipe where its name may stand
 NOTE = "{} left out for want of room; the table names every pipe and junction"
 UNNAMED = "governing pipes are named here; the table names every pipe and junction"
 
@@ -62,11 +67,23 @@ def draw(figure: Schematic) -> Figure:
     Figure
         165 mm wide.
     """
+    with plain():
+        draft = (_begin(figure, star=True) if is_star(figure) else None) or _begin(figure, star=False)
+        if draft is None:
+            raise AssertionError  # order across always finds a place
+        _works(draft)
+        area, scale_room = draft.plan.area, SIDE_GAP / 2 - 1
+        frame = Box(area.left - scale_room, area.foot + 1.5, area.right, area.top + TOP_GAP - 1)
+        around = Surroundings(frame, tuple(draft.lines), tuple(draft.obstacles))
+        left_out = place(draft.sheet, draft.labels, around)
+        _note(draft, len(left_out))
+    return draft.sheet.figure
+
+
+def _begin(figure: Schematic, *, star: bool) -> Draft | None:
+    """Rule the sheet, write its axes and key, and give the nodes their places; None where they find none."""
     small, italic = voice(look.SOFT), voice(look.SOFT, slant="italic")
-    count = len(figure.pipes)
-    star = is_star(figure)
-    size = 1.0 if count <= MANY else 0.85 if count <= MANY * 2 else 0.72
-    sheet = Sheet(_height(count, star=star) * look.POINTS_PER_MM)
+    sheet = Sheet(_height(figure, star=star) * look.POINTS_PER_MM)
     items = _key(figure, star=star)
     full = sheet.box.right - sheet.box.left
     foot = sheet.box.foot + key.ROW + key.height(items, small, full)
@@ -74,36 +91,42 @@ def draw(figure: Schematic) -> Figure:
     top = sheet.box.top - len(titles) * italic.line - TOP_GAP
     notes = italic.wrap(_across_title(figure, star=star), full)
     low = foot + len(notes) * italic.line + (scale.TICK + small.line if star else 0.0) + 4.0
-    left = sheet.box.left + scale.widest(upright(figure, low, top), small) + SIDE_GAP
-    draft = Draft(figure, sheet, size, arrange(figure, Box(left, low, sheet.box.right, top)))
-    _axes(draft, titles, notes, low, small, italic)
+    up = upright(figure, low, top, by_distance=star)
+    left = sheet.box.left + scale.widest(up, small) + SIDE_GAP
+    plan = arrange(figure, Box(left, low, sheet.box.right, top), by_distance=star)
+    if plan is None:
+        return None
+    draft = Draft(figure, sheet, _size(len(figure.pipes)), plan)
+    _axes(draft, titles, notes, small, italic)
     key.write(sheet, items, small, Box(sheet.box.left, sheet.box.foot, sheet.box.right, foot))
-    _works(draft)
-    frame = Box(left - SIDE_GAP / 2 + 1, low + 1.5, sheet.box.right, top + TOP_GAP - 1)
-    around = Surroundings(frame, tuple(draft.lines), tuple(draft.obstacles))
-    left_out = place(sheet, draft.labels, around)
-    _note(draft, len(left_out), italic)
-    return sheet.figure
+    return draft
 
 
 def alt(figure: Schematic) -> str:
     """Return the drawing in words."""
     turning = [pipe.name for pipe in figure.pipes if pipe.turns]
-    levels = ", ".join(f"{r.name} {r.level_text}" for r in figure.reservoirs[:6])
-    heads = ", ".join(f"{j.name} {j.head_text}" for j in figure.junctions[:6])
-    parts = [
-        f"{figure.title}. Schematic to elevation: {_counted(len(figure.reservoirs), 'reservoir')}, "
-        f"{_counted(len(figure.junctions), 'junction')}, {_counted(len(figure.pipes), 'pipe')}.",
-        f"Levels: {levels}{', …' if len(figure.reservoirs) > 6 else ''}." if levels else "",  # noqa: PLR2004
-        f"Solved heads: {heads}{', …' if len(figure.junctions) > 6 else ''}." if heads else "",  # noqa: PLR2004
-        *[
-            f"{pipe.name}: {pipe.flow_text or 'no flow'} from {_way(pipe.start, pipe.end, pipe.flow)}."
-            for pipe in figure.pipes[:FEW]
-            if pipe.open
-        ],
-        f"Turns round between cases: {', '.join(turning[:6])}." if turning else "No pipe turns round between cases.",
+    levels = ", ".join(f"{r.name} {r.level_text}" for r in figure.reservoirs[:SAID])
+    heads = ", ".join(f"{j.name} {j.head_text}" for j in figure.junctions[:SAID])
+    counts = ", ".join(
+        _counted(len(found), noun)
+        for found, noun in (
+            (figure.reservoirs, "reservoir"),
+            (figure.junctions, "junction"),
+            (figure.pipes, "pipe"),
+        )
+    )
+    parts = [f"{figure.title}. Schematic to elevation: {counts}."]
+    parts += [f"Levels: {levels}{', …' if len(figure.reservoirs) > SAID else ''}."] if levels else []
+    parts += [f"Solved heads: {heads}{', …' if len(figure.junctions) > SAID else ''}."] if heads else []
+    parts += [
+        f"{pipe.name}: {pipe.flow_text or 'no flow'} from {_way(pipe.start, pipe.end, pipe.flow)}."
+        for pipe in figure.pipes[:SAID]
+        if pipe.open
     ]
-    return " ".join(part for part in parts if part)
+    more = ", …" if len(turning) > SAID else ""
+    turns = f"Turns round between cases: {', '.join(turning[:SAID])}{more}."
+    parts.append(turns if turning else "No pipe turns round between cases.")
+    return " ".join(parts)
 
 
 def _way(start: str, end: str, flow: float) -> str:
@@ -114,23 +137,34 @@ def _counted(count: int, noun: str) -> str:
     return f"{count} {noun}{'' if count == 1 else 's'}"
 
 
-def _height(count: int, *, star: bool) -> float:
-    """Return the height of the sheet, mm."""
+def _height(figure: Schematic, *, star: bool) -> float:
+    """Return the height of the sheet, mm: more for more pipes and for longer names."""
+    count = len(figure.pipes)
     if star:
         return 104.0 if count < FEW else 120.0
-    return 128.0 if count <= MANY else min(TALLEST, 76.0 + 3.8 * count)
+    names = [r.name for r in figure.reservoirs] + [j.name for j in figure.junctions]
+    letters = sum(10 + len(name) for name in [*names, *(pipe.name for pipe in figure.pipes)])
+    plain_height = 128.0 if count <= MANY else 76.0 + 3.8 * count
+    return min(TALLEST, max(plain_height, 30.0 + HEIGHT_PER_LETTER * letters))
+
+
+def _size(count: int) -> float:
+    """Return the size of marks for a number of pipes."""
+    return next((size for most, size in SIZES if count <= most), SMALLEST)
 
 
 def _up_title(figure: Schematic, *, star: bool) -> str:
     datum = figure.datum or "datum not stated"
-    return f"{'elevation' if star else 'head (hydraulic grade)'}, {figure.level_unit}; {datum}"
+    return f"{'elevation and head' if star else 'head (hydraulic grade)'}, {figure.level_unit}; {datum}"
 
 
 def _across_title(figure: Schematic, *, star: bool) -> str:
     if not star:
         return "across: order of the nodes, not to scale; the lines are not the pipes’ profiles"
     origin = figure.junctions[0].name if figure.junctions else figure.pipes[0].start
-    return f"distance along each pipe from {origin}, {figure.length_unit}; the lines are not the pipes’ profiles"
+    return (
+        f"distance along each pipe from {origin}, {figure.length_unit}; the lines are not the pipes’ profiles"
+    )
 
 
 def _key(figure: Schematic, *, star: bool) -> list[key.Item]:
@@ -138,7 +172,7 @@ def _key(figure: Schematic, *, star: bool) -> list[key.Item]:
     found: list[key.Item] = []
     if star and any(j.elevation is not None for j in figure.junctions):
         found.append((_sample(look.ADDRESS, 0.7, look.LIMIT_DASH), "hydraulic grade"))
-    if figure.junctions and star:
+    if figure.junctions:
         found.append((marks.head, "solved head"))
     if any(pipe.open and pipe.flow for pipe in figure.pipes):
         found.append((lambda sheet, at: marks.flow(sheet, at, 0.0, 0.9), "flow"))
@@ -161,18 +195,16 @@ def _key(figure: Schematic, *, star: bool) -> list[key.Item]:
     return found
 
 
-def _sample(ink: str, weight: float, dash: tuple[float, ...]) -> key.Callable[[Sheet, Point], None]:
+def _sample(ink: str, weight: float, dash: tuple[float, ...]) -> Callable[[Sheet, Point], None]:
     def paint(sheet: Sheet, at: Point) -> None:
         sheet.rule([(at[0] - 8, at[1]), (at[0] + 8, at[1])], ink, weight, dash, name="key")
 
     return paint
 
 
-def _axes(
-    draft: Draft, titles: tuple[str, ...], notes: tuple[str, ...], low: float, small: Voice, italic: Voice
-) -> None:
+def _axes(draft: Draft, titles: tuple[str, ...], notes: tuple[str, ...], small: Voice, italic: Voice) -> None:
     """Write the scale up the sheet with its title, and what across means."""
-    sheet, plan = draft.sheet, draft.plan
+    sheet, plan, low = draft.sheet, draft.plan, draft.plan.area.foot
     across = sheet.box.left + scale.widest(plan.up, small)
     scale.up_axis(sheet, plan.up, across, small, most=7)
     baseline = sheet.box.top - 0.8 * italic.size
@@ -181,8 +213,7 @@ def _axes(
         baseline -= italic.line
     baseline = low - 0.9 * italic.size - 3.0
     if plan.by_distance:
-        drawn = scale.Scale(plan.across.low, plan.across.high, plan.across.start, plan.across.end)
-        scale.across_axis(sheet, drawn, low, small, unsigned=True)
+        scale.across_axis(sheet, plan.across, low, small, unsigned=True)
         baseline -= scale.TICK + small.line
     for line in notes:
         sheet.write((across, baseline) if len(notes) == 1 else (sheet.box.left, baseline), line, italic)
@@ -212,7 +243,7 @@ def _works(draft: Draft) -> None:
 
 
 def _grades(draft: Draft, laid: list[Route]) -> None:
-    """Draw the hydraulic grade from each level to the solved head, where the junction itself stands apart from it."""
+    """Draw the hydraulic grade from each level to the solved head, where the junction is not drawn at it."""
     plan = draft.plan
     for junction in draft.figure.junctions:
         if junction.elevation is None:
@@ -242,7 +273,9 @@ def _junction(draft: Draft, names: Names, junction: Junction, laid: list[Route])
         draft.obstacles.append(marks.head(draft.sheet, at, 3.6 * draft.size + 0.4))
     draft.labels += names.junction(junction, at, by_distance=plan.by_distance)
     if junction.withdrawal_text:
-        above = _free_above(at, junction, laid, below_only=plan.by_distance and plan.heads[junction.name] >= at[1])
+        above = _free_above(
+            at, junction, laid, below_only=plan.by_distance and plan.heads[junction.name] >= at[1]
+        )
         draft.obstacles.append(
             marks.withdrawal(draft.sheet, at, draft.size, above=above, inflow=junction.inflow)
         )
@@ -265,7 +298,7 @@ def _free_above(at: Point, junction: Junction, laid: list[Route], *, below_only:
 
 
 def _arrows(draft: Draft, names: Names, laid: list[Route]) -> None:
-    """Set an arrowhead on each pipe where there is most room, mark those that turn round, and ask for names."""
+    """Set an arrowhead on each pipe where there is most room, mark those that turn, and ask for names."""
     samples = [np.array([found.at(t / 24)[0] for t in range(25)]) for found in laid]
     nodes = np.array(list(draft.plan.places.values()))
     for k, found in enumerate(laid):
@@ -274,11 +307,13 @@ def _arrows(draft: Draft, names: Names, laid: list[Route]) -> None:
         at, bearing = found.at(share)
         pipe = found.pipe
         if pipe.turns:
-            draft.obstacles.append(marks.turn(draft.sheet, _aside(at, bearing, 8.5 * draft.size), bearing, draft.size))
+            draft.obstacles.append(
+                marks.turn(draft.sheet, _aside(at, bearing, 8.5 * draft.size), bearing, draft.size)
+            )
         if pipe.open and pipe.flow:
             ink = look.TURNED if pipe.turns else look.INK
             draft.obstacles.append(marks.flow(draft.sheet, at, bearing, draft.size, ink))
-        near = tuple(found.at(t)[0] for t in (share - 0.08, share + 0.08, share - 0.16, share + 0.16) if 0.12 < t < 0.88)  # noqa: PLR2004
+        near = tuple(found.at(share + step)[0] for step in BESIDE if FIRST < share + step < LAST)
         draft.labels += names.pipe(pipe, at, near, bearing)
 
 
@@ -290,8 +325,11 @@ def _aside(at: Point, bearing: float, by: float) -> Point:
     return at[0] + way * by * x, at[1] + way * by * y
 
 
-def _note(draft: Draft, count: int, italic: Voice) -> None:
-    """Say at the foot that labels were left out."""
+def _note(draft: Draft, count: int) -> None:
+    """Say at the foot that labels were left out, or cut off the line that was kept for it."""
+    sheet = draft.sheet
     if count:
-        what = NOTE.format(_counted(count, "label"))
-        draft.sheet.write((draft.sheet.box.left, draft.sheet.box.foot + 3.0), what, italic)
+        italic = voice(look.SOFT, slant="italic")
+        sheet.write((sheet.box.left, sheet.box.foot + 3.0), NOTE.format(_counted(count, "label")), italic)
+    else:
+        sheet.trim(key.ROW)

@@ -1,14 +1,13 @@
 """A blank sheet measured in points, on which the drawings rule lines and write.
 
-Everything is placed in points from the lower left corner, so that a drawing is the same at any resolution and no
-layout runs behind its back.
+Everything is placed in points from the lower left corner, so that a drawing is the same at any resolution and
+no layout runs behind its back.
 """
 
 from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from matplotlib import rc_context
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
@@ -25,7 +24,6 @@ if TYPE_CHECKING:
     from calc.publish.draw.faces import Voice
     from calc.publish.draw.geometry import Point
 
-PLAIN = {"path.simplify": False, "text.usetex": False, "text.parse_math": False, "axes.unicode_minus": False}
 RAISE = 0.34  # of the size: an exponent above the baseline
 BELOW_TEXT = 0.25  # of the size: from the foot of a line's box to its baseline
 
@@ -49,17 +47,21 @@ class Sheet:
     """
 
     def __init__(self, height: float, width: float = look.WIDTH) -> None:
-        with rc_context(PLAIN):
-            self.figure = Figure(figsize=(width / 72, height / 72), dpi=72, facecolor=look.PAPER)
-            FigureCanvasAgg(self.figure)
-            self._axes = self.figure.add_axes((0, 0, 1, 1))
-            self._axes.set_axis_off()
-            self._axes.set_xlim(0, width)
-            self._axes.set_ylim(0, height)
+        self.figure = Figure(figsize=(width / 72, height / 72), dpi=72, facecolor=look.PAPER)
+        FigureCanvasAgg(self.figure)
+        self._axes = self.figure.add_axes((0, 0, 1, 1))
+        self._axes.set_axis_off()
+        self._axes.set_xlim(0, width)
+        self._axes.set_ylim(0, height)
         self.width, self.height = width, height
         self.box = Box(look.EDGE, look.EDGE, width - look.EDGE, height - look.EDGE)
 
-    def rule(  # noqa: D417
+    def trim(self, foot: float) -> None:
+        """Cut a strip off the foot of the sheet; everything else keeps its place."""
+        self.figure.set_size_inches(self.width / 72, (self.height - foot) / 72)
+        self._axes.set_ylim(foot, self.height)
+
+    def rule(
         self,
         points: Sequence[Point],
         ink: str = look.INK,
@@ -93,12 +95,21 @@ class Sheet:
         """Draw a closed shape through points."""
         codes = [Outline.MOVETO, *[Outline.LINETO] * (len(points) - 1), Outline.CLOSEPOLY]
         outline = Outline([*points, points[0]], codes)
-        patch = PathPatch(outline, facecolor=fill, edgecolor=edge, linewidth=weight if edge != "none" else 0.0)
+        patch = PathPatch(
+            outline, facecolor=fill, edgecolor=edge, linewidth=weight if edge != "none" else 0.0
+        )
         patch.set(zorder=layer, clip_on=False, joinstyle="miter")
         self._axes.add_patch(patch)
 
     def dot(
-        self, at: Point, radius: float, fill: str = look.INK, edge: str = "none", weight: float = 0.7, *, layer: float = 6.0
+        self,
+        at: Point,
+        radius: float,
+        fill: str = look.INK,
+        edge: str = "none",
+        weight: float = 0.7,
+        *,
+        layer: float = 6.0,
     ) -> None:
         """Draw a disc about a point."""
         circle = Outline.circle(at, radius)
@@ -107,7 +118,14 @@ class Sheet:
         self._axes.add_patch(patch)
 
     def write(
-        self, at: Point, text: str, voice: Voice, align: str = "left", *, ground: bool = False, layer: float = 9.0
+        self,
+        at: Point,
+        text: str,
+        voice: Voice,
+        align: str = "left",
+        *,
+        ground: bool = False,
+        layer: float = 9.0,
     ) -> Box:
         """Write one line with its baseline at a point; return the box it fills.
 
@@ -123,7 +141,9 @@ class Sheet:
             return box
         left = box.left
         for part, say in parts:
-            self._set((left, at[1] + (0.0 if say is voice else RAISE * voice.size)), part, say, "left", layer)
+            blank = say.width(part) - say.width(part.lstrip())  # a page drops a blank that begins a text
+            up = at[1] + (0.0 if say is voice else RAISE * voice.size)
+            self._set((left + blank, up), part.strip(), say, "left", layer)
             left += say.width(part)
         return box
 

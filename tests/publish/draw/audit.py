@@ -1,14 +1,11 @@
-"""Prove a sheet clean: measured by the renderer on the finished drawing, not by the code that placed the texts."""
+"""Prove a sheet clean: measured by the renderer on the finished drawing, not by what placed the texts."""
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
-
 from matplotlib import rc_context
+from matplotlib.backends.backend_agg import RendererAgg
+from matplotlib.figure import Figure
 from matplotlib.text import Text
-
-if TYPE_CHECKING:
-    from matplotlib.figure import Figure
 
 TOLERANCE = 0.6  # pt that two boxes may share: the ends of tails and accents
 
@@ -18,9 +15,11 @@ def texts(figure: Figure) -> list[Text]:
     return [t for t in figure.findobj(Text) if t.get_visible() and t.get_text().strip()]
 
 
-def ink(text: Text, renderer) -> tuple[float, float, float, float]:
+def ink(text: Text, renderer: RendererAgg) -> tuple[float, float, float, float]:
     """Return the box of what a text prints, from its baseline and the extent of its own letters."""
-    width, height, below = renderer.get_text_width_height_descent(text.get_text(), text.get_fontproperties(), False)
+    width, height, below = renderer.get_text_width_height_descent(
+        text.get_text(), text.get_fontproperties(), ismath=False
+    )
     across, baseline = text.get_transform().transform(text.get_position())
     left = across - {"left": 0.0, "center": width / 2, "right": width}[text.get_horizontalalignment()]
     return left, baseline - below, left + width, baseline - below + height
@@ -34,7 +33,12 @@ def faults(figure: Figure) -> list[tuple[str, str, str]]:
         measured = [(t.get_text(), ink(t, renderer), t.get_fontsize()) for t in texts(figure)]
     width, height = figure.bbox.width, figure.bbox.height
     for k, (text, box, size) in enumerate(measured):
-        if box[0] < -TOLERANCE or box[1] < -TOLERANCE or box[2] > width + TOLERANCE or box[3] > height + TOLERANCE:
+        if (
+            box[0] < -TOLERANCE
+            or box[1] < -TOLERANCE
+            or box[2] > width + TOLERANCE
+            or box[3] > height + TOLERANCE
+        ):
             found.append(("off the sheet", text, ""))
         exponent = text.startswith("\u2212") and text[1:].isdigit()
         if size < (6.0 if exponent else 8.0):

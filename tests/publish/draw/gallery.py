@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import sys
 import time
+from collections.abc import Callable, Iterator
 from pathlib import Path
 
+from matplotlib.figure import Figure
 from PIL import Image
 
 sys.path.insert(0, str(Path(__file__).parent))
@@ -14,9 +16,10 @@ import audit
 import samples
 
 from calc.publish.draw import balance, convergence, schematic, svg
+from calc.publish.draw.settings import plain
 
 
-def sheets():
+def sheets() -> Iterator[tuple[str, Callable[[], Figure]]]:
     """Name and draw each sample."""
     s = schematic.draw
     yield "star-2", lambda: s(samples.star(2))
@@ -52,7 +55,8 @@ if __name__ == "__main__":
         begun = time.perf_counter()
         figure = make()
         took = time.perf_counter() - begun
-        figure.savefig(folder / f"{name}.png", dpi=130)
+        with plain():
+            figure.savefig(folder / f"{name}.png", dpi=130)
         (folder / f"{name}.svg").write_bytes(svg(figure))
         Image.open(folder / f"{name}.png").convert("L").save(folder / f"{name}-grey.png")
-        print(f"{name:16} {took:6.2f} s", audit.faults(figure))
+        sys.stdout.write(f"{name:16} {took:6.2f} s {audit.faults(figure)}\n")

@@ -1,10 +1,11 @@
 """Invented works for the drawings: places, levels and flows of no real scheme.
 
-The flows of the star come from its own laws, in plain numbers with h = k Q|Q|, so that the balance drawn is one.
+The flows of the star follow h = k Q|Q| in plain numbers, so that the balance that is drawn is one.
 """
 
 from __future__ import annotations
 
+from dataclasses import replace
 from math import copysign, sqrt
 
 from calc.report.figures import (
@@ -20,22 +21,39 @@ from calc.report.figures import (
 )
 
 PLACES = (
-    "ostrel sedge vell marl harn tove quell dray luddon fenwick bracken corrie skell wharn dunmoor eller "
-    "garth holm inver jarrow kelder lathe mire norr oxen pell ravel sorn thorl ulver"
-).split()
+    *("ostrel", "sedge", "vell", "marl", "harn", "tove", "quell", "dray", "luddon", "fenwick"),
+    *("bracken", "corrie", "skell", "wharn", "dunmoor", "eller", "garth", "holm", "inver", "jarrow"),
+    *("kelder", "lathe", "mire", "norr", "oxen", "pell", "ravel", "sorn", "thorl", "ulver"),
+)
 DATUM = "Ostrel works datum, levelled from bench mark 7 in 2026"
+
+
+def scientific(value: float) -> str:
+    """Return a value as the report prints small ones."""
+    if value == 0 or abs(value) >= 1e-3:
+        return f"{value:.3g}"
+    lead, power = f"{value:.2e}".split("e")
+    return f"{lead} × 10⁻{str(abs(int(power))).translate(str.maketrans('0123456789', '⁰¹²³⁴⁵⁶⁷⁸⁹'))}"
 
 
 def _flow(fall: float, resistance: float) -> float:
     return copysign(sqrt(abs(fall) / resistance), fall)
 
 
-def star(count: int = 3, *, withdrawal: float = 12.0, levels: tuple[float, ...] = (), elevation: float | None = 171.0) -> Schematic:
+def star(
+    count: int = 3,
+    *,
+    withdrawal: float = 12.0,
+    levels: tuple[float, ...] = (),
+    elevation: float | None = 171.0,
+) -> Schematic:
     """One junction and ``count`` reservoirs; the head is where inflow and outflow agree, by halving."""
     heights = levels or tuple(214.6 - 31.6 * i / max(1, count - 1) for i in range(count))
     lengths = tuple(1850.0 + 733.0 * ((3 * i) % count) for i in range(count))
     bores = tuple((384.4, 296.8, 249.4, 196.2)[i % 4] for i in range(count))
-    resistances = tuple(0.00081 * length / 1000 * (384.4 / bore) ** 5 for length, bore in zip(lengths, bores, strict=True))
+    resistances = tuple(
+        0.00081 * length / 1000 * (384.4 / bore) ** 5 for length, bore in zip(lengths, bores, strict=True)
+    )
     head = _solve(heights, resistances, withdrawal)
     pipes = tuple(
         Pipe(
@@ -80,15 +98,22 @@ def _solve(heights: tuple[float, ...], resistances: tuple[float, ...], withdrawa
 
 
 def network(count: int, *, names: int = 0, level: float | None = None) -> Schematic:
-    """``count`` pipes between nodes with given heads, falling the way the water runs; ``names`` letters in each name."""
+    """``count`` pipes between nodes of given heads, falling as the water runs; ``names`` letters a name."""
     nodes = max(3, round(count * 0.66))
     reservoirs = max(2, nodes // 5)
 
     def named(i: int, what: str) -> str:
         place = f"{PLACES[i % len(PLACES)]}{'' if i < len(PLACES) else '-' + str(i // len(PLACES) + 1)}{what}"
-        return place if len(place) >= names else (place + "-" + "valve-house-on-the-north-road")[:names].rstrip("-")
+        return (
+            place
+            if len(place) >= names
+            else (place + "-" + "valve-house-on-the-north-road")[:names].rstrip("-")
+        )
 
-    heads = [level if level is not None else round(216.0 - 47.0 * i / nodes - 3.1 * ((7 * i) % 5), 2) for i in range(nodes)]
+    heads = [
+        level if level is not None else round(216.0 - 47.0 * i / nodes - 3.1 * ((7 * i) % 5), 2)
+        for i in range(nodes)
+    ]
     titles = [named(i, "") for i in range(nodes)]
     pairs = [(i, i + 1 + (i % 2 if i + 2 < nodes else 0)) for i in range(nodes - 1)]
     pairs += [((5 * k) % nodes, ((5 * k) % nodes + 2 + k % 3) % nodes) for k in range(count)]
@@ -114,7 +139,14 @@ def network(count: int, *, names: int = 0, level: float | None = None) -> Schema
         f"Network of {count} pipes, base case",
         tuple(Reservoir(titles[i], heads[i], f"{heads[i]:.2f} m") for i in spaced),
         tuple(
-            Junction(titles[i], heads[i], f"{heads[i]:.2f} m", heads[i] - 20, f"{heads[i] - 20:.2f} m", "4.2 L/s" if i % 3 == 1 else "")
+            Junction(
+                titles[i],
+                heads[i],
+                f"{heads[i]:.2f} m",
+                heads[i] - 20,
+                f"{heads[i] - 20:.2f} m",
+                "4.2 L/s" if i % 3 == 1 else "",
+            )
             for i in range(nodes)
             if i not in spaced
         ),
@@ -137,7 +169,7 @@ def balance(count: int = 3, trials: int = 7, *, long: bool = False) -> Balance:
     rows = []
     for number in range(1, trials + 1):
         head = (low + high) / 2
-        rows.append(Trial(number, head, total(head), low, high, f"{high - low:.3g} m"))
+        rows.append(Trial(number, head, total(head), low, high, scientific(high - low) + " m"))
         low, high = (head, high) if total(head) > 0 else (low, head)
     name = "-through-the-old-valve-house" if long else ""
     return Balance(
@@ -171,7 +203,7 @@ def convergence(trials: int = 7, *, zeros: bool = False) -> Convergence:
                 "imbalance",
                 "L/s",
                 tuple(values),
-                tuple("0" if value == 0 else f"{value:+.3g}".replace("-", "−") for value in values),
+                tuple(scientific(abs(value)) for value in values),
                 1e-6,
                 "1 × 10⁻⁶ L/s",
                 signed=True,
@@ -197,7 +229,45 @@ def newton(iterations: int = 6, *, zeros: bool = False) -> Convergence:
         "iteration",
         tuple(range(iterations)),
         (
-            Panel("largest imbalance at a junction", "L/s", tuple(imbalances), tuple(f"{v:.2g}" for v in imbalances), 1e-6, "1 × 10⁻⁶ L/s"),
-            Panel("largest energy error", "m", tuple(energies), tuple(f"{v:.2g}" for v in energies), 1e-7, "1 × 10⁻⁷ m"),
+            Panel(
+                "largest imbalance at a junction",
+                "L/s",
+                tuple(imbalances),
+                tuple(map(scientific, imbalances)),
+                1e-6,
+                "1 × 10⁻⁶ L/s",
+            ),
+            Panel(
+                "largest energy error",
+                "m",
+                tuple(energies),
+                tuple(map(scientific, energies)),
+                1e-7,
+                "1 × 10⁻⁷ m",
+            ),
+        ),
+    )
+
+
+def hostile(words: str) -> Schematic:
+    """Return the star of three with one wild text everywhere a project may put text."""
+    works = star(3)
+    names = {r.name: f"{r.name[:2]} {words}" for r in works.reservoirs} | {"marl-cross": f"mc {words}"}
+    return replace(
+        works,
+        title=words,
+        datum=words[:120],
+        level_unit="m",
+        reservoirs=tuple(replace(r, name=names[r.name]) for r in works.reservoirs),
+        junctions=tuple(replace(j, name=names[j.name]) for j in works.junctions),
+        pipes=tuple(
+            replace(
+                p,
+                name=f"{p.name[:2]} {words}",
+                start=names[p.start],
+                end=names[p.end],
+                turns=(words,) if p.turns else (),
+            )
+            for p in works.pipes
         ),
     )
