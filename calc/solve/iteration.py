@@ -26,8 +26,10 @@ SHORTENINGS = 12
 """Times one step may be shortened."""
 DECIDED = 1e-6
 """Steps that change flows by less than this share of the largest are too short to be judged."""
-RANGE = 1e12
-"""Largest ratio of conductances kept when the system is singular to rounding; it slows the steps, no more."""
+RANGES = (np.inf, 1e12, 1e9, 1e6)
+"""Largest ratios of conductances kept, in turn, until the system for the heads is solved well enough."""
+KEPT = 1e-3
+"""It is when the step leaves imbalances below this share of the largest flow or a tenth of what they were."""
 
 
 @dataclass(frozen=True)
@@ -82,7 +84,7 @@ class Iteration:
         self.between = self.grid.between_reservoirs
         unit = branches.flow_at_unit_velocity
         loss, _ = branches.losses(unit)
-        self.linear = _capped(np.where(network.open, unit / loss, 0.0))
+        self.linear = _capped(np.where(network.open, unit / loss, 0.0), RANGES[1])
         self.quadratic = loss / unit**2
         self.trickle = TRICKLE * unit
 
@@ -119,10 +121,7 @@ class Iteration:
         Along a step that keeps continuity, Σ error · change is the slope of the pipes' content: it begins
         positive and falls. Where it comes out far below zero the step went too far.
         """
-        try:
-            change, turn = self._turn(state, state.conductance)
-        except SingularGrid:
-            change, turn = self._turn(state, _capped(state.conductance))
+        change, turn = self._turn(state)
         before = float(np.sum(state.error * turn))
         judged = (
             np.max(np.abs(turn), initial=0.0) > DECIDED * state.largest
@@ -139,12 +138,26 @@ class Iteration:
             new = self._moved(state, change, turn, share)
         return new, share
 
-    def _turn(self, state: State, conductance: Array) -> tuple[Array, Array]:
-        """Return the changes of head, shape (n,), and of flow, shape (m,), that a full step makes."""
-        pushed = np.where(self.between, 0.0, conductance * state.error)
-        change = self.grid.solve(conductance, state.imbalance + self.grid.gathered(pushed))
-        drawn = conductance * self.grid.drop(change, np.zeros_like(change))
-        return change, pushed + np.where(self.between, 0.0, drawn)
+    def _turn(self, state: State) -> tuple[Array, Array]:
+        """Return the changes of head, shape (n,), and of flow, shape (m,), that a full step makes.
+
+        Where wide short pipes hang on narrow long ones the system may be singular to rounding; the widest are
+        then taken as less wide, which changes the way to the answer and not the answer.
+        """
+        enough = max(KEPT * state.largest + float(np.max(self.trickle)), 0.1 * state.largest_imbalance)
+        for largest in RANGES:
+            conductance = _capped(state.conductance, largest)
+            pushed = np.where(self.between, 0.0, conductance * state.error)
+            try:
+                change = self.grid.solve(conductance, state.imbalance + self.grid.gathered(pushed))
+            except SingularGrid:
+                continue
+            drawn = conductance * self.grid.drop(change, np.zeros_like(change))
+            turn = pushed + np.where(self.between, 0.0, drawn)
+            left = state.imbalance + self.grid.gathered(turn)
+            if np.max(np.abs(left), initial=0.0) <= enough:
+                return change, turn
+        raise SingularGrid("the conductances of the pipes differ too much")
 
     def _moved(self, state: State, change: Array, turn: Array, share: float) -> State:
         head, rest = sum_with_rest(state.head, state.rest, share * change)
@@ -163,6 +176,6 @@ class Iteration:
         return bool(balanced and found and closed)
 
 
-def _capped(conductance: Array) -> Array:
+def _capped(conductance: Array, largest: float) -> Array:
     carrying = conductance[conductance > 0]
-    return np.minimum(conductance, RANGE * np.min(carrying, initial=np.inf))
+    return np.minimum(conductance, largest * np.min(carrying, initial=np.inf))
