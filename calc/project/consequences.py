@@ -72,25 +72,29 @@ def _check_excluded(reader: Reader, project: Project, case: Case, line: Line) ->
         if line.field not in pair:
             continue
         other = pair[0] if line.field == pair[1] else pair[1]
-        for row in line.rows:
-            if _stands(project, case, line.group, row, other):
-                name = f" of {quoted(row)}" if row else ""
-                found = f"'{other}'{name} stands already, and excludes '{line.field}'"
-                hint = f"change '{other}' instead"
-                reader.note(line.mark, "excluded-pair", _path(case, line), found, "one of the two", hint)
-                return
+        standing = _standing(project, case, line.group, other)
+        row = next((row for row in line.rows if row in standing), None)
+        if row is not None:
+            name = f" of {quoted(row)}" if row else ""
+            found = f"'{other}'{name} stands already, and excludes '{line.field}'"
+            hint = f"change '{other}' instead"
+            reader.note(line.mark, "excluded-pair", _path(case, line), found, "one of the two", hint)
 
 
-def _stands(project: Project, case: Case, group: str, row: str, field: str) -> bool:
-    """Return whether a field is stated, or set in the chain; a liquid's default counts as stated."""
-    stated = project.group(group)[row].stated.get(field)
-    if stated is not None and not (stated.shipped and group in GROUPS):
-        return True
-    lines = (line for _, line in lines_in(project, case.id))
-    return any(
-        line.group == group and line.field == field and line.how == "with" and row in line.rows
-        for line in lines
-    )
+def _standing(project: Project, case: Case, group: str, field: str) -> set[str]:
+    """Return the rows in which a field is stated or set in the chain.
+
+    The default temperature of the liquid counts as stated, the default withdrawal of a junction does not.
+    """
+    found = {
+        row
+        for row, record in project.group(group).items()
+        if (stated := record.stated.get(field)) is not None and not (stated.shipped and group in GROUPS)
+    }
+    for _, line in lines_in(project, case.id):
+        if line.group == group and line.field == field and line.how == "with":
+            found.update(line.rows)
+    return found
 
 
 def _check_law(reader: Reader, now: Effective, case: Case, line: Line) -> None:

@@ -88,6 +88,8 @@ def read_people(reader: Reader, entry: Entry | None) -> dict[str, Record]:
             reader.unknown(key, path, ROLES)
             continue
         stated, _ = read_fields(reader, PERSON, member, path, key.mark)
+        if "date" in stated:
+            check_date(reader, stated["date"], f"{path}.date")
         found[key.text] = Record(key.text, key.mark, stated)
     return found
 

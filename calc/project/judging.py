@@ -8,7 +8,6 @@ from dataclasses import replace
 from calc.components import Field, Quantity, Record, Schema, Stated, Text
 from calc.criteria import ALL, Criterion
 from calc.kinds import Kind
-from calc.problems import nearest
 from calc.project import later
 from calc.project.header import joined, scalars
 from calc.project.model import Project
@@ -51,7 +50,7 @@ def read_criteria(
             words = f"unknown criterion {quoted(key.text)}"
             known = list(BY_ID)
             expected = f"one of {listed(known)}"
-            reader.note(key.mark, "unknown-criterion", path, words, expected, nearest(key.text, known))
+            reader.note(key.mark, "unknown-criterion", path, words, expected, reader.near(key.text, known))
     return found
 
 
@@ -148,7 +147,7 @@ def note_unknown_case(reader: Reader, scalar: Scalar, path: str, cases: Collecti
     """Note a case that does not exist."""
     found = f"there is no case {quoted(scalar.text)}"
     expected = f"one of {listed(list(cases))}"
-    reader.note(scalar.mark, "unknown-case", path, found, expected, nearest(scalar.text, list(cases)))
+    reader.note(scalar.mark, "unknown-case", path, found, expected, reader.near(scalar.text, cases))
 
 
 def subjects_of(project: Project, criterion: Record) -> tuple[str, ...]:

@@ -9,8 +9,8 @@ from dataclasses import dataclass
 
 from calc.components import SCHEMAS, Field, Schema, Word
 from calc.physics.friction import LAW_NAMES
-from calc.problems import nearest
-from calc.project.reader import MOST_TO_COMPARE, Reader, listed, quoted
+from calc.project import later
+from calc.project.reader import Reader, listed, quoted
 from calc.project.settings import FLUID, SITE, TRANSITION
 from calc.yamlfile import Scalar
 
@@ -78,6 +78,8 @@ def follow(
         case [group, pattern, _] if group in GROUPS and _WORD.fullmatch(pattern):
             target = _rows(reader, written, path, works, group)
             return target and _field(reader, written, path, GROUPS[group], target)
+        case [group, *_] if group in later.TOP:
+            reader.not_yet(written.mark, path, written.text, later.TOP[group])
         case parts:
             _nowhere(reader, written, path, parts[0], whole=whole)
     return None
@@ -89,11 +91,14 @@ def _rows(
     """Return the components that a path reaches."""
     pattern = written.text.split(".")[1]
     ids = works[group]
-    rows = matching(pattern, ids)
+    key = (group, pattern)
+    if key not in reader.reached:
+        reader.reached[key] = matching(pattern, ids)
+    rows = reader.reached[key]
     if rows:
         return Target(group, rows, None)
     what = "matches" if "*" in pattern else "has the id"
-    hint = nearest(pattern, list(ids)) if len(ids) <= MOST_TO_COMPARE else ""
+    hint = reader.near(pattern, ids)
     found = f"none of the {group} {what} {quoted(pattern)}"
     reader.note(written.mark, "unknown-path", path, found, "an id, or * for any", hint)
     return None
@@ -108,7 +113,9 @@ def _field(reader: Reader, written: Scalar, path: str, schema: Schema, target: T
     known = [one.name for one in schema.fields]
     group = target.group if target.group in GROUPS else f"'{target.group}'"
     found = f"there is no field {quoted(name)} in {group}"
-    reader.note(written.mark, "unknown-path", path, found, f"one of {listed(known)}", nearest(name, known))
+    reader.note(
+        written.mark, "unknown-path", path, found, f"one of {listed(known)}", reader.near(name, known)
+    )
     return None
 
 
@@ -116,6 +123,6 @@ def _nowhere(reader: Reader, written: Scalar, path: str, group: str, *, whole: b
     known = [*GROUPS, *SINGLE, "constants", "friction"]
     form = "group.id or group.id.field" if whole else "group.id.field"
     expected = f"{form} with group one of {listed(list(GROUPS))}; or fluid.field, site.field, friction"
-    hint = nearest(group, known) if group not in known else ""
+    hint = reader.near(group, known) if group not in known else ""
     found = f"{quoted(written.text)} leads nowhere"
     reader.note(written.mark, "unknown-path", path, found, expected, hint)

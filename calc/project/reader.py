@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 import unicodedata
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Collection, Sequence
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
 
@@ -50,7 +50,9 @@ def quoted(text: str) -> str:
     return "'" + "".join(letter if letter.isprintable() else "?" for letter in shown) + "'"
 
 
+_LONGEST_PATH = 160
 _LONGEST_LIST = 24
+_MOST_HINTS = 100
 MOST_TO_COMPARE = 2000
 """Above so many words, none is sought that comes near."""
 
@@ -77,6 +79,8 @@ class Reader:
         Ranges and deviations by path.
     defaults : dict
         Defaults in use by path.
+    reached : dict
+        The ids that each pattern of each group reaches, so that many lines share one tuple.
     """
 
     problems: list[Problem] = field(default_factory=list)
@@ -84,7 +88,9 @@ class Reader:
     nodes: set[str] | None = None
     spreads: dict[str, Record] = field(default_factory=dict)
     defaults: dict[str, Stated] = field(default_factory=dict)
+    reached: dict[tuple[str, str], tuple[str, ...]] = field(default_factory=dict)
     _keys_noted: set[Mark] = field(default_factory=set)
+    _hints: int = 0
 
     def note(  # noqa: PLR0917 - in the order of a Problem
         self, mark: Mark, code: str, path: str, found: str, expected: str = "", hint: str = ""
@@ -94,7 +100,16 @@ class Reader:
             if mark in self._keys_noted:
                 return
             self._keys_noted.add(mark)
+        if len(path) > _LONGEST_PATH or not path.isprintable():
+            path = quoted(path)[1:-1]
         self.problems.append(Problem(mark, code, path, found, expected, hint))
+
+    def near(self, word: str, known: Collection[str]) -> str:
+        """Return "did you mean 'x'?", or nothing: not among very many words, nor after very many hints."""
+        if len(known) > MOST_TO_COMPARE or self._hints >= _MOST_HINTS:
+            return ""
+        self._hints += 1
+        return nearest(word[:_LONGEST_SHOWN], sorted(known))
 
     def not_yet(self, mark: Mark, path: str, word: str, hint: str) -> None:
         """Note a word that is for later."""
@@ -127,7 +142,7 @@ class Reader:
         """Note a key that does not exist."""
         self.note(
             key.mark, "unknown-key", path, f"unknown key {quoted(key.text)}",
-            f"one of {listed(known)}", nearest(key.text, known),
+            f"one of {listed(known)}", self.near(key.text, known),
         )  # fmt: skip
 
     def id(self, key: Scalar, path: str, what: str) -> bool:
@@ -152,7 +167,9 @@ class Reader:
             self.not_yet(scalar.mark, path, scalar.text, later.LAWS[scalar.text])
             return None
         found = f"unknown {what} {quoted(scalar.text)}"
-        self.note(scalar.mark, code, path, found, f"one of {listed(options)}", nearest(scalar.text, options))
+        self.note(
+            scalar.mark, code, path, found, f"one of {listed(options)}", self.near(scalar.text, options)
+        )
         return None
 
     def scalar(self, node: Node, path: str, expected: str) -> Scalar | None:
@@ -232,7 +249,7 @@ class Reader:
             return Stated(scalar.text, scalar.text, scalar.mark)
         known = sorted(self.references)
         hint = (
-            nearest(scalar.text, known) or f"list it under 'references': {{{scalar.text[:20]}: {{title: …}}}}"
+            self.near(scalar.text, known) or f"list {quoted(scalar.text)} under 'references', with its title"
         )
         found = f"there is no reference {quoted(scalar.text)}"
         self.note(scalar.mark, "unknown-reference", path, found, "the id of one of the references", hint)

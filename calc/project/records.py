@@ -6,9 +6,8 @@ from collections.abc import Iterable, Mapping
 
 from calc.components import Ends, Field, Fittings, Node, Schema, Stated
 from calc.marks import Mark
-from calc.problems import nearest
 from calc.project import later
-from calc.project.reader import LONGEST_ID, MOST_TO_COMPARE, Reader, quoted
+from calc.project.reader import LONGEST_ID, Reader, quoted
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Node as YamlNode
 from calc.yamlfile import Scalar
@@ -89,7 +88,7 @@ def read_node(reader: Reader, node: YamlNode, path: str) -> Stated | None:
     if scalar is None:
         return None
     if reader.nodes is not None and scalar.text not in reader.nodes:
-        hint = nearest(scalar.text, sorted(reader.nodes)) if len(reader.nodes) <= MOST_TO_COMPARE else ""
+        hint = reader.near(scalar.text, reader.nodes)
         found = f"there is no node {quoted(scalar.text)}"
         reader.note(scalar.mark, "unknown-node", path, found, "the id of a reservoir or junction", hint)
         return None

@@ -68,11 +68,14 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
             nodes[key.text] = key.mark
             records[key.text] = Record(key.text, key.mark, stated)
     doubtful = any(problem.code not in _HARMLESS for problem in reader.problems[before:])
-    reader.nodes = None if doubtful else set(nodes)
+    reader.nodes = None if doubtful else {*nodes, *_outlets(top)}
     for key, member in _members(reader, works, folder, top.get("pipes"), "a pipe"):
         works.pipes[key.text] = _read_pipe(reader, key, member, works, friction)
     ends = ("from", "to")
-    works.whole = not doubtful and all(end in one.stated for one in works.pipes.values() for end in ends)
+    later_joins = any(name in top for name in ("outlets", "pumps", "valves"))
+    works.whole = not (doubtful or later_joins) and all(
+        end in one.stated for one in works.pipes.values() for end in ends
+    )
     _expect_some(reader, works, top)
     return works
 
@@ -85,6 +88,12 @@ _HARMLESS = frozenset(
     }
 )
 """Problems of nodes after which their ids still stand; after others, nothing is said of unknown nodes."""
+
+
+def _outlets(top: Mapping[str, Entry]) -> tuple[str, ...]:
+    """Return the ids of outlets: they are for later, but a pipe to one is not a pipe to nowhere."""
+    entry = top.get("outlets")
+    return entry.value.keys() if entry and isinstance(entry.value, MappingNode) else ()
 
 
 def _members(
@@ -160,7 +169,8 @@ def _check_pipe(reader: Reader, stated: Fields, present: tuple[str, ...], path: 
     if roughness and bore and bore.si <= roughness.si:
         found = f"{quoted(bore.written)} is no larger than the roughness, {quoted(roughness.written)}"
         reader.note(bore.mark, "rough-bore", f"{path}.bore", found, "a bore far larger than the roughness")
-    if "law" in stated and (needed := LAW_INPUT[stated["law"].text]) not in present:
+    whole = "segments" not in present
+    if whole and "law" in stated and (needed := LAW_INPUT[stated["law"].text]) not in present:
         note_missing_input(reader, mark, f"{path}.{needed}", needed, stated["law"])
 
 
