@@ -218,9 +218,7 @@ class Index:
     entries: tuple[tuple[str, str], ...]
 
 
-Block = (
-    Masthead | Heading | Paragraph | Bullets | Notes | SignOff | Table | Figure | Listing | Contents | Index
-)
+Block = Masthead | Heading | Paragraph | Bullets | Notes | SignOff | Table | Figure | Listing | Contents | Index
 
 # --- the whole --------------------------------------------------------------------------------------------------
 

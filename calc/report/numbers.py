@@ -28,8 +28,9 @@ class Format:
         Figures after the point; or
     significant : int or None
         significant figures, written as a power of ten when very large or small.
-    plus : bool
-        Whether a positive number carries its sign.
+    sign : str
+        Empty, or ``+`` (a positive number carries its sign), ``size`` (no number carries one: the direction is told
+        in words) or ``turned`` (the number is reckoned the other way round, and carries its sign).
     bound : float or None
         In the printed unit: a value smaller than this is written ``< bound``, for residuals.
     """
@@ -37,7 +38,7 @@ class Format:
     unit: str = ""
     decimals: int | None = None
     significant: int | None = None
-    plus: bool = False
+    sign: str = ""
     bound: float | None = None
 
     @property
@@ -45,18 +46,18 @@ class Format:
         """The format as one word, which `parsed` reads back."""
         figures = f"d{self.decimals}" if self.decimals is not None else f"s{self.significant}"
         bound = "" if self.bound is None else f"{self.bound!r}"
-        return "|".join((self.unit, figures, "+" if self.plus else "", bound))
+        return f"{self.unit}|{figures}|{self.sign}|{bound}"
 
 
 def parsed(spec: str) -> Format:
     """Return the format that a spec stands for."""
-    unit, figures, plus, bound = spec.split("|")
+    unit, figures, sign, bound = spec.split("|")
     count = int(figures[1:])
     return Format(
         unit,
         count if figures[0] == "d" else None,
         count if figures[0] == "s" else None,
-        bool(plus),
+        sign,
         float(bound) if bound else None,
     )
 
@@ -67,10 +68,14 @@ def written(value: float, kind: Kind, form: Format) -> str:
     Minus is U+2212, thousands are set apart by U+202F, a power of ten is ``1.3 × 10^−6`` (the caret is set as a raised
     exponent). A value that rounds to zero has no sign.
     """
-    number = value * factor(form.unit, kind)
+    number = value * (factor(form.unit, kind) if form.unit else 1.0)
+    if form.sign == "turned":
+        number = -number
     if form.bound is not None and abs(number) < form.bound:
         return f"< {_figures(form.bound, Format(significant=1))}"
-    sign = MINUS if number < 0 else "+" if form.plus and number > 0 else ""
+    sign = MINUS if number < 0 else "+" if form.sign in ("+", "turned") and number > 0 else ""
+    if form.sign == "size":
+        sign = ""
     text = _figures(abs(number), form)
     return text if not any(c in "123456789" for c in text) else sign + text
 
@@ -101,3 +106,10 @@ def read_back(text: str) -> float:
     plain = text.removeprefix("< ").replace(THIN, "").replace(MINUS, "-").removeprefix("+")
     mantissa, _, power = plain.partition(" × 10^")
     return float(mantissa) * 10.0 ** int(power or 0)
+
+
+def last_place(text: str) -> float:
+    """Return the worth of one unit in the last figure of a written text, in the printed unit."""
+    mantissa, _, power = text.removeprefix("< ").partition(" × 10^")
+    decimals = len(mantissa.partition(".")[2])
+    return 10.0 ** (int(power.replace(MINUS, "-") or 0) - decimals)

@@ -1,0 +1,159 @@
+"""Composing: sections under way, the addresses of their lines, and numbers by their ids."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import replace
+
+from calc.account import Account
+from calc.equation.law import takes
+from calc.ledger import Combined, Derived, Judged, Ledger, Solved, Spot, proofs
+from calc.report.document import (
+    Block,
+    Cite,
+    Number,
+    Own,
+    Part,
+    Parts,
+    Quoted,
+    Row,
+    Section,
+    Table,
+    TableColumn,
+)
+from calc.report.formats import usual
+from calc.report.numbers import Format, written
+
+NOTHING = "–"
+
+
+class Composer:
+    """Gathers the sections of a document.
+
+    Parameters
+    ----------
+    account : Account
+        What is reported.
+    purpose : str
+        Purpose of issue: checking, approval or record.
+    """
+
+    def __init__(self, account: Account, purpose: str) -> None:
+        self.account = account
+        self.ledger: Ledger = account.ledger
+        self.purpose = purpose
+        display = account.project.sections["display"]
+        self.flow_unit = display.text("flow", "L/s").replace("m3", "m³")
+        self.paper = display.text("paper", "A4")
+        self.addresses: dict[str, str] = {}
+        self.sections: list[Section] = []
+        self.figures = 0
+
+    def begin(self, key: str, title: str, *lead: Part) -> Sheet:
+        """Begin a section."""
+        return Sheet(self, key, str(len(self.sections) + 1), title, lead)
+
+    def number(self, at: Spot | str, form: Format | None = None, *, with_unit: bool = False) -> Number:
+        """Return a ledger value as printed, in its usual format unless another is given."""
+        spot = self.ledger.spot(at) if isinstance(at, str) else at
+        form = form or usual(spot.column, self.flow_unit)
+        return Number(spot.id, form, written(spot.value, spot.column.kind, form), with_unit)
+
+    def turned(self, at: Spot | str, sign: str) -> Number:
+        """Return a ledger value in its usual format with another treatment of its sign."""
+        spot = self.ledger.spot(at) if isinstance(at, str) else at
+        return self.number(spot, replace(usual(spot.column, self.flow_unit), sign=sign))
+
+    def figure_number(self) -> str:
+        """Return the number of the next figure."""
+        self.figures += 1
+        return str(self.figures)
+
+
+class Sheet:
+    """A section under way; closing it hands it to the composer."""
+
+    def __init__(self, composer: Composer, key: str, number: str, title: str, lead: Parts) -> None:
+        self.composer = composer
+        self.key, self.number, self.title, self.lead = key, number, title, lead
+        self.blocks: list[Block] = []
+        self.lines = 0
+
+    def add(self, *blocks: Block) -> None:
+        """Add blocks."""
+        self.blocks += blocks
+
+    def address(self, refs: Iterable[str] = ()) -> str:
+        """Return the address of the next line, on which these ids stand."""
+        self.lines += 1
+        address = f"{self.number}.{self.lines}"
+        for ref in refs:
+            self.composer.addresses.setdefault(ref, address)
+        return address
+
+    def row(self, *cells: Parts, refs: Iterable[str] = (), tone: str = "") -> Row:
+        """Return the next line as a row."""
+        held = tuple(refs)
+        return Row(self.address(held), cells, held, tone)
+
+    def group(self, *parts: Part) -> Row:
+        """Return a heading row, which has no address."""
+        return Row("", (parts,), tone="group")
+
+    def table(self, key: str, columns: Iterable[TableColumn], rows: Iterable[Row], **how: bool) -> None:
+        """Add a table, unless it would be empty."""
+        held = tuple(rows)
+        if any(row.tone != "group" for row in held):
+            self.add(Table(key, tuple(columns), held, **how))
+
+    def close(self) -> None:
+        """End the section."""
+        held = Section(self.key, self.number, self.title, self.lead, tuple(self.blocks))
+        self.composer.sections.append(held)
+
+
+def column(head: str, width: float | None = None, **how: str | bool) -> TableColumn:
+    """Return a table column with a plain head."""
+    return TableColumn((head,), width=width, **how)  # type: ignore[arg-type]
+
+
+def figure_column(head: str, unit: str = "", width: float | None = None, *, edge: bool = False) -> TableColumn:
+    """Return a right-aligned column of numbers with their unit under the head."""
+    return TableColumn((head,), unit=unit, align="right", width=width, edge=edge, role="value")
+
+
+FROM = TableColumn(("from",), width=19, edge=True, role="from")
+INTO = TableColumn(("into",), width=19, role="into")
+
+
+def name(text: str) -> Quoted:
+    """Return an id or text of the project."""
+    return Quoted(text)
+
+
+def place(text: str) -> Own:
+    """Return a place in a file."""
+    return Own(text, "file")
+
+
+def inputs_of(ledger: Ledger, spot: Spot) -> list[str]:
+    """Return the ids of the numbers that a number rests on."""
+    origin, row = spot.column.origin, spot.row
+    match origin:
+        case Derived():
+            leaf = origin.leaves[origin.which[row]]
+            found = [origin.inputs[n].spot(row) for n in takes(leaf)]
+        case Combined():
+            found = [origin.terms.spot(k) for k, into in enumerate(origin.into.tolist()) if into == row]
+        case Judged():
+            found = [origin.margin.spot(row)]
+        case Solved():
+            return [proof.id for proof in proofs(ledger, spot.column, row)]
+        case _:
+            return []
+    return [Spot(*one).id for one in found if one is not None]
+
+
+def cited(ledger: Ledger, spots: Iterable[Spot]) -> Cite:
+    """Return a citation of all that some numbers rest on."""
+    return Cite(tuple(dict.fromkeys(ref for spot in spots for ref in inputs_of(ledger, spot))))

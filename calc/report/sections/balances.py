@@ -1,0 +1,244 @@
+"""Checks of a case: continuity at junctions, energy between reservoirs, the second opinion."""
+
+from __future__ import annotations
+
+from decimal import Decimal
+
+import numpy as np
+
+from calc.account import CaseAccount, Path
+from calc.kinds import FLOW
+from calc.ledger import Combined, Program, Spot, View
+from calc.ledger.accountant import Accountant
+from calc.report.composer import Composer, Sheet, cited, column, figure_column, name
+from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Row, Soft, Strong, TableColumn
+from calc.report.formats import usual
+from calc.report.numbers import Format, read_back, written
+from calc.report.sections.results import MOST_ROWS
+from calc.units import factor
+
+FULL_DECIMALS = 6
+FROM = TableColumn(("from",), width=26, edge=True, role="from")
+
+
+def add_balances(sheet: Sheet, case: CaseAccount) -> None:
+    """Add the three ways in which the books of a case are closed."""
+    _continuity(sheet, case)
+    _energy(sheet, case)
+    _opinion(sheet, case)
+
+
+def _continuity(sheet: Sheet, case: CaseAccount) -> None:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    held = [c for c in ledger.find("junctions.imbalance", case.id) if c.case == case.id]
+    if not held:
+        return
+    sheet.add(Heading(("Continuity at junctions",)))
+    columns = (
+        column("toward the junction", role="statement"),
+        figure_column("in full", composer.flow_unit, 34, edge=True),
+        figure_column("as printed", composer.flow_unit, 28),
+        FROM,
+    )
+    rows: list[Row] = []
+    imbalance = held[0]
+    for k, junction in enumerate(imbalance.rows[:MOST_ROWS]):
+        rows.append(sheet.group("Junction ", name(junction)))
+        rows += _junction(sheet, case, Spot(imbalance, k), junction)
+    sheet.table(f"continuity-{case.id}", columns, rows)
+    said = "As printed: each flow rounded as in the tables, and the sum of the rounded flows."
+    sheet.add(Paragraph((said,), "small"))
+
+
+def _junction(sheet: Sheet, case: CaseAccount, imbalance: Spot, junction: str) -> list[Row]:
+    composer = sheet.composer
+    origin = imbalance.column.origin
+    if not isinstance(origin, Combined):
+        return []
+    rows, texts, ids = [], [], []
+    unit = composer.flow_unit
+    for k, into in enumerate(origin.into.tolist()):
+        found = origin.terms.spot(k)
+        if into != imbalance.row or found is None:
+            continue
+        spot = Spot(*found)
+        sign = "turned" if origin.signs[k] < 0 else "+"
+        full = composer.number(spot, Format(unit, decimals=FULL_DECIMALS, sign=sign))
+        usual_form = usual(spot.column, unit)
+        printed = composer.number(spot, Format(unit, usual_form.decimals, sign=sign))
+        rows.append(sheet.row(_said(spot, origin.signs[k]), (full,), (printed,), (Cite((spot.id,)),)))
+        texts.append(printed.text)
+        ids.append(spot.column.rows[spot.row] if not spot.column.of else spot.column.of)
+    total = _printed_sum(composer, case, junction, ids, texts)
+    full = composer.number(imbalance, Format(unit, decimals=FULL_DECIMALS, bound=10.0**-FULL_DECIMALS))
+    rows.append(
+        sheet.row(
+            (Strong(("Imbalance",)),),
+            (Strong((full,)),),
+            (total,),
+            (cited(composer.ledger, [imbalance]),),
+            refs=(imbalance.id,),
+            tone="proved",
+        )
+    )
+    return rows
+
+
+def _said(spot: Spot, sign: float) -> Parts:
+    row = spot.column.rows[spot.row]
+    if spot.column.group == "junctions":
+        return ("withdrawal",)
+    toward = sign * spot.value
+    words = ", from it" if toward < 0 else ", to it" if toward > 0 else ", at rest"
+    return (name(row), Soft((words,)))
+
+
+def _printed_sum(composer: Composer, case: CaseAccount, junction: str, ids: list[str], texts: list[str]) -> Number:
+    """Enter the rounded flows as printed, and their sum, so that the printed column adds up on paper."""
+    ledger, unit = composer.ledger, composer.flow_unit
+    scale = factor(unit, FLOW)
+    values = [float(Decimal(repr(read_back(text))) / Decimal(repr(scale))) for text in texts]
+    said = Program("a flow toward the junction as printed, rounded")
+    rows = [f"{junction}/{row}" for row in ids]
+    held = ledger.enter("printed.flow_toward", FLOW, rows, values, said, case=case.id)
+    total = Accountant(ledger, case.id).combine(
+        "printed.imbalance",
+        "sum",
+        View.whole(held),
+        np.zeros(len(rows), dtype=np.int64),
+        [junction],
+        words="sum of the flows as printed",
+    )
+    form = Format(unit, decimals=_decimals(texts))
+    return Number(total.id(0), form, written(float(total.values[0]), FLOW, form))
+
+
+def _decimals(texts: list[str]) -> int:
+    return max((len(text.partition(".")[2]) for text in texts), default=2)
+
+
+def _energy(sheet: Sheet, case: CaseAccount) -> None:
+    if not case.paths:
+        return
+    sheet.add(Heading(("Energy between reservoirs",)))
+    columns = (
+        column("along the path", role="statement"),
+        figure_column("friction", "m", 26, edge=True),
+        figure_column("fittings", "m", 26),
+        figure_column("head", "m", 26, edge=True),
+        FROM,
+    )
+    rows: list[Row] = []
+    for path in case.paths[:MOST_ROWS]:
+        rows += _path(sheet, case, path)
+    sheet.table(f"energy-{case.id}", columns, rows)
+    said = "Losses are reckoned in the direction of the walk; against the flow they are negative."
+    sheet.add(Paragraph((said,), "small"))
+
+
+HEAD = Format("m", decimals=4)
+
+
+def _node(composer: Composer, case: str, node: str) -> Spot:
+    group, quantity = ("reservoirs", "level") if node in composer.account.project.reservoirs else ("junctions", "head")
+    return composer.ledger.spot(f"{group}.{node}.{quantity}@{case}")
+
+
+def _path(sheet: Sheet, case: CaseAccount, path: Path) -> list[Row]:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    rows = [sheet.group("From ", name(path.start), " to ", name(path.end))]
+    start = _node(composer, case.id, path.start)
+    rows.append(sheet.row((name(path.start),), ("",), ("",), (composer.number(start, HEAD),), (Cite((start.id,)),)))
+    for pipe, node, sign in zip(path.pipes, path.nodes[1:], path.signs, strict=True):
+        losses = []
+        for quantity in ("friction_loss", "fitting_loss"):
+            spot = ledger.spot(f"pipes.{pipe}.{quantity}@{case.id}")
+            losses.append((composer.number(spot, Format("m", decimals=4, sign="turned" if sign < 0 else "")), spot.id))
+        head = _node(composer, case.id, node)
+        rows.append(
+            sheet.row(
+                ("less loss in ", name(pipe), ", ", name(node)),
+                (losses[0][0],),
+                (losses[1][0],),
+                (composer.number(head, HEAD),),
+                (Cite((losses[0][1], losses[1][1], head.id)),),
+            )
+        )
+    error = ledger.spot(f"paths.{path.id}.closing_error@{case.id}")
+    rows.append(
+        sheet.row(
+            (Strong(("Closing error",)), ", difference of levels less all losses"),
+            ("",),
+            ("",),
+            (Strong((composer.number(error),)),),
+            (cited(ledger, [error]),),
+            refs=(error.id,),
+            tone="proved",
+        )
+    )
+    return rows
+
+
+def _opinion(sheet: Sheet, case: CaseAccount) -> None:
+    agreement = case.agreement
+    if agreement is None:
+        return
+    composer = sheet.composer
+    sheet.add(Heading(("Second opinion: ", agreement.method)))
+    if agreement.flow_difference is None or agreement.head_difference is None:
+        sheet.add(Paragraph((Strong(("The second opinion does not agree: ", agreement.reason, "."), bar=True),)))
+        return
+    columns = (
+        column("compared", role="statement"),
+        figure_column("largest difference", width=40, edge=True),
+        figure_column("allowed", width=34),
+        column("", 14, role="unit"),
+        column("", 22),
+        FROM,
+    )
+    rows = []
+    flow, head = ("largest imbalance", "largest closing error") if agreement.evaluated else ("flows", "heads")
+    for words, spot, allowed in (
+        (flow, agreement.flow_difference, agreement.flow_allowed),
+        (head, agreement.head_difference, agreement.head_allowed),
+    ):
+        if allowed is None:
+            continue
+        within = spot.value <= allowed.value
+        unit = composer.flow_unit if spot.column.kind is FLOW else "m"
+        verdict: Parts = ("agrees",) if within else (Strong(("differs",), bar=True),)
+        rows.append(
+            sheet.row(
+                (words,),
+                (composer.number(spot, Format(unit, decimals=6, bound=1e-6)),),
+                (composer.number(allowed, Format(unit, decimals=6)),),
+                (unit,),
+                verdict,
+                (cited(composer.ledger, [allowed]),),
+                refs=(spot.id, allowed.id),
+            )
+        )
+    sheet.table(f"second-{case.id}", columns, rows)
+    _opinions(sheet, case)
+
+
+def _opinions(sheet: Sheet, case: CaseAccount) -> None:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    names = case.network.pipes.rows
+    if len(names) > MOST_ROWS or not [c for c in ledger.find("pipes.second_flow", case.id) if c.case == case.id]:
+        return
+    unit = composer.flow_unit
+    columns = (
+        column("pipe", role="statement"),
+        figure_column("flow in this ledger", unit, 36, edge=True),
+        figure_column("second opinion", unit, 36),
+        figure_column("difference", unit, 36),
+    )
+    rows = []
+    for pipe in names:
+        spots = [ledger.spot(f"pipes.{pipe}.{q}@{case.id}") for q in ("flow", "second_flow", "second_flow_difference")]
+        form = Format(unit, decimals=FULL_DECIMALS)
+        cells: list[Parts] = [(composer.number(spot, form),) for spot in spots[:2]]
+        cells.append((composer.number(spots[2], Format(unit, decimals=6, bound=1e-6)),))
+        rows.append(sheet.row((name(pipe),), *cells, refs=[spot.id for spot in spots[1:]]))
+    sheet.table(f"opinions-{case.id}", columns, rows)

@@ -1,0 +1,158 @@
+"""Design basis: datum, conventions, the liquid, and the works drawn to elevation."""
+
+from __future__ import annotations
+
+from calc.account import CaseAccount
+from calc.ledger import Derived, Ledger, Spot
+from calc.report import figures
+from calc.report.composer import Composer, Sheet, column
+from calc.report.derivation import COLUMNS, line
+from calc.report.document import Figure, Heading, Paragraph, Parts, Quoted
+
+CONVENTIONS = (
+    "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
+    "In the balance of a junction, flow toward the junction is positive; a withdrawal leaves it.",
+    (
+        "The head of a node is total head, common to all branch ends there. Along a pipe the hydraulic grade line lies the "
+        "velocity head below the energy line."
+    ),
+    (
+        "Pressure head is head less elevation; the velocity head is not deducted, and the largest at the node is printed "
+        "beside it. Pressures are gauge unless called absolute."
+    ),
+    "With parallel pipes the flow is the total; velocity, Reynolds number, friction factor and fittings are per pipe.",
+    "The friction factor is Darcy f throughout.",
+    (
+        "A reservoir is held at its level. At a reservoir end the entry loss holds when water leaves the reservoir and the "
+        "exit loss when it enters. A coefficient without a reverse value holds both ways."
+    ),
+)
+
+
+def compose_basis(composer: Composer) -> None:
+    """Compose the design basis."""
+    lead = "What is taken as true, which way is positive, and where the levels stand."
+    sheet = composer.begin("basis", "Design basis", lead)
+    project = composer.account.project
+    datum = project.header.text("datum") or "not stated"
+    statements: list[Parts] = [("Levels and elevations are above the datum: ", Quoted(datum), ".")]
+    statements += [(text,) for text in CONVENTIONS]
+    for stated in project.purpose:
+        statements.append(("Purpose: ", Quoted(stated.text)))
+    columns = (column("statement", role="statement"),)
+    sheet.table("conventions", columns, [sheet.row(parts) for parts in statements])
+    _liquid(sheet)
+    _schematic(sheet)
+    sheet.close()
+
+
+def derived_of(ledger: Ledger, groups: tuple[str, ...], case: str) -> list[Spot]:
+    """Return the derived numbers of sections that stand once, in a case."""
+    return [
+        Spot(one, row)
+        for one in ledger.columns
+        if one.case == case and one.group in groups and isinstance(one.origin, Derived)
+        for row in range(len(one.rows))
+    ]
+
+
+def _liquid(sheet: Sheet) -> None:
+    spots = [s for s in derived_of(sheet.composer.ledger, ("fluid", "site"), "base") if s.column.of == ""]
+    if spots:
+        sheet.add(Heading(("Liquid and air",)))
+        sheet.table("liquid", COLUMNS, [line(sheet, spot) for spot in spots])
+
+
+def _schematic(sheet: Sheet) -> None:
+    solved = [case for case in sheet.composer.account.cases.values() if case.columns is not None]
+    if not solved:
+        return
+    case = solved[0]
+    sheet.add(Heading(("Levels and branches",)))
+    drawing = schematic(sheet.composer, case, solved)
+    turning = any(pipe.turns for pipe in drawing.pipes)
+    words = " A pipe marked as turning runs the other way in the case named." if turning else ""
+    caption: Parts = (
+        "The works to elevation in case ",
+        Quoted(case.id),
+        ". Levels to scale; lines are not the pipes’ profiles." + words,
+    )
+    sheet.add(Figure(sheet.composer.figure_number(), caption, drawing))
+    if len(sheet.composer.account.project.pipes) > MOST_NAMED:
+        sheet.add(Paragraph(("Pipes not named in the figure stand in the tables of each case.",), "small"))
+
+
+MOST_NAMED = 40
+
+
+def schematic(composer: Composer, case: CaseAccount, solved: list[CaseAccount]) -> figures.Schematic:
+    """Return the works of a case as a figure; pipes that run the other way elsewhere say in which case."""
+    project, ledger = composer.account.project, composer.ledger
+
+    def text(id_: str) -> str:
+        number = composer.number(id_)
+        return f"{number.text} {number.form.unit}".strip()
+
+    reservoirs = tuple(
+        figures.Reservoir(r, ledger.spot(id_).value, text(id_))
+        for r in project.reservoirs
+        for id_ in [f"reservoirs.{r}.level@{case.id}"]
+    )
+    junctions = tuple(_junction(composer, case.id, j, text) for j in project.junctions)
+    flows = {one.id: dict(zip(one.network.pipes.rows, one.solution.flow, strict=True)) for one in solved}
+    largest = max((abs(float(q)) for q in flows[case.id].values()), default=0.0)
+    pipes = tuple(_pipe(composer, case, pipe, flows, solved, largest, text) for pipe in case.network.pipes.rows)
+    datum = project.header.text("datum")
+    return figures.Schematic(
+        f"{project.header.text('title')}, case {case.id}", reservoirs, junctions, pipes, "m", "m", datum
+    )
+
+
+def _junction(composer: Composer, case: str, junction: str, text) -> figures.Junction:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    ledger = composer.ledger
+    head = f"junctions.{junction}.head@{case}"
+    elevation = f"junctions.{junction}.elevation@{case}"
+    stated = bool([c for c in ledger.find("junctions.elevation", case) if junction in c.index])
+    drawn = [c for c in ledger.find("junctions.withdrawal", case) if junction in c.index]
+    withdrawal = ledger.spot(f"junctions.{junction}.withdrawal@{case}").value if drawn else 0.0
+    number = composer.turned(f"junctions.{junction}.withdrawal@{case}", "size") if withdrawal else None
+    return figures.Junction(
+        junction,
+        ledger.spot(head).value,
+        text(head),
+        ledger.spot(elevation).value if stated else None,
+        text(elevation) if stated else "",
+        f"{number.text} {number.form.unit}" if number else "",
+        inflow=withdrawal < 0,
+    )
+
+
+def _pipe(  # type: ignore[no-untyped-def]  # noqa: PLR0917
+    composer: Composer,
+    case: CaseAccount,
+    pipe: str,
+    flows: dict[str, dict[str, float]],
+    solved: list[CaseAccount],
+    largest: float,
+    text,  # noqa: ANN001
+) -> figures.Pipe:
+    record = composer.account.project.pipes[pipe]
+    row = case.network.pipes.rows.index(pipe)
+    flow = float(flows[case.id][pipe])
+    number = composer.turned(f"pipes.{pipe}.flow@{case.id}", "size")
+    shown = flow if any(c in "123456789" for c in number.text) else 0.0
+    other = tuple(one.title for one in solved if flows[one.id][pipe] * flow < 0)
+    return figures.Pipe(
+        pipe,
+        record.text("from"),
+        record.text("to"),
+        shown,
+        f"{number.text} {number.form.unit}",
+        float(case.network.pipes.length[row]),
+        float(case.network.pipes.bore[row]) * 1000,
+        f"{text(f'pipes.{pipe}.length@{case.id}')}, {text(f'pipes.{pipe}.bore@{case.id}')}",
+        "",
+        other,
+        governing=abs(flow) >= largest / 2,
+        open=bool(case.network.open[row]),
+    )

@@ -1,0 +1,367 @@
+"""Convergence of a case: the full table of trials or iterations, the rules, the stopping tests, the drawings."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import numpy as np
+
+from calc.account import CaseAccount
+from calc.equation import Equation
+from calc.kinds import FLOW
+from calc.ledger import Ledger, Spot
+from calc.report import figures
+from calc.report.composer import NOTHING, Composer, Sheet, column, figure_column, name
+from calc.report.document import (
+    Figure,
+    Formula,
+    Heading,
+    Number,
+    Own,
+    Paragraph,
+    Part,
+    Parts,
+    Row,
+    TableColumn,
+)
+from calc.report.formats import RESIDUAL
+from calc.report.numbers import Format
+from calc.solve import Steps, Trials
+from calc.solve.branch import Branches
+from calc.solve.rules import RULES
+from calc.units import factor
+
+MOST_BRANCHES = 6
+"""Branches whose flows fit beside the trial heads; more are printed as norms."""
+MOST_HEADS = 5
+SAMPLES = 121
+
+
+def add_convergence(sheet: Sheet, case: CaseAccount) -> None:
+    """Add the history of a case, converged or not."""
+    trials, steps = case.solution.trials, case.solution.steps
+    if trials is not None:
+        sheet.add(Heading(("Trials for the head at ", name(case.network.nodes[trials.junction]))))
+        _trial_table(sheet, case, trials)
+        _rules(sheet, trials)
+        _stopping(sheet, case)
+        _trial_figures(sheet, case, trials)
+    if steps is not None:
+        sheet.add(Heading(("Iterations of Newton’s method",)))
+        _step_table(sheet, case, steps)
+        _stopping(sheet, case)
+        _step_figure(sheet, case, steps)
+
+
+def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
+    junction = case.network.nodes[trials.junction]
+    branches = [case.network.pipes.rows[k] for k in trials.branches.tolist()]
+    shown = branches if len(branches) <= MOST_BRANCHES else []
+    flow = sheet.composer.flow_unit
+    columns: list[TableColumn] = [
+        column("trial", 10),
+        figure_column("low end", "m", 20, edge=True),
+        figure_column("high end", "m", 20),
+        figure_column("head", "m", 21, edge=True),
+    ]
+    for k, branch in enumerate(shown):
+        columns.append(TableColumn((name(branch),), unit=flow, align="right", edge=k == 0, role="value"))
+    columns += [figure_column("imbalance", flow, 23, edge=True), column("head chosen by", 28, edge=True)]
+    rows = [_trial_row(sheet, case, trials, t, junction, shown) for t in range(len(trials.head))]
+    sheet.table(f"trials-{case.id}", columns, rows)
+    said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
+    if not shown:
+        said += " The flows of the branches are not printed, there being many."
+    sheet.add(Paragraph((said + " A low end has water to spare, a high end lacks it.",), "small"))
+
+
+HEAD_FORM = Format("m", decimals=6)
+
+
+def _trial_row(  # noqa: PLR0917
+    sheet: Sheet, case: CaseAccount, trials: Trials, t: int, junction: str, shown: list[str]
+) -> Row:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    head = _trial(ledger, "junctions.head", case.id, junction, t)
+    imbalance = _trial(ledger, "junctions.imbalance", case.id, junction, t)
+    flow = Format(composer.flow_unit, decimals=5)
+    cells: list[Parts] = [(Own(str(t + 1), "id"),)]
+    for ends in (trials.low_end, trials.high_end):
+        at = np.flatnonzero(trials.head[:t] == ends[t])
+        spot = _trial(ledger, "junctions.head", case.id, junction, int(at[0])) if len(at) else None
+        cells.append((composer.number(spot, HEAD_FORM),) if spot else (NOTHING,))
+    cells.append((composer.number(head, HEAD_FORM),))
+    refs = [head.id]
+    for branch in shown:
+        spot = _trial(ledger, "pipes.flow_toward", case.id, branch, t)
+        cells.append((composer.number(spot, flow),))
+        refs.append(spot.id)
+    cells.append((composer.number(imbalance, replace(flow, bound=1e-5)),))
+    cells.append(_chosen(case, trials, t))
+    accepted = "sum" if t == trials.accepted else ""
+    return sheet.row(*cells, refs=(*refs, imbalance.id), tone=accepted)
+
+
+def _trial(ledger: Ledger, column_name: str, case: str, of: str, t: int) -> Spot:
+    found = next(c for c in ledger.find(column_name, case, of) if c.case == case and str(t + 1) in c.index)
+    return Spot(found, found.index[str(t + 1)])
+
+
+def _chosen(case: CaseAccount, trials: Trials, t: int) -> Parts:
+    rule = trials.rule[t]
+    if rule == "level":
+        return ("level of ", name(case.network.nodes[int(trials.reservoir[t])]))
+    uses = ", ".join(str(use + 1) for use in trials.uses[t])
+    return (rule, *((" on ", Own(uses, "id")) if uses else ()))
+
+
+def _rules(sheet: Sheet, trials: Trials) -> None:
+    used: dict[str, Equation] = {rule: RULES[rule].equation for rule in trials.rule}
+    columns = (column("rule", 34), column("trial head", role="statement"), column("source", 44, edge=True))
+    sheet.add(Heading(("Rules by which the heads were chosen",)))
+    rows = [
+        sheet.row((rule,), (equation.title, Formula(equation)), (Own(equation.source.key, "source"),))
+        for rule, equation in used.items()
+    ]
+    sheet.table("rules", columns, rows)
+    said = "The trials that a rule stands on are named in the table in the order of its letters a, b, c."
+    sheet.add(Paragraph((said,), "small"))
+
+
+def _stopping(sheet: Sheet, case: CaseAccount) -> None:
+    """State the stopping tests with what was measured."""
+    composer = sheet.composer
+    columns = (
+        column("the search ends when", role="statement"),
+        figure_column("measured", width=32, edge=True),
+        figure_column("limit", width=32),
+        column("", 14, role="unit"),
+        column("", 18),
+    )
+    rows = []
+    for k, test in enumerate(case.solution.tests):
+        if not case.solution.converged:
+            continue
+        spot = composer.ledger.spot(f"solver.test_{k + 1}@{case.id}")
+        limit = composer.ledger.spot(f"solver.test_{k + 1}_limit@{case.id}")
+        unit = composer.flow_unit if test.unit == "m³/s" else test.unit
+        form = Format(unit, significant=3)
+        rows.append(
+            sheet.row(
+                (test.words,),
+                (composer.number(spot, form),),
+                (composer.number(limit, form),),
+                (unit,),
+                ("met" if test.met else "not met",),
+                refs=(spot.id, limit.id),
+            )
+        )
+    sheet.table("stopping", columns, rows)
+
+
+def _texts(composer: Composer, spots: list[Spot | None], form: Format) -> tuple[str, ...]:
+    return tuple(composer.number(s, form).text if s else "" for s in spots)
+
+
+def _trial_figures(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    junction = case.network.nodes[trials.junction]
+    unit = composer.flow_unit
+    scale = _scale(composer)
+    imbalance: list[Spot | None] = [
+        _trial(ledger, "junctions.imbalance", case.id, junction, t) for t in range(len(trials.head))
+    ]
+    width = trials.high_end - trials.low_end
+    tolerance = next((test.limit for test in case.solution.tests if test.unit == "m³/s"), None)
+    limit = Format(unit, significant=1)
+    panels = [
+        figures.Panel(
+            "imbalance",
+            unit,
+            tuple(float(v) * scale for v in trials.imbalance),
+            _texts(composer, imbalance, Format(unit, significant=3)),
+            None if tolerance is None else tolerance * scale,
+            "" if tolerance is None else _limit_text(composer, case, limit),
+            signed=True,
+        ),
+        figures.Panel(
+            "width of bracket",
+            "m",
+            tuple(None if np.isnan(w) else float(w) for w in width),
+            tuple("" for _ in width),
+        ),
+    ]
+    drawing = figures.Convergence(
+        f"Convergence of case {case.id}", "trial", tuple(range(1, len(trials.head) + 1)), tuple(panels)
+    )
+    caption: Parts = (
+        "Size of the imbalance, and width of the bracket, at each trial of case ",
+        name(case.id),
+        ".",
+    )
+    sheet.add(Figure(composer.figure_number(), caption, drawing))
+    if case.solution.converged:
+        sheet.add(_balance_figure(composer, case, trials))
+
+
+def _limit_text(composer: Composer, case: CaseAccount, form: Format) -> str:
+    if not case.solution.converged:
+        return ""
+    k = next(k for k, test in enumerate(case.solution.tests) if test.unit == "m³/s")
+    number = composer.number(f"solver.test_{k + 1}_limit@{case.id}", form)
+    return f"{number.text} {form.unit}"
+
+
+def _scale(composer: Composer) -> float:
+    return factor(composer.flow_unit, FLOW)
+
+
+def _balance_figure(composer: Composer, case: CaseAccount, trials: Trials) -> Figure:
+    network, scale = case.network, _scale(composer)
+    junction = network.nodes[trials.junction]
+    levels = network.level[~np.isnan(network.level)]
+    accepted = float(case.solution.head[trials.junction])
+    low, high = min(float(levels.min()), accepted), max(float(levels.max()), accepted)
+    margin = 0.06 * max(high - low, 1.0)
+    heads = np.unique(np.concatenate([np.linspace(low - margin, high + margin, SAMPLES), levels]))
+    branches = Branches(network)
+    ends = np.concatenate([network.start[:, None], network.end[:, None]], axis=1)
+    curves = []
+    for head in heads:
+        at = network.level.copy()
+        at[trials.junction] = head
+        flow = branches.flows(at[ends[:, 0]] - at[ends[:, 1]])
+        toward = np.where(network.end == trials.junction, flow, -flow)
+        curves.append(np.where(network.open, toward, 0.0)[trials.branches])
+    table = np.array(curves) * scale
+    sums = table.sum(axis=1) - float(network.withdrawal[trials.junction]) * scale
+    held = tuple(
+        figures.BalanceBranch(
+            network.pipes.rows[k],
+            tuple(table[:, j].tolist()),
+            float(trials.flows[trials.accepted, j]) * scale,
+        )
+        for j, k in enumerate(trials.branches.tolist())
+    )
+    points = tuple(
+        figures.Trial(
+            t + 1,
+            float(trials.head[t]),
+            float(trials.imbalance[t]) * scale,
+            _known(trials.low_end[t]),
+            _known(trials.high_end[t]),
+        )
+        for t in range(len(trials.head))
+    )
+    number = composer.number(f"junctions.{junction}.head@{case.id}")
+    drawing = figures.Balance(
+        f"Balance at {junction}, case {case.id}",
+        junction,
+        tuple(heads.tolist()),
+        held,
+        tuple(sums.tolist()),
+        points,
+        accepted,
+        f"{number.text} m",
+        composer.flow_unit,
+        "m",
+        composer.account.project.header.text("datum"),
+    )
+    caption: Parts = (
+        "Flow toward ",
+        name(junction),
+        " in each branch against trial head, and the sum less withdrawal, case ",
+        name(case.id),
+        ". The trials are numbered; the diamond is the head accepted.",
+    )
+    return Figure(composer.figure_number(), caption, drawing)
+
+
+def _known(value: float) -> float | None:
+    return None if np.isnan(value) else float(value)
+
+
+def _step_table(sheet: Sheet, case: CaseAccount, steps: Steps) -> None:
+    composer, network = sheet.composer, case.network
+    flow = composer.flow_unit
+    junctions = [network.nodes[k] for k in network.unknown.tolist()]
+    shown = junctions if steps.head is not None and len(junctions) <= MOST_HEADS else []
+    columns: list[TableColumn] = [column("iteration", 14)]
+    columns += [
+        TableColumn((name(j),), unit="head, m", align="right", edge=k == 0, role="value") for k, j in enumerate(shown)
+    ]
+    columns += [
+        figure_column("largest imbalance", flow, 26, edge=True),
+        column("at", None if not shown else 24),
+        figure_column("largest closing error", "m", 26, edge=True),
+        column("at", None if not shown else 24),
+        figure_column("largest change", flow, 24, edge=True),
+    ]
+    rows = [_step_row(sheet, case, steps, k, shown) for k in range(len(steps.iteration))]
+    sheet.table(f"steps-{case.id}", columns, rows)
+    sheet.add(Paragraph(("Norms are the largest of all junctions and branches; the first row is the start.",), "small"))
+
+
+def _step_row(sheet: Sheet, case: CaseAccount, steps: Steps, k: int, shown: list[str]) -> Row:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    label = str(int(steps.iteration[k]))
+    refs: list[str] = []
+
+    def found(column_name: str, of: str) -> Number | None:
+        columns = [c for c in ledger.find(column_name, case.id, of) if c.case == case.id and label in c.index]
+        if not columns:
+            return None
+        spot = Spot(columns[0], columns[0].index[label])
+        refs.append(spot.id)
+        unit = composer.flow_unit if spot.column.kind.unit == "m³/s" else spot.column.kind.unit
+        form = HEAD_FORM if column_name == "junctions.head" else Format(unit, significant=4, bound=RESIDUAL)
+        return composer.number(spot, form)
+
+    def told(number: Number | None) -> Parts:
+        return (number,) if number else (NOTHING,)
+
+    def at(names: tuple[str, ...], index: int) -> Parts:
+        held: Part = name(names[index]) if index >= 0 else NOTHING
+        return (held,)
+
+    cells: list[Parts] = [(Own(label, "id"),)]
+    cells += [told(found("junctions.head", junction)) for junction in shown]
+    cells += [told(found("steps.imbalance", "newton")), at(case.network.nodes, int(steps.node[k]))]
+    cells += [told(found("steps.energy_error", "newton")), at(case.network.pipes.rows, int(steps.branch[k]))]
+    cells.append(told(found("steps.flow_change", "newton")))
+    return sheet.row(*cells, refs=refs)
+
+
+def _step_figure(sheet: Sheet, case: CaseAccount, steps: Steps) -> None:
+    composer = sheet.composer
+    unit, scale = composer.flow_unit, _scale(composer)
+    limits = {test.unit: test.limit for test in case.solution.tests}
+    panels = (
+        figures.Panel(
+            "largest imbalance",
+            unit,
+            tuple(_sized(v * scale) for v in steps.imbalance),
+            tuple("" for _ in steps.imbalance),
+            limits["m³/s"] * scale if "m³/s" in limits else None,
+            _limit_text(composer, case, Format(unit, significant=1)) if "m³/s" in limits else "",
+        ),
+        figures.Panel(
+            "largest closing error",
+            "m",
+            tuple(_sized(v) for v in steps.energy_error),
+            tuple("" for _ in steps.energy_error),
+        ),
+    )
+    drawing = figures.Convergence(
+        f"Convergence of case {case.id}", "iteration", tuple(int(k) for k in steps.iteration), panels
+    )
+    caption: Parts = (
+        "Largest imbalance and largest closing error at each iteration of case ",
+        name(case.id),
+        ".",
+    )
+    sheet.add(Figure(composer.figure_number(), caption, drawing))
+
+
+def _sized(value: float) -> float | None:
+    return float(abs(value)) if np.isfinite(value) else None

@@ -1,0 +1,214 @@
+"""The first page: what decides."""
+
+from __future__ import annotations
+
+from calc.account import CaseAccount, CriterionVerdict
+from calc.report.composer import FROM, Composer, Sheet, column, figure_column, name
+from calc.report.document import (
+    Cite,
+    Masthead,
+    Notes,
+    Number,
+    Own,
+    Paragraph,
+    Part,
+    Parts,
+    Quoted,
+    Row,
+    SignOff,
+    Soft,
+    Strong,
+    Table,
+    TableColumn,
+)
+from calc.report.numbers import Format
+
+STATUS = {
+    "checking": "Issued for checking – preliminary, not for construction",
+    "approval": "Issued for approval – preliminary, not for construction",
+    "record": "Issued for record",
+}
+MOST_CASES = 4
+MOST_PIPES = 8
+COUNT_WORDS = ("none", "one", "two", "three", "four", "five", "six", "seven", "eight", "nine")
+
+
+def compose_decision(composer: Composer) -> None:
+    """Compose the first page."""
+    sheet = composer.begin("decision", "Decision")
+    project = composer.account.project
+    header = project.header
+    revision = next((r for r in project.revisions if r.text("revision") == header.text("revision")), None)
+    date = revision.text("date") if revision else ""
+    subtitle = (Quoted(header.text("site")),) if header.text("site") else ("Calculation of steady flows and heads",)
+    facts: list[tuple[str, Parts]] = [
+        ("number", (Quoted(header.text("number")),)),
+        ("revision", (Quoted(header.text("revision")), *((", ", Own(date, "date")) if date else ()))),
+        ("client", (Quoted(header.text("client") or "not stated"),)),
+        ("datum", (Quoted(header.text("datum") or "not stated"),)),
+        ("friction law", (name(project.friction.text),)),
+        ("digest", (Own(composer.account.digest.partition(":")[2][:16], "document"),)),
+    ]
+    sheet.add(Masthead((Quoted(header.text("title")),), subtitle, STATUS[composer.purpose], tuple(facts)))
+    sheet.add(Paragraph(_sentence(composer)))
+    _criteria(sheet)
+    _flows(sheet)
+    sheet.add(Notes(tuple(_notes(composer))))
+    people = project.people
+    roles = tuple(
+        (role, people[role].text("name") if role in people else "") for role in ("originator", "checker", "approver")
+    )
+    sheet.add(SignOff(roles, seal_area=composer.purpose == "record"))
+    sheet.close()
+
+
+def _sentence(composer: Composer) -> Parts:
+    """Say what is not met first, in one sentence."""
+    account = composer.account
+    unsolved = [case for case in account.cases.values() if not case.solution.converged]
+    if unsolved:
+        names: list[Part] = []
+        for case in unsolved:
+            names += [", " if names else "", name(case.id)]
+        return (
+            Strong(("No solution in case ", *names, "."), bar=True),
+            " Nothing below may be used for that case.",
+        )
+    failing = [judged for judged in account.verdicts if not judged.met]
+    if not account.verdicts:
+        return (Strong(("No criteria are set.",), bar=True), " This package shows flows and heads alone.")
+    if not failing:
+        return ("Every criterion entered is met in every case it applies to.",)
+    parts: list[Part] = []
+    for judged in failing:
+        if judged.governing is not None:
+            parts += [
+                "; " if parts else "",
+                judged.criterion.title.lower(),
+                " at ",
+                name(judged.governing.subject),
+            ]
+            parts += [" in case ", name(judged.governing.case)]
+    count = COUNT_WORDS[len(failing)] if len(failing) < len(COUNT_WORDS) else "many"
+    verb = "criterion is" if len(failing) == 1 else "criteria are"
+    return (Strong((f"{count.capitalize()} {verb} not met: ", *parts, "."), bar=True),)
+
+
+def _criteria(sheet: Sheet) -> None:
+    columns = (
+        column("criterion", role="statement"),
+        column("governed by", 44),
+        figure_column("found", width=19, edge=True),
+        figure_column("limit", width=20),
+        column("", 11, role="unit"),
+        figure_column("margin", width=19),
+        column("verdict", 18),
+        FROM,
+    )
+    judged = sorted(sheet.composer.account.verdicts, key=lambda j: j.met)
+    sheet.table("criteria", columns, [_criterion(sheet, one) for one in judged])
+
+
+def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
+    composer, governing = sheet.composer, judged.governing
+    if governing is None or judged.least_margin is None:
+        blank: Parts = ("",)
+        return sheet.row((judged.criterion.title,), ("no subject",), blank, blank, blank, blank, ("not judged",), blank)
+    value = composer.number(governing.value)
+    limit = composer.number(governing.limit, value.form)
+    margin = composer.number(judged.least_margin, Format(value.form.unit, value.form.decimals, sign="+"))
+    sense = "≤ " if judged.criterion.sense == "at most" else "≥ "
+    verdict: Part = "met" if judged.met else Strong(("not met",), bar=True)
+
+    def told(number: Number) -> Parts:
+        return (number,) if judged.met else (Strong((number,)),)
+
+    return sheet.row(
+        (judged.criterion.title,) if judged.met else (Strong((judged.criterion.title,)),),
+        (name(governing.subject), Soft((", case ", name(governing.case)))),
+        told(value),
+        (sense, limit),
+        (value.form.unit,),
+        told(margin),
+        (verdict,),
+        (Cite((governing.value.id, governing.limit.id, governing.margin.id)),),
+        refs=(judged.least_margin.id,),
+        tone="" if judged.met else "flag",
+    )
+
+
+def _flows(sheet: Sheet) -> None:
+    """Directions and flows of the mains, or of the reservoirs where the mains are many."""
+    composer = sheet.composer
+    solved = [case for case in composer.account.cases.values() if case.columns is not None]
+    cases = solved[:MOST_CASES]
+    if not cases:
+        return
+    columns: list[TableColumn] = [TableColumn(("flow, ", composer.flow_unit), role="statement")]
+    for case in cases:
+        columns.append(TableColumn((name(case.id),), width=23, edge=True))
+        columns.append(TableColumn(("",), align="right", width=15, role="value"))
+    project = composer.account.project
+    many = len(project.pipes) > MOST_PIPES
+    rows = [_reservoir(sheet, cases, one) for one in project.reservoirs] if many else []
+    rows = rows or [_pipe(sheet, cases, one) for one in project.pipes]
+    rows += [_head(sheet, cases, one) for one in list(project.junctions)[:2]]
+    sheet.add(Table("flows", tuple(columns), tuple(rows)))
+    if len(solved) > len(cases):
+        sheet.add(Paragraph(("Further cases stand in their own sections.",), "small"))
+
+
+def _pipe(sheet: Sheet, cases: list[CaseAccount], pipe: str) -> Row:
+    cells: list[Parts] = [(name(pipe),)]
+    for case in cases:
+        spot = sheet.composer.ledger.spot(f"pipes.{pipe}.flow@{case.id}")
+        record = sheet.composer.account.project.pipes[pipe]
+        if not case.network.open[case.network.pipes.rows.index(pipe)]:
+            cells += [(Soft(("shut",)),), ("–",)]
+            continue
+        to = record.text("to") if spot.value > 0 else record.text("from")
+        words: Parts = ("to ", name(to)) if spot.value else ("at rest",)
+        form = Format(sheet.composer.flow_unit, decimals=1, sign="size")
+        cells += [(Soft(words),), (sheet.composer.number(spot, form),)]
+    return sheet.row(*cells)
+
+
+def _reservoir(sheet: Sheet, cases: list[CaseAccount], reservoir: str) -> Row:
+    cells: list[Parts] = [(name(reservoir),)]
+    for case in cases:
+        spot = sheet.composer.ledger.spot(f"reservoirs.{reservoir}.outflow@{case.id}")
+        words = "gives" if spot.value > 0 else "takes" if spot.value < 0 else "at rest"
+        form = Format(sheet.composer.flow_unit, decimals=1, sign="size")
+        cells += [(Soft((words,)),), (sheet.composer.number(spot, form),)]
+    return sheet.row(*cells)
+
+
+def _head(sheet: Sheet, cases: list[CaseAccount], junction: str) -> Row:
+    cells: list[Parts] = [("Head at ", name(junction), ", m")]
+    for case in cases:
+        spot = sheet.composer.ledger.spot(f"junctions.{junction}.head@{case.id}")
+        cells += [("",), (sheet.composer.number(spot, Format("m", decimals=2)),)]
+    return sheet.row(*cells)
+
+
+def _notes(composer: Composer) -> list[tuple[str, Parts]]:
+    purpose: list[Part] = []
+    for stated in composer.account.project.purpose:
+        purpose += ["; " if purpose else "", Quoted(stated.text)]
+    held = [("purpose", tuple(purpose))] if purpose else [("purpose", (Strong(("not stated",), bar=True),))]
+    counts: Parts = (
+        "open assumptions ",
+        composer.number("record.open_assumptions"),
+        ", components with unsourced inputs ",
+        composer.number("record.unsourced"),
+        ", findings ",
+        composer.number("record.findings"),
+        "; no query is recorded",
+    )
+    cautions = (
+        (
+            "Steady, full-pipe flow of one liquid only: surge, air, filling and draining are outside. “Met” means the "
+            "project criterion as entered. A licensed engineer must take responsibility; local codes prevail."
+        ),
+    )
+    return [*held, ("open points", counts), ("cautions", cautions)]

@@ -1,0 +1,88 @@
+"""Inputs: one line a value, with its source, grade and place."""
+
+from __future__ import annotations
+
+from calc.ledger import Column, Converted, Given, Library, Spot
+from calc.report.composer import INTO, Composer, Sheet, column, place
+from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
+from calc.report.formats import shortest
+from calc.report.numbers import written
+
+GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
+FIGURES = 10
+
+
+def compose_inputs(composer: Composer) -> None:
+    """Compose the list of inputs."""
+    lead = "Each given number as written and in SI: who gave it, how far it is trusted, and where it stands."
+    sheet = composer.begin("inputs", "Inputs", lead)
+    given = [c for c in composer.ledger.columns if isinstance(c.origin, Given | Converted | Library)]
+    users = [c for c in given if not isinstance(c.origin, Library)]
+    for case in composer.account.project.cases:
+        rows = _rows(sheet, [c for c in users if c.case == case])
+        if rows:
+            sheet.add(Heading(("As stated",) if case == "base" else ("Changed by case ", Quoted(case))))
+            sheet.table("inputs", COLUMNS, rows)
+    shipped = [c for c in given if isinstance(c.origin, Library)]
+    rows = _rows(sheet, shipped)
+    if rows:
+        sheet.add(Heading(("Defaults and shipped tables in use",)))
+        sheet.table("inputs-shipped", COLUMNS, rows)
+    sheet.add(
+        Paragraph(
+            ("Grades: surveyed, drawing, manufacturer, measured, standard, assumed; – where none is given.",),
+            "small",
+        )
+    )
+    sheet.close()
+
+
+COLUMNS = (
+    column("given", role="statement"),
+    column("as written", 25, edge=True, align="right"),
+    column("in SI", 22, align="right", role="value"),
+    column("", 11, role="unit"),
+    column("source, page, grade, note", 44, edge=True),
+    column("file and line", 25),
+    INTO,
+)
+
+
+def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
+    """Return rows gathered by component, in the order of the groups."""
+    by_component: dict[tuple[str, str], list[Spot]] = {}
+    for one in columns:
+        for row, name in enumerate(one.rows):
+            by_component.setdefault((one.group, name), []).append(Spot(one, row))
+    ordered = sorted(by_component, key=lambda key: ORDER.index(key[0]) if key[0] in ORDER else len(ORDER))
+    rows: list[Row] = []
+    for group, name in ordered:
+        rows.append(sheet.group(group, *((" ", Quoted(name)) if name else ())))
+        rows += [_row(sheet, spot) for spot in by_component[group, name]]
+    return rows
+
+
+ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria")
+
+
+def _row(sheet: Sheet, spot: Spot) -> Row:
+    origin = spot.column.origin
+    if not isinstance(origin, Given | Converted | Library):
+        raise TypeError(f"{spot.id} is no input")
+    kind = spot.column.kind
+    form = shortest(spot.value, kind.unit, FIGURES)
+    number = Number(spot.id, form, written(spot.value, kind, form))
+    basis = origin.bases[spot.row]
+    said: Parts = (Quoted(basis),) if basis else (Strong(("no source",), bar=True),)
+    if basis in GRADES:
+        said = (Strong(("no source",), bar=True), Soft((", ", Quoted(basis))))
+    return sheet.row(
+        (spot.column.quantity.replace("_", " "),),
+        (Quoted(origin.written[spot.row]),),
+        (number,),
+        (kind.unit,),
+        said,
+        (place(origin.marks[spot.row].place.removeprefix("calc/")),),
+        (Cite((spot.id,), into=True),),
+        refs=(spot.id,),
+    )

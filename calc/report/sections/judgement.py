@@ -1,0 +1,95 @@
+"""Criteria and findings."""
+
+from __future__ import annotations
+
+from calc.account import TITLES, CriterionVerdict
+from calc.report.composer import FROM, Composer, Sheet, column, figure_column, name, place
+from calc.report.derivation import COLUMNS, line
+from calc.report.document import Cite, Heading, Own, Paragraph, Parts, Quoted, Row, Soft, Strong
+from calc.report.numbers import Format
+
+MOST_VERDICTS = 40
+"""Verdicts of one criterion that are printed, those with the least margin first."""
+
+
+def compose_judgement(composer: Composer) -> None:
+    """Compose criteria and findings."""
+    lead = "Every criterion in every case, the one that governs worked, and what a reviewer would remark on."
+    sheet = composer.begin("judgement", "Criteria and findings", lead)
+    verdicts = composer.account.verdicts
+    if not verdicts:
+        sheet.add(Paragraph((Strong(("No criteria are set.",), bar=True), " State them in the inputs.")))
+    for judged in verdicts:
+        _criterion(sheet, judged)
+    _findings(sheet)
+    sheet.close()
+
+
+def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
+    composer = sheet.composer
+    not_met = sum(not verdict.met for verdict in judged.verdicts)
+    verdict: Parts = ((": not met in some case",) if not_met else (": met",)) if judged.verdicts else (": no subject",)
+    sheet.add(Heading((judged.criterion.title, *verdict)))
+    if judged.governing is None or judged.least_margin is None:
+        sheet.add(Paragraph(("No component that it applies to has a value in a solved case.",)))
+        return
+    sheet.table(f"worked-{judged.id}", COLUMNS, [line(sheet, judged.governing.margin)])
+    columns = (
+        column("subject", role="statement"),
+        column("case", 30, edge=True),
+        figure_column("found", width=22, edge=True),
+        figure_column("limit", width=22),
+        column("", 12, role="unit"),
+        figure_column("margin", width=22),
+        column("verdict", 22),
+        FROM,
+    )
+    rows = []
+    for one in sorted(judged.verdicts, key=lambda v: v.margin.value)[:MOST_VERDICTS]:
+        value = composer.number(one.value)
+        limit = composer.number(one.limit, value.form)
+        margin = composer.number(one.margin, Format(value.form.unit, value.form.decimals, sign="+"))
+        told: Parts = ("met",) if one.met else (Strong(("not met",), bar=True),)
+        rows.append(
+            sheet.row(
+                (name(one.subject),),
+                (name(one.case),),
+                (value,),
+                (limit,),
+                (value.form.unit,),
+                (margin,),
+                told,
+                (Cite((one.value.id, one.limit.id)),),
+                refs=(one.margin.id, one.value.id),
+                tone="" if one.met else "flag",
+            )
+        )
+    sheet.table(f"verdicts-{judged.id}", columns, rows)
+
+
+def _findings(sheet: Sheet) -> None:
+    findings = sheet.composer.account.findings
+    sheet.add(Heading(("Findings",)))
+    for number, title in TITLES.items():
+        held = [finding for finding in findings if finding.id == number]
+        if not held:
+            said = ("No defect found by check ", Own(number, "id"), " (", title.lower(), ").")
+            sheet.add(Paragraph(said, "small"))
+    rows: list[Row] = [
+        sheet.row(
+            (Own(finding.id, "id"),),
+            (Soft((TITLES[finding.id],)),),
+            (Quoted(finding.subject),),
+            (Quoted(finding.text),),
+            (place(finding.place) if finding.place else "–",),
+        )
+        for finding in findings
+    ]
+    columns = (
+        column("check", 14),
+        column("remark", 36),
+        column("subject", 38, edge=True),
+        column("found", role="statement"),
+        column("file and line", 28, edge=True),
+    )
+    sheet.table("findings", columns, rows)

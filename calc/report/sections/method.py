@@ -1,0 +1,78 @@
+"""Method: how a case is solved, and every equation with its source and range."""
+
+from __future__ import annotations
+
+from calc.equation import Equation, Implicit, Leaf
+from calc.ledger import Derived
+from calc.report.composer import Composer, Sheet, column
+from calc.report.derivation import symbols_of
+from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Soft
+
+STATEMENTS = (
+    (
+        "Unknown are the head at each junction and the flow in each branch. Every branch obeys the balance of energy "
+        "between its ends, every junction the balance of volume."
+    ),
+    (
+        "Bracketing, where one head is unknown: a trial head is put at the junction, the flow of each branch that loses the "
+        "head between its ends is found, and the flows toward the junction are summed less the withdrawal. The sum falls as "
+        "the head rises, so a positive sum puts the head sought above the trial and a negative one below. The search begins "
+        "at the levels of the reservoirs and widens where the head lies outside them; then the bracket is narrowed by the "
+        "rules printed with each case. Every evaluation is a row of its table."
+    ),
+    (
+        "Newton, for any number of junctions and loops: the gradient method of Todini and Pilati, in which heads and flows "
+        "are corrected together until every imbalance and every closing error is within its limit. Every iteration is a row."
+    ),
+    (
+        "Second opinion: each case is solved again from the same inputs by separate code in another formulation, flows "
+        "around loops that satisfy continuity from the first trial. The two must agree within the differences printed."
+    ),
+    "A case that does not converge has no results.",
+)
+
+
+def compose_method(composer: Composer) -> None:
+    """Compose the method and the equations in use."""
+    lead = "The relations used, where each comes from, and the range in which it may be trusted."
+    sheet = composer.begin("method", "Method and equations", lead)
+    columns = (column("method", role="statement"),)
+    sheet.table("method", columns, [sheet.row((text,)) for text in STATEMENTS])
+    leaves = laws_in_use(composer)
+    sheet.add(Heading(("Equations in use",)))
+    columns = (column("equation", role="statement"), column("source", 52, edge=True), column("range", 44))
+    sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves])
+    sheet.add(Heading(("Symbols",)))
+    symbols = {letter.text: (letter, words, unit) for leaf in leaves for letter, words, unit in symbols_of(leaf)}
+    columns = (column("symbol", 18), column("stands for", role="statement"), column("unit in equations", 36))
+    rows = [sheet.row((letter,), (words,), (unit or "–",)) for letter, words, unit in symbols.values()]
+    sheet.table("symbols", columns, rows, tick=False)
+    sheet.add(
+        Paragraph(
+            ("Empirical equations are worked in SI; their inputs are divided by the units shown first.",),
+            "small",
+        )
+    )
+    sheet.close()
+
+
+def laws_in_use(composer: Composer) -> list[Leaf]:
+    """Return every equation that gave some number of this package, in the order of first use."""
+    found: dict[str, Leaf] = {}
+    for one in composer.ledger.columns:
+        if isinstance(one.origin, Derived):
+            for leaf in one.origin.leaves:
+                found.setdefault(f"{leaf.name} {leaf.gives.kind.name}", leaf)
+                if isinstance(leaf, Implicit):
+                    found.setdefault(f"{leaf.start.name} start", leaf.start)
+    return list(found.values())
+
+
+def _equation(sheet: Sheet, leaf: Leaf):  # type: ignore[no-untyped-def]  # noqa: ANN202
+    equation: Equation = leaf.residual if isinstance(leaf, Implicit) else leaf
+    root = (Soft((" – ", Letter(leaf.gives.text), " is the root")),) if isinstance(leaf, Implicit) else ()
+    return sheet.row(
+        (leaf.title, *root, Formula(leaf)),
+        (Own(equation.source.text, "source"),),
+        (Own(equation.valid, "source"),),
+    )

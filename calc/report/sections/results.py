@@ -1,0 +1,268 @@
+"""Results of a case: one derivation worked in full, and tables of all the others."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from calc.account import CaseAccount
+from calc.ledger import Derived, Ledger, Spot
+from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
+from calc.report.derivation import COLUMNS, line
+from calc.report.document import Heading, Paragraph, Parts, Row, Soft, TableColumn
+from calc.report.numbers import Format
+
+MOST_ROWS = 60
+"""Pipes above which only those that lose most head are printed."""
+
+CHAIN = (
+    "flow_each",
+    "velocity",
+    "reynolds",
+    "factor_turbulent",
+    "friction_factor",
+    "friction_loss",
+    "fitting_loss",
+    "head_loss",
+    "closing_error",
+    "velocity_head",
+)
+"""Quantities of a pipe in the order of the chain of laws."""
+
+FITTING_CHAIN = ("velocity", "coefficient", "loss")
+NODE_CHAIN = ("pressure_head", "pressure")
+
+
+def _here(ledger: Ledger, column_name: str, case: str, row: str) -> Spot | None:
+    for one in ledger.find(column_name, case):
+        if one.case == case and row in one.index:
+            return Spot(one, one.index[row])
+    return None
+
+
+def governing_pipe(case: CaseAccount) -> str | None:
+    """Return the open pipe that loses most head, whose derivation is worked."""
+    if case.columns is None or not case.columns.running:
+        return None
+    losses = np.abs(case.columns.results.head_loss.values)
+    return case.columns.running[int(np.argmax(losses))]
+
+
+def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
+    """Add one worked derivation for each kind of line, of the governing pipe where it serves."""
+    pipe = governing_pipe(case)
+    if pipe is None:
+        return
+    ledger = sheet.composer.ledger
+    sheet.add(
+        Heading(
+            (
+                "Head lost in ",
+                name(pipe),
+                ", worked once",
+            )
+        )
+    )
+    rows: list[Row] = []
+    used = ("friction_factor", "transition") in _leaves(ledger, case.id, pipe)
+    for quantity in CHAIN:
+        if quantity == "factor_turbulent" and not used:
+            continue
+        if quantity == "fitting_loss":
+            rows += _worked_fittings(sheet, case, pipe)
+        spot = _here(ledger, f"pipes.{quantity}", case.id, pipe)
+        if spot is not None:
+            rows.append(line(sheet, spot))
+    rows += _other_laws(sheet, case, pipe)
+    junctions = case.columns.pressure_head.rows if case.columns else ()
+    for quantity in NODE_CHAIN:
+        spot = _here(ledger, f"junctions.{quantity}", case.id, junctions[0]) if junctions else None
+        if spot is not None:
+            rows.append(line(sheet, spot, name(junctions[0]), ": "))
+    sheet.table(f"derivation-{case.id}", COLUMNS, rows)
+    sheet.add(Paragraph(("Every other pipe and node repeats these lines; their results follow.",), "small"))
+
+
+def _leaves(ledger: Ledger, case: str, pipe: str) -> set[tuple[str, str]]:
+    spot = _here(ledger, "pipes.friction_factor", case, pipe)
+    if spot is None or not isinstance(spot.column.origin, Derived):
+        return set()
+    origin = spot.column.origin
+    return {("friction_factor", origin.labels[origin.which[spot.row]])}
+
+
+def _worked_fittings(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
+    """Work one fitting of the pipe: the one that loses most."""
+    ledger = sheet.composer.ledger
+    spots = [
+        Spot(one, k)
+        for one in ledger.find("fittings.loss", case.id)
+        if one.case == case.id
+        for k, row in enumerate(one.rows)
+        if row.rpartition("/")[0] == pipe
+    ]
+    if not spots:
+        return []
+    worst = max(spots, key=lambda s: abs(s.value)).column
+    row = worst.rows[max(spots, key=lambda s: abs(s.value)).row]
+    held = [_here(ledger, f"fittings.{quantity}", case.id, row) for quantity in FITTING_CHAIN]
+    return [line(sheet, spot, name(row), ": ") for spot in held if spot is not None]
+
+
+def _other_laws(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
+    """Work one line for each law or regime that governs some other pipe and not this one."""
+    ledger = sheet.composer.ledger
+    rows: list[Row] = []
+    for quantity in CHAIN:
+        for one in ledger.find(f"pipes.{quantity}", case.id):
+            if one.case != case.id or not isinstance(one.origin, Derived):
+                continue
+            shown = one.origin.which[one.index[pipe]] if pipe in one.index else -1
+            for leaf in range(len(one.origin.leaves)):
+                if leaf != shown and quantity != "factor_turbulent":
+                    row = int(np.flatnonzero(one.origin.which == leaf)[0])
+                    rows.append(line(sheet, Spot(one, row), name(one.rows[row]), ": "))
+    return rows
+
+
+def add_tables(sheet: Sheet, case: CaseAccount) -> None:
+    """Add the tables of pipes, fittings and nodes."""
+    _pipes(sheet, case)
+    _fittings(sheet, case)
+    _nodes(sheet, case)
+
+
+def _pipes(sheet: Sheet, case: CaseAccount) -> None:
+    composer = sheet.composer
+    columns = (
+        column("pipe", role="statement"),
+        figure_column("head at from", "m", 17, edge=True),
+        figure_column("head at to", "m", 17),
+        figure_column("flow", composer.flow_unit, 16, edge=True),
+        figure_column("velocity", "m/s", 15),
+        figure_column("Reynolds", "–", 17),
+        figure_column("Darcy f", "–", 15),
+        figure_column("friction", "m", 15, edge=True),
+        figure_column("fittings", "m", 15),
+        figure_column("loss", "m", 15),
+    )
+    names = list(case.network.pipes.rows)
+    if len(names) > MOST_ROWS:
+        held = case.columns.results.head_loss.values if case.columns else np.zeros(0)
+        order = np.argsort(-np.abs(held), kind="stable")[:MOST_ROWS]
+        names = [case.columns.running[int(k)] for k in order] if case.columns else []
+    sheet.add(Heading(("Pipes",)))
+    sheet.table(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
+    said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
+    if len(names) < len(case.network.pipes.rows):
+        said += " The pipes that lose most head are printed; the results file of this package holds all."
+    sheet.add(Paragraph((said,), "small"))
+
+
+def _node_head(composer: Composer, case: str, node: str) -> Spot:
+    group, quantity = ("reservoirs", "level") if node in composer.account.project.reservoirs else ("junctions", "head")
+    return composer.ledger.spot(f"{group}.{node}.{quantity}@{case}")
+
+
+def _pipe_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    record = composer.account.project.pipes[pipe]
+    cells: list[Parts] = [(name(pipe),)]
+    for end in ("from", "to"):
+        cells.append((composer.number(_node_head(composer, case.id, record.text(end)), Format("m", decimals=3)),))
+    refs = []
+    shut = not case.network.open[case.network.pipes.rows.index(pipe)]
+    for quantity in (
+        "flow",
+        "velocity",
+        "reynolds",
+        "friction_factor",
+        "friction_loss",
+        "fitting_loss",
+        "head_loss",
+    ):
+        spot = _here(ledger, f"pipes.{quantity}", case.id, pipe)
+        if spot is None:
+            cells.append((Soft(("shut",)) if shut and quantity == "velocity" else NOTHING,))
+            continue
+        refs.append(spot.id)
+        cells.append((composer.number(spot),))
+    return sheet.row(*cells, refs=refs)
+
+
+def _fittings(sheet: Sheet, case: CaseAccount) -> None:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    columns = (
+        column("fitting or end", role="statement"),
+        figure_column("count", width=14, edge=True),
+        figure_column("K in use", width=20),
+        figure_column("velocity", "m/s", 20, edge=True),
+        figure_column("loss", "m", 20),
+        TableColumn(("from",), width=30, edge=True, role="from"),
+    )
+    rows = []
+    fittings = case.columns.terms.fittings.rows if case.columns else ()
+    if len(fittings) > MOST_ROWS:
+        return
+    for fitting in fittings:
+        spots = [_here(ledger, f"fittings.{quantity}", case.id, fitting) for quantity in FITTING_CHAIN]
+        count = ledger.spot(f"fittings.{fitting}.count@{case.id}")
+        held = [spot for spot in spots if spot is not None]
+        kind = _kind(composer, fitting)
+        coefficient = Format(decimals=3)
+        cells: list[Parts] = [(name(fitting), *kind), (composer.number(count),)]
+        by_name = {spot.column.quantity: spot for spot in held}
+        cells.append((composer.number(by_name["coefficient"], coefficient),))
+        cells += [
+            (composer.number(by_name["velocity"]),),
+            (composer.number(by_name["loss"], Format("m", decimals=4)),),
+        ]
+        cells.append((cited(ledger, held[1:2]),))
+        rows.append(sheet.row(*cells, refs=[spot.id for spot in held]))
+    if rows:
+        sheet.add(Heading(("Fittings and reservoir ends",)))
+        sheet.table(f"fittings-{case.id}", columns, rows)
+
+
+def _kind(composer: Composer, fitting: str) -> Parts:
+    pipe, _, _ = fitting.rpartition("/")
+    record = composer.account.project.pipes[pipe]
+    for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
+        if part.id == fitting:
+            said = (
+                part.text("kind")
+                or part.text("note")
+                or next((s.basis.note for s in part.stated.values() if s.basis.note), "")
+            )
+            return (Soft((", ", name(said))),) if said else ()
+    return ()
+
+
+def _nodes(sheet: Sheet, case: CaseAccount) -> None:
+    composer, ledger = sheet.composer, sheet.composer.ledger
+    columns = (
+        column("junction", role="statement"),
+        figure_column("head", "m", 24, edge=True),
+        figure_column("elevation", "m", 24),
+        figure_column("pressure head", "m", 26, edge=True),
+        figure_column("pressure", "kPa", 24),
+        figure_column("largest velocity head", "m", 28, edge=True),
+    )
+    rows = []
+    for junction in list(composer.account.project.junctions)[: 2 * MOST_ROWS]:
+        cells: list[Parts] = [(name(junction),)]
+        refs = []
+        for quantity in ("head", "elevation", "pressure_head", "pressure", "velocity_head"):
+            found = _here(ledger, f"junctions.{quantity}", case.id, junction)
+            if found is None and quantity == "elevation":
+                stated = [c for c in ledger.find("junctions.elevation", case.id) if junction in c.index]
+                found = Spot(stated[0], stated[0].index[junction]) if stated else None
+            if found is None:
+                cells.append((NOTHING,))
+                continue
+            if quantity != "elevation":
+                refs.append(found.id)
+            cells.append((composer.number(found),))
+        rows.append(sheet.row(*cells, refs=refs))
+    if rows:
+        sheet.add(Heading(("Junctions",)))
+        sheet.table(f"junctions-{case.id}", columns, rows)
