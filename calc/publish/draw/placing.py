@@ -47,6 +47,7 @@ RINGS = (0.0, 3.0, 7.0, 12.0, 19.0, 28.0, 40.0, 56.0, 76.0, 100.0)
 LEADER_BEYOND = 2.0  # pt from its place beside the anchor
 ROUNDS = 5
 MARGIN = (1.2, 0.6)  # pt about the text, across and up
+HIDE = 1.5  # pt of a mark that a label may cover
 TOUCH = 0.05  # pt² that two labels may share by rounding
 
 
@@ -157,7 +158,8 @@ def place(sheet: Sheet, labels: Sequence[Label], around: Surroundings) -> tuple[
     taken = [box.grown(-TOUCH) for box in around.texts]
     for i in order:
         box = Box(*(float(side) for side in choices[i].boxes[chosen[i]]))
-        if any(box.meets(other) for other in taken) or not _within(box, around.frame):
+        hides = labels[i].rank > 0 and any(box.meets(mark.grown(-HIDE)) for mark in around.marks)
+        if hides or any(box.meets(other) for other in taken) or not _within(box, around.frame):
             left_out.append(labels[i])
             continue
         taken.append(box.grown(-TOUCH))

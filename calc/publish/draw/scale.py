@@ -68,7 +68,7 @@ def decade(power: int) -> str:
     return f"{10.0**power:.{-power}f}" if plain else "10" + str(power).translate(SUPERSCRIPT)
 
 
-def up_axis(sheet: Sheet, scale: Scale, across: float, voice: Voice, *, most: int = 6) -> None:
+def up_axis(sheet: Sheet, scale: Scale, across: float, voice: Voice, *, most: int = 7) -> None:
     """Rule an upright axis at ``across`` with its values on the left."""
     sheet.rule(
         [(across, scale.start), (across, scale.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis"
@@ -90,7 +90,7 @@ def across_axis(
         sheet.write((x, up - TICK - voice.size), text.lstrip("\u2212") if unsigned else text, voice, "center")
 
 
-def widest(scale: Scale, voice: Voice, most: int = 6) -> float:
+def widest(scale: Scale, voice: Voice, most: int = 7) -> float:
     """Return the room that the values left of an upright axis take, pt."""
     return max((voice.width(text) for _, text in scale.ticks(most)), default=0.0) + TICK + 2.0
 

@@ -206,7 +206,7 @@ def _axes(draft: Draft, titles: tuple[str, ...], notes: tuple[str, ...], small: 
     """Write the scale up the sheet with its title, and what across means."""
     sheet, plan, low = draft.sheet, draft.plan, draft.plan.area.foot
     across = sheet.box.left + scale.widest(plan.up, small)
-    scale.up_axis(sheet, plan.up, across, small, most=7)
+    scale.up_axis(sheet, plan.up, across, small)
     baseline = sheet.box.top - 0.8 * italic.size
     for line in titles:
         sheet.write((sheet.box.left, baseline), line, italic)

@@ -5,6 +5,7 @@ from __future__ import annotations
 from matplotlib import rc_context
 from matplotlib.backends.backend_agg import RendererAgg
 from matplotlib.figure import Figure
+from matplotlib.patches import PathPatch
 from matplotlib.text import Text
 
 TOLERANCE = 0.6  # pt that two boxes may share: the ends of tails and accents
@@ -26,7 +27,7 @@ def ink(text: Text, renderer: RendererAgg) -> tuple[float, float, float, float]:
 
 
 def faults(figure: Figure) -> list[tuple[str, str, str]]:
-    """Return texts on texts, texts off the sheet and texts below 8 pt (6 pt for an exponent)."""
+    """Return texts on texts or marks, off the sheet, and below 8 pt (6 pt for an exponent)."""
     renderer = figure.canvas.get_renderer()
     found = []
     with rc_context({"text.hinting": "none"}):  # as on paper, not as on a screen of 72 dots to the inch
@@ -48,4 +49,22 @@ def faults(figure: Figure) -> list[tuple[str, str, str]]:
             up = min(box[3], beside[3]) - max(box[1], beside[1])
             if across > TOLERANCE and up > TOLERANCE:
                 found.append(("text on text", text, other))
+        found += [("text on mark", text, "") for mark in marks(figure) if covers(box, mark)]
     return found
+
+
+def marks(figure: Figure) -> list[tuple[float, float, float, float]]:
+    """Return the boxes of the filled marks: arrowheads, dots and diamonds; not the white grounds of texts."""
+    patches = [patch for patch in figure.findobj(PathPatch) if min(patch.get_facecolor()[:3]) < 0.9]
+    return [
+        patch.get_transform().transform_path(patch.get_path()).get_extents().extents
+        for patch in patches
+        if patch.get_facecolor()[3] > 0
+    ]
+
+
+def covers(box: tuple[float, float, float, float], mark: tuple[float, float, float, float]) -> bool:
+    """Tell whether a text hides more than an eighth of a mark."""
+    across = min(box[2], mark[2]) - max(box[0], mark[0])
+    up = min(box[3], mark[3]) - max(box[1], mark[1])
+    return across > 0 and up > 0 and across * up > (mark[2] - mark[0]) * (mark[3] - mark[1]) / 8

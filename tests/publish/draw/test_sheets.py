@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import os
+import random
 import re
 import subprocess
 import sys
+from dataclasses import replace
 from pathlib import Path
 from xml.etree import ElementTree as ET
 
@@ -21,8 +23,9 @@ import gallery  # noqa: E402
 import samples  # noqa: E402
 
 from calc.publish import places  # noqa: E402
-from calc.publish.draw import schematic, svg  # noqa: E402
+from calc.publish.draw import convergence, schematic, svg  # noqa: E402
 from calc.publish.draw.faces import voice  # noqa: E402
+from calc.report.figures import Convergence, Panel  # noqa: E402
 
 SHEETS = dict(gallery.sheets())
 SAMPLES = ["star-3", "net-12", "balance-30", "conv-12-zero"]
@@ -125,3 +128,40 @@ def test_hostile_words_are_drawn_as_they_are(recwarn: pytest.WarningsRecorder) -
     said = " ".join(text.get_text() for text in audit.texts(drawn))
     assert "$x_1$ <b>&amp;" in said
     assert not list(recwarn)
+
+
+@pytest.mark.parametrize("seed", range(12))
+def test_clean_for_any_star(seed: int) -> None:
+    chance = random.Random(seed)  # noqa: S311 - seeded, not secret
+    count = chance.randint(2, 9)
+    spread = chance.choice([1e-3, 1.0, 50.0, 900.0])
+    works = samples.star(
+        count,
+        withdrawal=chance.choice([0.0, 5.0, 600.0]),
+        levels=tuple(round(chance.uniform(100, 100 + spread), 2) for _ in range(count)),
+        elevation=chance.choice([None, 90.0, 250.0]),
+    )
+    pipes = tuple(replace(pipe, length=chance.choice([3.0, 1850.0, 90_000.0])) for pipe in works.pipes)
+    assert audit.faults(schematic.draw(replace(works, pipes=pipes))) == []
+
+
+@pytest.mark.parametrize("seed", range(8))
+def test_clean_for_any_course(seed: int) -> None:
+    """Sizes from 10⁻¹⁴ to 10⁶, zeros, and steps without a value."""
+    chance = random.Random(seed)  # noqa: S311 - seeded, not secret
+    count = chance.randint(1, 60)
+    values = tuple(
+        chance.choice([0.0, None, chance.choice([-1, 1]) * 10 ** chance.uniform(-14, 6)])
+        for _ in range(count)
+    )
+    panel = Panel(
+        "imbalance",
+        "L/s",
+        values,
+        tuple("" if value is None else samples.scientific(abs(value)) for value in values),
+        chance.choice([None, 1e-6, 0.0]),
+        "1 × 10⁻⁶ L/s",
+        signed=True,
+    )
+    figure = Convergence("Course", "trial", tuple(range(1, count + 1)), (panel, replace(panel, name="width")))
+    assert audit.faults(convergence.draw(figure)) == []
