@@ -16,8 +16,8 @@ from typing import TYPE_CHECKING
 
 from calc.account import Account, keep_account, liquid_terms, open_books
 from calc.components import Network
-from calc.components.liquid import liquid
-from calc.equation import ARRAYS
+from calc.components.liquid import LiquidTerms, liquid
+from calc.equation import ARRAYS, Value, value_of
 from calc.ledger import Ledger
 from calc.problems import Problem, ProblemsFound
 from calc.project import Project, network, read_project
@@ -76,8 +76,8 @@ def solve_cases(
 
 def _viscosity(ledger: Ledger, case: str) -> float:
     """Return the viscosity of a case by the same chain that the ledger keeps."""
-    stated = liquid_terms(ledger, case).each(lambda view: view.values)
-    return float(liquid(ARRAYS, stated).viscosity[0])
+    stated: LiquidTerms[Value] = liquid_terms(ledger, case).each(lambda view: view.values)
+    return float(value_of(liquid(ARRAYS, stated).viscosity)[0])
 
 
 def account(folder: Path, say: Progress = _quietly) -> Account:

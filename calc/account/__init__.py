@@ -1,10 +1,10 @@
 """The account: a solution becomes ledger columns and verdicts.
 
 `open_books` enters what a project states and the properties of its liquid, before anything is solved; then
-`keep_account` enters for each case the history, the solution, everything that the chain of laws gives from it, the
-balances, energy along paths, the second opinion, and the verdicts; findings and ``results.json`` come from here too.
-The chain is the solver's own, run by the ledger's accountant, so that no formula is stated twice. Knows project,
-criteria, solutions and ledger; knows nothing of how they are said or printed.
+`keep_account` enters for each case the history, the solution, everything that the chain of laws gives from it,
+the balances, energy along paths, the second opinion, and the verdicts; findings and ``results.json`` come from
+here too. The chain is the solver's own, run by the ledger's accountant, so that no formula is stated twice.
+Knows project, criteria, solutions and ledger; knows nothing of how they are said or printed.
 """
 
 from calc.account.accounting import Account, CaseAccount, keep_account

@@ -7,6 +7,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
+import numpy as np
+
 from calc.account.findings import Finding, all_findings
 from calc.account.flows import CaseColumns, enter_flows
 from calc.account.history import enter_history, history_rows
@@ -15,8 +17,8 @@ from calc.account.paths import Path, enter_paths
 from calc.account.verdicts import CriterionVerdict, enter_verdicts
 from calc.components import Network
 from calc.kinds import FLOW, HEAD, NUMBER
-from calc.ledger import Ledger, Program
-from calc.project import Project
+from calc.ledger import Accountant, Ledger, Program, View
+from calc.project import Project, changes_in
 from calc.solve import Solution
 
 
@@ -76,8 +78,11 @@ def keep_account(project: Project, ledger: Ledger, solved: Mapping[str, tuple[Ne
     cases: dict[str, CaseAccount] = {}
     for name, (network, solution) in solved.items():
         enter_history(ledger, network, solution, name)
-        columns, paths, agreement = None, (), None
+        columns: CaseColumns | None = None
+        paths: tuple[Path, ...] = ()
+        agreement = None
         if solution.converged:
+            _enter_shut(ledger, project, network, name)
             columns = enter_flows(ledger, network, solution, name)
             paths = enter_paths(ledger, network, columns, name)
             agreement = enter_opinion(ledger, network, solution, name)
@@ -89,21 +94,50 @@ def keep_account(project: Project, ledger: Ledger, solved: Mapping[str, tuple[Ne
     held = {name: case.columns for name, case in cases.items() if case.columns is not None}
     verdicts = enter_verdicts(ledger, project, held)
     findings = all_findings(project, {name: case.agreement for name, case in cases.items()})
+    _enter_counts(ledger, project, findings)
     return Account(project, ledger, cases, verdicts, findings, _digest(project, cases))
+
+
+def _enter_shut(ledger: Ledger, project: Project, network: Network, case: str) -> None:
+    """Enter that nothing flows in shut pipes, with the place where each is said to be shut."""
+    changes = changes_in(project, case)
+    places: dict[str, list[str]] = {}
+    for k in np.flatnonzero(~network.open).tolist():
+        name = network.pipes.rows[k]
+        standing = changes.get(("pipes", name, "open"))
+        stated = standing[-1].stated if standing else project.pipes[name].stated["open"]
+        places.setdefault(str(stated.mark), []).append(name)
+    for place, names in places.items():
+        said = Program(f"shut at {place}: nothing flows")
+        ledger.enter("pipes.flow", FLOW, names, np.zeros(len(names)), said, case=case)
 
 
 def _enter_tests(ledger: Ledger, solution: Solution, case: str) -> None:
     kinds = {"m³/s": FLOW, "m": HEAD}
+    tolerance = ledger.find("solver.tolerance")
     for k, test in enumerate(solution.tests):
         kind = kinds.get(test.unit, NUMBER)
-        measured, allowed = (
-            Program(f"measured when the search ended: {test.words}"),
-            Program("limit of the test"),
-        )
+        measured = Program(f"measured when the search ended: {test.words}")
         ledger.enter(f"solver.test_{k + 1}", kind, [""], [test.value], measured, case=case)
-        ledger.enter(f"solver.test_{k + 1}_limit", kind, [""], [test.limit], allowed, case=case)
+        name = f"solver.test_{k + 1}_limit"
+        if tolerance and kind is FLOW and test.limit == float(tolerance[0].values[0]):
+            at, words = np.zeros(1, dtype=np.int64), "the tolerance stated"
+            Accountant(ledger, case).combine(name, "sum", View.whole(tolerance[0]), at, [""], words=words)
+        else:
+            ledger.enter(name, kind, [""], [test.limit], Program("limit of the test"), case=case)
     said = Program("evaluations in the history of this case")
     ledger.enter("solver.iterations", NUMBER, [""], [solution.iterations], said, case=case)
+
+
+def _enter_counts(ledger: Ledger, project: Project, findings: tuple[Finding, ...]) -> None:
+    counts = {
+        "open_assumptions": sum(a.text("state") == "open" for a in project.assumptions.values()),
+        "unsourced": sum(finding.id == "D03" for finding in findings),
+        "findings": len(findings),
+    }
+    for name, count in counts.items():
+        said = Program(f"counted by the program: {name.replace('_', ' ')}")
+        ledger.enter(f"record.{name}", NUMBER, [""], [count], said)
 
 
 def _digest(project: Project, cases: Mapping[str, CaseAccount]) -> str:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import defaultdict
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from functools import cache
 from typing import Any
 
@@ -19,16 +19,17 @@ from calc.kinds import (
     DYNAMIC_VISCOSITY,
     ELEVATION,
     FLOW,
+    HEAD,
     KINEMATIC_VISCOSITY,
     NUMBER,
     PRESSURE,
     TEMPERATURE,
     Kind,
 )
-from calc.ledger import Accountant, Column, Converted, Given, Ledger, Library, View
+from calc.ledger import Accountant, Column, Converted, Derived, Given, Ledger, Library, View
 from calc.ledger.column import ABSENT
 from calc.physics import symbols as s
-from calc.project import BASE, Line, Project
+from calc.project import BASE, Line, Project, in_order, stands_on_pipe
 
 PROJECT = Reference("project input", "Project input")
 
@@ -82,7 +83,13 @@ def basis_text(stated: Stated) -> str:
 
 
 def enter_stated(
-    ledger: Ledger, name: str, kind: Kind, rows: Sequence[str], values: Sequence[Stated], case: str
+    ledger: Ledger,
+    name: str,
+    kind: Kind,
+    rows: Sequence[str],
+    values: Sequence[Stated],
+    *,
+    case: str = "",
 ) -> None:
     """Enter stated values as columns, one for each way in which they were stated."""
     sorts: dict[str, list[int]] = defaultdict(list)
@@ -125,27 +132,46 @@ def open_books(project: Project) -> Ledger:
     ledger = Ledger({case.id: case.after or BASE for case in project.cases.values() if case.id != BASE})
     for schema in SCHEMAS:
         _enter_group(ledger, schema, project.group(schema.group).values())
-    parts = [
-        part
-        for pipe in project.pipes.values()
-        for sort in ("ends", "fittings")
-        for part in pipe.parts.get(sort, ())
-    ]
-    _enter_group(ledger, FITTING_SCHEMA, parts)
+    _enter_group(ledger, FITTING_SCHEMA, _parts(project))
+    _enter_solver(ledger, project)
     for group, kinds in SINGLE.items():
         for row, record in project.group(group).items():
             for field, kind in kinds.items():
                 if field in record.stated:
                     exact = _kind_of(record, field, kind)
                     name = f"{group}.{_named(field, exact)}"
-                    enter_stated(ledger, name, exact, [row], [record.stated[field]], BASE)
+                    enter_stated(ledger, name, exact, [row], [record.stated[field]], case=BASE)
     _enter_derived(ledger, project, BASE)
     for case in project.cases.values():
         if case.id != BASE:
             _enter_changes(ledger, project, case.id, case.lines)
-            if any(line.group in ("fluid", "site") or line.field in ("inflow",) for line in case.lines):
+            if any(line.group in ("fluid", "site") or line.field == "inflow" for line in case.lines):
                 _enter_derived(ledger, project, case.id)
     return ledger
+
+
+def _parts(project: Project) -> Iterator[Record]:
+    """Yield ends and fittings; one on its pipe's own bore states none, for a case may change that bore."""
+    for pipe in project.pipes.values():
+        for part in in_order(pipe):
+            if stands_on_pipe(pipe, part):
+                stated = {name: value for name, value in part.stated.items() if name != "bore"}
+                yield Record(part.id, part.mark, stated)
+            else:
+                yield part
+
+
+def _enter_solver(ledger: Ledger, project: Project) -> None:
+    """Enter the tolerance and the heads to start from, where the project states them."""
+    section = project.sections.get("solver")
+    if section is None:
+        return
+    if "tolerance" in section.stated:
+        enter_stated(ledger, "solver.tolerance", FLOW, [""], [section.stated["tolerance"]])
+    starts = section.parts.get("start", ())
+    if starts:
+        rows, values = [part.id for part in starts], [part.stated["value"] for part in starts]
+        enter_stated(ledger, "solver.start", HEAD, rows, values)
 
 
 def _enter_group(ledger: Ledger, schema: Schema, records: Iterable[Record]) -> None:
@@ -154,9 +180,8 @@ def _enter_group(ledger: Ledger, schema: Schema, records: Iterable[Record]) -> N
         having = [record for record in held if field in record.stated]
         if having:
             rows = [record.id for record in having]
-            enter_stated(
-                ledger, f"{schema.group}.{field}", kind, rows, [r.stated[field] for r in having], BASE
-            )
+            values = [record.stated[field] for record in having]
+            enter_stated(ledger, f"{schema.group}.{field}", kind, rows, values, case=BASE)
 
 
 def _kind_of(record: Record, field: str, kind: Kind) -> Kind:
@@ -170,7 +195,7 @@ def _named(field: str, kind: Kind) -> str:
 
 
 def _enter_changes(ledger: Ledger, project: Project, case: str, lines: Sequence[Line]) -> None:
-    """Enter what a case's own lines set or multiply; intermediate values of one row have names of their own."""
+    """Enter what a case's own lines set or multiply; steps on the way to a value have names of their own."""
     steps: dict[tuple[str, str], dict[str, list[Line]]] = defaultdict(lambda: defaultdict(list))
     for line in lines:
         if isinstance(line.stated.value, float | int) and not isinstance(line.stated.value, bool):
@@ -179,7 +204,8 @@ def _enter_changes(ledger: Ledger, project: Project, case: str, lines: Sequence[
                 if line.how == "with":
                     standing.clear()
                 standing.append(line)
-    for (group, field), by_row in steps.items():
+    # inflows first: where one stands, a factor on the withdrawal finds none
+    for (group, field), by_row in sorted(steps.items(), key=lambda item: item[0][1] != "inflow"):
         kind = _field_kind(project, group, field)
         name = f"{group}.{_named(field, kind)}"
         for level in range(max(map(len, by_row.values()))):
@@ -188,31 +214,40 @@ def _enter_changes(ledger: Ledger, project: Project, case: str, lines: Sequence[
                     chosen = {
                         row: standing[level]
                         for row, standing in by_row.items()
-                        if len(standing) > level
-                        and standing[level].how == how
-                        and (len(standing) == level + 1) == last
+                        if len(standing) > level and standing[level].how == how and (len(standing) == level + 1) == last
                     }
                     if chosen:
-                        _enter_step(ledger, name, kind, case, level, chosen, last=last)
+                        _enter_step(ledger, name, kind, case, level=level, chosen=chosen, last=last)
 
 
 def _enter_step(
-    ledger: Ledger, name: str, kind: Kind, case: str, level: int, chosen: Mapping[str, Line], *, last: bool
+    ledger: Ledger,
+    name: str,
+    kind: Kind,
+    case: str,
+    *,
+    level: int,
+    chosen: Mapping[str, Line],
+    last: bool,
 ) -> None:
     rows = list(chosen)
     values = [line.stated for line in chosen.values()]
     result = name if last else f"{name}_step_{level + 1}"
     if next(iter(chosen.values())).how == "with":
-        enter_stated(ledger, result, kind, rows, values, case)
+        enter_stated(ledger, result, kind, rows, values, case=case)
         return
     before_name = name if level == 0 else f"{name}_step_{level}"
-    before = ledger.view(before_name, case, rows)
-    kept = np.flatnonzero(before.which != ABSENT)  # a factor on a value that nothing states changes nothing
+    before = View.assembled([c for c in ledger.find(before_name, case) if is_stated(c)], rows)
+    # a factor on a value that nothing states changes nothing
+    standing = before.which != ABSENT
+    if name == "junctions.withdrawal":
+        standing &= ledger.view("junctions.inflow", case, rows).which == ABSENT
+    kept = np.flatnonzero(standing)
     if not len(kept):
         return
     rows = [rows[int(k)] for k in kept]
     factor_name = f"{name}_factor" if level == 0 else f"{name}_factor_{level + 1}"
-    enter_stated(ledger, factor_name, NUMBER, rows, [values[int(k)] for k in kept], case)
+    enter_stated(ledger, factor_name, NUMBER, rows, [values[int(k)] for k in kept], case=case)
     factor = ledger.view(factor_name, case, rows)
     Accountant(ledger, case).apply(result, scaled(kind), factor=factor, before=before.take(kept))
 
@@ -241,8 +276,8 @@ def liquid_terms(ledger: Ledger, case: str) -> LiquidTerms[View]:
     """Return what is stated of the liquid in a case."""
 
     def stated(name: str) -> View | None:
-        columns = [c for c in ledger.find(name, case) if not _is_derived(c)]
-        return ledger.shared(name, case) if columns else None
+        columns = [column for column in ledger.find(name, case) if is_stated(column)]
+        return ledger.serving(columns[0]) if columns else None
 
     return LiquidTerms(
         altitude=ledger.shared("site.altitude", case),
@@ -254,5 +289,9 @@ def liquid_terms(ledger: Ledger, case: str) -> LiquidTerms[View]:
     )
 
 
-def _is_derived(column: Column) -> bool:
-    return not isinstance(column.origin, Given | Converted | Library)
+def is_stated(column: Column) -> bool:
+    """Return whether a column holds what the inputs state, be it by way of a factor of a case."""
+    origin = column.origin
+    if isinstance(origin, Derived):
+        return origin.law is scaled(column.kind)
+    return isinstance(origin, Given | Converted | Library)

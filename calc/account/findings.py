@@ -1,13 +1,14 @@
 """Findings: doubtful or missing things that a reviewer would remark on, found from the data.
 
-Each has the number of the comment it answers to; the program may say that no defect was found by a check, never
-that a calculation is checked, approved or safe.
+Each has the number of the comment it answers to; the program may say that no defect was found by a check,
+never that a calculation is checked, approved or safe.
 """
 
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass
+from fnmatch import fnmatchcase
 
 from calc.account.opinion import Agreement
 from calc.components import Record
@@ -42,6 +43,7 @@ def unsourced(project: Project) -> Iterator[Finding]:
         "criteria": project.criteria,
         "fluid": {"": project.fluid},
         "site": {"": project.site},
+        "constants": {"transition": project.transition},
     }
     for group, records in groups.items():
         for record in records.values():
@@ -52,10 +54,10 @@ def unsourced(project: Project) -> Iterator[Finding]:
                 verb = "has" if len(bare) == 1 else "have"
                 yield Finding("D03", subject, bare[0][1], f"{names} {verb} no source")
     for case in project.cases.values():
-        bare_paths = [x for x in case.lines if not x.stated.basis.source and x.field not in WITHOUT_SOURCE]
-        if bare_paths:
-            names = ", ".join(dict.fromkeys(x.path for x in bare_paths))
-            place = bare_paths[0].mark.place
+        bare_lines = [line for line in case.lines if not line.stated.basis.source and line.field not in WITHOUT_SOURCE]
+        if bare_lines:
+            names = ", ".join(dict.fromkeys(line.path for line in bare_lines))
+            place = bare_lines[0].mark.place
             yield Finding("D03", f"cases.{case.id}", place, f"values of this case have no source: {names}")
 
 
@@ -85,15 +87,18 @@ def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
 
 
 def without_fittings(project: Project) -> Iterator[Finding]:
-    """D35: pipes for which no fitting is stated."""
+    """D35: pipes for which neither a fitting nor an assumption about fittings is stated."""
+    reasoned = [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
     for pipe in project.pipes.values():
-        if not pipe.parts.get("fittings"):
+        if not pipe.parts.get("fittings") and not any(
+            fnmatchcase(f"pipes.{pipe.id}.fittings", path) for path in reasoned
+        ):
             yield Finding(
                 "D35",
                 f"pipes.{pipe.id}",
                 pipe.mark.place,
                 "no fittings are stated: bends, valves and meters lose nothing here. State them, or say in an "
-                "assumption why they may be left out",
+                f"assumption that affects pipes.{pipe.id}.fittings why they may be left out",
             )
 
 
@@ -112,18 +117,18 @@ def bare_ends(project: Project) -> Iterator[Finding]:
                 )
 
 
-def unconfirmed(agreements: Mapping[str, Agreement | None]) -> Iterator[Finding]:
+def unconfirmed(project: Project, agreements: Mapping[str, Agreement | None]) -> Iterator[Finding]:
     """D46: cases whose solution a second formulation did not confirm."""
     for case, agreement in agreements.items():
         if agreement is None:
-            yield Finding("D46", f"cases.{case}", "", "the case has no solution, so there is none to confirm")
-        elif agreement.evaluated:
-            text = "the second opinion evaluated the laws at the answer and did not solve the case again (large network)"
-            yield Finding("D46", f"cases.{case}", "", text)
+            text = "the case has no solution, so there is none to confirm"
         elif not agreement.agrees:
-            yield Finding(
-                "D46", f"cases.{case}", "", f"the second opinion does not confirm it: {agreement.reason}"
-            )
+            text = f"the second opinion does not confirm it: {agreement.reason}"
+        elif agreement.evaluated:
+            text = "the second opinion evaluated the laws at the answer and did not solve the large network again"
+        else:
+            continue
+        yield Finding("D46", f"cases.{case}", project.cases[case].mark.place, text)
 
 
 INPUT_CHECKS: tuple[Callable[[Project], Iterator[Finding]], ...] = (unsourced, without_fittings, bare_ends)
@@ -137,4 +142,4 @@ def input_findings(project: Project) -> tuple[Finding, ...]:
 
 def all_findings(project: Project, agreements: Mapping[str, Agreement | None]) -> tuple[Finding, ...]:
     """Return every finding of a project and its solutions, in the order of the comments."""
-    return (*input_findings(project), *unconfirmed(agreements))
+    return (*input_findings(project), *unconfirmed(project, agreements))

@@ -12,7 +12,7 @@ from calc.components import Network
 from calc.components.pipe import FittingTerms, PipeResults, PipeTerms, losses, transition_limits
 from calc.equation import Labels
 from calc.kinds import FLOW, HEAD
-from calc.ledger import Accountant, Ledger, Program, Solved, View
+from calc.ledger import Accountant, Ledger, Solved, View
 from calc.ledger.column import ABSENT
 from calc.physics import energy, velocity
 from calc.solve import Solution
@@ -96,9 +96,7 @@ def pipe_terms(ledger: Ledger, network: Network, case: str, chosen: Rows) -> Pip
     )
 
 
-def _fitting_terms(
-    ledger: Ledger, network: Network, case: str, chosen: Rows, bore: View
-) -> FittingTerms[View]:
+def _fitting_terms(ledger: Ledger, network: Network, case: str, chosen: Rows, bore: View) -> FittingTerms[View]:
     every = network.pipes.fittings
     place = np.full(len(network.pipes.rows), ABSENT, dtype=np.int64)
     place[chosen] = np.arange(len(chosen))
@@ -121,7 +119,7 @@ def _fitting_terms(
 
 
 def enter_flows(ledger: Ledger, network: Network, solution: Solution, case: str) -> CaseColumns:
-    """Enter the solution of a case and everything that follows from it.
+    """Enter the solution of a case and everything that follows from it; what is shut stands already.
 
     Raises
     ------
@@ -143,15 +141,13 @@ def enter_flows(ledger: Ledger, network: Network, solution: Solution, case: str)
     )
     pressure_head = _enter_pressures(books, network, head)
     _enter_velocity_heads(books, network, results, open_pipes, terms)
-    _enter_balances(books, network, flow)
+    _enter_balances(books, network, flow, closing)
     return CaseColumns(terms.rows, head, flow, results, terms, closing, pressure_head)
 
 
 def _enter_heads(ledger: Ledger, network: Network, solution: Solution, case: str) -> View:
     unknown = network.unknown
-    reservoirs = [
-        name for name, level in zip(network.nodes, network.level, strict=True) if not np.isnan(level)
-    ]
+    reservoirs = [name for name, level in zip(network.nodes, network.level, strict=True) if not np.isnan(level)]
     level = ledger.view("reservoirs.level", case, reservoirs)
     if not len(unknown):
         return level
@@ -168,19 +164,13 @@ def _enter_heads(ledger: Ledger, network: Network, solution: Solution, case: str
 
 def _enter_pipe_flows(ledger: Ledger, network: Network, solution: Solution, case: str) -> View:
     names = network.pipes.rows
-    running, shut = np.flatnonzero(network.open), np.flatnonzero(~network.open)
-    columns = []
+    running = np.flatnonzero(network.open)
     if len(running):
-        origin = Solved(
-            "e = H_1 - H_2 - h = 0", solution.method, solution.iterations, ("pipes.closing_error",)
-        )
+        statement = "e = H_1 - H_2 - h = 0"
+        origin = Solved(statement, solution.method, solution.iterations, ("pipes.closing_error",))
         rows = [names[int(k)] for k in running]
-        columns.append(ledger.enter("pipes.flow", FLOW, rows, solution.flow[running], origin, case=case))
-    if len(shut):
-        rows = [names[int(k)] for k in shut]
-        nothing = Program("shut in this case: nothing flows")
-        columns.append(ledger.enter("pipes.flow", FLOW, rows, np.zeros(len(shut)), nothing, case=case))
-    return View.assembled(columns, names)
+        ledger.enter("pipes.flow", FLOW, rows, solution.flow[running], origin, case=case)
+    return ledger.view("pipes.flow", case, names)
 
 
 def _enter_pressures(books: Accountant, network: Network, head: View) -> View:
@@ -207,9 +197,7 @@ def _enter_velocity_heads(
 ) -> None:
     if not len(open_pipes):
         return
-    heads = books.apply(
-        "pipes.velocity_head", velocity.velocity_head, velocity=results.velocity, gravity=terms.gravity
-    )
+    heads = books.apply("pipes.velocity_head", velocity.velocity_head, velocity=results.velocity, gravity=terms.gravity)
     ends = np.concatenate([network.start[open_pipes], network.end[open_pipes]])
     pipe = np.concatenate([np.arange(len(open_pipes))] * 2)
     place = np.full(len(network.nodes), ABSENT, dtype=np.int64)
@@ -230,8 +218,8 @@ def _enter_velocity_heads(
         )
 
 
-def _enter_balances(books: Accountant, network: Network, flow: View) -> None:
-    """Enter the imbalance of every junction, the outflow of every reservoir, and the largest of each error."""
+def _enter_balances(books: Accountant, network: Network, flow: View, closing: View) -> None:
+    """Enter imbalances of junctions, outflows of reservoirs, and the largest of each error."""
     ledger, case = books.ledger, books.case
     pipes = np.arange(len(network.start))
     ends = np.concatenate([network.start, network.end])
@@ -269,9 +257,8 @@ def _enter_balances(books: Accountant, network: Network, flow: View) -> None:
         signs=-toward[kept],
         kind=FLOW,
     )
-    errors = ledger.find("pipes.closing_error", case)
-    if errors:
-        _enter_largest(books, "balance.largest_energy_error", View.whole(errors[0]))
+    if closing.sources:
+        _enter_largest(books, "balance.largest_energy_error", closing)
 
 
 def _enter_largest(books: Accountant, name: str, terms: View) -> None:

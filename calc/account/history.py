@@ -50,9 +50,7 @@ def _enter_trials(ledger: Ledger, network: Network, trials: Trials, case: str) -
             (trials.rule[t],),
             {name: inputs[name] for name in takes(equation)},
         )
-        heads.append(
-            ledger.enter("junctions.head", HEAD, [row], [trials.head[t]], origin, case=case, of=junction)
-        )
+        heads.append(ledger.enter("junctions.head", HEAD, [row], [trials.head[t]], origin, case=case, of=junction))
 
 
 def _rule_input(  # noqa: PLR0917 - the parts of one citation
@@ -74,12 +72,8 @@ def _rule_input(  # noqa: PLR0917 - the parts of one citation
         return ledger.view("reservoirs.level", case, [network.nodes[int(trials.reservoir[t])]])
     if column == "start":
         return ledger.view("solver.start", "", [junction])
-    said = Program(
-        "step of the search: the range of levels (at least 1 m), doubled each time the head lies outside"
-    )
-    entered = ledger.enter(
-        "junctions.step", LENGTH, [str(t + 1)], [trials.step[t]], said, case=case, of=junction
-    )
+    said = Program("step of the search: the range of levels (at least 1 m), doubled each time the head lies outside")
+    entered = ledger.enter("junctions.step", LENGTH, [str(t + 1)], [trials.step[t]], said, case=case, of=junction)
     return View.whole(entered)
 
 
@@ -87,16 +81,12 @@ def _enter_trial_flows(ledger: Ledger, network: Network, trials: Trials, case: s
     count = len(trials.head)
     rows = _labels(count)
     if len(trials.branches) > MOST_BRANCHES:
-        said = Program(
-            "sum of the flows toward the junction less its withdrawal, as evaluated at this trial head"
-        )
+        said = Program("sum of the flows toward the junction less its withdrawal, as evaluated at this trial head")
         held = ledger.enter("junctions.imbalance", FLOW, rows, trials.imbalance, said, case=case, of=junction)
         return View.whole(held)
     terms: View | None = None
     for k, pipe in enumerate(trials.branches.tolist()):
-        origin = Solved(
-            "head at the far end less trial head = head lost at this flow", "branch by branch", count, ()
-        )
+        origin = Solved("head at the far end less trial head = head lost at this flow", "branch by branch", count, ())
         name = network.pipes.rows[pipe]
         column = ledger.enter("pipes.flow_toward", FLOW, rows, trials.flows[:, k], origin, case=case, of=name)
         view = View.whole(column)
@@ -145,42 +135,45 @@ def _enter_steps(ledger: Ledger, network: Network, steps: Steps, case: str) -> N
     if steps.head is not None:
         for k in network.unknown.tolist():
             origin = Solved("head after this iteration", "newton", len(rows) - 1, ())
-            ledger.enter(
-                "junctions.head", HEAD, rows, steps.head[:, k], origin, case=case, of=network.nodes[k]
-            )
+            ledger.enter("junctions.head", HEAD, rows, steps.head[:, k], origin, case=case, of=network.nodes[k])
 
 
 def history_rows(network: Network, solution: Solution) -> list[dict[str, Any]]:
-    """Return the history as plain data, one mapping an evaluation, in SI; null where a number is not known."""
-    rows: list[dict[str, Any]] = []
-    if (trials := solution.trials) is not None:
-        names = [network.pipes.rows[k] for k in trials.branches.tolist()]
-        for t in range(len(trials.head)):
-            rows.append(
-                {
-                    "iteration": t + 1,
-                    "head": _number(trials.head[t]),
-                    "low_end": _number(trials.low_end[t]),
-                    "high_end": _number(trials.high_end[t]),
-                    "imbalance": _number(trials.imbalance[t]),
-                    "flows_toward": dict(zip(names, map(_number, trials.flows[t]), strict=True)),
-                    "rule": trials.rule[t],
-                    "from_trials": [use + 1 for use in trials.uses[t]],
-                }
-            )
-    if (steps := solution.steps) is not None:
-        for k in range(len(steps.iteration)):
-            rows.append(
-                {
-                    "iteration": int(steps.iteration[k]),
-                    "largest_imbalance": _number(steps.imbalance[k]),
-                    "node": _named(network.nodes, steps.node[k]),
-                    "largest_energy_error": _number(steps.energy_error[k]),
-                    "branch": _named(network.pipes.rows, steps.branch[k]),
-                    "largest_flow_change": _number(steps.flow_change[k]),
-                }
-            )
-    return rows
+    """Return the history as plain data, one mapping an evaluation; in SI, null where not known."""
+    if solution.trials is not None:
+        return _trial_rows(network, solution.trials)
+    return [] if solution.steps is None else _step_rows(network, solution.steps)
+
+
+def _trial_rows(network: Network, trials: Trials) -> list[dict[str, Any]]:
+    names = [network.pipes.rows[k] for k in trials.branches.tolist()]
+    return [
+        {
+            "iteration": t + 1,
+            "head": _number(trials.head[t]),
+            "low_end": _number(trials.low_end[t]),
+            "high_end": _number(trials.high_end[t]),
+            "imbalance": _number(trials.imbalance[t]),
+            "flows_toward": dict(zip(names, map(_number, trials.flows[t]), strict=True)),
+            "rule": trials.rule[t],
+            "from_trials": [use + 1 for use in trials.uses[t]],
+        }
+        for t in range(len(trials.head))
+    ]
+
+
+def _step_rows(network: Network, steps: Steps) -> list[dict[str, Any]]:
+    return [
+        {
+            "iteration": int(steps.iteration[k]),
+            "largest_imbalance": _number(steps.imbalance[k]),
+            "node": _named(network.nodes, steps.node[k]),
+            "largest_energy_error": _number(steps.energy_error[k]),
+            "branch": _named(network.pipes.rows, steps.branch[k]),
+            "largest_flow_change": _number(steps.flow_change[k]),
+        }
+        for k in range(len(steps.iteration))
+    ]
 
 
 def _number(value: Any) -> float | None:  # noqa: ANN401

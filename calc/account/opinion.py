@@ -11,7 +11,7 @@ from calc import second
 from calc.components import Network
 from calc.equation import Reference, Symbol, Unit, equation
 from calc.kinds import FLOW, HEAD, Kind
-from calc.ledger import Accountant, Ledger, Program, Spot, View
+from calc.ledger import Accountant, Column, Ledger, Program, Spot, View
 from calc.solve import Solution
 
 LARGEST_RESOLVED = 5000
@@ -68,8 +68,8 @@ HEAD_DIFFERENCE = _difference(HEAD)
 class Agreement:
     """How the second opinion compares with the solution of a case.
 
-    ``evaluated`` says that the laws were evaluated at the answer and not solved again: the differences are then the
-    largest imbalance and the largest energy error found by the second code.
+    ``evaluated`` says that the laws were evaluated at the answer and not solved again: the differences are then
+    the largest imbalance and the largest energy error found by the second code.
     """
 
     method: str
@@ -123,37 +123,25 @@ def enter_opinion(ledger: Ledger, network: Network, solution: Solution, case: st
     if len(network.start) > LARGEST_RESOLVED:
         found = second.evaluate(works, solution.flow, solution.head)
         said = Program("found by evaluating the laws and continuity at the answer with separate code")
-        flow = ledger.enter(
-            "second.largest_imbalance", FLOW, [""], [found.largest_imbalance], said, case=case
-        )
-        head = ledger.enter(
-            "second.largest_energy_error", HEAD, [""], [found.largest_energy_error], said, case=case
-        )
-        return _agreement(
-            "laws and continuity evaluated at the answer", True, flow, head, flow_allowed, head_allowed
-        )
+        flow = ledger.enter("second.largest_imbalance", FLOW, [""], [found.largest_imbalance], said, case=case)
+        head = ledger.enter("second.largest_energy_error", HEAD, [""], [found.largest_energy_error], said, case=case)
+        method = "laws and continuity evaluated at the answer"
+        return _agreement(method, (flow, head, flow_allowed, head_allowed), evaluated=True)
     opinion = second.form_opinion(works)
     if not opinion.converged:
         return Agreement(opinion.method, agrees=False, evaluated=False, reason=opinion.reason)
     flow, head = _enter_differences(ledger, network, opinion, case)
-    return _agreement(opinion.method, False, flow, head, flow_allowed, head_allowed)
+    return _agreement(opinion.method, (flow, head, flow_allowed, head_allowed), evaluated=False)
 
 
-def _agreement(  # noqa: PLR0917
-    method: str,
-    evaluated: bool,
-    flow: Any,
-    head: Any,
-    flow_allowed: Any,
-    head_allowed: Any,  # noqa: ANN401
-) -> Agreement:
-    spots = [Spot(column, 0) for column in (flow, head, flow_allowed, head_allowed)]
+def _agreement(method: str, columns: tuple[Column, Column, Column, Column], *, evaluated: bool) -> Agreement:
+    spots = [Spot(column, 0) for column in columns]
     agrees = spots[0].value <= spots[2].value and spots[1].value <= spots[3].value
     reason = "" if agrees else "the differences are larger than allowed"
     return Agreement(method, agrees, evaluated, reason, *spots)
 
 
-def _enter_allowances(ledger: Ledger, network: Network, case: str) -> tuple[Any, Any]:
+def _enter_allowances(ledger: Ledger, network: Network, case: str) -> tuple[Column, Column]:
     books = Accountant(ledger, case)
     rows = network.pipes.rows
     flow = ledger.view("pipes.flow", case, rows)
@@ -164,9 +152,7 @@ def _enter_allowances(ledger: Ledger, network: Network, case: str) -> tuple[Any,
     level = ledger.view("reservoirs.level", case, reservoirs)
     zeros = np.zeros(len(reservoirs), dtype=np.int64)
     ends = [
-        View.whole(
-            books.combine(f"second.{word}_level", operation, level, zeros, [""], words=f"{word} level")
-        )
+        View.whole(books.combine(f"second.{word}_level", operation, level, zeros, [""], words=f"{word} level"))
         for word, operation in (("highest", "largest"), ("lowest", "least"))
     ]
     flow_allowed = books.apply(
@@ -178,9 +164,7 @@ def _enter_allowances(ledger: Ledger, network: Network, case: str) -> tuple[Any,
     return flow_allowed.sources[0], head_allowed.sources[0]
 
 
-def _enter_differences(
-    ledger: Ledger, network: Network, opinion: second.Opinion, case: str
-) -> tuple[Any, Any]:
+def _enter_differences(ledger: Ledger, network: Network, opinion: second.Opinion, case: str) -> tuple[Column, Column]:
     books = Accountant(ledger, case)
     said = Program(f"found by the second opinion: {opinion.method}")
     rows = network.pipes.rows

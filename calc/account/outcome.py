@@ -41,9 +41,7 @@ def results(account: Account) -> dict[str, Any]:
             for judged in account.verdicts
             for verdict in judged.verdicts
         ],
-        "findings": [
-            {"id": f.id, "subject": f.subject, "place": f.place, "text": f.text} for f in account.findings
-        ],
+        "findings": [{"id": f.id, "subject": f.subject, "place": f.place, "text": f.text} for f in account.findings],
         "studies": {},
     }
 
@@ -98,13 +96,10 @@ def _here(ledger: Ledger, name: str, case: str) -> dict[str, float]:
 
 def _nodes(account: Account, held: CaseAccount) -> dict[str, Any]:
     ledger, case = account.ledger, held.id
-    head = (
-        dict(zip(held.network.nodes, held.columns.head.values.tolist(), strict=True)) if held.columns else {}
-    )
+    head = dict(zip(held.network.nodes, held.columns.head.values.tolist(), strict=True)) if held.columns else {}
     outflow = _here(ledger, "reservoirs.outflow", case)
     reported = {
-        name: _here(ledger, f"junctions.{name}", case)
-        for name in ("pressure_head", "pressure", "velocity_head")
+        name: _here(ledger, f"junctions.{name}", case) for name in ("pressure_head", "pressure", "velocity_head")
     }
     withdrawal = _values(ledger, "junctions.withdrawal", case)
     nodes: dict[str, Any] = {}

@@ -17,7 +17,8 @@ from calc.physics import energy
 class Path:
     """A way from one reservoir to another along open pipes.
 
-    ``pipes`` are ids in the order of the walk; ``signs`` +1 where a pipe is walked from its ``from`` to its ``to``.
+    ``pipes`` are ids in the order of the walk; ``signs`` +1 where a pipe is walked from its ``from`` to its
+    ``to``.
     """
 
     id: str
@@ -29,7 +30,7 @@ class Path:
 
 
 def find_paths(network: Network) -> tuple[Path, ...]:
-    """Return n - 1 independent paths between n reservoirs joined by open pipes, shortest in pipes first found."""
+    """Return n - 1 independent paths between n reservoirs that open pipes join, each of fewest pipes."""
     reach: list[list[tuple[int, int, int]]] = [[] for _ in network.nodes]
     for pipe in np.flatnonzero(network.open).tolist():
         a, b = int(network.start[pipe]), int(network.end[pipe])
@@ -73,7 +74,7 @@ def _path(network: Network, root: int, goal: int, came: dict[int, tuple[int, int
         signs.append(sign)
         nodes.append(network.nodes[node])
     start, end = network.nodes[root], network.nodes[goal]
-    return Path(f"{start}-to-{end}", start, end, tuple(pipes[::-1]), tuple(nodes[::-1]), tuple(signs[::-1]))
+    return Path(f"{start}/{end}", start, end, tuple(pipes[::-1]), tuple(nodes[::-1]), tuple(signs[::-1]))
 
 
 def enter_paths(ledger: Ledger, network: Network, columns: CaseColumns, case: str) -> tuple[Path, ...]:

@@ -2,20 +2,21 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from fnmatch import fnmatchcase
 
 import numpy as np
 
 from calc.account.books import enter_stated
 from calc.account.flows import CaseColumns, restricted
 from calc.criteria import ALL, Criterion, Outcome
+from calc.equation import Labels, Law
 from calc.kinds import NUMBER, PRESSURE
 from calc.ledger import Accountant, Judged, Ledger, Spot, View
 from calc.ledger.column import ABSENT
 from calc.physics import energy
-from calc.project import BASE, Project
+from calc.problems import Unresolved
+from calc.project import BASE, Project, cases_of, subjects_of
 
 
 @dataclass(frozen=True)
@@ -52,104 +53,84 @@ class CriterionVerdict:
         return all(verdict.met for verdict in self.verdicts)
 
 
-def enter_verdicts(
-    ledger: Ledger, project: Project, cases: Mapping[str, CaseColumns]
-) -> tuple[CriterionVerdict, ...]:
+def enter_verdicts(ledger: Ledger, project: Project, cases: Mapping[str, CaseColumns]) -> tuple[CriterionVerdict, ...]:
     """Judge every criterion of a project in the cases that have a solution, and enter what was found."""
     judged = []
     for criterion in ALL:
         record = project.criteria.get(criterion.id)
         if record is None:
             continue
-        stated = record.stated["limit"]
         by_pressure = record.text("kind") == PRESSURE.name
         name = "criteria.limit_pressure" if by_pressure else "criteria.limit"
         kind = PRESSURE if by_pressure else criterion.kind
-        enter_stated(ledger, name, kind, [criterion.id], [stated], BASE)
-        verdicts: list[Verdict] = []
-        for case, columns in cases.items():
-            if _listed(case, record.text("cases", "all")):
-                verdicts += _judge(
-                    ledger, criterion, columns, case, record.text("applies_to", "*"), by_pressure
-                )
+        enter_stated(ledger, name, kind, [criterion.id], [record.stated["limit"]], case=BASE)
+        subjects = subjects_of(project, record)
+        verdicts = [
+            verdict
+            for case in cases_of(project, record)
+            if case in cases
+            for verdict in _judge(ledger, criterion, subjects, cases[case], case)
+        ]
         judged.append(_governed(ledger, criterion, verdicts))
     return tuple(judged)
 
 
-def _listed(case: str, cases: str) -> bool:
-    return cases == "all" or case in [name.strip() for name in cases.split(",")]
-
-
-def _judge(  # noqa: PLR0917 - the parts of one judgement
-    ledger: Ledger,
-    criterion: Criterion,
-    columns: CaseColumns,
-    case: str,
-    pattern: str,
-    by_pressure: bool,  # noqa: FBT001
+def _judge(
+    ledger: Ledger, criterion: Criterion, subjects: Sequence[str], columns: CaseColumns, case: str
 ) -> list[Verdict]:
-    books = Accountant(ledger, case)
-    outcome = Outcome(
-        columns.results.velocity, columns.results.friction_loss, columns.terms.length, columns.pressure_head
-    )
-    every = _value(ledger, criterion, outcome, books)
-    patterns = [p.strip() for p in pattern.split(",")]
-    rows = [
-        row
-        for row, which in zip(every.rows, every.which.tolist(), strict=True)
-        if which != ABSENT and any(fnmatchcase(f"{criterion.group}.{row}", p) or p == "*" for p in patterns)
-    ]
+    """Judge the subjects that have a value in a case: a shut pipe has none, nor a node without elevation."""
+    books = _Once(ledger, case)
+    results = columns.results
+    outcome = Outcome(results.velocity, results.friction_loss, columns.terms.length, columns.pressure_head)
+    every: View = criterion.value(books, outcome)
+    valued = {row for row, which in zip(every.rows, every.which.tolist(), strict=True) if which != ABSENT}
+    rows = [row for row in subjects if row in valued]
     if not rows:
         return []
     value = restricted(every, rows)
-    limit = _limit(ledger, criterion, books, by_pressure=by_pressure)
+    limit = _limit(criterion, books)
     name = f"{criterion.group}.{criterion.id}-margin"
     margin = books.apply(name, criterion.margin, value=value, limit=limit)
     origin = Judged(margin)
-    met = ledger.enter(
-        f"{criterion.group}.{criterion.id}-met", NUMBER, rows, margin.values >= 0, origin, case=case
-    )
-    verdicts = []
-    for k, row in enumerate(rows):
-        spots = [view.spot(k) for view in (value, limit, margin)]
-        found = [Spot(*spot) for spot in spots if spot is not None]
-        verdicts.append(Verdict(criterion, row, case, *found, met=bool(met.values[k])))
-    return verdicts
+    met = ledger.enter(f"{criterion.group}.{criterion.id}-met", NUMBER, rows, margin.values >= 0, origin, case=case)
+    return [
+        Verdict(criterion, row, case, *_spots((value, limit, margin), k), bool(met.values[k]))
+        for k, row in enumerate(rows)
+    ]
 
 
-def _value(ledger: Ledger, criterion: Criterion, outcome: Outcome[View], books: Accountant) -> View:
-    """Return the value judged; two criteria may judge one quantity, which is entered once."""
-    return criterion.value(_Once(ledger, books), outcome)  # type: ignore[no-any-return]
+def _spots(views: tuple[View, View, View], row: int) -> tuple[Spot, Spot, Spot]:
+    value, limit, margin = (view.spot(row) for view in views)
+    if value is None or limit is None or margin is None:
+        raise Unresolved(f"row {views[0].rows[row]} was judged without a value, a limit or a margin")
+    return Spot(*value), Spot(*limit), Spot(*margin)
 
 
 class _Once(Accountant):
-    """An accountant that finds a result standing instead of entering it again."""
+    """An accountant that finds a result standing instead of entering it again.
 
-    def __init__(self, ledger: Ledger, books: Accountant) -> None:
-        super().__init__(ledger, books.case)
+    Two criteria may judge one quantity, which is entered once.
+    """
 
-    def apply(self, name, law, /, *, by=None, **inputs):  # type: ignore[no-untyped-def]  # noqa: ANN001, ANN003, ANN202
+    def apply(self, name: str, law: Law, /, *, by: Labels | None = None, **inputs: View) -> View:
         standing = [column for column in self.ledger.find(name, self.case) if column.case == self.case]
-        if standing:
-            return View.whole(standing[0])
-        return super().apply(name, law, by=by, **inputs)
+        return View.whole(standing[0]) if standing else super().apply(name, law, by=by, **inputs)
 
 
-def _limit(ledger: Ledger, criterion: Criterion, books: Accountant, *, by_pressure: bool) -> View:
-    if not by_pressure:
-        columns = [c for c in ledger.find("criteria.limit", books.case) if criterion.id in c.index]
-        zero = np.zeros(1, dtype=np.int64)
-        return View((columns[0],), zero, zero, (criterion.id,), shared=True)
-    stated = [c for c in ledger.find("criteria.limit_pressure", books.case) if criterion.id in c.index]
-    view = View.assembled(stated, [criterion.id])
-    head = _Once(ledger, books).apply(
-        "criteria.limit-" + criterion.id,
+def _limit(criterion: Criterion, books: Accountant) -> View:
+    """Return the limit to judge by; one given as a pressure becomes a head of the liquid of the case."""
+    ledger, case = books.ledger, books.case
+    for column in ledger.find("criteria.limit", case):
+        if criterion.id in column.index:
+            return ledger.serving(column, column.index[criterion.id])
+    head = Accountant(ledger, case).apply(
+        "criteria.limit_head",
         energy.head_of_pressure,
-        pressure=view,
-        density=ledger.shared("fluid.density", books.case),
-        gravity=ledger.shared("site.gravity", books.case),
+        pressure=ledger.view("criteria.limit_pressure", case, [criterion.id]),
+        density=ledger.shared("fluid.density", case),
+        gravity=ledger.shared("site.gravity", case),
     )
-    return View(head.sources, head.which, head.at, head.rows, shared=True)
+    return ledger.serving(head.sources[0])
 
 
 def _governed(ledger: Ledger, criterion: Criterion, verdicts: list[Verdict]) -> CriterionVerdict:

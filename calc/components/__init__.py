@@ -1,9 +1,10 @@
 """Components: what a reservoir, junction or pipe states, and the chain of laws that it follows.
 
-A component is one file: its schema (the fields a user may write, from which reading, problems and input tables
-follow) and its chain, written once against an `Evaluator`: the solver runs it on arrays and records nothing; the
-accountant runs it on ledger columns. `Network` holds one case as arrays. Knows the laws of `physics`; knows
-nothing of YAML, cases, solving or reports. A new component is a file here and a line in ``SCHEMAS``.
+A component is one file: its schema (the fields a user may write, from which reading, problems and input
+tables follow) and its chain, written once against an `Evaluator`: the solver runs it on arrays and records
+nothing; the accountant runs it on ledger columns. `Network` holds one case as arrays. Knows the laws of
+`physics`; knows nothing of YAML, cases, solving or reports. A new component is a file here and a line in
+``SCHEMAS``.
 """
 
 from calc.components import junction, pipe, reservoir

@@ -26,13 +26,17 @@ class LiquidTerms(Generic[T]):
 
     def each(self, convert: Callable[[T], U]) -> LiquidTerms[U]:
         """Return the same statements, each converted."""
-        held = {field.name: getattr(self, field.name) for field in fields(self)}
-        return LiquidTerms(**{name: None if x is None else convert(x) for name, x in held.items()})
+        held = {field.name: getattr(self, field.name) for field in fields(self) if field.name != "altitude"}
+        rest = {name: None if x is None else convert(x) for name, x in held.items()}
+        return LiquidTerms(convert(self.altitude), **rest)
 
 
 @dataclass(frozen=True)
 class Liquid(Generic[T]):
-    """The properties in use; ``vapour_pressure`` is None where neither it nor a temperature of water is stated."""
+    """The properties in use.
+
+    ``vapour_pressure`` is None where neither it nor a temperature of water is stated.
+    """
 
     density: T
     viscosity: T
@@ -41,7 +45,13 @@ class Liquid(Generic[T]):
 
 
 def liquid(on: Evaluator[T], stated: LiquidTerms[T]) -> Liquid[T]:
-    """Return the properties of the liquid; those stated stand, the rest follow from the temperature of water."""
+    """Return the properties of the liquid: those stated, the rest from the temperature of water.
+
+    Raises
+    ------
+    ValueError
+        If density or viscosity is neither stated nor follows.
+    """
     density, viscosity, vapour = stated.density, stated.viscosity, stated.vapour_pressure
     dynamic = stated.dynamic_viscosity
     if stated.temperature is not None:
@@ -60,5 +70,6 @@ def liquid(on: Evaluator[T], stated: LiquidTerms[T]) -> Liquid[T]:
         viscosity = on.apply(
             "fluid.viscosity", water.kinematic_viscosity, dynamic_viscosity=dynamic, density=density
         )
-    air = on.apply("site.atmospheric_pressure", water.atmospheric_pressure, altitude=stated.altitude)
+    height = on.apply("site.geopotential_altitude", water.geopotential_altitude, altitude=stated.altitude)
+    air = on.apply("site.atmospheric_pressure", water.atmospheric_pressure, geopotential_altitude=height)
     return Liquid(density, viscosity, vapour, air)

@@ -8,7 +8,7 @@ from typing import Generic, TypeVar
 from calc.components.fields import Count, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Word
 from calc.equation import Evaluator, Labels
 from calc.equation.evaluation import Rows
-from calc.kinds import BORE, LENGTH, NUMBER, PRESSURE, ROUGHNESS
+from calc.kinds import BORE, HEAD, LENGTH, NUMBER, PRESSURE, ROUGHNESS
 from calc.physics import energy, fitting, friction, velocity
 
 SCHEMA = Schema(
@@ -52,7 +52,7 @@ T = TypeVar("T")
 
 @dataclass(frozen=True)
 class FittingTerms(Generic[T]):
-    """Inputs of the fittings and pipe ends of all pipes, one row each; ``pipe`` is the row of the pipe it is in."""
+    """Inputs of the fittings and ends of all pipes, one row each; ``pipe`` is the row of its pipe."""
 
     rows: tuple[str, ...]
     pipe: Rows
@@ -98,7 +98,10 @@ class TransitionLimits(Generic[T]):
 
 @dataclass(frozen=True)
 class PipeResults(Generic[T]):
-    """What the chain gives, in its order; losses and velocity carry the sign of the flow, flow is per pipe of n."""
+    """What the chain gives, in its order.
+
+    Losses and velocity carry the sign of the flow; flow is that of one of n parallel pipes.
+    """
 
     flow_each: T
     velocity: T
@@ -199,4 +202,4 @@ def _fitting_losses(on: Evaluator[T], pipe: PipeTerms[T], each: T) -> tuple[T, T
         velocity=mean,
         gravity=pipe.gravity,
     )
-    return mean, coefficient, loss, on.total("pipes.fitting_loss", loss, part.pipe, pipe.rows)
+    return mean, coefficient, loss, on.total("pipes.fitting_loss", HEAD, loss, part.pipe, pipe.rows)

@@ -67,8 +67,8 @@ class Stated:
 class Record:
     """A component or section as stated: its id, where it begins, and the values of its fields.
 
-    ``stated`` holds only what was written or what a default supplies; ``parts`` holds lists of smaller records, such
-    as the fittings of a pipe.
+    ``stated`` holds only what was written or what a default supplies; ``parts`` holds lists of smaller
+    records, such as the fittings of a pipe.
     """
 
     id: str

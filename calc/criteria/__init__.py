@@ -1,8 +1,8 @@
 """Criteria: limits that a project sets, each a law on results with a margin that is positive when it is met.
 
-Limits are inputs with a source, never defaults. A criterion is written against an `Evaluator`, so that studies
-can judge arrays and the accountant ledger columns. Criteria are independent of one another; a new one is a file
-here and a line in ``ALL``.
+Limits are inputs with a source, never defaults. A criterion is written against an `Evaluator`, so that
+studies can judge arrays and the accountant ledger columns. Criteria are independent of one another; a new one
+is a file here and a line in ``ALL``.
 """
 
 from calc.criteria.criterion import Criterion, Outcome

@@ -16,7 +16,10 @@ PROJECT_CRITERION = Reference("project criterion", "Limit set by the project")
 
 @dataclass(frozen=True)
 class Outcome(Generic[T]):
-    """The results that criteria judge: rows are pipes for the first three, junctions with an elevation for the last."""
+    """The results that criteria judge.
+
+    Rows are pipes for the first three, junctions with an elevation for the last.
+    """
 
     velocity: T
     friction_loss: T

@@ -22,5 +22,11 @@ def _gradient(on: Evaluator[T], outcome: Outcome[T]) -> T:
 
 
 GRADIENT_MAX = Criterion(
-    "gradient-max", "Greatest friction gradient", "pipes", "at most", (GRADIENT,), _gradient, margin_below(GRADIENT)
+    "gradient-max",
+    "Greatest friction gradient",
+    "pipes",
+    "at most",
+    (GRADIENT,),
+    _gradient,
+    margin_below(GRADIENT),
 )

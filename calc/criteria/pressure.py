@@ -16,8 +16,20 @@ def _pressure_head(on: Evaluator[T], outcome: Outcome[T]) -> T:  # noqa: ARG001 
 
 
 PRESSURE_MIN = Criterion(
-    "pressure-min", "Least pressure", "junctions", "at least", (HEAD, PRESSURE), _pressure_head, margin_above(HEAD)
+    "pressure-min",
+    "Least pressure",
+    "junctions",
+    "at least",
+    (HEAD, PRESSURE),
+    _pressure_head,
+    margin_above(HEAD),
 )
 PRESSURE_MAX = Criterion(
-    "pressure-max", "Greatest pressure", "junctions", "at most", (HEAD, PRESSURE), _pressure_head, margin_below(HEAD)
+    "pressure-max",
+    "Greatest pressure",
+    "junctions",
+    "at most",
+    (HEAD, PRESSURE),
+    _pressure_head,
+    margin_below(HEAD),
 )

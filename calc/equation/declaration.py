@@ -9,7 +9,7 @@ from functools import cached_property
 from typing import Any
 
 from calc.equation.dimension import Dimensional, dimension_of
-from calc.equation.expression import Expression, Term, linear
+from calc.equation.expression import Expression, Term, linear, terms_of
 from calc.kinds import Kind
 from calc.problems import EquationError
 
@@ -77,7 +77,9 @@ class Equation:
         letters = [symbol.text for symbol in self.takes.values()]
         if len(set(letters)) < len(letters):
             raise EquationError(f"{self.name}: two inputs share a letter: {', '.join(letters)}")
-        _ = self.expression
+        unused = set(self.takes) - terms_of(self.expression)
+        if unused:
+            raise EquationError(f"{self.name}: declared and never used: {', '.join(sorted(unused))}")
 
 
 def equation(

@@ -1,4 +1,4 @@
-"""The reading of a body as a dimension: does it balance?"""
+"""The reading of a body as a dimension, which tells whether it balances."""
 
 from __future__ import annotations
 
@@ -27,23 +27,24 @@ class Dimensional(Reading):
                 second = dimension_of(args[1])
                 if first != second:
                     raise EquationError(f"{operation}: {first} against {second}")
-                return Dimensional(first)
+                found = first
             case "multiply":
-                return Dimensional(first.times(dimension_of(args[1])))
+                found = first.times(dimension_of(args[1]))
             case "divide":
-                return Dimensional(first.times(dimension_of(args[1]).power(Fraction(-1))))
+                found = first.times(dimension_of(args[1]).power(Fraction(-1)))
             case "square":
-                return Dimensional(first.power(Fraction(2)))
+                found = first.power(Fraction(2))
             case "sqrt":
-                return Dimensional(first.power(Fraction(1, 2)))
+                found = first.power(Fraction(1, 2))
             case "negative" | "abs":
-                return Dimensional(first)
+                found = first
             case "power":
-                return Dimensional(_raised(first, args[1]))
+                found = _raised(first, args[1])
             case _:
                 if first != PURE:
                     raise EquationError(f"{operation} of a quantity in {first}; divide by its unit first")
-                return Dimensional(PURE)
+                found = PURE
+        return Dimensional(found)
 
 
 def dimension_of(operand: Any) -> Dimension:  # noqa: ANN401

@@ -11,6 +11,7 @@ import numpy.typing as npt
 from calc.equation.declaration import Equation
 from calc.equation.law import Choice, Implicit, Labels, Law, Leaf, Regimes, takes
 from calc.equation.slope import Slope, value_of
+from calc.kinds import Kind
 from calc.problems import EquationError
 
 Array = npt.NDArray[np.float64]
@@ -33,8 +34,8 @@ class Evaluator(Protocol[T]):
         """Return one value for each of ``rows``: the one that stands at ``at``."""
         ...
 
-    def total(self, name: str, value: T, into: Rows, rows: tuple[str, ...], /) -> T:
-        """Return for each of ``rows`` the sum of the values whose ``into`` points there."""
+    def total(self, name: str, kind: Kind, value: T, into: Rows, rows: tuple[str, ...], /) -> T:
+        """Return for each of ``rows`` the sum, of a kind, of the values whose ``into`` points there."""
         ...
 
 
@@ -56,6 +57,8 @@ def select(law: Law | None, inputs: Mapping[str, Any], count: int) -> Iterator[t
 def _select(
     law: Law | None, inputs: Mapping[str, Any], rows: Rows, label: str
 ) -> Iterator[tuple[Rows, Leaf | None, str]]:
+    if not len(rows):
+        return
     if isinstance(law, Regimes):
         regime = np.zeros(len(rows), dtype=np.int64)
         x = _of(inputs[law.by], rows)
@@ -67,13 +70,13 @@ def _select(
                 yield from _select(part, inputs, at_k, law.labels[k])
     elif isinstance(law, Choice):
         labels: Labels = inputs[law.by]
-        codes = np.broadcast_to(labels.codes, (max(len(labels.codes), int(rows.max(initial=0)) + 1),))[rows]
+        codes = labels.codes[rows] if len(labels.codes) > 1 else np.full(len(rows), labels.codes[0])
         for code in np.unique(codes):
             word = labels.words[code]
             if word not in law.laws:
                 raise EquationError(f"{law.name}: no law for '{word}'")
             yield from _select(law.laws[word], inputs, rows[codes == code], word)
-    elif len(rows):
+    else:
         yield rows, law, label
 
 
@@ -100,8 +103,8 @@ def evaluate(law: Law, inputs: Mapping[str, Any]) -> Value:
     law : Law
         The law.
     inputs : mapping
-        By name: arrays of shape (n,) or (1,), in SI; `Slope` where a derivative is wanted; `Labels` for a Choice.
-        Names that the law does not take are ignored.
+        By name: arrays of shape (n,) or (1,), in SI; `Slope` where a derivative is wanted; `Labels` for a
+        Choice. Names that the law does not take are ignored.
 
     Returns
     -------
@@ -166,7 +169,7 @@ class Arrays:
             return Slope(value.value[at], value.slope[at])
         return value[at]
 
-    def total(self, name: str, value: Value, into: Rows, rows: tuple[str, ...], /) -> Value:  # noqa: ARG002
+    def total(self, name: str, kind: Kind, value: Value, into: Rows, rows: tuple[str, ...], /) -> Value:  # noqa: ARG002
         """Sum by destination."""
         if isinstance(value, Slope):
             return Slope(_sums(value.value, into, len(rows)), _sums(value.slope, into, len(rows)))

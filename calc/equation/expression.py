@@ -15,6 +15,9 @@ __all__ = ["Amount", "Expression", "Literal", "Operation", "Term", "Unit", "line
 LONGEST_LITERAL = 9
 """Significant digits of a number in a body: constants longer than this hide a value that needs a name."""
 
+LARGEST_WHOLE = 1e16
+"""Numbers from here on are printed with an exponent even when whole."""
+
 
 @dataclass(frozen=True, eq=False)
 class Expression(Reading):
@@ -59,10 +62,18 @@ def _node(operand: Any) -> Expression:  # noqa: ANN401
 def _digits(number: float) -> str:
     if number == math.pi:
         return "π"
-    text = repr(int(number)) if float(number).is_integer() and abs(number) < 1e16 else repr(float(number))
+    whole = float(number).is_integer() and abs(number) < LARGEST_WHOLE
+    text = repr(int(number)) if whole else repr(float(number))
     if len(text.split("e")[0].replace(".", "").strip("-0")) > LONGEST_LITERAL:
         raise EquationError(f"{text}: too long a number to print inside a formula; make it an input")
     return text
+
+
+def terms_of(node: Expression) -> set[str]:
+    """Return the names of the inputs in a tree."""
+    if isinstance(node, Term):
+        return {node.name}
+    return {name for part in node.args for name in terms_of(part)} if isinstance(node, Operation) else set()
 
 
 _PRECEDENCE = {"add": 1, "subtract": 1, "multiply": 2, "divide": 2, "negative": 3, "power": 4, "square": 4}

@@ -13,7 +13,10 @@ from calc.equation.declaration import Equation, Symbol
 
 @dataclass(frozen=True, slots=True)
 class Bound:
-    """Where the next regime begins: at a number or at the input of that name; ``strict`` leaves the bound out."""
+    """Where the next regime begins: at a number or at the input of that name.
+
+    ``strict`` leaves the bound itself to the regime before.
+    """
 
     at: float | str
     strict: bool = False
@@ -23,8 +26,8 @@ class Bound:
 class Regimes:
     """A law that changes with one of its inputs.
 
-    Law k governs from ``bounds[k-1]`` up to ``bounds[k]``. ``None`` for a law says that no value is defined there
-    (a friction factor at rest).
+    Law k governs from ``bounds[k-1]`` up to ``bounds[k]``. ``None`` for a law says that no value is defined
+    there (a friction factor at rest).
     """
 
     name: str

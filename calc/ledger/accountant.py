@@ -6,11 +6,13 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
+import numpy.typing as npt
 
 from calc.equation import Choice, Labels, Law, Leaf, Regimes, select
 from calc.equation.evaluation import evaluate_leaf, part
 from calc.equation.law import gives, takes
-from calc.ledger.column import ABSENT, Column, Rows, View
+from calc.kinds import Kind
+from calc.ledger.column import ABSENT, Array, Column, Rows, View
 from calc.ledger.ledger import Ledger
 from calc.ledger.origin import Combined, Derived
 
@@ -52,19 +54,29 @@ class Accountant:
             leaves.append(leaf)
             labels.append(label if isinstance(law, Regimes | Choice) else "")
             values[at] = evaluate_leaf(leaf, {n: part(arrays[n], at) for n in takes(leaf)})
-        return self._entered(name, law, rows, values, which, leaves, labels, inputs, shared=shared)
+        return self._entered(
+            name,
+            law,
+            rows,
+            values=values,
+            which=which,
+            leaves=leaves,
+            labels=labels,
+            inputs=inputs,
+            shared=shared,
+        )
 
     def _entered(
         self,
         name: str,
         law: Law,
         rows: Sequence[str],
-        values: Any,  # noqa: ANN401
+        *,
+        values: Array,
         which: Rows,
         leaves: Sequence[Leaf],
         labels: Sequence[str],
         inputs: Mapping[str, View],
-        *,
         shared: bool,
     ) -> View:
         kept = np.flatnonzero(which != ABSENT)
@@ -96,10 +108,9 @@ class Accountant:
         """Return one number for each of ``rows``."""
         return value.take(at, rows)
 
-    def total(self, name: str, value: View, into: Rows, rows: tuple[str, ...], /) -> View:
-        """Enter for each of ``rows`` the sum of the numbers that go into it."""
-        column = self.combine(name, "sum", value, into, rows, words="sum")
-        return View.whole(column)
+    def total(self, name: str, kind: Kind, value: View, into: Rows, rows: tuple[str, ...], /) -> View:
+        """Enter for each of ``rows`` the sum of the numbers that go into it; 0 where none does."""
+        return View.whole(self.combine(name, "sum", value, into, rows, words="all its parts", kind=kind))
 
     def combine(
         self,
@@ -110,10 +121,10 @@ class Accountant:
         rows: Sequence[str],
         *,
         words: str,
-        signs: Any = None,  # noqa: ANN401
-        kind: Any = None,  # noqa: ANN401
+        signs: npt.ArrayLike | None = None,
+        kind: Kind | None = None,
     ) -> Column:
-        """Enter a sum, or the largest or least, of signed terms for each row."""
+        """Enter a sum, or the largest or least, of signed terms for each row; of their kind unless told."""
         signed = np.ones(len(into)) if signs is None else np.asarray(signs, dtype=np.float64)
         origin = Combined(operation, terms, into, signed, words)
         kind = kind or terms.sources[0].kind
@@ -121,7 +132,7 @@ class Accountant:
         return self.ledger.enter(name, kind, rows, values, origin, case=self.case, of=self.of)
 
 
-def combined(operation: str, terms: Any, into: Rows, count: int) -> Any:  # noqa: ANN401
+def combined(operation: str, terms: Array, into: Rows, count: int) -> Array:
     """Return the sum, largest, least or largest size of terms for each of ``count`` rows."""
     if operation == "sum":
         return np.bincount(into, terms, count).astype(np.float64)

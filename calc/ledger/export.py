@@ -18,9 +18,10 @@ FORMAT = "headtrace-ledger/1"
 def exported(ledger: Ledger) -> dict[str, Any]:
     """Return the ledger as plain data, in SI.
 
-    Every input of a derived value is ``{"column": k}`` (row for row), ``{"column": k, "row": r}`` (one number for all
-    rows), or ``{"columns": [...], "rows": [...]}`` (a pair for each row, null where not taken). Formulas name inputs
-    as the ``inputs`` do, with ``+ - * / ^``, ``pi`` and the functions abs, sqrt, ln, log10, exp.
+    Every input of a derived value is ``{"column": k}`` (row for row), ``{"column": k, "row": r}`` (one number
+    for all rows), ``{"column": k, "rows": [...]}`` (a row of one column for each), or ``{"columns": [...],
+    "rows": [...]}`` (a pair for each row, null where not taken). Formulas name inputs as the ``inputs`` do,
+    with ``+ - * / ^``, ``pi`` and the functions abs, sqrt, ln, log10, exp.
     """
     number = {id(column): k for k, column in enumerate(ledger.columns)}
     return {
@@ -45,17 +46,18 @@ def _column(column: Column, number: dict[int, int]) -> dict[str, Any]:
 
 def _origin(column: Column, number: dict[int, int]) -> dict[str, Any]:
     origin = column.origin
+    told: dict[str, Any]
     match origin:
         case Given() | Library():
-            return {"kind": "given" if isinstance(origin, Given) else "library", **_stated(origin)}
+            told = {"kind": "given" if isinstance(origin, Given) else "library", **_stated(origin)}
         case Converted():
-            told = {"numbers": list(origin.numbers), "units": list(origin.units)}
+            told = {"kind": "converted", **_stated(origin)}
+            told |= {"numbers": list(origin.numbers), "units": list(origin.units)}
             told |= {"factors": list(origin.factors), "offsets": list(origin.offsets)}
-            return {"kind": "converted", **_stated(origin), **told}
         case Derived():
-            return _derived(origin, number)
+            told = _derived(origin, number)
         case Combined():
-            return {
+            told = {
                 "kind": "total",
                 "operation": origin.operation,
                 "meaning": origin.words,
@@ -64,18 +66,16 @@ def _origin(column: Column, number: dict[int, int]) -> dict[str, Any]:
                 "signs": origin.signs.tolist(),
             }
         case Solved():
-            told = {"statement": origin.statement, "method": origin.method, "iterations": origin.iterations}
-            return {"kind": "solved", **told, "proof": list(origin.proof)}
+            told = {"kind": "solved", "statement": origin.statement, "method": origin.method}
+            told |= {"iterations": origin.iterations, "proof": list(origin.proof)}
         case Judged():
-            return {
-                "kind": "judged",
-                "rule": "1 if margin >= 0 else 0",
-                "margin": _view(origin.margin, number),
-            }
+            rule = "1 if margin >= 0 else 0"
+            told = {"kind": "judged", "rule": rule, "margin": _view(origin.margin, number)}
         case Program():
-            return {"kind": "program", "statement": origin.statement}
+            told = {"kind": "program", "statement": origin.statement}
         case _:
             raise CalcError(f"{column.name}: no form for the origin {type(origin).__name__}")
+    return told
 
 
 def _stated(origin: Given | Converted | Library) -> dict[str, Any]:

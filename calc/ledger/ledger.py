@@ -12,6 +12,7 @@ import numpy.typing as npt
 
 from calc.kinds import Kind
 from calc.ledger.column import Column, Origin, View
+from calc.ledger.origin import Converted, Derived, Given, Library
 from calc.problems import CalcError, Unresolved, nearest
 
 _ID = re.compile(
@@ -40,12 +41,14 @@ class Spot(NamedTuple):
 class Ledger:
     """Columns in the order of their making.
 
-    ``parents`` says which case a case builds upon: a number that a case does not state is its parent's.
+    ``parents`` says which case a case builds upon: an input that a case does not state is its parent's, and
+    so is what follows from inputs alone. What was solved, and all that rests on it, belongs to its case.
     """
 
     parents: Mapping[str, str] = field(default_factory=dict)
     columns: list[Column] = field(default_factory=list)
     _named: dict[tuple[str, str, str], list[Column]] = field(default_factory=dict)
+    _inherited: set[int] = field(default_factory=set)
 
     def enter(
         self,
@@ -63,7 +66,7 @@ class Ledger:
         Raises
         ------
         CalcError
-            If a number is not finite, or a row of that name and case stands already.
+            If a number is not finite, a row comes twice, or one of that name and case stands already.
         """
         array = np.array(values, dtype=np.float64).reshape(-1)
         if len(array) != len(rows):
@@ -71,22 +74,35 @@ class Ledger:
         if not np.all(np.isfinite(array)):
             bad = rows[int(np.flatnonzero(~np.isfinite(array))[0])]
             raise CalcError(f"{name}@{case}: the number of {bad} is not finite")
+        if len(set(rows)) < len(rows):
+            raise CalcError(f"{name}@{case}: a row comes twice")
         column = Column(name, case, of, kind, tuple(rows), array, origin)
         standing = self._named.setdefault((name, case, of), [])
         if any(row in other.index for other in standing for row in column.rows):
             raise CalcError(f"{name}@{case}: a row stands already")
         standing.append(column)
         self.columns.append(column)
+        if not of and self._rests_on_inputs(origin):
+            self._inherited.add(id(column))
         return column
 
+    def _rests_on_inputs(self, origin: Origin) -> bool:
+        if isinstance(origin, Derived):
+            sources = (source for view in origin.inputs.values() for source in view.sources)
+            return all(id(source) in self._inherited for source in sources)
+        return isinstance(origin, Given | Converted | Library)
+
     def find(self, name: str, case: str = "", of: str = "") -> list[Column]:
-        """Return the columns of a name in a case, nearest first through the cases it builds upon, then of no case."""
-        found: list[Column] = []
-        while True:
-            found += self._named.get((name, case, of), [])
-            if not case:
-                return found
+        """Return the columns of a name in a case, nearest first.
+
+        After those of the case come the inputs of the cases it builds upon, then the columns of no case.
+        """
+        found = list(self._named.get((name, case, of), []))
+        while case:
             case = self.parents.get(case, "")
+            standing = self._named.get((name, case, of), [])
+            found += [column for column in standing if not case or id(column) in self._inherited]
+        return found
 
     def spot(self, id_: str) -> Spot:
         """Return the number of an id.
@@ -126,5 +142,10 @@ class Ledger:
         columns = self.find(name, case)
         if not columns:
             raise Unresolved(f"no column is named {name}@{case}")
-        one = np.zeros(1, dtype=np.int64)
-        return View((columns[0],), one, one, columns[0].rows[:1], shared=True)
+        return self.serving(columns[0])
+
+    @staticmethod
+    def serving(column: Column, row: int = 0) -> View:
+        """Return one number of a column, to serve every row."""
+        at = np.array([row])
+        return View((column,), np.zeros(1, dtype=np.int64), at, (column.rows[row],), shared=True)

@@ -18,8 +18,8 @@ MANY = 12
 def trace(ledger: Ledger, spot: Spot) -> Iterator[str]:
     """Yield the derivation of a number, outermost first, inputs indented beneath what they enter.
 
-    A number met again is not repeated: its line says "shown above". Numbers that were solved for are proved after the
-    tree in which they were met, each under its own line.
+    A number met again is not repeated: its line says "shown above". Numbers that were solved for are proved
+    after the tree in which they were met, each under its own line.
     """
     tracer = _Tracer(ledger)
     yield from tracer.lines(spot, 0)
@@ -53,11 +53,13 @@ class _Tracer:
                 yield from self._combined(head, origin, row, depth)
             case Solved():
                 below = "; proof below" if origin.proof else ""
-                yield f"{head}   solved: {origin.statement} ({origin.method}, {origin.iterations} iterations){below}"
+                how = f"{origin.method}, {origin.iterations} iterations"
+                yield f"{head}   solved: {origin.statement} ({how}){below}"
                 if origin.proof:
                     self.waiting.append(spot)
             case Judged():
-                yield f"{head}   {'met' if spot.value else 'not met'}: the margin is {'not ' * bool(spot.value)}negative"
+                said = "met: the margin is not negative" if spot.value else "not met: the margin is negative"
+                yield f"{head}   {said}"
                 yield from self._inputs([origin.margin.spot(row)], depth)
             case Program(statement=statement):
                 yield f"{head}   {statement}"

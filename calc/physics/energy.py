@@ -1,6 +1,6 @@
 """Heads, losses and pressures along a pipe: the balance of energy."""
 
-# ruff: noqa: ANN001, ANN202, ANN201 - bodies are read with several types of operand
+# ruff: noqa: ANN001, ANN201 - bodies are read with several types of operand
 # mypy: disable-error-code="no-untyped-def"
 
 from calc.equation import Reference, equation
@@ -31,7 +31,7 @@ def head_loss(*, friction_loss, fitting_loss):
     head_loss=s.HEAD_LOSS,
 )
 def closing_error(*, head_from, head_to, head_loss):
-    """Closing error of energy along a branch."""
+    """Energy closing error along a branch."""
     return head_from - head_to - head_loss
 
 

@@ -1,6 +1,6 @@
 """Losses at fittings and pipe ends, by loss coefficients on a stated velocity head."""
 
-# ruff: noqa: ANN001, ANN202, ANN201 - bodies are read with several types of operand
+# ruff: noqa: ANN001, ANN201 - bodies are read with several types of operand
 # mypy: disable-error-code="no-untyped-def"
 
 import numpy as np

@@ -1,6 +1,6 @@
 """Friction in full round pipes: Darcy–Weisbach and the laws for its factor."""
 
-# ruff: noqa: ANN001, ANN202, ANN201 - bodies are read with several types of operand
+# ruff: noqa: ANN001, ANN201 - bodies are read with several types of operand
 # mypy: disable-error-code="no-untyped-def"
 
 import numpy as np
@@ -17,12 +17,13 @@ POISEUILLE_1840 = Reference(
 )
 COLEBROOK_1939 = Reference(
     "Colebrook 1939",
-    "C. F. Colebrook, Turbulent flow in pipes, with particular reference to the transition region between the smooth and "
-    "rough pipe laws, J. Institution of Civil Engineers 11, 1939",
+    "C. F. Colebrook, Turbulent flow in pipes, with particular reference to the transition region between "
+    "the smooth and rough pipe laws, J. Institution of Civil Engineers 11, 1939",
 )
 SWAMEE_JAIN_1976 = Reference(
     "Swamee & Jain 1976",
-    "P. K. Swamee, A. K. Jain, Explicit equations for pipe-flow problems, J. Hydraulics Division ASCE 102(5), 1976",
+    "P. K. Swamee, A. K. Jain, Explicit equations for pipe-flow problems, "
+    "J. Hydraulics Division ASCE 102(5), 1976",
 )
 HAALAND_1983 = Reference(
     "Haaland 1983",

@@ -1,6 +1,6 @@
 """Mean velocity, Reynolds number and velocity head."""
 
-# ruff: noqa: ANN001, ANN202, ANN201 - bodies are read with several types of operand
+# ruff: noqa: ANN001, ANN201 - bodies are read with several types of operand
 # mypy: disable-error-code="no-untyped-def"
 
 import numpy as np
@@ -11,8 +11,8 @@ from calc.physics import symbols as s
 DEFINITION = Reference("definition", "Definition")
 REYNOLDS_1883 = Reference(
     "Reynolds 1883",
-    "O. Reynolds, An experimental investigation of the circumstances which determine whether the motion of water "
-    "shall be direct or sinuous, Phil. Trans. Royal Society 174, 1883",
+    "O. Reynolds, An experimental investigation of the circumstances which determine whether the motion of "
+    "water shall be direct or sinuous, Phil. Trans. Royal Society 174, 1883",
 )
 
 

@@ -1,6 +1,6 @@
 """Properties of water from its temperature, and of air from the altitude: published correlations."""
 
-# ruff: noqa: ANN001, ANN202, ANN201 - bodies are read with several types of operand
+# ruff: noqa: ANN001, ANN201 - bodies are read with several types of operand
 # mypy: disable-error-code="no-untyped-def"
 
 import numpy as np
@@ -15,8 +15,8 @@ KELL_1975 = Reference(
 )
 IAPWS_SR6 = Reference(
     "IAPWS SR6-08",
-    "International Association for the Properties of Water and Steam, Revised supplementary release on properties of "
-    "liquid water at 0.1 MPa, SR6-08(2011)",
+    "International Association for the Properties of Water and Steam, Revised supplementary release on "
+    "properties of liquid water at 0.1 MPa, SR6-08(2011)",
 )
 WAGNER_PRUSS_1993 = Reference(
     "Wagner & Pruss 1993",
@@ -78,11 +78,22 @@ def vapour_pressure(*, temperature):
 
 
 @equation(
+    gives=s.GEOPOTENTIAL_ALTITUDE,
+    source=ISO_2533,
+    valid="−2 000 to 80 000 m above sea level",
+    altitude=s.ALTITUDE,
+)
+def geopotential_altitude(*, altitude):
+    """Geopotential altitude, the height that would need the same work in uniform gravity."""
+    return 6356766 * s.METRE * altitude / (6356766 * s.METRE + altitude)
+
+
+@equation(
     gives=s.ATMOSPHERIC_PRESSURE,
     source=ISO_2533,
     valid="−2 000 to 11 000 m above sea level",
-    altitude=s.ALTITUDE,
+    geopotential_altitude=s.GEOPOTENTIAL_ALTITUDE,
 )
-def atmospheric_pressure(*, altitude):
+def atmospheric_pressure(*, geopotential_altitude):
     """Atmospheric pressure at an altitude."""
-    return 101325 * s.PASCAL * (1 - 0.0065 * (altitude / s.METRE) / 288.15) ** 5.25588
+    return 101325 * s.PASCAL * (1 - 0.0065 * (geopotential_altitude / s.METRE) / 288.15) ** 5.25588
