@@ -41,9 +41,7 @@ class Branches:
         self.open = network.open
         self.limits: TransitionLimits[Value] = transition_limits(ARRAYS, self.pipes)
         bore, parallel = network.pipes.bore, network.pipes.parallel
-        self.flow_at_unit_velocity: Array = np.broadcast_to(
-            np.pi / 4 * bore**2 * parallel, network.open.shape
-        )
+        self.flow_at_unit_velocity: Array = np.broadcast_to(np.pi / 4 * bore**2 * parallel, network.open.shape)
 
     def losses(self, flow: Array) -> tuple[Array, Array]:
         """Return the head lost and its slope by the flow.
@@ -62,9 +60,8 @@ class Branches:
         """
         with np.errstate(all="ignore"):
             lost = losses(ARRAYS, self.pipes, self.limits, Slope(flow, np.ones_like(flow))).head_loss
-        if not isinstance(lost, Slope):
-            lost = Slope(np.asarray(lost), np.zeros_like(flow))
-        return lost.value, lost.slope
+        read = cast("Slope", lost)  # every law of the chain depends on the flow
+        return read.value, read.slope
 
     def flows(self, difference: Array, guess: Array | None = None) -> Array:
         """Return the flows at which the pipes lose given heads.

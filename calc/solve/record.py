@@ -35,9 +35,7 @@ class History:
         worst, where = _largest(state.imbalance)
         energy, pipe = _largest(state.error)
         change = np.nan if self._last is None else _largest(state.flow - self._last)[0]
-        self._rows.append(
-            (worst, int(self._unknown[where]) if where >= 0 else -1, energy, pipe, change, share)
-        )
+        self._rows.append((worst, int(self._unknown[where]) if where >= 0 else -1, energy, pipe, change, share))
         self._last = state.flow
         if self._full and len(self._heads) <= FULL_ITERATIONS:
             self._heads.append(state.head)

@@ -30,9 +30,7 @@ IMBALANCE_B = Symbol("F_b", kinds.FLOW, "imbalance at point b")
 IMBALANCE_C = Symbol("F_c", kinds.FLOW, "imbalance at point c")
 STEP = Symbol("s", kinds.HEAD, "step of the trial head")
 
-BRACKETING = Reference(
-    "bracketing", "Bracketing of the one root of a function that falls throughout; common practice"
-)
+BRACKETING = Reference("bracketing", "Bracketing of the one root of a function that falls throughout; common practice")
 FALSE_POSITION = Reference("false position", "Rule of false position; common practice")
 CHANDRUPATLA_1997 = Reference(
     "Chandrupatla 1997",
@@ -132,21 +130,20 @@ class Rule:
     places: tuple[tuple[str, str, int | None], ...]
 
 
-_A, _B, _C = (
-    tuple((f"{column}_{letter}", column, place) for column in ("head", "imbalance"))
-    for place, letter in enumerate("abc")
-)
+_HEADS = tuple((f"head_{letter}", "head", place) for place, letter in enumerate("abc"))
+_IMBALANCES = tuple((f"imbalance_{letter}", "imbalance", place) for place, letter in enumerate("abc"))
+_STEP = ("step", "step", None)
 
 RULES: dict[str, Rule] = {
     "level": Rule(at_level, (("level", "level", None),)),
     "start": Rule(as_given, (("start", "start", None),)),
-    "widened below": Rule(widened_below, (("head_low", "head", 0), ("step", "step", None))),
-    "widened above": Rule(widened_above, (("head_high", "head", 0), ("step", "step", None))),
-    "false position": Rule(false_position, (*_A, *_B)),
-    "inverse quadratic": Rule(inverse_quadratic, (*_A, *_B, *_C)),
-    "halved": Rule(halved, (_A[0], _B[0])),
-    "closed below": Rule(closed_below, (_A[0], ("step", "step", None))),
-    "closed above": Rule(closed_above, (_A[0], ("step", "step", None))),
+    "widened below": Rule(widened_below, (("head_low", "head", 0), _STEP)),
+    "widened above": Rule(widened_above, (("head_high", "head", 0), _STEP)),
+    "false position": Rule(false_position, (*_HEADS[:2], *_IMBALANCES[:2])),
+    "inverse quadratic": Rule(inverse_quadratic, (*_HEADS, *_IMBALANCES)),
+    "halved": Rule(halved, _HEADS[:2]),
+    "closed below": Rule(closed_below, (_HEADS[0], _STEP)),
+    "closed above": Rule(closed_above, (_HEADS[0], _STEP)),
 }
 """Every rule by the word that the table prints."""
 
