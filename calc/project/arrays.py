@@ -46,9 +46,7 @@ class _Base:
         self.index = {name: {row: at for at, row in enumerate(group)} for name, group in self.groups.items()}
         self.nodes = dict(project.nodes)
         self.friction = project.friction
-        self.follows = np.array(
-            [follows_friction(project, one) for one in project.pipes.values()], dtype=bool
-        )
+        self.follows = np.array([follows_friction(project, one) for one in project.pipes.values()], dtype=bool)
         self.columns: dict[tuple[str, str], Array] = {}
 
     def column(self, group: str, field: str) -> Array:

@@ -46,10 +46,8 @@ def outside(form: Quantity, si: float) -> str:
     if least - slack <= si <= most + slack:
         return ""
     if form.at_least is not None and form.at_most is not None:
-        return f"{kind.phrase} from {_show(least, kind)} to {_show(most, kind)}"
-    return f"{kind.phrase} of " + (
-        f"at least {_show(least, kind)}" if si < least else f"at most {_show(most, kind)}"
-    )
+        return f"{kind.phrase} from {_show(least, kind).partition(' ')[0]} to {_show(most, kind)}"
+    return f"{kind.phrase} of " + (f"at least {_show(least, kind)}" if si < least else f"at most {_show(most, kind)}")
 
 
 def _show(si: float, kind: Kind) -> str:

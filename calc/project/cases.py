@@ -10,9 +10,10 @@ from calc.kinds import NUMBER, TEMPERATURE
 from calc.project.judging import note_unknown_case
 from calc.project.model import BASE, Case, Change, How, Line, Project
 from calc.project.paths import Target, follow
-from calc.project.reader import Reader, empty, quoted
+from calc.project.reader import Reader, empty
 from calc.project.records import read_group
 from calc.project.settings import VISCOSITIES
+from calc.project.wording import quoted
 from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile.collector import without_collector
@@ -148,9 +149,7 @@ def _check_circles(reader: Reader, cases: dict[str, Case], afters: Mapping[str, 
             node = afters[circle[0]]
             mark = node.mark if node is not None else cases[circle[0]].mark
             found = " after ".join([*circle, circle[0]])
-            reader.note(
-                mark, "case-cycle", f"cases.{circle[0]}.after", found, "cases that begin at the inputs"
-            )
+            reader.note(mark, "case-cycle", f"cases.{circle[0]}.after", found, "cases that begin at the inputs")
         settled.update(trail)
 
 

@@ -6,7 +6,7 @@ CODES: dict[str, str] = {
     "ambiguous-unit": "a unit that may mean two things",
     "bad-date": "a date that is not one of the calendar, written 2026-11-02",
     "bad-id": "an id with other characters than letters, digits, _ and -",
-    "bad-text": "an empty text, or one with characters that do not print",
+    "bad-text": "an empty text",
     "bad-word": "not one of the words that may stand there",
     "bare-number": "a number without a unit",
     "base-case": "the base case cannot change anything",

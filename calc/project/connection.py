@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 from calc.components import Record
-from calc.project.reader import Reader, listed
+from calc.project.reader import Reader
+from calc.project.wording import listed
 from calc.project.works import Works
 
 

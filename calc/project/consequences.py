@@ -14,8 +14,9 @@ from calc.project.bounds import outside
 from calc.project.cases import lines_in
 from calc.project.model import Case, Line, Project
 from calc.project.paths import GROUPS, SINGLE
-from calc.project.reader import Reader, quoted
+from calc.project.reader import Reader
 from calc.project.settings import TRANSITION, VISCOSITIES
+from calc.project.wording import quoted
 
 Mask = npt.NDArray[np.bool_]
 
@@ -56,11 +57,7 @@ def _check_range(reader: Reader, project: Project, now: Effective, case: Case, l
 def _field(project: Project, line: Line) -> Field | None:
     schema = GROUPS.get(line.group) or SINGLE.get(line.group) or TRANSITION
     field = schema.field(line.field)
-    if (
-        line.group == "fluid"
-        and line.field == "viscosity"
-        and project.fluid.text("viscosity_kind").startswith("d")
-    ):
+    if line.group == "fluid" and line.field == "viscosity" and project.fluid.text("viscosity_kind").startswith("d"):
         return Field("viscosity", VISCOSITIES[1])
     return field
 

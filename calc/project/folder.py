@@ -126,8 +126,7 @@ def _read(
         criteria=read_criteria(reader, top.get("criteria"), ids, cases),
         cases=cases,
         sections={
-            schema.name: sections.read_section(reader, schema, top.get(schema.name), works)
-            for schema in schemas
+            schema.name: sections.read_section(reader, schema, top.get(schema.name), works) for schema in schemas
         },
         defaults=_in_order(reader.defaults),
         spreads=dict(reader.spreads),

@@ -9,8 +9,9 @@ from pathlib import Path
 from calc.components import Field, Record, Schema, Stated, Text, Word
 from calc.marks import Mark
 from calc.project import shipped
-from calc.project.reader import Reader, empty, quoted
+from calc.project.reader import Reader, empty
 from calc.project.records import read_fields, read_group
+from calc.project.wording import quoted
 from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Sequence as ListNode
@@ -105,9 +106,7 @@ def read_references(reader: Reader, entry: Entry | None) -> dict[str, Record]:
     return found
 
 
-def read_assumptions(
-    reader: Reader, entry: Entry | None
-) -> tuple[dict[str, Record], list[tuple[Scalar, str]]]:
+def read_assumptions(reader: Reader, entry: Entry | None) -> tuple[dict[str, Record], list[tuple[Scalar, str]]]:
     """Return the assumptions, and the paths they affect, which can be followed once the works are known."""
     found = {}
     affects: list[tuple[Scalar, str]] = []
@@ -145,9 +144,7 @@ def joined(parts: list[Scalar], mark: Mark) -> Stated:
 def read_revisions(reader: Reader, entry: Entry | None) -> tuple[Record, ...]:
     """Return the revisions, each with a date of the calendar and a letter or number of its own."""
     found: dict[str, Record] = {}
-    items = (
-        reader.items(entry.value, "revisions", "a list: [{revision: …, date: …, change: …}]") if entry else ()
-    )
+    items = reader.items(entry.value, "revisions", "a list: [{revision: …, date: …, change: …}]") if entry else ()
     for at, item in enumerate(items, 1):
         path = f"revisions[{at}]"
         if not isinstance(item, MappingNode):

@@ -12,8 +12,9 @@ from calc.project import later
 from calc.project.header import joined, scalars
 from calc.project.model import Project
 from calc.project.paths import follow, matching
-from calc.project.reader import BASIS_KEYS, Reader, listed, quoted
+from calc.project.reader import BASIS_KEYS, Reader
 from calc.project.records import read_fields, read_group
+from calc.project.wording import listed, quoted
 from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 
@@ -80,9 +81,7 @@ def _read(
     return Record(criterion.id, key.mark, stated)
 
 
-def _read_limit(
-    reader: Reader, criterion: Criterion, node: Node, path: str, stated: dict[str, Stated]
-) -> None:
+def _read_limit(reader: Reader, criterion: Criterion, node: Node, path: str, stated: dict[str, Stated]) -> None:
     """Read a limit in any of the kinds a criterion takes, and say which."""
     forms = tuple(Quantity(kind) for kind in criterion.kinds)
     used: list[Kind] = []
@@ -117,16 +116,12 @@ def _read_applies(
         group = scalar.text.partition(".")[0]
         if group in works and group != criterion.group:
             found = f"{quoted(scalar.text)} are {group}"
-            reader.note(
-                scalar.mark, "wrong-group", path, found, f"{criterion.group}, such as '{criterion.group}.*'"
-            )
+            reader.note(scalar.mark, "wrong-group", path, found, f"{criterion.group}, such as '{criterion.group}.*'")
             continue
         target = follow(reader, scalar, path, works, whole=True)
         if target is not None and target.field is not None:
             found = f"{quoted(scalar.text)} is a field"
-            reader.note(
-                scalar.mark, "unknown-path", path, found, f"components, such as '{criterion.group}.*'"
-            )
+            reader.note(scalar.mark, "unknown-path", path, found, f"components, such as '{criterion.group}.*'")
     return joined(written, part[1].mark)
 
 

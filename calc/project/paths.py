@@ -10,8 +10,9 @@ from dataclasses import dataclass
 from calc.components import SCHEMAS, Field, Schema, Word
 from calc.physics.friction import LAW_NAMES
 from calc.project import later
-from calc.project.reader import Reader, listed, quoted
+from calc.project.reader import Reader
 from calc.project.settings import FLUID, SITE, TRANSITION
+from calc.project.wording import listed, quoted
 from calc.yamlfile import Scalar
 
 GROUPS: dict[str, Schema] = {schema.group: schema for schema in SCHEMAS}
@@ -113,9 +114,7 @@ def _field(reader: Reader, written: Scalar, path: str, schema: Schema, target: T
     known = [one.name for one in schema.fields]
     group = target.group if target.group in GROUPS else f"'{target.group}'"
     found = f"there is no field {quoted(name)} in {group}"
-    reader.note(
-        written.mark, "unknown-path", path, found, f"one of {listed(known)}", reader.near(name, known)
-    )
+    reader.note(written.mark, "unknown-path", path, found, f"one of {listed(known)}", reader.near(name, known))
     return None
 
 

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import re
-import unicodedata
 from collections.abc import Callable, Collection, Sequence
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
@@ -11,11 +10,14 @@ from functools import lru_cache
 from calc import units
 from calc.components import NO_BASIS, Basis, Count, Flag, Quantity, Record, Stated, Text, Word
 from calc.components.fields import Form
-from calc.kinds import KINDS, NUMBER
+from calc.kinds import KINDS, Kind
 from calc.marks import Mark
 from calc.problems import Problem, nearest
 from calc.project import later
 from calc.project.bounds import outside
+from calc.project.spread import KEYS as SPREAD_KEYS
+from calc.project.spread import read_spread
+from calc.project.wording import LONGEST_SHOWN, listed, quoted
 from calc.yamlfile import Mapping, Node, Scalar
 from calc.yamlfile import Sequence as ListNode
 
@@ -23,44 +25,32 @@ GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assume
 """How well a value is known, as its source shows it."""
 
 BASIS_KEYS = ("source", "page", "grade", "note")
-_VALUE_KEYS = ("value", *BASIS_KEYS, "range", "deviation")
+_VALUE_KEYS = ("value", *BASIS_KEYS, *SPREAD_KEYS)
 LONGEST_ID = 64
 _ID = re.compile(rf"[A-Za-z0-9_-]{{1,{LONGEST_ID}}}", re.ASCII)
 _WHOLE = re.compile(r"[0-9]{1,9}", re.ASCII)
-_UNPRINTABLE = {"Cc", "Cs", "Co", "Cn", "Zl", "Zp"}
-_TURNING = frozenset("\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
-_LONGEST_SHOWN = 60
 
 
 _KINDS = {kind.name: kind for kind in KINDS}
 
 
-@lru_cache(maxsize=1 << 16)
-def _quantity(text: str, kind: str) -> units.Quantity | units.UnitTrouble:
-    """Read a quantity; by the name of its kind, which hashes faster."""
+def _quantity(text: str, kind: Kind) -> units.Quantity | units.UnitTrouble:
     try:
-        return units.read(text, _KINDS[kind])
+        return units.read(text, kind)
     except units.UnitTrouble as trouble:
         return trouble
 
 
-def quoted(text: str) -> str:
-    """Return a text in quotes, on one line and of bearable length."""
-    shown = text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 1] + "…"
-    return "'" + "".join(letter if letter.isprintable() else "?" for letter in shown) + "'"
+@lru_cache(maxsize=1 << 16)
+def _kept(text: str, kind: str) -> units.Quantity | units.UnitTrouble:
+    """Return a quantity read before; by the name of its kind, which hashes faster."""
+    return _quantity(text, _KINDS[kind])
 
 
 _LONGEST_PATH = 160
-_LONGEST_LIST = 24
 _MOST_HINTS = 100
 MOST_TO_COMPARE = 2000
 """Above so many words, none is sought that comes near."""
-
-
-def listed(words: Sequence[str], last: str = "or") -> str:
-    """Return ``a, b or c``; a long list is cut."""
-    shown = [*words] if len(words) <= _LONGEST_LIST else [*words[:_LONGEST_LIST], "…"]
-    return shown[0] if len(shown) == 1 else f"{', '.join(shown[:-1])} {last} {shown[-1]}"
 
 
 @dataclass
@@ -109,7 +99,7 @@ class Reader:
         if len(known) > MOST_TO_COMPARE or self._hints >= _MOST_HINTS:
             return ""
         self._hints += 1
-        return nearest(word[:_LONGEST_SHOWN], sorted(known))
+        return nearest(word[:LONGEST_SHOWN], sorted(known))
 
     def not_yet(self, mark: Mark, path: str, word: str, hint: str) -> None:
         """Note a word that is for later."""
@@ -167,9 +157,7 @@ class Reader:
             self.not_yet(scalar.mark, path, scalar.text, later.LAWS[scalar.text])
             return None
         found = f"unknown {what} {quoted(scalar.text)}"
-        self.note(
-            scalar.mark, code, path, found, f"one of {listed(options)}", self.near(scalar.text, options)
-        )
+        self.note(scalar.mark, code, path, found, f"one of {listed(options)}", self.near(scalar.text, options))
         return None
 
     def scalar(self, node: Node, path: str, expected: str) -> Scalar | None:
@@ -180,21 +168,13 @@ class Reader:
         return None
 
     def text(self, node: Node, path: str) -> Stated | None:
-        """Return a free text, which prints and is not empty."""
+        """Return a free text; that it prints has been seen to when the file was read."""
         scalar = self.scalar(node, path, "a text")
         if scalar is None:
             return None
         if not scalar.text.strip():
             self.note(scalar.mark, "bad-text", path, "nothing is written here", "a text")
             return None
-        if not scalar.text.isascii() or not scalar.text.isprintable():
-            for letter in scalar.text:
-                if letter in _TURNING or (
-                    unicodedata.category(letter) in _UNPRINTABLE and letter not in "\n\t"
-                ):
-                    found = f"the character U+{ord(letter):04X} does not print"
-                    self.note(scalar.mark, "bad-text", path, found, "text that prints as it stands")
-                    return None
         return Stated(scalar.text, scalar.text, scalar.mark)
 
     def quantity(
@@ -204,7 +184,8 @@ class Reader:
         first: units.UnitTrouble | None = None
         expected = []
         for form in forms:
-            got = _quantity(scalar.text, form.kind.name)
+            name = form.kind.name
+            got = _kept(scalar.text, name) if name in _KINDS else _quantity(scalar.text, form.kind)
             if not isinstance(got, units.UnitTrouble):
                 if wanted := outside(form, got.value):
                     found = f"{quoted(scalar.text)} is out of range"
@@ -218,9 +199,7 @@ class Reader:
             if got.code not in ("wrong-dimension", "bare-number"):
                 break
         if first is not None:
-            self.note(
-                scalar.mark, first.code, path, first.found, " or ".join(dict.fromkeys(expected)), first.hint
-            )
+            self.note(scalar.mark, first.code, path, first.found, " or ".join(dict.fromkeys(expected)), first.hint)
         return None
 
     def basis(self, node: Mapping, path: str) -> Basis:
@@ -248,9 +227,7 @@ class Reader:
         if scalar.text in self.references:
             return Stated(scalar.text, scalar.text, scalar.mark)
         known = sorted(self.references)
-        hint = (
-            self.near(scalar.text, known) or f"list {quoted(scalar.text)} under 'references', with its title"
-        )
+        hint = self.near(scalar.text, known) or f"list {quoted(scalar.text)} under 'references', with its title"
         found = f"there is no reference {quoted(scalar.text)}"
         self.note(scalar.mark, "unknown-reference", path, found, "the id of one of the references", hint)
         return None
@@ -261,7 +238,8 @@ class Reader:
             return self.text(node, path)
         if isinstance(node, Scalar):
             return self.plain(form, node, path, code)
-        return self.supported(node, path, lambda scalar, _: self.plain(form, scalar, path, code))
+        kind = form.kind if isinstance(form, Quantity) else None
+        return self.supported(node, path, lambda scalar, at: self.plain(form, scalar, at, code), kind)
 
     def plain(self, form: Form, scalar: Scalar, path: str, code: str = "bad-word") -> Stated | None:
         """Return the value of a scalar."""
@@ -289,8 +267,13 @@ class Reader:
             return None
         return Stated(float(scalar.text), scalar.text, scalar.mark, float(scalar.text))
 
-    def supported(self, node: Node, path: str, read: Callable[[Scalar, str], Stated | None]) -> Stated | None:
-        """Return a value written as ``{value, source, page, grade, note, range or deviation}``."""
+    def supported(
+        self, node: Node, path: str, read: Callable[[Scalar, str], Stated | None], kind: Kind | None = None
+    ) -> Stated | None:
+        """Return a value written as ``{value, source, page, grade, note, range or deviation}``.
+
+        ``read`` reads its value; a deviation is of ``kind``, or a share of the value where that is None.
+        """
         if not isinstance(node, Mapping):
             self.wrong_shape(node, path, "a value, or {value: …, source: …}")
             return None
@@ -310,37 +293,10 @@ class Reader:
         stated = scalar and read(scalar, path)
         if stated is None:
             return None
-        self._spread(at, path, read)
+        spread = read_spread(self, at, path, stated, kind=kind, read=read)
+        if spread is not None:
+            self.spreads[path] = spread
         return replace(stated, basis=basis)
-
-    def _spread(self, at: dict[str, Node], path: str, read: Callable[[Scalar, str], Stated | None]) -> None:
-        """Keep the range or the deviation of a value that is said to be uncertain."""
-        if "range" in at and "deviation" in at:
-            found = "'range' and 'deviation' both stand here"
-            self.note(at["deviation"].mark, "excluded-pair", path, found, "one of the two")
-        elif "range" in at:
-            wanted = "two values: [low, high]"
-            items = self.items(at["range"], f"{path}.range", wanted)
-            match [read(item, f"{path}.range") for item in items if isinstance(item, Scalar)]:
-                case [Stated() as low, Stated() as high]:
-                    if isinstance(low.value, float) and low.si >= high.si:
-                        found = f"{quoted(low.written)} is not below {quoted(high.written)}"
-                        self.note(low.mark, "wrong-order", f"{path}.range", found, wanted)
-                    self.spreads[path] = Record(path, low.mark, {"low": low, "high": high})
-                case [_, _]:
-                    pass  # what is wrong with either is noted
-                case _:
-                    self.wrong_shape(at["range"], f"{path}.range", wanted)
-        elif "deviation" in at and isinstance(scalar := at["deviation"], Scalar):
-            percent = "%" in scalar.text
-            one = (
-                self.quantity(scalar, f"{path}.deviation", (Quantity(NUMBER, above=0.0),))
-                if percent
-                else None
-            )
-            stated = one[0] if one else (None if percent else read(scalar, f"{path}.deviation"))
-            if stated is not None:
-                self.spreads[path] = Record(path, stated.mark, {"deviation": stated})
 
 
 _NAMES = {"unknown-law": "friction law", "unknown-kind": "kind"}

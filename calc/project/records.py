@@ -7,7 +7,8 @@ from collections.abc import Iterable, Mapping
 from calc.components import Ends, Field, Fittings, Node, Schema, Stated
 from calc.marks import Mark
 from calc.project import later
-from calc.project.reader import LONGEST_ID, Reader, quoted
+from calc.project.reader import LONGEST_ID, Reader
+from calc.project.wording import quoted
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Node as YamlNode
 from calc.yamlfile import Scalar
@@ -104,8 +105,10 @@ def _require(reader: Reader, schema: Schema, node: MappingNode, path: str, mark:
             if "segments" in later_here and "segments" in present:
                 continue
             missing(reader, schema.singular, field, f"{path}.{field.name}", mark)
+    noted: set[str] = set()
     for one, other in schema.excludes:
-        if one in present and other in present:
+        if one in present and other in present and one not in noted:
+            noted.add(one)
             at = next(key.mark for key, _ in node.entries if key.text == other)
             found = f"'{one}' and '{other}' both stand here"
             reader.note(at, "excluded-pair", f"{path}.{other}", found, "one of the two")

@@ -29,9 +29,7 @@ def read_section(reader: Reader, schema: SectionSchema, entry: Entry | None, wor
     """
     if entry is None or empty(entry.value):
         first = next(iter(works.reservoirs.values()), None)
-        return Record(
-            "", entry.key.mark if entry else first.mark if first else Mark("network.yaml", 1, 1), {}
-        )
+        return Record("", entry.key.mark if entry else first.mark if first else Mark("network.yaml", 1, 1), {})
     node = reader.mapping(entry.value, schema.name, "a mapping")
     if node is None:
         return Record("", entry.key.mark, {})
@@ -46,8 +44,7 @@ def read_section(reader: Reader, schema: SectionSchema, entry: Entry | None, wor
         extra=by_node,
     )
     found = {
-        name: _by_node(reader, by_node[name].form, value, f"{schema.name}.{name}")
-        for name, (_, value) in parts.items()
+        name: _by_node(reader, by_node[name].form, value, f"{schema.name}.{name}") for name, (_, value) in parts.items()
     }
     return Record("", entry.key.mark, stated, found)
 

@@ -16,8 +16,9 @@ from calc.kinds import (
 from calc.marks import Mark
 from calc.physics.friction import LAW_NAMES
 from calc.project import later, shipped
-from calc.project.reader import Reader, empty, quoted
+from calc.project.reader import Reader, empty
 from calc.project.records import read_fields
+from calc.project.wording import quoted
 from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
 
@@ -50,9 +51,7 @@ SITE = Schema(
     "site",
     "site",
     (
-        Field(
-            "altitude", Quantity(ELEVATION, at_least=-430.0, at_most=9000.0), words="altitude above sea level"
-        ),
+        Field("altitude", Quantity(ELEVATION, at_least=-430.0, at_most=9000.0), words="altitude above sea level"),
         Field("gravity", Quantity(ACCELERATION, at_least=9.7, at_most=9.9), words="gravity"),
     ),
 )
@@ -60,9 +59,7 @@ TRANSITION = Schema(
     "transition",
     "transition",
     (
-        Field(
-            "laminar_below", Quantity(NUMBER, at_least=100.0, at_most=1e5), words="end of laminar flow, Re"
-        ),
+        Field("laminar_below", Quantity(NUMBER, at_least=100.0, at_most=1e5), words="end of laminar flow, Re"),
         Field(
             "turbulent_above",
             Quantity(NUMBER, at_least=100.0, at_most=1e5),
@@ -114,11 +111,7 @@ def check_transition(reader: Reader, low: Stated | None, high: Stated | None) ->
 
 def read_fluid(reader: Reader, entry: Entry | None) -> Record:
     """Return the liquid: water at a temperature, or any liquid by its density and viscosity."""
-    node = (
-        reader.mapping(entry.value, "fluid", "a mapping: {kind: water, temperature: 10 degC}")
-        if entry
-        else None
-    )
+    node = reader.mapping(entry.value, "fluid", "a mapping: {kind: water, temperature: 10 degC}") if entry else None
     mark = entry.key.mark if entry else _nowhere("fluid.temperature")
     if node is None:
         defaults = {name: _default(reader, f"fluid.{name}") for name in ("kind", "temperature")}
@@ -138,9 +131,7 @@ def read_fluid(reader: Reader, entry: Entry | None) -> Record:
     elif "kind" in stated and stated["kind"].text != "water":
         kind = stated["kind"]
         hint = "state 'density' and 'viscosity' of another liquid"
-        reader.note(
-            kind.mark, "unknown-kind", "fluid.kind", f"unknown fluid {quoted(kind.text)}", "'water'", hint
-        )
+        reader.note(kind.mark, "unknown-kind", "fluid.kind", f"unknown fluid {quoted(kind.text)}", "'water'", hint)
     elif "temperature" not in present:
         stated["temperature"] = _default(reader, "fluid.temperature")
     return Record("", mark, stated)

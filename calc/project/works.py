@@ -11,8 +11,9 @@ from calc.components.pipe import LAW_INPUT
 from calc.marks import Mark
 from calc.project import shipped
 from calc.project.fittings import read_ends, read_fittings
-from calc.project.reader import Reader, empty, quoted
+from calc.project.reader import Reader, empty
 from calc.project.records import Fields, Parts, read_fields, read_group
+from calc.project.wording import quoted
 from calc.yamlfile import Entry, Scalar, SourceFile, read_table
 from calc.yamlfile import Mapping as MappingNode
 
@@ -68,13 +69,14 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
             nodes[key.text] = key.mark
             records[key.text] = Record(key.text, key.mark, stated)
     doubtful = any(problem.code not in _HARMLESS for problem in reader.problems[before:])
+    doubtful = doubtful or not works.reservoirs
     reader.nodes = None if doubtful else {*nodes, *_outlets(top)}
     for key, member in _members(reader, works, folder, top.get("pipes"), "a pipe"):
         works.pipes[key.text] = _read_pipe(reader, key, member, works, friction)
     ends = ("from", "to")
     later_joins = any(name in top for name in ("outlets", "pumps", "valves"))
     works.whole = not (doubtful or later_joins) and all(
-        end in one.stated for one in works.pipes.values() for end in ends
+        all(end in one.stated for end in ends) and one.text("from") != one.text("to") for one in works.pipes.values()
     )
     _expect_some(reader, works, top)
     return works
@@ -129,9 +131,7 @@ def _complete_node(reader: Reader, group: str, stated: Fields, member: MappingNo
         reader.note(low.mark, "wrong-order", f"{path}.low", found, "'low' at most 'high'")
 
 
-def _read_pipe(
-    reader: Reader, key: Scalar, member: MappingNode, works: Works, friction: Stated | None
-) -> Record:
+def _read_pipe(reader: Reader, key: Scalar, member: MappingNode, works: Works, friction: Stated | None) -> Record:
     path = f"pipes.{key.text}"
     stated, parts = read_fields(reader, pipe.SCHEMA, member, path, key.mark)
     for name in ("parallel", "open"):
@@ -144,9 +144,7 @@ def _read_pipe(
     return Record(key.text, key.mark, stated, _read_parts(reader, key.text, stated, parts, works))
 
 
-def _read_parts(
-    reader: Reader, name: str, stated: Fields, parts: Parts, works: Works
-) -> dict[str, tuple[Record, ...]]:
+def _read_parts(reader: Reader, name: str, stated: Fields, parts: Parts, works: Works) -> dict[str, tuple[Record, ...]]:
     found: dict[str, tuple[Record, ...]] = {}
     bore = stated.get("bore")
     if "ends" in parts:
