@@ -1,0 +1,46 @@
+"""What the faces hold and how wide it is: for breaking formulas, and so that no other face steps in."""
+
+from __future__ import annotations
+
+import unicodedata
+from functools import lru_cache
+
+from calc.publish import places
+
+UPRIGHT, ITALIC, MONO = "LedgerText-Regular", "LedgerText-Italic", "LedgerMono-Regular"
+WORDS = (UPRIGHT, ITALIC, "LedgerText-SemiBold", "LedgerSmall-Regular", "LedgerDisplay-Regular")
+UNKNOWN = 0.6  # em, the width taken for a character that a face lacks
+TAB = 4  # blanks that a tab stands for in a listing
+
+
+@lru_cache(maxsize=8)
+def _advances(face: str) -> dict[int, float]:
+    from fontTools.ttLib import TTFont
+
+    with TTFont(places.fonts() / f"{face}.ttf", lazy=True) as font:
+        em, widths = font["head"].unitsPerEm, font["hmtx"]
+        return {code: widths[glyph][0] / em for code, glyph in font.getBestCmap().items()}
+
+
+def width(text: str, face: str = UPRIGHT) -> float:
+    """Return the width of one line of text in em."""
+    advances = _advances(face)
+    return sum(advances.get(ord(character), UNKNOWN) for character in text)
+
+
+@lru_cache(maxsize=2)
+def _held(*, listing: bool) -> frozenset[int]:
+    names = (MONO,) if listing else WORDS
+    return frozenset.intersection(*(frozenset(_advances(name)) for name in names))
+
+
+@lru_cache(maxsize=20_000)
+def shown(text: str, *, listing: bool = False) -> str:
+    """Return text in characters that our faces hold; any other is named by its code point, ``[U+4E2D]``.
+
+    Nothing is lost or passed over: the reader sees that a sign stood there, and which. So hidden marks that turn the
+    direction of writing become visible too.
+    """
+    held = _held(listing=listing)
+    whole = text.expandtabs(TAB) if listing else unicodedata.normalize("NFC", text)
+    return "".join(c if ord(c) in held or c == "\n" else f"[U+{ord(c):04X}]" for c in whole)

@@ -1,0 +1,178 @@
+"""The page as HTML: one set of templates for paper and screen, in a sandbox that cannot print a bare number."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass, field
+from functools import lru_cache
+from typing import Any
+
+from jinja2 import FileSystemLoader, StrictUndefined
+from jinja2.sandbox import ImmutableSandboxedEnvironment
+from markupsafe import Markup, escape
+
+from calc.ledger import Ledger
+from calc.problems import Unresolved
+from calc.publish import places
+from calc.publish.faces import shown
+from calc.publish.markup import named, own
+from calc.publish.parts import Writer
+from calc.publish.tables import MEASURE, WIDE, Sheet, wide
+from calc.report.document import Block, Document, Figure, Listing, Section, Table
+
+FILTERS = ("e", "escape", "join", "lower", "trim")
+"""Filters that stay; none of the rest makes or formats a number without the ledger."""
+
+
+@dataclass(frozen=True, slots=True)
+class Line:
+    """One line of a listing as printed."""
+
+    place: Markup
+    number: Markup
+    text: Markup
+
+
+def finished(value: object) -> object:
+    """Return what a template prints, unless it is a number, or text with a number in it that is not marked.
+
+    Raises
+    ------
+    Unresolved
+        If it is.
+    """
+    if isinstance(value, Markup) or value is None:
+        return value if value is not None else ""
+    if not isinstance(value, str):
+        raise Unresolved(f"a template may not print {value!r}: only text, and numbers that are in the ledger")
+    if any(character.isdecimal() for character in value):
+        raise Unresolved(f"a template may not print '{value}': it holds a number without a line in the ledger")
+    return value
+
+
+@lru_cache(maxsize=1)
+def environment() -> ImmutableSandboxedEnvironment:
+    """Return the environment that templates run in."""
+    made = ImmutableSandboxedEnvironment(
+        loader=FileSystemLoader(places.templates()),
+        autoescape=True,
+        undefined=StrictUndefined,
+        finalize=finished,
+        trim_blocks=True,
+        lstrip_blocks=True,
+    )
+    made.globals.clear()
+    made.filters = {name: made.filters[name] for name in FILTERS}
+    return made
+
+
+@dataclass
+class Page:
+    """What a template may call.
+
+    Attributes
+    ----------
+    document : Document
+    writer : Writer
+        Sets parts.
+    picture : callable
+        Gives the markup of a figure's drawing.
+    """
+
+    document: Document
+    writer: Writer
+    picture: Callable[[Figure], Markup]
+    _placed: set[str] = field(default_factory=set)
+
+    def words(self) -> dict[str, Any]:
+        """Return everything that a template knows, by name."""
+        return {
+            "document": self.document,
+            "title": escape(shown(heading(self.document))),
+            "said": self.writer.said,
+            "named": named,
+            "own": own,
+            "verbatim": lambda text: escape(shown(text)),
+            "kind_of": kind_of,
+            "place": place,
+            "target": self.target,
+            "sheet": self.sheet,
+            "turned": self.turned,
+            "picture": self.picture,
+            "numbered": numbered,
+        }
+
+    def target(self, address: str) -> Markup:
+        """Return the id attribute of a line; a line shown again has none."""
+        if not address or address in self._placed:
+            return Markup()
+        self._placed.add(address)
+        return Markup(' id="{}"').format(place("line", address))
+
+    def sheet(self, table: Table, section: Section) -> Sheet:
+        """Return a table as it will stand on the document's paper."""
+        whole = (WIDE if self.turned(section) else MEASURE)[self.document.paper]
+        return Sheet(table, whole, self.writer)
+
+    def turned(self, section: Section) -> bool:
+        """Return whether a section needs sheets turned on their side, for the width of one of its tables."""
+        return any(isinstance(block, Table) and wide(block, self.document.paper) for block in section.blocks)
+
+
+def html(
+    document: Document,
+    ledger: Ledger,
+    picture: Callable[[Figure], Markup],
+    *,
+    head: Markup,
+    tail: Markup | None = None,
+) -> str:
+    """Return a document as a page.
+
+    Parameters
+    ----------
+    document : Document
+    ledger : Ledger
+        Holds every number that the document prints.
+    picture : callable
+        Gives the markup of a figure's drawing.
+    head, tail : Markup
+        What paper or screen add to the head and after the text.
+
+    Raises
+    ------
+    Unresolved
+        If a number has no line in the ledger, or text of the program's own holds a digit.
+    """
+    if document.paper not in MEASURE:
+        raise Unresolved(f"no paper is called '{document.paper}'")
+    page = Page(document, Writer(document, ledger), picture)
+    template = environment().get_template("package.html")
+    return template.render(**page.words(), head=head, tail=tail or Markup())
+
+
+def heading(document: Document) -> str:
+    """Return the title of the file: project, number and revision."""
+    issued = ", revision ".join(word for word in (document.number, document.revision) if word)
+    return ": ".join(word for word in (document.title, issued) if word)
+
+
+def kind_of(block: Block) -> str:
+    """Return the word by which templates know a block."""
+    return type(block).__name__.lower()
+
+
+def place(sort: str, name: str) -> Markup:
+    """Return the id of a section, a line or a line of a file."""
+    return escape(f"{sort}-{'-'.join(name.split())}")
+
+
+def numbered(listing: Listing) -> Iterator[Line]:
+    """Yield the lines of a file with their numbers, counted from 1."""
+    for number, text in enumerate(listing.lines, 1):
+        yield Line(place("at", f"{listing.name}:{number}"), escape(str(number)), escape(shown(text, listing=True)))
+
+
+def style(name: str) -> str:
+    """Return a style sheet of the templates."""
+    return (places.templates() / name).read_text(encoding="utf-8")

@@ -1,0 +1,227 @@
+"use strict";
+// A number's derivation, one level at a time, down to the place in a file where it was written.
+// The address of the page is the id of the number, so that Back and Forward walk too.
+(function () {
+  const read = (id) => JSON.parse(document.getElementById(id).textContent);
+  const books = read("ledger").columns;
+  const names = read("names");
+  const panel = document.getElementById("walk");
+  const said = document.getElementById("walk-said");
+  const THIN = "\u202f", MINUS = "\u2212";
+  let returnTo = null;
+
+  const at = new Map();
+  books.forEach((column, k) => {
+    const [group, ...rest] = column.name.split(".");
+    const quantity = rest.join(".");
+    const tail = column.case ? "@" + column.case : "";
+    column.rows.forEach((row, r) => {
+      const id = column.of ? `${group}.${column.of}.${quantity}${tail}#${row}` : `${group}.${row}.${quantity}${tail}`;
+      if (!at.has(id)) { at.set(id, { k, r, id }); }
+    });
+  });
+  const idOf = (k, r) => {
+    const column = books[k], [group, ...rest] = column.name.split(".");
+    const subject = column.of || column.rows[r];
+    return `${group}.${subject}.${rest.join(".")}` + (column.case ? "@" + column.case : "") + (column.of ? "#" + column.rows[r] : "");
+  };
+
+  // --- words and numbers
+  function written(value, figures) {
+    if (value === 0) { return "0"; }
+    const size = Math.abs(value);
+    let text;
+    if (size >= 1e-3 && size < 1e7) {
+      text = Number(size.toPrecision(figures)).toString();
+    } else {
+      const [mantissa, power] = Number(size.toPrecision(figures)).toExponential().split("e");
+      text = `${mantissa} \u00d7 10^${String(Number(power)).replace("-", MINUS)}`;
+    }
+    const [whole, rest] = text.split(".");
+    const grouped = /^\d{5,}$/.test(whole) ? whole.replace(/\B(?=(\d{3})+$)/g, THIN) : whole;
+    return (value < 0 ? MINUS : "") + grouped + (rest === undefined ? "" : "." + rest);
+  }
+  const amount = (spot, figures) => {
+    const column = books[spot.k];
+    return written(column.values[spot.r], figures) + (column.unit ? THIN + column.unit : "");
+  };
+  const called = (column) => names.words[column.name] || column.name.split(".").slice(1).join(" ").replace(/_/g, " ");
+
+  // --- elements
+  function make(tag, content, manner) {
+    const element = document.createElement(tag);
+    if (manner) { element.className = manner; }
+    for (const part of [].concat(content)) { element.append(part); }
+    return element;
+  }
+  function letter(text) {
+    const bars = text.startsWith("|") && text.endsWith("|");
+    const [stem, below] = text.replace(/^\||\|$/g, "").split("_");
+    const span = make("span", [bars ? "|" : "", make("i", stem)], "sy");
+    if (below) { span.append(make("sub", below.replace("-", MINUS))); }
+    if (bars) { span.append("|"); }
+    return span;
+  }
+  function link(href, content, manner) {
+    const a = make("a", content, manner);
+    a.href = href;
+    return a;
+  }
+  function placed(text) {  // file:line:column as a link into the listing, where there is one
+    const [, file, line] = /^(.*):(\d+):\d+$/.exec(text) || [];
+    const target = file && document.getElementById(`at-${file}:${line}`);
+    return target ? link("#" + encodeURIComponent(target.id), text, "linked") : text;
+  }
+
+  // --- origins
+  function input(view, r) {
+    if (view.column !== undefined) {
+      const row = Array.isArray(view.rows) ? view.rows[r] : view.row !== undefined ? view.row : r;
+      return { k: view.column, r: row };
+    }
+    return view.columns[r] === null ? null : { k: view.columns[r], r: view.rows[r] };
+  }
+  function listed(title, entries) {
+    const list = make("ul", entries.map(({ spot, sign }) => {
+      const column = books[spot.k], id = idOf(spot.k, spot.r);
+      const what = make("span", [called(column), make("small", id)], "what");
+      return make("li", link("#" + encodeURIComponent(id), [make("span", sign || "", "sign"), what, make("span", amount(spot, 7), "amount")]));
+    }));
+    return entries.length ? [make("h3", title), list] : [];
+  }
+  function filled(equation, spots, result) {
+    const template = document.querySelector(`template[data-equation="${CSS.escape(equation)}"]`);
+    if (!template) { return []; }
+    const copy = template.content.cloneNode(true);
+    for (const slot of copy.querySelectorAll(".slot")) {
+      const spot = spots.get(slot.dataset.name) || (result && slot.dataset.name === result.unknown ? result.spot : null);
+      slot.textContent = spot ? (books[spot.k].values[spot.r] < 0 ? `(${amount(spot, 7)})` : amount(spot, 7)) : "?";
+    }
+    const gives = copy.querySelector(".gives");
+    if (result && result.unknown) { gives.textContent = "0"; }
+    return [copy];
+  }
+  function derived(origin, spot) {
+    const leaf = origin.laws ? origin.laws[origin.law_of_row[spot.r]] : origin;
+    const letters = names.letters[leaf.equation] || {};
+    const inputs = new Map(Object.entries(origin.inputs).map(([name, view]) => [name, input(view, spot.r)]).filter(([name, one]) => one && name in letters));
+    const regime = leaf.regime ? `, ${leaf.regime}` : "";
+    return [
+      make("h3", "formula"), make("p", leaf.title + regime), make("p", leaf.printed.replace(/\*/g, "\u00b7"), "as-written"),
+      make("p", `Source: ${leaf.source}. Range: ${leaf.range}.`, "note"),
+      make("h3", "numbers put in, in SI"), ...filled(leaf.equation, inputs, leaf.root_of ? { unknown: leaf.root_of, spot } : null),
+      make("p", (leaf.root_of ? "zero at " : "= ") + amount(spot, 9)),
+      ...listed("inputs", [...inputs].map(([name, one]) => ({ spot: one, sign: letter(letters[name]) }))),
+    ];
+  }
+  function stated(origin, spot) {
+    const how = origin.kind === "library" ? "as shipped with the program" : "as written";
+    const parts = [make("h3", how), make("p", origin.written[spot.r], "as-written"), make("p", ["at ", placed(origin.marks[spot.r])])];
+    if (origin.kind === "converted") {
+      const offset = origin.offsets[spot.r] ? ` + ${written(origin.offsets[spot.r], 12)}` : "";
+      parts.push(make("p", `${written(origin.numbers[spot.r], 12)} ${origin.units[spot.r]} \u00d7 ${written(origin.factors[spot.r], 12)}${offset} = ${amount(spot, 9)}`));
+    }
+    if (origin.bases[spot.r]) { parts.push(make("p", `Basis: ${origin.bases[spot.r]}`, "note")); }
+    return parts;
+  }
+  function combined(origin, spot) {
+    const terms = [];
+    origin.into.forEach((row, k) => {
+      const one = row === spot.r ? input(origin.terms, k) : null;
+      if (one) { terms.push({ spot: one, sign: origin.operation === "sum" ? (origin.signs[k] < 0 ? MINUS : "+") : "" }); }
+    });
+    return [make("h3", origin.operation), make("p", origin.meaning), ...listed("terms", terms)];
+  }
+  function solved(origin, spot) {
+    const column = books[spot.k], subject = column.of || column.rows[spot.r], proofs = [];
+    books.forEach((other, k) => {
+      if (!origin.proof.includes(other.name) || other.of || other.case !== column.case) { return; }
+      const r = other.rows.indexOf(subject);
+      if (r >= 0) { proofs.push({ spot: { k, r } }); }
+    });
+    return [make("h3", "found by iteration"), make("p", origin.statement), make("p", `${origin.method}, ${origin.iterations} iterations`, "note"), ...listed("proof", proofs)];
+  }
+  function origins(spot) {
+    const origin = books[spot.k].origin;
+    switch (origin.kind) {
+      case "derived": return derived(origin, spot);
+      case "total": return combined(origin, spot);
+      case "solved": return solved(origin, spot);
+      case "judged": return [make("h3", "verdict"), make("p", `met where the margin is not negative: ${books[spot.k].values[spot.r] ? "met" : "not met"}`), ...listed("margin", [input(origin.margin, spot.r)].filter(Boolean).map((one) => ({ spot: one })))];
+      case "program": return [make("h3", "of the program"), make("p", origin.statement)];
+      default: return stated(origin, spot);
+    }
+  }
+
+  // --- the panel
+  function show(spot) {
+    const column = books[spot.k], printed = anchor(spot.id);
+    const unit = printed ? printed.dataset.as.split("|")[0] : "";
+    const value = printed ? printed.textContent + (unit ? THIN + unit : "") : amount(spot, 7);
+    const line = names.at[spot.id];
+    said.replaceChildren(
+      make("h2", called(column)), make("p", spot.id, "id"), make("p", value, "value"),
+      make("p", `in full ${amount(spot, 17)}`, "full"),
+      ...(line ? [make("p", ["on line ", link("#line-" + line, line, "linked")], "note")] : []),
+      ...origins(spot));
+    panel.hidden = false;
+    panel.scrollTop = 0;
+    document.body.classList.add("walking");
+    mark(spot.id);
+    if (printed && !visible(printed)) { printed.scrollIntoView({ block: "center" }); }
+  }
+  function close() {
+    panel.hidden = true;
+    document.body.classList.remove("walking");
+    mark(null);
+    if (returnTo) { returnTo.focus({ preventScroll: true }); }
+  }
+  const anchors = [...document.querySelectorAll("data.n")];
+  const anchor = (id) => anchors.find((one) => one.value === id);
+  function mark(id) {
+    for (const one of anchors) { one.toggleAttribute("aria-current", one.value === id); }
+  }
+  function visible(element) {
+    const box = element.getBoundingClientRect();
+    const floor = matchMedia("(max-width: 1179px)").matches ? innerHeight * 0.48 : innerHeight;
+    return box.top >= 0 && box.bottom <= floor;
+  }
+  function follow() {
+    const id = decodeURIComponent(location.hash.slice(1));
+    const spot = at.get(id);
+    if (spot) { show(spot); } else { document.getElementById(id)?.scrollIntoView(); }
+  }
+  function go(id) {
+    if (decodeURIComponent(location.hash.slice(1)) === id) { follow(); } else { location.hash = encodeURIComponent(id); }
+  }
+
+  for (const one of anchors) {
+    if (at.has(one.value)) {
+      one.tabIndex = 0;
+      one.setAttribute("role", "button");
+      one.setAttribute("aria-label", `${one.textContent}, ${one.value}`);
+    }
+  }
+  for (const list of document.querySelectorAll(".ad")) {  // addresses become links to their lines
+    for (const run of list.querySelectorAll(".nw")) {
+      run.replaceChildren(...run.textContent.split(/(\d+\.\d+)/).map((part) => (/^\d+\.\d+$/.test(part) ? link("#line-" + part, part) : part)));
+    }
+  }
+  document.addEventListener("click", (event) => {
+    const one = event.target.closest("data.n[tabindex]");
+    if (one) { returnTo = one; go(one.value); }
+  });
+  document.addEventListener("keydown", (event) => {
+    if (event.key === "Escape" && !panel.hidden) { close(); return; }
+    const one = event.target.closest?.("data.n[tabindex]");
+    if (one && (event.key === "Enter" || event.key === " ")) {
+      event.preventDefault();
+      returnTo = one;
+      go(one.value);
+      said.querySelector("a")?.focus();
+    }
+  });
+  document.getElementById("walk-close").addEventListener("click", close);
+  addEventListener("hashchange", follow);
+  if (location.hash) { follow(); }
+})();
