@@ -35,7 +35,7 @@ class _Fittings:
     own_bore: Array
 
 
-class _Base:
+class _Inputs:
     """The inputs as they stand, column by column; kept as long as the project is."""
 
     def __init__(self, project: Project) -> None:
@@ -107,7 +107,7 @@ def stands_on_pipe(pipe: Record, part: Record) -> bool:
     return part.stated.get("bore") is pipe.stated.get("bore")
 
 
-_KEPT: WeakKeyDictionary[Project, _Base] = WeakKeyDictionary()
+_KEPT: WeakKeyDictionary[Project, _Inputs] = WeakKeyDictionary()
 
 
 class Effective:
@@ -122,19 +122,19 @@ class Effective:
     """
 
     def __init__(self, project: Project, case: str) -> None:
-        self.base = _KEPT.get(project) or _KEPT.setdefault(project, _Base(project))
+        self.inputs = _KEPT.get(project) or _KEPT.setdefault(project, _Inputs(project))
         self.lines = tuple(line for _, line in lines_in(project, case))
 
     def rows(self, line: Line) -> Rows | slice:
         """Return where in its group a line acts."""
-        index = self.base.index[line.group]
+        index = self.inputs.index[line.group]
         if len(line.rows) == len(index):
             return slice(None)
         return np.array([index[row] for row in line.rows], dtype=np.int64)
 
     def numbers(self, group: str, field: str) -> Array:
         """Return a field of all rows of a group in SI, flags as 0 and 1, NaN where it is not stated."""
-        found = self.base.column(group, field).copy()
+        found = self.inputs.column(group, field).copy()
         for line in self.lines:
             if line.group == group and line.field == field:
                 at = self.rows(line)
@@ -143,11 +143,11 @@ class Effective:
 
     def number(self, group: str, row: str, field: str) -> float:
         """Return one value in SI."""
-        return float(self.numbers(group, field)[self.base.index[group][row]])
+        return float(self.numbers(group, field)[self.inputs.index[group][row]])
 
     def law(self) -> Labels:
         """Return the friction law of each pipe."""
-        codes, follows = self.base.law.copy(), self.base.follows.copy()
+        codes, follows = self.inputs.law.copy(), self.inputs.follows.copy()
         for line in self.lines:
             if line.group == "friction":
                 codes[follows] = _CODES[line.stated.text]
@@ -179,7 +179,7 @@ def network(project: Project, case: str, viscosity: float) -> Network:
     level = now.numbers("reservoirs", "level")
     taken = np.nan_to_num(now.numbers("junctions", "withdrawal"), nan=0.0)
     brought = np.nan_to_num(now.numbers("junctions", "inflow"), nan=0.0)
-    start, end = now.base.ends
+    start, end = now.inputs.ends
     return Network(
         nodes=tuple(project.nodes),
         level=np.concatenate([level, np.full(len(taken), np.nan)]),
@@ -192,11 +192,11 @@ def network(project: Project, case: str, viscosity: float) -> Network:
 
 
 def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
-    part = now.base.fittings
+    part = now.inputs.fittings
     bore = now.numbers("pipes", "bore")
     law = now.law()
     return PipeTerms(
-        rows=tuple(now.base.groups["pipes"]),
+        rows=tuple(now.inputs.groups["pipes"]),
         length=now.numbers("pipes", "length"),
         bore=bore,
         roughness=_where_used(now, "roughness", law),

@@ -9,8 +9,9 @@ from calc.components.fields import Form
 from calc.kinds import NUMBER, TEMPERATURE
 from calc.project.judging import note_unknown_case
 from calc.project.model import BASE, Case, Change, How, Line, Project
+from calc.project.notes import empty
 from calc.project.paths import Target, follow
-from calc.project.reader import Reader, empty
+from calc.project.reader import Reader
 from calc.project.records import read_group
 from calc.project.settings import VISCOSITIES
 from calc.project.wording import quoted

@@ -102,7 +102,7 @@ def _check_law(reader: Reader, now: Effective, case: Case, line: Line) -> None:
     lacking = needing(needed, law) & np.isnan(now.numbers("pipes", needed))
     lacking &= law.codes == law.words.index(name)
     lacking &= _reached(now, line)
-    pipes = list(now.base.groups["pipes"])
+    pipes = list(now.inputs.groups["pipes"])
     if lacking.any():
         pipe = pipes[int(np.argmax(lacking))]
         found = f"the law {name} needs '{needed}', which {quoted(pipe)} does not state"
@@ -111,9 +111,9 @@ def _check_law(reader: Reader, now: Effective, case: Case, line: Line) -> None:
 
 
 def _reached(now: Effective, line: Line) -> Mask:
-    reached = np.zeros(len(now.base.groups["pipes"]), dtype=bool)
+    reached = np.zeros(len(now.inputs.groups["pipes"]), dtype=bool)
     if line.group == "friction":
-        return now.base.follows.copy()
+        return now.inputs.follows.copy()
     reached[now.rows(line)] = True
     return reached
 
@@ -145,7 +145,7 @@ def _note_last(
         here[now.rows(line)] = True
         here &= left
         if here.any():
-            row = list(now.base.groups[line.group])[int(np.argmax(here))]
+            row = list(now.inputs.groups[line.group])[int(np.argmax(here))]
             found = words.format(quoted(row))
             reader.note(line.stated.mark, code, _path(case, line), found, "values that can stand together")
             left &= ~here

@@ -9,7 +9,8 @@ from pathlib import Path
 from calc.components import Field, Record, Schema, Stated, Text, Word
 from calc.marks import Mark
 from calc.project import shipped
-from calc.project.reader import Reader, empty
+from calc.project.notes import empty
+from calc.project.reader import Reader
 from calc.project.records import read_fields, read_group
 from calc.project.wording import quoted
 from calc.yamlfile import Entry, Node, Scalar

@@ -3,23 +3,18 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Collection, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
-from functools import lru_cache
 
-from calc import units
-from calc.components import NO_BASIS, Basis, Count, Flag, Quantity, Record, Stated, Text, Word
+from calc.components import Basis, Count, Flag, Quantity, Record, Stated, Text, Word
 from calc.components.fields import Form
-from calc.kinds import KINDS, Kind
-from calc.marks import Mark
-from calc.problems import Problem, nearest
+from calc.kinds import Kind
 from calc.project import later
-from calc.project.bounds import outside
+from calc.project.notes import Notes
 from calc.project.spread import KEYS as SPREAD_KEYS
 from calc.project.spread import read_spread
-from calc.project.wording import LONGEST_SHOWN, listed, quoted
+from calc.project.wording import listed, quoted
 from calc.yamlfile import Mapping, Node, Scalar
-from calc.yamlfile import Sequence as ListNode
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
 """How well a value is known, as its source shows it."""
@@ -31,36 +26,12 @@ _ID = re.compile(rf"[A-Za-z0-9_-]{{1,{LONGEST_ID}}}", re.ASCII)
 _WHOLE = re.compile(r"[0-9]{1,9}", re.ASCII)
 
 
-_KINDS = {kind.name: kind for kind in KINDS}
-
-
-def _quantity(text: str, kind: Kind) -> units.Quantity | units.UnitTrouble:
-    try:
-        return units.read(text, kind)
-    except units.UnitTrouble as trouble:
-        return trouble
-
-
-@lru_cache(maxsize=1 << 16)
-def _kept(text: str, kind: str) -> units.Quantity | units.UnitTrouble:
-    """Return a quantity read before; by the name of its kind, which hashes faster."""
-    return _quantity(text, _KINDS[kind])
-
-
-_LONGEST_PATH = 160
-_MOST_HINTS = 100
-MOST_TO_COMPARE = 2000
-"""Above so many words, none is sought that comes near."""
-
-
 @dataclass
-class Reader:
+class Reader(Notes):
     """What reading carries along: the problems found, and what later values refer to.
 
     Attributes
     ----------
-    problems : list of Problem
-        All found so far.
     references : frozenset of str
         Ids that ``source`` may name.
     nodes : set of str or None
@@ -73,67 +44,11 @@ class Reader:
         The ids that each pattern of each group reaches, so that many lines share one tuple.
     """
 
-    problems: list[Problem] = field(default_factory=list)
     references: frozenset[str] = frozenset()
     nodes: set[str] | None = None
     spreads: dict[str, Record] = field(default_factory=dict)
     defaults: dict[str, Stated] = field(default_factory=dict)
     reached: dict[tuple[str, str], tuple[str, ...]] = field(default_factory=dict)
-    _keys_noted: set[Mark] = field(default_factory=set)
-    _hints: int = 0
-
-    def note(  # noqa: PLR0917 - in the order of a Problem
-        self, mark: Mark, code: str, path: str, found: str, expected: str = "", hint: str = ""
-    ) -> None:
-        """Note a problem; of a key that heads a column it is noted once, not for every row."""
-        if code in ("unknown-key", "not-yet"):
-            if mark in self._keys_noted:
-                return
-            self._keys_noted.add(mark)
-        if len(path) > _LONGEST_PATH or not path.isprintable():
-            path = quoted(path)[1:-1]
-        self.problems.append(Problem(mark, code, path, found, expected, hint))
-
-    def near(self, word: str, known: Collection[str]) -> str:
-        """Return "did you mean 'x'?", or nothing: not among very many words, nor after very many hints."""
-        if len(known) > MOST_TO_COMPARE or self._hints >= _MOST_HINTS:
-            return ""
-        self._hints += 1
-        return nearest(word[:LONGEST_SHOWN], sorted(known))
-
-    def not_yet(self, mark: Mark, path: str, word: str, hint: str) -> None:
-        """Note a word that is for later."""
-        self.note(mark, "not-yet", path, f"{quoted(word)} is not part of this version yet", "", hint)
-
-    def mapping(self, node: Node, path: str, expected: str) -> Mapping | None:
-        """Return the node if it is a mapping; nothing at all stands for an empty one."""
-        if isinstance(node, Mapping):
-            return node
-        if not empty(node):
-            self.wrong_shape(node, path, expected)
-        return None
-
-    def items(self, node: Node, path: str, expected: str) -> tuple[Node, ...]:
-        """Return the items of a list."""
-        if isinstance(node, ListNode):
-            return tuple(node.items)
-        if not empty(node):
-            self.wrong_shape(node, path, expected)
-        return ()
-
-    def wrong_shape(self, node: Node, path: str, expected: str) -> None:
-        """Note that a list, mapping or text is not what should stand here."""
-        found = {Mapping: "a mapping stands here", ListNode: "a list stands here"}.get(type(node))
-        if found is None:
-            found = f"{quoted(node.text)} stands here" if isinstance(node, Scalar) else "something else"
-        self.note(node.mark, "wrong-shape", path, found, expected)
-
-    def unknown(self, key: Scalar, path: str, known: Sequence[str]) -> None:
-        """Note a key that does not exist."""
-        self.note(
-            key.mark, "unknown-key", path, f"unknown key {quoted(key.text)}",
-            f"one of {listed(known)}", self.near(key.text, known),
-        )  # fmt: skip
 
     def id(self, key: Scalar, path: str, what: str) -> bool:
         """Return whether a key may be an id."""
@@ -160,13 +75,6 @@ class Reader:
         self.note(scalar.mark, code, path, found, f"one of {listed(options)}", self.near(scalar.text, options))
         return None
 
-    def scalar(self, node: Node, path: str, expected: str) -> Scalar | None:
-        """Return the node if it is a scalar."""
-        if isinstance(node, Scalar):
-            return node
-        self.wrong_shape(node, path, expected)
-        return None
-
     def text(self, node: Node, path: str) -> Stated | None:
         """Return a free text; that it prints has been seen to when the file was read."""
         scalar = self.scalar(node, path, "a text")
@@ -176,31 +84,6 @@ class Reader:
             self.note(scalar.mark, "bad-text", path, "nothing is written here", "a text")
             return None
         return Stated(scalar.text, scalar.text, scalar.mark)
-
-    def quantity(
-        self, scalar: Scalar, path: str, forms: Sequence[Quantity], basis: Basis = NO_BASIS
-    ) -> tuple[Stated, Quantity] | None:
-        """Return a quantity and the first form that it fits."""
-        first: units.UnitTrouble | None = None
-        expected = []
-        for form in forms:
-            name = form.kind.name
-            got = _kept(scalar.text, name) if name in _KINDS else _quantity(scalar.text, form.kind)
-            if not isinstance(got, units.UnitTrouble):
-                if wanted := outside(form, got.value):
-                    found = f"{quoted(scalar.text)} is out of range"
-                    self.note(scalar.mark, "out-of-range", path, found, wanted)
-                    return None
-                return Stated(
-                    got.value, scalar.text, scalar.mark, got.number, got.unit, got.factor, got.offset, basis
-                ), form
-            first = first or got
-            expected.append(got.expected)
-            if got.code not in ("wrong-dimension", "bare-number"):
-                break
-        if first is not None:
-            self.note(scalar.mark, first.code, path, first.found, " or ".join(dict.fromkeys(expected)), first.hint)
-        return None
 
     def basis(self, node: Mapping, path: str) -> Basis:
         """Return what a value rests on, from the keys beside it."""
@@ -300,8 +183,3 @@ class Reader:
 
 
 _NAMES = {"unknown-law": "friction law", "unknown-kind": "kind"}
-
-
-def empty(node: Node) -> bool:
-    """Return whether nothing is written: ``junctions:`` and no more."""
-    return isinstance(node, Scalar) and not node.quoted and node.text in ("", "~", "null")

@@ -5,7 +5,8 @@ from __future__ import annotations
 from calc.components import Record, Schema
 from calc.marks import Mark
 from calc.project import later
-from calc.project.reader import Reader, empty
+from calc.project.notes import empty
+from calc.project.reader import Reader
 from calc.project.records import Fields, read_fields, read_node
 from calc.project.section import SectionSchema
 from calc.project.works import Works

@@ -16,7 +16,8 @@ from calc.kinds import (
 from calc.marks import Mark
 from calc.physics.friction import LAW_NAMES
 from calc.project import later, shipped
-from calc.project.reader import Reader, empty
+from calc.project.notes import empty
+from calc.project.reader import Reader
 from calc.project.records import read_fields
 from calc.project.wording import quoted
 from calc.yamlfile import Entry, Node, Scalar

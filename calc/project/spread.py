@@ -4,22 +4,19 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
-from typing import TYPE_CHECKING
 
 from calc.components import Quantity, Record, Stated
 from calc.kinds import NUMBER, Kind
+from calc.project.notes import Notes
 from calc.project.wording import quoted
 from calc.yamlfile import Node, Scalar
-
-if TYPE_CHECKING:
-    from calc.project.reader import Reader
 
 TWO = "two values: [low, high]"
 KEYS = ("range", "deviation")
 
 
 def read_spread(
-    reader: Reader,
+    notes: Notes,
     at: Mapping[str, Node],
     path: str,
     stated: Stated,
@@ -31,7 +28,7 @@ def read_spread(
 
     Parameters
     ----------
-    reader : Reader
+    notes : Notes
         Takes the problems.
     at : mapping of str to Node
         What stands beside the value.
@@ -49,48 +46,48 @@ def read_spread(
         return None
     node, where = at[given[-1]], f"{path}.{given[-1]}"
     if len(given) == len(KEYS):
-        reader.note(node.mark, "excluded-pair", where, "'range' and 'deviation' both stand here", "one of the two")
+        notes.note(node.mark, "excluded-pair", where, "'range' and 'deviation' both stand here", "one of the two")
     elif math.isnan(stated.number):
         found = f"{quoted(stated.written)} is no quantity that could vary"
-        reader.note(node.mark, "not-a-quantity", where, found, "a quantity")
+        notes.note(node.mark, "not-a-quantity", where, found, "a quantity")
     elif given == ["range"]:
-        return _range(reader, node, where, path, read)
+        return _range(notes, node, where, path, read)
     else:
-        return _deviation(reader, node, where, path, kind)
+        return _deviation(notes, node, where, path, kind)
     return None
 
 
 def _range(
-    reader: Reader, node: Node, where: str, path: str, read: Callable[[Scalar, str], Stated | None]
+    notes: Notes, node: Node, where: str, path: str, read: Callable[[Scalar, str], Stated | None]
 ) -> Record | None:
-    items = reader.items(node, where, TWO)
+    items = notes.items(node, where, TWO)
     scalars = [item for item in items if isinstance(item, Scalar)]
     if len(scalars) != len(("low", "high")) or len(items) != len(scalars):
         if items or not isinstance(node, Scalar):
-            reader.wrong_shape(node, where, TWO)
+            notes.wrong_shape(node, where, TWO)
         return None
     low, high = (read(scalar, where) for scalar in scalars)
     if low is None or high is None:
         return None
     if low.si >= high.si:
         found = f"{quoted(low.written)} is not below {quoted(high.written)}"
-        reader.note(low.mark, "wrong-order", where, found, TWO)
+        notes.note(low.mark, "wrong-order", where, found, TWO)
     return Record(path, low.mark, {"low": low, "high": high})
 
 
-def _deviation(reader: Reader, node: Node, where: str, path: str, kind: Kind | None) -> Record | None:
+def _deviation(notes: Notes, node: Node, where: str, path: str, kind: Kind | None) -> Record | None:
     """Return a standard deviation: a share such as ``5 %``, or a difference in the unit of the value."""
-    scalar = reader.scalar(node, where, "a deviation, such as '5 %'")
+    scalar = notes.scalar(node, where, "a deviation, such as '5 %'")
     if scalar is None:
         return None
     share = "%" in scalar.text or kind is None
     # A difference is of the dimension of its kind, without the bounds of a value.
     free = NUMBER if share or kind is None else Kind("deviation", kind.unit, kind.dimension, kind.example)
-    got = reader.quantity(scalar, where, (Quantity(free, above=0.0),))
+    got = notes.quantity(scalar, where, (Quantity(free, above=0.0),))
     if got is None:
         return None
     if got[0].offset:
         found = f"{quoted(scalar.text)} is a point on a scale"
-        reader.note(scalar.mark, "wrong-dimension", where, found, "a difference, such as '2 K'")
+        notes.note(scalar.mark, "wrong-dimension", where, found, "a difference, such as '2 K'")
         return None
     return Record(path, scalar.mark, {"deviation": got[0]})

@@ -11,7 +11,8 @@ from calc.components.pipe import LAW_INPUT
 from calc.marks import Mark
 from calc.project import shipped
 from calc.project.fittings import read_ends, read_fittings
-from calc.project.reader import Reader, empty
+from calc.project.notes import empty
+from calc.project.reader import Reader
 from calc.project.records import Fields, Parts, read_fields, read_group
 from calc.project.wording import quoted
 from calc.yamlfile import Entry, Scalar, SourceFile, read_table

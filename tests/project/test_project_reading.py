@@ -174,7 +174,13 @@ def test_defaults_are_stated_with_their_places(tmp_path: Path) -> None:
     for stated in defaults.values():
         assert stated.shipped
         assert stated.basis.source
-        line = Path("calc/data/defaults.yaml").read_text("utf-8").splitlines()[stated.mark.line - 1]
+        line = (
+            Path(__file__)
+            .parents[2]
+            .joinpath("calc", "data", "defaults.yaml")
+            .read_text("utf-8")
+            .splitlines()[stated.mark.line - 1]
+        )
         assert line[stated.mark.column - 1 :].startswith(stated.written)
     assert project.missing == ("project.number", "project.title", "project.revision")
     assert project.header.text("title") == tmp_path.name
