@@ -8,7 +8,7 @@
   const panel = document.getElementById("walk");
   const said = document.getElementById("walk-said");
   const THIN = "\u202f", MINUS = "\u2212";
-  let returnTo = null;
+  let returnTo = null, keyed = false;
 
   const at = new Map();
   books.forEach((column, k) => {
@@ -41,10 +41,18 @@
     const grouped = /^\d{5,}$/.test(whole) ? whole.replace(/\B(?=(\d{3})+$)/g, THIN) : whole;
     return (value < 0 ? MINUS : "") + grouped + (rest === undefined ? "" : "." + rest);
   }
-  const amount = (spot, figures) => {
+  function numeral(text) {  // a power of ten is raised
+    const [mantissa, power] = text.split("10^");
+    const span = make("span", power === undefined ? text : mantissa + "10");
+    if (power !== undefined) { span.append(make("span", "^", "h"), make("sup", power)); }
+    return span;
+  }
+  function amount(spot, figures) {
     const column = books[spot.k];
-    return written(column.values[spot.r], figures) + (column.unit ? THIN + column.unit : "");
-  };
+    const span = make("span", numeral(written(column.values[spot.r], figures)), "nw");
+    if (column.unit) { span.append(make("span", THIN + column.unit, "u")); }
+    return span;
+  }
   const called = (column) => names.words[column.name] || column.name.split(".").slice(1).join(" ").replace(/_/g, " ");
 
   // --- elements
@@ -89,17 +97,16 @@
     }));
     return entries.length ? [make("h3", title), list] : [];
   }
-  function filled(equation, spots, result) {
+  function filled(equation, spots, result, title, note) {
     const template = document.querySelector(`template[data-equation="${CSS.escape(equation)}"]`);
     if (!template) { return []; }
     const copy = template.content.cloneNode(true);
     for (const slot of copy.querySelectorAll(".slot")) {
       const spot = spots.get(slot.dataset.name) || (result && slot.dataset.name === result.unknown ? result.spot : null);
-      slot.textContent = spot ? (books[spot.k].values[spot.r] < 0 ? `(${amount(spot, 7)})` : amount(spot, 7)) : "?";
+      const below = spot && books[spot.k].values[spot.r] < 0;
+      slot.replaceChildren(...(spot ? [below ? "(" : "", amount(spot, 7), below ? ")" : ""] : ["?"]));
     }
-    const gives = copy.querySelector(".gives");
-    if (result && result.unknown) { gives.textContent = "0"; }
-    return [copy];
+    return [make("h3", "formula"), make("p", title), copy.querySelector(".symbols"), note, make("h3", "numbers put in, in SI"), copy.querySelector(".worked")];
   }
   function derived(origin, spot) {
     const leaf = origin.laws ? origin.laws[origin.law_of_row[spot.r]] : origin;
@@ -107,10 +114,9 @@
     const inputs = new Map(Object.entries(origin.inputs).map(([name, view]) => [name, input(view, spot.r)]).filter(([name, one]) => one && name in letters));
     const regime = leaf.regime ? `, ${leaf.regime}` : "";
     return [
-      make("h3", "formula"), make("p", leaf.title + regime), make("p", leaf.printed.replace(/\*/g, "\u00b7"), "as-written"),
-      make("p", `Source: ${leaf.source}. Range: ${leaf.range}.`, "note"),
-      make("h3", "numbers put in, in SI"), ...filled(leaf.equation, inputs, leaf.root_of ? { unknown: leaf.root_of, spot } : null),
-      make("p", (leaf.root_of ? "zero at " : "= ") + amount(spot, 9)),
+      ...filled(leaf.equation, inputs, leaf.root_of ? { unknown: leaf.root_of, spot } : null, leaf.title + regime,
+        make("p", `Source: ${leaf.source}. Range: ${leaf.range}.`, "note")),
+      make("p", [leaf.root_of ? "zero at " : "= ", amount(spot, 9)]),
       ...listed("inputs", [...inputs].map(([name, one]) => ({ spot: one, sign: letter(letters[name]) }))),
     ];
   }
@@ -119,7 +125,8 @@
     const parts = [make("h3", how), make("p", origin.written[spot.r], "as-written"), make("p", ["at ", placed(origin.marks[spot.r])])];
     if (origin.kind === "converted") {
       const offset = origin.offsets[spot.r] ? ` + ${written(origin.offsets[spot.r], 12)}` : "";
-      parts.push(make("p", `${written(origin.numbers[spot.r], 12)} ${origin.units[spot.r]} \u00d7 ${written(origin.factors[spot.r], 12)}${offset} = ${amount(spot, 9)}`));
+      const turned = `${written(origin.numbers[spot.r], 12)} ${origin.units[spot.r]} \u00d7 ${written(origin.factors[spot.r], 12)}${offset} = `;
+      parts.push(make("p", [turned, amount(spot, 12)]));
     }
     if (origin.bases[spot.r]) { parts.push(make("p", `Basis: ${origin.bases[spot.r]}`, "note")); }
     return parts;
@@ -157,17 +164,22 @@
   function show(spot) {
     const column = books[spot.k], printed = anchor(spot.id);
     const unit = printed ? printed.dataset.as.split("|")[0] : "";
-    const value = printed ? printed.textContent + (unit ? THIN + unit : "") : amount(spot, 7);
+    const value = printed ? [numeral(printed.textContent), make("span", unit ? THIN + unit : "", "u")] : amount(spot, 7);
     const line = names.at[spot.id];
+    const heading = make("h2", called(column));
+    heading.tabIndex = -1;
+    const inside = keyed || panel.contains(document.activeElement);
+    keyed = false;
     said.replaceChildren(
-      make("h2", called(column)), make("p", spot.id, "id"), make("p", value, "value"),
-      make("p", `in full ${amount(spot, 17)}`, "full"),
+      heading, make("p", spot.id, "id"), make("p", value, "value"),
+      make("p", ["in full ", amount(spot, 17)], "full"),
       ...(line ? [make("p", ["on line ", link("#line-" + line, line, "linked")], "note")] : []),
       ...origins(spot));
     panel.hidden = false;
     panel.scrollTop = 0;
     document.body.classList.add("walking");
     mark(spot.id);
+    if (inside) { heading.focus({ preventScroll: true }); }
     if (printed && !visible(printed)) { printed.scrollIntoView({ block: "center" }); }
   }
   function close() {
@@ -189,7 +201,7 @@
   function follow() {
     const id = decodeURIComponent(location.hash.slice(1));
     const spot = at.get(id);
-    if (spot) { show(spot); } else { document.getElementById(id)?.scrollIntoView(); }
+    if (spot) { show(spot); } else if (id) { document.getElementById(id)?.scrollIntoView(); } else { close(); }
   }
   function go(id) {
     if (decodeURIComponent(location.hash.slice(1)) === id) { follow(); } else { location.hash = encodeURIComponent(id); }
@@ -217,8 +229,8 @@
     if (one && (event.key === "Enter" || event.key === " ")) {
       event.preventDefault();
       returnTo = one;
+      keyed = true;
       go(one.value);
-      said.querySelector("a")?.focus();
     }
   });
   document.getElementById("walk-close").addEventListener("click", close);

@@ -7,7 +7,7 @@ from dataclasses import replace
 
 from markupsafe import Markup
 
-from calc.equation import Equation, Expression, Implicit, Operation, Term
+from calc.equation import Expression, Implicit, Leaf, Literal, Operation, Term
 from calc.problems import Unresolved
 from calc.publish import mathematics
 from calc.publish.faces import width
@@ -41,8 +41,7 @@ def formula(part: Formula, measure: float, anchor: Anchor) -> Markup:
     """
     law = part.law
     equation = law.residual if isinstance(law, Implicit) else law
-    first = "0" if isinstance(law, Implicit) else equation.gives.text
-    head = mathematics.literal(mathematics.Literal("0")) if first == "0" else mathematics.symbol(first)
+    head = _head(law)
     indent = head.width + BLANK
     room = max(LEAST, measure * SLACK - indent - width("= "))
     symbols = Setter(lambda name: mathematics.symbol(equation.takes[name].text), room, worked=False)
@@ -76,10 +75,13 @@ def occurrences(part: Formula) -> Iterator[Number]:
         yield part.result
 
 
-def slots(law: Equation, measure: float) -> Markup:
-    """Return the right side of an equation with an empty place for each number, which the page fills."""
-    room = max(LEAST, measure * SLACK)
-    return _segment("=", Setter(_slot, room, worked=True).set(law.expression))
+def slots(law: Leaf, measure: float) -> Markup:
+    """Return a law with an empty place for each number, which the page fills."""
+    equation = law.residual if isinstance(law, Implicit) else law
+    head = _head(law)
+    indent = head.width + BLANK
+    room = max(LEAST, measure * SLACK - indent - width("= "))
+    return _set(head, indent, [("=", Setter(_slot, room, worked=True).set(equation.expression))])
 
 
 def operand(numbers: Mapping[str, Number], name: str, anchor: Anchor) -> Setting:
@@ -87,6 +89,11 @@ def operand(numbers: Mapping[str, Number], name: str, anchor: Anchor) -> Setting
     if name not in numbers:
         raise Unresolved(f"no number is put in for '{name}'")
     return _put(numbers[name], anchor)
+
+
+def _head(law: Leaf) -> Setting:
+    """Return the left side: the result, or the zero that a residual comes to."""
+    return mathematics.literal(Literal("0")) if isinstance(law, Implicit) else mathematics.symbol(law.gives.text)
 
 
 def _operands(part: Formula) -> Mapping[str, Number]:
@@ -134,13 +141,13 @@ def _set(head: Setting, indent: float, lines: list[tuple[str, Setting]]) -> Mark
     style = Markup("padding-left:{}em;text-indent:-{}em").format(*[f"{indent:.2f}"] * 2)
     opening = Markup('<span class="eq" role="math" aria-label="{}" style="{}">').format(spoken, style)
     left = Markup('<span class="lhs" style="width:{}em">{}</span>').format(f"{indent:.2f}", head.line)
-    said = _segment(*lines[0])
+    said = _segment(*lines[0], left)
     for sign, line in lines[1:]:
         said += Markup("<br>" if len(line.pieces) > 1 else " ") + _segment(sign, line)
-    return opening + left + said + Markup("</span>")
+    return opening + said + Markup("</span>")
 
 
-def _segment(sign: str, line: Setting) -> Markup:
+def _segment(sign: str, line: Setting, left: Markup | None = None) -> Markup:
     first, *rest = line.pieces
-    pieces = [Markup("{} {}").format(sign, first.markup), *(piece.markup for piece in rest)]
+    pieces = [Markup("{}{} {}").format(left or "", sign, first.markup), *(piece.markup for piece in rest)]
     return Markup(" ").join(Markup('<span class="nb">{}</span>').format(piece) for piece in pieces)

@@ -9,23 +9,23 @@ from __future__ import annotations
 import base64
 import hashlib
 import json
-from collections.abc import Iterator, Mapping
+from collections.abc import Mapping
 from typing import Any
 
 from markupsafe import Markup
 
-from calc.equation import Equation, Implicit
+from calc.equation import Implicit, Leaf
 from calc.equation.law import takes
 from calc.ledger import Derived, Ledger
+from calc.problems import Unresolved
 from calc.publish import places
-from calc.publish.formula import slots
+from calc.publish.formula import formula, slots
 from calc.publish.html import html, style
-from calc.publish.markup import letter
 from calc.publish.pdf import FACES, digest_head, faces
 from calc.publish.pictures import Picture
-from calc.report.document import Document, Figure
+from calc.report.document import Document, Figure, Formula, Number
 
-SLOT_MEASURE = 30.0  # em, the width of a formula in the panel
+PANEL = 30.0  # em, the width of a formula in the panel
 ESCAPES = {"<": "\\u003c", ">": "\\u003e", "&": "\\u0026", "\u2028": "\\u2028", "\u2029": "\\u2029"}
 
 
@@ -83,23 +83,32 @@ def _panel(document: Document) -> Markup:
 
 
 def _templates(ledger: Ledger) -> Markup:
-    """Return each equation of the ledger with places for numbers, for the panel to fill."""
+    """Return each law of the ledger, in symbols and with places for numbers, for the panel to copy and fill."""
     made = Markup()
-    for equation in {equation.name: equation for equation in _equations(ledger)}.values():
-        made += Markup('<template data-equation="{}" data-gives="{}"><span class="eq">{} {}</span></template>').format(
-            equation.name,
-            equation.gives.text,
-            Markup('<span class="gives">{}</span>').format(letter(equation.gives.text)),
-            slots(equation, SLOT_MEASURE),
-        )
+    for name, leaf in _leaves(ledger).items():
+        symbols = formula(Formula(leaf), PANEL, _nothing)
+        made += Markup(
+            '<template data-equation="{}"><div class="symbols">{}</div><div class="worked">{}</div></template>'
+        ).format(name, symbols, slots(leaf, PANEL))
     return made
 
 
-def _equations(ledger: Ledger) -> Iterator[Equation]:
+def _nothing(number: Number) -> Markup:
+    raise Unresolved(f"'{number.ref}' stands in a formula in symbols")
+
+
+def _leaves(ledger: Ledger) -> dict[str, Leaf]:
+    """Return the laws of the ledger by the names of their equations."""
+    found: dict[str, Leaf] = {}
     for column in ledger.columns:
         if isinstance(column.origin, Derived):
             for leaf in column.origin.leaves:
-                yield leaf.residual if isinstance(leaf, Implicit) else leaf
+                found.setdefault(_equation(leaf), leaf)
+    return found
+
+
+def _equation(leaf: Leaf) -> str:
+    return leaf.residual.name if isinstance(leaf, Implicit) else leaf.name
 
 
 def _names(document: Document, ledger: Ledger) -> dict[str, Any]:
@@ -112,7 +121,7 @@ def _names(document: Document, ledger: Ledger) -> dict[str, Any]:
         for leaf in column.origin.leaves:
             words.setdefault(column.name, leaf.gives.words)
             for name, symbol in takes(leaf).items():
-                letters.setdefault((leaf.residual if isinstance(leaf, Implicit) else leaf).name, {})[name] = symbol.text
+                letters.setdefault(_equation(leaf), {})[name] = symbol.text
                 for source in column.origin.inputs[name].sources:
                     words.setdefault(source.name, symbol.words)
     at = {ledger.spot(ref).id: address for ref, address in document.addresses.items()}
