@@ -32,9 +32,7 @@ class Dimension:
         """Return the base units with their exponents, such as ``m³ s⁻¹``; ``1`` for a pure number."""
         raised = str.maketrans("0123456789-/", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻ᐟ")
         parts = zip(("m", "kg", "s", "K"), (self.length, self.mass, self.time, self.temperature), strict=True)
-        written = [
-            unit if power == 1 else unit + str(power).translate(raised) for unit, power in parts if power
-        ]
+        written = [unit if power == 1 else unit + str(power).translate(raised) for unit, power in parts if power]
         return " ".join(written) or "1"
 
 

@@ -61,9 +61,7 @@ def _check_method(project: Project) -> None:
         raise ProblemsFound([problem], project.texts)
 
 
-def solve_cases(
-    project: Project, ledger: Ledger, say: Progress = _quietly
-) -> dict[str, tuple[Network, Solution]]:
+def solve_cases(project: Project, ledger: Ledger, say: Progress = _quietly) -> dict[str, tuple[Network, Solution]]:
     """Solve every case of a project; a case without a solution says so and keeps its history."""
     settings = settings_of(project)
     solved = {}

@@ -62,11 +62,11 @@ def scaled(kind: Kind) -> Equation:
     """Return the law by which ``times`` multiplies a quantity of a kind."""
 
     @equation(
-        gives=Symbol("x", kind, "value in this case"),
+        gives=Symbol("y", kind, "value in this case"),
         source=PROJECT,
         valid="as the case states",
-        factor=Symbol("k", NUMBER, "factor of the case"),
-        before=Symbol("x_0", kind, "value before"),
+        factor=Symbol("k_c", NUMBER, "factor of the case"),
+        before=Symbol("y_0", kind, "value before"),
     )
     def scaled_value(*, factor: Any, before: Any) -> Any:  # noqa: ANN401
         """Value times the factor of the case."""

@@ -14,7 +14,7 @@ from calc.equation import Labels
 from calc.kinds import FLOW, HEAD
 from calc.ledger import Accountant, Ledger, Solved, View
 from calc.ledger.column import ABSENT
-from calc.physics import energy, velocity
+from calc.physics import energy, friction, velocity
 from calc.solve import Solution
 
 Rows = npt.NDArray[np.int64]
@@ -139,6 +139,7 @@ def enter_flows(ledger: Ledger, network: Network, solution: Solution, case: str)
         head_to=head.take(network.end[open_pipes], terms.rows),
         head_loss=results.head_loss,
     )
+    _enter_ratios(books, terms, results)
     pressure_head = _enter_pressures(books, network, head)
     _enter_velocity_heads(books, network, results, open_pipes, terms)
     _enter_balances(books, network, flow, closing)
@@ -171,6 +172,24 @@ def _enter_pipe_flows(ledger: Ledger, network: Network, solution: Solution, case
         rows = [names[int(k)] for k in running]
         ledger.enter("pipes.flow", FLOW, rows, solution.flow[running], origin, case=case)
     return ledger.view("pipes.flow", case, names)
+
+
+def _enter_ratios(books: Accountant, terms: PipeTerms[View], results: PipeResults[View]) -> None:
+    """Enter what a reader compares pipes by: the gradient as 1 in N, and the share of the fittings."""
+    books.apply(
+        "pipes.one_in",
+        friction.ONE_IN,
+        reynolds=results.reynolds,
+        length=terms.length,
+        friction_loss=results.friction_loss,
+    )
+    books.apply(
+        "pipes.fitting_share",
+        friction.FITTING_SHARE,
+        reynolds=results.reynolds,
+        fitting_loss=results.fitting_loss,
+        head_loss=results.head_loss,
+    )
 
 
 def _enter_pressures(books: Accountant, network: Network, head: View) -> View:

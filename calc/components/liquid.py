@@ -67,9 +67,7 @@ def liquid(on: Evaluator[T], stated: LiquidTerms[T]) -> Liquid[T]:
     if viscosity is None:
         if dynamic is None:
             raise ValueError("a liquid needs a viscosity or a temperature")
-        viscosity = on.apply(
-            "fluid.viscosity", water.kinematic_viscosity, dynamic_viscosity=dynamic, density=density
-        )
+        viscosity = on.apply("fluid.viscosity", water.kinematic_viscosity, dynamic_viscosity=dynamic, density=density)
     height = on.apply("site.geopotential_altitude", water.geopotential_altitude, altitude=stated.altitude)
     air = on.apply("site.atmospheric_pressure", water.atmospheric_pressure, geopotential_altitude=height)
     return Liquid(density, viscosity, vapour, air)

@@ -118,9 +118,7 @@ class PipeResults(Generic[T]):
 def transition_limits(on: Evaluator[T], pipe: PipeTerms[T]) -> TransitionLimits[T]:
     """Return Darcy f at the ends of the transition, for pipes whose law has one."""
     return TransitionLimits(
-        on.apply(
-            "constants.factor_laminar", friction.factor_at_laminar_limit, laminar_below=pipe.laminar_below
-        ),
+        on.apply("constants.factor_laminar", friction.factor_at_laminar_limit, laminar_below=pipe.laminar_below),
         on.apply(
             "pipes.factor_turbulent",
             friction.AT_TURBULENT_LIMIT,

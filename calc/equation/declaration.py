@@ -71,8 +71,7 @@ class Equation:
         found = dimension_of(read)
         if found != self.gives.kind.dimension:
             raise EquationError(
-                f"{self.name}: gives {self.gives.kind.phrase} in {self.gives.kind.dimension}, "
-                f"but the body has {found}"
+                f"{self.name}: gives {self.gives.kind.phrase} in {self.gives.kind.dimension}, but the body has {found}"
             )
         letters = [symbol.text for symbol in self.takes.values()]
         if len(set(letters)) < len(letters):

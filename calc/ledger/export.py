@@ -120,11 +120,7 @@ def _view(view: View, number: dict[int, int]) -> dict[str, Any]:
     if view.shared:
         return {"column": number[id(view.sources[view.which[0]])], "row": int(view.at[0])}
     columns = [number[id(column)] for column in view.sources]
-    if (
-        len(columns) == 1
-        and np.array_equal(view.at, np.arange(len(view.sources[0].rows)))
-        and not view.which.any()
-    ):
+    if len(columns) == 1 and np.array_equal(view.at, np.arange(len(view.sources[0].rows))) and not view.which.any():
         return {"column": columns[0]}
     if len(columns) == 1 and not view.which.any():
         return {"column": columns[0], "rows": view.at.tolist()}

@@ -71,9 +71,7 @@ class _Tracer:
         label = origin.labels[origin.which[row]]
         equation = leaf.residual if isinstance(leaf, Implicit) else leaf
         root = f"root {leaf.gives.text} of 0 = " if isinstance(leaf, Implicit) else ""
-        formula = (
-            equation.formula() if not root else linear(equation.expression, lambda n: equation.takes[n].text)
-        )
+        formula = equation.formula() if not root else linear(equation.expression, lambda n: equation.takes[n].text)
         said = f", {label}" if label else ""
         yield f"{head}   {root}{formula}   [{equation.title}{said}; {equation.source.key}]"
         yield from self._inputs([origin.inputs[name].spot(row) for name in takes(leaf)], depth)

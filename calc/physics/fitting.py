@@ -8,9 +8,7 @@ import numpy as np
 from calc.equation import Bound, Reference, Regimes, equation
 from calc.physics import symbols as s
 
-PRACTICE = Reference(
-    "practice", "Loss coefficient on the velocity head in the fitting's own bore; common practice"
-)
+PRACTICE = Reference("practice", "Loss coefficient on the velocity head in the fitting's own bore; common practice")
 
 
 @equation(

@@ -5,12 +5,11 @@
 
 import numpy as np
 
-from calc.equation import Bound, Choice, Implicit, Law, Reference, Regimes, equation
+from calc import kinds
+from calc.equation import Bound, Choice, Equation, Implicit, Law, Reference, Regimes, Symbol, equation
 from calc.physics import symbols as s
 
-WEISBACH_1845 = Reference(
-    "Weisbach 1845", "J. Weisbach, Lehrbuch der Ingenieur- und Maschinen-Mechanik, Vieweg, 1845"
-)
+WEISBACH_1845 = Reference("Weisbach 1845", "J. Weisbach, Lehrbuch der Ingenieur- und Maschinen-Mechanik, Vieweg, 1845")
 POISEUILLE_1840 = Reference(
     "Poiseuille 1840",
     "J. L. M. Poiseuille, Recherches expérimentales sur le mouvement des liquides, 1840; G. Hagen, 1839",
@@ -22,17 +21,15 @@ COLEBROOK_1939 = Reference(
 )
 SWAMEE_JAIN_1976 = Reference(
     "Swamee & Jain 1976",
-    "P. K. Swamee, A. K. Jain, Explicit equations for pipe-flow problems, "
-    "J. Hydraulics Division ASCE 102(5), 1976",
+    "P. K. Swamee, A. K. Jain, Explicit equations for pipe-flow problems, J. Hydraulics Division ASCE 102(5), 1976",
 )
 HAALAND_1983 = Reference(
     "Haaland 1983",
     "S. E. Haaland, Simple and explicit formulas for the friction factor in turbulent pipe flow, "
     "J. Fluids Engineering 105, 1983",
 )
-CONVENTION = Reference(
-    "convention", "Convention of this program, stated here; no law is established in this range"
-)
+DEFINITION = Reference("definition", "Definition")
+CONVENTION = Reference("convention", "Convention of this program, stated here; no law is established in this range")
 PROJECT = Reference("project input", "Project input")
 
 
@@ -66,9 +63,7 @@ def hagen_poiseuille(*, viscosity, length, flow_each, gravity, bore):
     return 128 * viscosity * length * flow_each / (np.pi * gravity * bore**4)
 
 
-@equation(
-    gives=s.FACTOR, source=PROJECT, valid="as given, at every Reynolds number", friction_factor=s.FACTOR_GIVEN
-)
+@equation(gives=s.FACTOR, source=PROJECT, valid="as given, at every Reynolds number", friction_factor=s.FACTOR_GIVEN)
 def fixed(*, friction_factor):
     """Darcy f, fixed."""
     return friction_factor
@@ -161,9 +156,7 @@ ROUGH_PIPE_LAWS: dict[str, Law] = {
 LAW_NAMES = (*ROUGH_PIPE_LAWS, "fixed")
 """Every friction law, as written in ``friction`` and ``law``."""
 
-AT_TURBULENT_LIMIT = Choice(
-    "factor_turbulent", "Darcy f of the law at Re_T", "by", {**ROUGH_PIPE_LAWS, "fixed": None}
-)
+AT_TURBULENT_LIMIT = Choice("factor_turbulent", "Darcy f of the law at Re_T", "by", {**ROUGH_PIPE_LAWS, "fixed": None})
 
 
 def _regimes(law: Law) -> Regimes:
@@ -208,3 +201,43 @@ FRICTION_LOSS = Choice(
 def friction_gradient(*, friction_loss, length):
     """Friction gradient."""
     return np.abs(friction_loss) / length
+
+
+@equation(
+    gives=Symbol("N", kinds.NUMBER, "length in which friction takes one unit of head"),
+    source=DEFINITION,
+    valid="water in motion",
+    length=s.LENGTH,
+    friction_loss=s.FRICTION_LOSS,
+)
+def one_in_length(*, length, friction_loss):
+    """Friction gradient as 1 in N."""
+    return length / np.abs(friction_loss)
+
+
+@equation(
+    gives=Symbol("S_m", kinds.NUMBER, "share of fittings and ends in the head lost"),
+    source=DEFINITION,
+    valid="water in motion",
+    fitting_loss=s.FITTING_LOSS,
+    head_loss=s.HEAD_LOSS,
+)
+def share_of_fittings(*, fitting_loss, head_loss):
+    """Share of fittings in the loss."""
+    return fitting_loss / head_loss
+
+
+def in_motion(law: Equation) -> Regimes:
+    """Return a law that holds where water moves; at rest it defines no value."""
+    return Regimes(
+        name=law.name,
+        title=law.title,
+        by="reynolds",
+        bounds=(Bound(0.0, strict=True),),
+        laws=(None, law),
+        labels=("at rest", "in motion"),
+    )
+
+
+ONE_IN = in_motion(one_in_length)
+FITTING_SHARE = in_motion(share_of_fittings)

@@ -36,15 +36,11 @@ def density(*, temperature):
     return (rising + falling) / (1 + 16.87985e-3 * t) * s.KILOGRAM_PER_CUBIC_METRE
 
 
-@equation(
-    gives=s.DYNAMIC_VISCOSITY, source=IAPWS_SR6, valid="−20 to 110 °C at 0.1 MPa", temperature=s.TEMPERATURE
-)
+@equation(gives=s.DYNAMIC_VISCOSITY, source=IAPWS_SR6, valid="−20 to 110 °C at 0.1 MPa", temperature=s.TEMPERATURE)
 def dynamic_viscosity(*, temperature):
     """Dynamic viscosity of water."""
     t = temperature / (300 * s.KELVIN)
-    return (
-        280.68e-6 * t**-1.9 + 511.45e-6 * t**-7.7 + 61.131e-6 * t**-19.6 + 0.45903e-6 * t**-40
-    ) * s.PASCAL_SECOND
+    return (280.68e-6 * t**-1.9 + 511.45e-6 * t**-7.7 + 61.131e-6 * t**-19.6 + 0.45903e-6 * t**-40) * s.PASCAL_SECOND
 
 
 @equation(
@@ -59,9 +55,7 @@ def kinematic_viscosity(*, dynamic_viscosity, density):
     return dynamic_viscosity / density
 
 
-@equation(
-    gives=s.VAPOUR_PRESSURE, source=WAGNER_PRUSS_1993, valid="0.01 to 373.9 °C", temperature=s.TEMPERATURE
-)
+@equation(gives=s.VAPOUR_PRESSURE, source=WAGNER_PRUSS_1993, valid="0.01 to 373.9 °C", temperature=s.TEMPERATURE)
 def vapour_pressure(*, temperature):
     """Vapour pressure of water."""
     share = temperature / (647.096 * s.KELVIN)
