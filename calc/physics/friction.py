@@ -211,7 +211,7 @@ def friction_gradient(*, friction_loss, length):
     friction_loss=s.FRICTION_LOSS,
 )
 def one_in_length(*, length, friction_loss):
-    """Friction gradient as 1 in N."""
+    """Friction gradient, as one in N."""
     return length / np.abs(friction_loss)
 
 

@@ -273,7 +273,12 @@ class Document:
         if cite.into:
             refs = [user for ref in cite.refs for user in self.used_by.get(ref, ())]
         found = {self.addresses[ref] for ref in refs if ref in self.addresses}
-        return collapsed(found)
+        runs = collapsed(found).split(", ") if found else []
+        return ", ".join(runs) if len(runs) <= MOST_RUNS else f"{', '.join(runs[: MOST_RUNS - 1])}, …"
+
+
+MOST_RUNS = 4
+"""Runs of addresses that a citation prints; where there are more it ends in an ellipsis, and trace tells all."""
 
 
 def collapsed(addresses: Iterable[str]) -> str:

@@ -13,9 +13,9 @@ def compose_assumptions(composer: Composer) -> None:
     columns = (
         column("id", 12),
         column("assumption", role="statement"),
-        column("state", 22, edge=True),
+        column("state", 18, edge=True),
         column("basis", 18),
-        column("affects", 48),
+        column("affects", 42),
     )
     rows = []
     for one in project.assumptions.values():
@@ -39,9 +39,9 @@ def compose_assumptions(composer: Composer) -> None:
         sheet.add(Heading(("Taken by default, because the inputs are silent",)))
         columns = (
             column("value", role="statement"),
-            column("taken as", 40, edge=True),
-            column("source", 60),
-            column("file and line", 32),
+            column("taken as", 30, edge=True),
+            column("source", 50),
+            column("file and line", 34),
         )
         rows = [
             sheet.row(

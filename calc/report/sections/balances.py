@@ -18,7 +18,7 @@ from calc.report.sections.results import MOST_ROWS
 from calc.units import factor
 
 FULL_DECIMALS = 6
-FROM = TableColumn(("from",), width=26, edge=True, role="from")
+FROM = TableColumn(("from",), width=22, edge=True, role="from")
 
 
 def add_balances(sheet: Sheet, case: CaseAccount) -> None:
@@ -190,10 +190,10 @@ def _opinion(sheet: Sheet, case: CaseAccount) -> None:
         return
     columns = (
         column("compared", role="statement"),
-        figure_column("largest difference", width=40, edge=True),
-        figure_column("allowed", width=34),
-        column("", 14, role="unit"),
-        column("", 22),
+        figure_column("largest difference", width=34, edge=True),
+        figure_column("allowed", width=26),
+        column("", 12, role="unit"),
+        column("", 18),
         FROM,
     )
     rows = []

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
-
 import numpy as np
 
 from calc.account import CaseAccount
@@ -59,14 +57,14 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     shown = branches if len(branches) <= MOST_BRANCHES else []
     flow = sheet.composer.flow_unit
     columns: list[TableColumn] = [
-        column("trial", 10),
-        figure_column("low end", "m", 20, edge=True),
-        figure_column("high end", "m", 20),
-        figure_column("head", "m", 21, edge=True),
+        column("trial", 9.5),
+        figure_column("low end", "m", 18, edge=True),
+        figure_column("high end", "m", 18),
+        figure_column("head", "m", 18, edge=True),
     ]
     for k, branch in enumerate(shown):
-        columns.append(TableColumn((name(branch),), unit=flow, align="right", edge=k == 0, role="value"))
-    columns += [figure_column("imbalance", flow, 23, edge=True), column("head chosen by", 28, edge=True)]
+        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=17.5, edge=k == 0, role="value"))
+    columns += [figure_column("imbalance", flow, 19, edge=True), column("head chosen by", 24, edge=True)]
     rows = [_trial_row(sheet, case, trials, t, junction, shown) for t in range(len(trials.head))]
     sheet.table(f"trials-{case.id}", columns, rows)
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
@@ -75,7 +73,7 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     sheet.add(Paragraph((said + " A low end has water to spare, a high end lacks it.",), "small"))
 
 
-HEAD_FORM = Format("m", decimals=6)
+HEAD_FORM = Format("m", decimals=5)
 
 
 def _trial_row(  # noqa: PLR0917
@@ -84,7 +82,7 @@ def _trial_row(  # noqa: PLR0917
     composer, ledger = sheet.composer, sheet.composer.ledger
     head = _trial(ledger, "junctions.head", case.id, junction, t)
     imbalance = _trial(ledger, "junctions.imbalance", case.id, junction, t)
-    flow = Format(composer.flow_unit, decimals=5)
+    flow = Format(composer.flow_unit, decimals=4)
     cells: list[Parts] = [(Own(str(t + 1), "id"),)]
     for ends in (trials.low_end, trials.high_end):
         at = np.flatnonzero(trials.head[:t] == ends[t])
@@ -96,7 +94,7 @@ def _trial_row(  # noqa: PLR0917
         spot = _trial(ledger, "pipes.flow_toward", case.id, branch, t)
         cells.append((composer.number(spot, flow),))
         refs.append(spot.id)
-    cells.append((composer.number(imbalance, replace(flow, bound=1e-5)),))
+    cells.append((composer.number(imbalance, Format(composer.flow_unit, significant=4, bound=RESIDUAL)),))
     cells.append(_chosen(case, trials, t))
     accepted = "sum" if t == trials.accepted else ""
     return sheet.row(*cells, refs=(*refs, imbalance.id), tone=accepted)

@@ -97,12 +97,12 @@ def _sentence(composer: Composer) -> Parts:
 def _criteria(sheet: Sheet) -> None:
     columns = (
         column("criterion", role="statement"),
-        column("governed by", 44),
-        figure_column("found", width=19, edge=True),
-        figure_column("limit", width=20),
-        column("", 11, role="unit"),
-        figure_column("margin", width=19),
-        column("verdict", 18),
+        column("governed by", 36),
+        figure_column("found", width=16, edge=True),
+        figure_column("limit", width=17),
+        column("", 9.5, role="unit"),
+        figure_column("margin", width=16),
+        column("verdict", 19.5),
         FROM,
     )
     judged = sorted(sheet.composer.account.verdicts, key=lambda j: j.met)
@@ -146,8 +146,8 @@ def _flows(sheet: Sheet) -> None:
         return
     columns: list[TableColumn] = [TableColumn(("flow, ", composer.flow_unit), role="statement")]
     for case in cases:
-        columns.append(TableColumn((name(case.id),), width=23, edge=True))
-        columns.append(TableColumn(("",), align="right", width=15, role="value"))
+        columns.append(TableColumn((name(case.id),), width=18, edge=True))
+        columns.append(TableColumn(("",), align="right", width=13, role="value"))
     project = composer.account.project
     many = len(project.pipes) > MOST_PIPES
     rows = [_reservoir(sheet, cases, one) for one in project.reservoirs] if many else []

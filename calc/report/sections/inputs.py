@@ -39,11 +39,11 @@ def compose_inputs(composer: Composer) -> None:
 
 COLUMNS = (
     column("given", role="statement"),
-    column("as written", 25, edge=True, align="right"),
-    column("in SI", 22, align="right", role="value"),
-    column("", 11, role="unit"),
-    column("source, page, grade, note", 44, edge=True),
-    column("file and line", 25),
+    column("as written", 22, edge=True, align="right"),
+    column("in SI", 18, align="right", role="value"),
+    column("", 10, role="unit"),
+    column("source, page, grade, note", 35, edge=True),
+    column("file and line", 27),
     INTO,
 )
 

@@ -36,11 +36,11 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
     sheet.table(f"worked-{judged.id}", COLUMNS, [line(sheet, judged.governing.margin)])
     columns = (
         column("subject", role="statement"),
-        column("case", 30, edge=True),
-        figure_column("found", width=22, edge=True),
-        figure_column("limit", width=22),
-        column("", 12, role="unit"),
-        figure_column("margin", width=22),
+        column("case", 24, edge=True),
+        figure_column("found", width=18, edge=True),
+        figure_column("limit", width=18),
+        column("", 10, role="unit"),
+        figure_column("margin", width=18),
         column("verdict", 22),
         FROM,
     )
@@ -87,9 +87,9 @@ def _findings(sheet: Sheet) -> None:
     ]
     columns = (
         column("check", 14),
-        column("remark", 36),
-        column("subject", 38, edge=True),
+        column("remark", 30),
+        column("subject", 32, edge=True),
         column("found", role="statement"),
-        column("file and line", 28, edge=True),
+        column("file and line", 27, edge=True),
     )
     sheet.table("findings", columns, rows)

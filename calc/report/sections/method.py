@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
+
 from calc.equation import Equation, Implicit, Leaf
 from calc.ledger import Derived
 from calc.report.composer import Composer, Sheet, column
 from calc.report.derivation import symbols_of
-from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Soft
+from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Part, Parts, Row, Soft
 
 STATEMENTS = (
     (
@@ -40,13 +42,11 @@ def compose_method(composer: Composer) -> None:
     sheet.table("method", columns, [sheet.row((text,)) for text in STATEMENTS])
     leaves = laws_in_use(composer)
     sheet.add(Heading(("Equations in use",)))
-    columns = (column("equation", role="statement"), column("source", 52, edge=True), column("range", 44))
+    columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
     sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves])
     sheet.add(Heading(("Symbols",)))
     symbols = {letter.text: (letter, words, unit) for leaf in leaves for letter, words, unit in symbols_of(leaf)}
-    columns = (column("symbol", 18), column("stands for", role="statement"), column("unit in equations", 36))
-    rows = [sheet.row((letter,), (words,), (unit or "–",)) for letter, words, unit in symbols.values()]
-    sheet.table("symbols", columns, rows, tick=False)
+    _symbols(sheet, list(symbols.values()))
     sheet.add(
         Paragraph(
             ("Empirical equations are worked in SI; their inputs are divided by the units shown first.",),
@@ -54,6 +54,32 @@ def compose_method(composer: Composer) -> None:
         )
     )
     sheet.close()
+
+
+def _symbols(sheet: Sheet, symbols: list[tuple[Letter, str, str]]) -> None:
+    """Add the symbols, two to a row."""
+    half = (len(symbols) + 1) // 2
+    head = (column("symbol", 16), column("stands for", role="statement"), column("unit", 16))
+    rows = []
+    for k in range(half):
+        cells: list[Parts] = []
+        for pair in (symbols[k], symbols[k + half] if k + half < len(symbols) else None):
+            cells += [(pair[0],), (pair[1],), (pair[2] or "–",)] if pair else [("",), ("",), ("",)]
+        rows.append(sheet.row(*cells))
+    sheet.table("symbols", (*head, *head), rows, tick=False)
+
+
+def lettered(text: str) -> Parts:
+    """Return a text about a range with its symbols set as letters."""
+    parts: list[Part] = []
+    for piece in SYMBOL.split(text):
+        if piece:
+            parts.append(Letter(piece) if SYMBOL.fullmatch(piece) else Own(piece, "source"))
+    return tuple(parts)
+
+
+SYMBOL = re.compile(r"(\b[A-Za-zΔε]+_[A-Za-z]+\b)")
+"""A letter with a subscript, as equations name their symbols."""
 
 
 def laws_in_use(composer: Composer) -> list[Leaf]:
@@ -68,11 +94,11 @@ def laws_in_use(composer: Composer) -> list[Leaf]:
     return list(found.values())
 
 
-def _equation(sheet: Sheet, leaf: Leaf):  # type: ignore[no-untyped-def]  # noqa: ANN202
+def _equation(sheet: Sheet, leaf: Leaf) -> Row:
     equation: Equation = leaf.residual if isinstance(leaf, Implicit) else leaf
     root = (Soft((" – ", Letter(leaf.gives.text), " is the root")),) if isinstance(leaf, Implicit) else ()
     return sheet.row(
         (leaf.title, *root, Formula(leaf)),
-        (Own(equation.source.text, "source"),),
-        (Own(equation.valid, "source"),),
+        (Own(equation.source.key, "source"),),
+        lettered(equation.valid),
     )

@@ -25,6 +25,8 @@ CHAIN = (
     "head_loss",
     "closing_error",
     "velocity_head",
+    "one_in",
+    "fitting_share",
 )
 """Quantities of a pipe in the order of the chain of laws."""
 
@@ -133,25 +135,35 @@ def add_tables(sheet: Sheet, case: CaseAccount) -> None:
 
 def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     composer = sheet.composer
-    columns = (
-        column("pipe", role="statement"),
-        figure_column("head at from", "m", 17, edge=True),
-        figure_column("head at to", "m", 17),
-        figure_column("flow", composer.flow_unit, 16, edge=True),
-        figure_column("velocity", "m/s", 15),
-        figure_column("Reynolds", "–", 17),
-        figure_column("Darcy f", "–", 15),
-        figure_column("friction", "m", 15, edge=True),
-        figure_column("fittings", "m", 15),
-        figure_column("loss", "m", 15),
-    )
     names = list(case.network.pipes.rows)
     if len(names) > MOST_ROWS:
         held = case.columns.results.head_loss.values if case.columns else np.zeros(0)
         order = np.argsort(-np.abs(held), kind="stable")[:MOST_ROWS]
         names = [case.columns.running[int(k)] for k in order] if case.columns else []
-    sheet.add(Heading(("Pipes",)))
+    sheet.add(Heading(("Pipes: heads and flows",)))
+    columns = (
+        column("pipe", role="statement"),
+        column("from", 24, edge=True),
+        figure_column("head", "m", 17),
+        column("to", 24, edge=True),
+        figure_column("head", "m", 17),
+        figure_column("loss", "m", 16, edge=True),
+        TableColumn(("gradient, one in",), align="right", width=17, role="value"),
+        figure_column("flow", composer.flow_unit, 18, edge=True),
+    )
     sheet.table(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
+    sheet.add(Heading(("Pipes: velocities and losses",)))
+    columns = (
+        column("pipe", role="statement"),
+        figure_column("velocity", "m/s", 18, edge=True),
+        figure_column("Reynolds", width=19),
+        figure_column("Darcy f", width=16),
+        figure_column("friction", "m", 17, edge=True),
+        figure_column("fittings", "m", 17),
+        figure_column("share of fittings", "%", 18),
+        figure_column("loss", "m", 17),
+    )
+    sheet.table(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
     said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
     if len(names) < len(case.network.pipes.rows):
         said += " The pipes that lose most head are printed; the results file of this package holds all."
@@ -164,28 +176,31 @@ def _node_head(composer: Composer, case: str, node: str) -> Spot:
 
 
 def _pipe_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
-    composer, ledger = sheet.composer, sheet.composer.ledger
+    composer = sheet.composer
     record = composer.account.project.pipes[pipe]
     cells: list[Parts] = [(name(pipe),)]
     for end in ("from", "to"):
-        cells.append((composer.number(_node_head(composer, case.id, record.text(end)), Format("m", decimals=3)),))
+        node = record.text(end)
+        cells += [(name(node),), (composer.number(_node_head(composer, case.id, node), Format("m", decimals=3)),)]
+    return _told(sheet, case, pipe, cells, ("head_loss", "one_in", "flow"))
+
+
+def _loss_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
+    wanted = ("velocity", "reynolds", "friction_factor", "friction_loss", "fitting_loss", "fitting_share", "head_loss")
+    return _told(sheet, case, pipe, [(name(pipe),)], wanted)
+
+
+def _told(sheet: Sheet, case: CaseAccount, pipe: str, cells: list[Parts], wanted: tuple[str, ...]) -> Row:
+    """Return a row with quantities of a pipe; a dash where the law defines no value."""
     refs = []
     shut = not case.network.open[case.network.pipes.rows.index(pipe)]
-    for quantity in (
-        "flow",
-        "velocity",
-        "reynolds",
-        "friction_factor",
-        "friction_loss",
-        "fitting_loss",
-        "head_loss",
-    ):
-        spot = _here(ledger, f"pipes.{quantity}", case.id, pipe)
+    for quantity in wanted:
+        spot = _here(sheet.composer.ledger, f"pipes.{quantity}", case.id, pipe)
         if spot is None:
-            cells.append((Soft(("shut",)) if shut and quantity == "velocity" else NOTHING,))
+            cells.append((Soft(("shut",)) if shut and quantity == wanted[0] else NOTHING,))
             continue
         refs.append(spot.id)
-        cells.append((composer.number(spot),))
+        cells.append((sheet.composer.number(spot),))
     return sheet.row(*cells, refs=refs)
 
 

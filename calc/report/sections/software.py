@@ -19,10 +19,10 @@ def compose_software(composer: Composer) -> None:
         ("program", f"Headtrace {calc.__version__}"),
         ("digest of the inputs", account.project.digest),
         ("digest of inputs and solution", account.digest),
-        *((f"library {library.lower()}", metadata.version(library)) for library in LIBRARIES),
+        *((library.lower(), metadata.version(library)) for library in LIBRARIES),
     ]
     columns = (column("fact", 50), column("value", role="statement"))
-    sheet.table("software", columns, [sheet.row((fact,), (Own(value, "name"),)) for fact, value in facts], tick=False)
+    sheet.table("software", columns, [sheet.row((Own(fact, "name"),), (Own(value, "name"),)) for fact, value in facts], tick=False)
     sheet.close()
 
 
