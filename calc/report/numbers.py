@@ -113,3 +113,9 @@ def last_place(text: str) -> float:
     mantissa, _, power = text.removeprefix("< ").partition(" × 10^")
     decimals = len(mantissa.partition(".")[2])
     return 10.0 ** (int(power.replace(MINUS, "-") or 0) - decimals)
+
+
+def raised(text: str) -> str:
+    """Return a written text with its power of ten in raised figures, for drawings: ``1.3 × 10⁻⁶``."""
+    base, caret, power = text.partition("^")
+    return base + power.translate(str.maketrans("0123456789−", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")) if caret else text

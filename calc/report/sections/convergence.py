@@ -5,7 +5,6 @@ from __future__ import annotations
 import numpy as np
 
 from calc.account import CaseAccount
-from calc.equation import Equation
 from calc.kinds import FLOW
 from calc.ledger import Ledger, Spot
 from calc.report import figures
@@ -23,10 +22,9 @@ from calc.report.document import (
     TableColumn,
 )
 from calc.report.formats import RESIDUAL
-from calc.report.numbers import Format
+from calc.report.numbers import Format, raised
 from calc.solve import Steps, Trials
 from calc.solve.branch import Branches
-from calc.solve.rules import RULES
 from calc.units import factor
 
 MOST_BRANCHES = 6
@@ -41,7 +39,6 @@ def add_convergence(sheet: Sheet, case: CaseAccount) -> None:
     if trials is not None:
         sheet.add(Heading(("Trials for the head at ", name(case.network.nodes[trials.junction]))))
         _trial_table(sheet, case, trials)
-        _rules(sheet, trials)
         _stopping(sheet, case)
         _trial_figures(sheet, case, trials)
     if steps is not None:
@@ -57,20 +54,21 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     shown = branches if len(branches) <= MOST_BRANCHES else []
     flow = sheet.composer.flow_unit
     columns: list[TableColumn] = [
-        column("trial", 9.5),
-        figure_column("low end", "m", 18, edge=True),
-        figure_column("high end", "m", 18),
-        figure_column("head", "m", 18, edge=True),
+        column("trial", 8.5),
+        figure_column("low end", "m", 17.5, edge=True),
+        figure_column("high end", "m", 17.5),
+        figure_column("head", "m", 17.5, edge=True),
     ]
     for k, branch in enumerate(shown):
-        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=17.5, edge=k == 0, role="value"))
-    columns += [figure_column("imbalance", flow, 19, edge=True), column("head chosen by", 24, edge=True)]
+        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=17, edge=k == 0, role="value"))
+    columns += [figure_column("imbalance", flow, 18.5, edge=True), column("head chosen by", edge=True)]
     rows = [_trial_row(sheet, case, trials, t, junction, shown) for t in range(len(trials.head))]
     sheet.table(f"trials-{case.id}", columns, rows)
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
     if not shown:
         said += " The flows of the branches are not printed, there being many."
-    sheet.add(Paragraph((said + " A low end has water to spare, a high end lacks it.",), "small"))
+    said += " At a low end water is to spare, at a high end it lacks. Rules are stated under the method; the trials that a"
+    sheet.add(Paragraph((said + " rule stands on are named in the order of its letters a, b, c.",), "small"))
 
 
 HEAD_FORM = Format("m", decimals=5)
@@ -113,19 +111,6 @@ def _chosen(case: CaseAccount, trials: Trials, t: int) -> Parts:
     return (rule, *((" on ", Own(uses, "id")) if uses else ()))
 
 
-def _rules(sheet: Sheet, trials: Trials) -> None:
-    used: dict[str, Equation] = {rule: RULES[rule].equation for rule in trials.rule}
-    columns = (column("rule", 34), column("trial head", role="statement"), column("source", 44, edge=True))
-    sheet.add(Heading(("Rules by which the heads were chosen",)))
-    rows = [
-        sheet.row((rule,), (equation.title, Formula(equation)), (Own(equation.source.key, "source"),))
-        for rule, equation in used.items()
-    ]
-    sheet.table("rules", columns, rows)
-    said = "The trials that a rule stands on are named in the table in the order of its letters a, b, c."
-    sheet.add(Paragraph((said,), "small"))
-
-
 def _stopping(sheet: Sheet, case: CaseAccount) -> None:
     """State the stopping tests with what was measured."""
     composer = sheet.composer
@@ -158,7 +143,7 @@ def _stopping(sheet: Sheet, case: CaseAccount) -> None:
 
 
 def _texts(composer: Composer, spots: list[Spot | None], form: Format) -> tuple[str, ...]:
-    return tuple(composer.number(s, form).text if s else "" for s in spots)
+    return tuple(raised(composer.number(s, form).text) if s else "" for s in spots)
 
 
 def _trial_figures(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
@@ -207,7 +192,7 @@ def _limit_text(composer: Composer, case: CaseAccount, form: Format) -> str:
         return ""
     k = next(k for k, test in enumerate(case.solution.tests) if test.unit == "m³/s")
     number = composer.number(f"solver.test_{k + 1}_limit@{case.id}", form)
-    return f"{number.text} {form.unit}"
+    return f"{raised(number.text)} {form.unit}"
 
 
 def _scale(composer: Composer) -> float:

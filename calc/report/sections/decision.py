@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from calc.account import CaseAccount, CriterionVerdict
-from calc.report.composer import FROM, Composer, Sheet, column, figure_column, name
+from calc.report.composer import Composer, Sheet, column, figure_column, name
 from calc.report.document import (
     Cite,
     Masthead,
@@ -99,11 +99,10 @@ def _criteria(sheet: Sheet) -> None:
         column("criterion", role="statement"),
         column("governed by", 36),
         figure_column("found", width=16, edge=True),
-        figure_column("limit", width=17),
-        column("", 9.5, role="unit"),
+        figure_column("limit", width=25),
         figure_column("margin", width=16),
         column("verdict", 19.5),
-        FROM,
+        TableColumn(("from",), width=12, edge=True, role="from"),
     )
     judged = sorted(sheet.composer.account.verdicts, key=lambda j: j.met)
     sheet.table("criteria", columns, [_criterion(sheet, one) for one in judged])
@@ -113,9 +112,9 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
     composer, governing = sheet.composer, judged.governing
     if governing is None or judged.least_margin is None:
         blank: Parts = ("",)
-        return sheet.row((judged.criterion.title,), ("no subject",), blank, blank, blank, blank, ("not judged",), blank)
+        return sheet.row((judged.criterion.title,), ("no subject",), blank, blank, blank, ("not judged",), blank)
     value = composer.number(governing.value)
-    limit = composer.number(governing.limit, value.form)
+    limit = composer.number(governing.limit, value.form, with_unit=True)
     margin = composer.number(judged.least_margin, Format(value.form.unit, value.form.decimals, sign="+"))
     sense = "≤ " if judged.criterion.sense == "at most" else "≥ "
     verdict: Part = "met" if judged.met else Strong(("not met",), bar=True)
@@ -125,13 +124,12 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
 
     return sheet.row(
         (judged.criterion.title,) if judged.met else (Strong((judged.criterion.title,)),),
-        (name(governing.subject), Soft((", case ", name(governing.case)))),
+        (name(governing.subject), Soft((", ", name(governing.case)))),
         told(value),
         (sense, limit),
-        (value.form.unit,),
         told(margin),
         (verdict,),
-        (Cite((governing.value.id, governing.limit.id, governing.margin.id)),),
+        (Cite((governing.margin.id,)),),
         refs=(judged.least_margin.id,),
         tone="" if judged.met else "flag",
     )

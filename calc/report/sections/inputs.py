@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from calc.account import WITHOUT_SOURCE
 from calc.ledger import Column, Converted, Given, Library, Spot
 from calc.report.composer import INTO, Composer, Sheet, column, place
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
@@ -42,8 +43,8 @@ COLUMNS = (
     column("as written", 22, edge=True, align="right"),
     column("in SI", 18, align="right", role="value"),
     column("", 10, role="unit"),
-    column("source, page, grade, note", 35, edge=True),
-    column("file and line", 27),
+    column("source, page, grade, note", 34, edge=True),
+    column("file and line", 30),
     INTO,
 )
 
@@ -56,16 +57,23 @@ def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
             by_component.setdefault((one.group, name), []).append(Spot(one, row))
     ordered = sorted(by_component, key=lambda key: ORDER.index(key[0]) if key[0] in ORDER else len(ORDER))
     rows: list[Row] = []
+    standing = ""
     for group, name in ordered:
-        rows.append(sheet.group(group, *((" ", Quoted(name)) if name else ())))
-        rows += [_row(sheet, spot) for spot in by_component[group, name]]
+        gathered = group in GATHERED
+        if not gathered or group != standing:
+            rows.append(sheet.group(group, *((" ", Quoted(name)) if name and not gathered else ())))
+        standing = group
+        rows += [_row(sheet, spot, named=gathered) for spot in by_component[group, name]]
     return rows
 
+
+GATHERED = ("fittings", "criteria")
+"""Groups whose components are small, listed under one heading."""
 
 ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria")
 
 
-def _row(sheet: Sheet, spot: Spot) -> Row:
+def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
     origin = spot.column.origin
     if not isinstance(origin, Given | Converted | Library):
         raise TypeError(f"{spot.id} is no input")
@@ -74,10 +82,12 @@ def _row(sheet: Sheet, spot: Spot) -> Row:
     number = Number(spot.id, form, written(spot.value, kind, form))
     basis = origin.bases[spot.row]
     said: Parts = (Quoted(basis),) if basis else (Strong(("no source",), bar=True),)
+    if not basis and spot.column.quantity in WITHOUT_SOURCE:
+        said = ("–",)
     if basis in GRADES:
         said = (Strong(("no source",), bar=True), Soft((", ", Quoted(basis))))
     return sheet.row(
-        (spot.column.quantity.replace("_", " "),),
+        (*((Quoted(spot.column.rows[spot.row]), ", ") if named else ()), spot.column.quantity.replace("_", " ")),
         (Quoted(origin.written[spot.row]),),
         (number,),
         (kind.unit,),

@@ -9,6 +9,7 @@ from calc.ledger import Derived
 from calc.report.composer import Composer, Sheet, column
 from calc.report.derivation import symbols_of
 from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Part, Parts, Row, Soft
+from calc.solve.rules import RULES
 
 STATEMENTS = (
     (
@@ -40,12 +41,14 @@ def compose_method(composer: Composer) -> None:
     sheet = composer.begin("method", "Method and equations", lead)
     columns = (column("method", role="statement"),)
     sheet.table("method", columns, [sheet.row((text,)) for text in STATEMENTS])
-    leaves = laws_in_use(composer)
+    _rules(sheet)
+    rules = {rule.equation.name for rule in RULES.values()}
+    leaves = [leaf for leaf in laws_in_use(composer) if leaf.name not in rules]
     sheet.add(Heading(("Equations in use",)))
     columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
     sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves])
     sheet.add(Heading(("Symbols",)))
-    symbols = {letter.text: (letter, words, unit) for leaf in leaves for letter, words, unit in symbols_of(leaf)}
+    symbols = {letter.text: (letter, words, unit) for leaf in laws_in_use(composer) for letter, words, unit in symbols_of(leaf)}
     _symbols(sheet, list(symbols.values()))
     sheet.add(
         Paragraph(
@@ -54,6 +57,22 @@ def compose_method(composer: Composer) -> None:
         )
     )
     sheet.close()
+
+
+def _rules(sheet: Sheet) -> None:
+    """Add the rules by which the trials of this package were chosen."""
+    used: dict[str, None] = {}
+    for case in sheet.composer.account.cases.values():
+        if case.solution.trials is not None:
+            used |= dict.fromkeys(case.solution.trials.rule)
+    columns = (column("rule", 34), column("trial head", role="statement"), column("source", 34, edge=True))
+    rows = []
+    for word in used:
+        rule = RULES[word].equation
+        rows.append(sheet.row((word,), (rule.title, Formula(rule)), (Own(rule.source.key, "source"),)))
+    if rows:
+        sheet.add(Heading(("Rules by which trial heads are chosen",)))
+        sheet.table("rules", columns, rows)
 
 
 def _symbols(sheet: Sheet, symbols: list[tuple[Letter, str, str]]) -> None:
