@@ -103,7 +103,8 @@ def _linear(node: Expression, write: Callable[[str], str], outer: int) -> str:
         case Term(name=name):
             return write(name)
         case Literal(text=text):
-            return "pi" if text == "π" else text
+            bracketed = text.startswith("-") and outer > _PRECEDENCE["power"]
+            return "pi" if text == "π" else f"({text})" if bracketed else text
         case Operation(operation=operation, args=args) if operation in _PRECEDENCE:
             rank = _PRECEDENCE[operation]
             text = _operator(operation, args, write, rank)
