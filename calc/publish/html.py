@@ -15,7 +15,7 @@ from calc.ledger import Ledger
 from calc.problems import Unresolved
 from calc.publish import places
 from calc.publish.faces import shown
-from calc.publish.markup import named, own
+from calc.publish.markup import hidden, named, own
 from calc.publish.parts import Writer
 from calc.publish.tables import MEASURE, WIDE, Sheet, wide
 from calc.report.document import Block, Document, Figure, Listing, Section, Table
@@ -92,6 +92,7 @@ class Page:
             "said": self.writer.said,
             "named": named,
             "own": own,
+            "hidden": hidden,
             "verbatim": lambda text: escape(shown(text)),
             "kind_of": kind_of,
             "place": place,

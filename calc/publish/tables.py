@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from markupsafe import Markup, escape
 
 from calc.problems import Unresolved
+from calc.publish.markup import hidden
 from calc.publish.parts import Writer
 from calc.report.document import Number, Part, Parts, Row, Soft, Strong, Table, TableColumn
 
@@ -22,6 +23,8 @@ EM = 9.5 * 25.4 / 72  # mm, the size of text in a table
 LETTERS = "abcdefghjkmnopqrstuvwxyz"
 ROLES = {"value": "val", "unit": "un", "from": "fr", "into": "to", "statement": "st", "": ""}
 ALIGN = {"left": "", "right": "r", "centre": "c"}
+UNSEEN = {"unit": "unit", "statement": "statement", "from": "from", "into": "into"}
+"""Heads of columns that have none to be seen, for a reader who cannot see the table."""
 TONES = {"", "group", "sum", "proved", "flag"}
 
 
@@ -47,15 +50,19 @@ class Sheet:
         return sum(column.width is None for column in self.table.columns)
 
     @property
-    def _fixed(self) -> float:
-        return _fixed(self.table)
-
-    @property
     def widths(self) -> Markup:
         """The column widths, fixed; the others share what is left."""
-        said = [GUTTER, *(column.width for column in self.table.columns), *[TICK] * self.table.tick]
-        cols = [Markup("<col>") if w is None else Markup('<col style="width:{}mm">').format(f"{w:g}") for w in said]
+        said = [GUTTER, *(self._fit(column.width) for column in self.table.columns), *[TICK] * self.table.tick]
+        cols = [Markup("<col>") if w is None else Markup('<col style="width:{}mm">').format(f"{w:.2f}") for w in said]
         return Markup("<colgroup>{}</colgroup>").format(Markup().join(cols))
+
+    def _fit(self, width: float | None) -> float | None:
+        """Return the width of a column, narrowed where all together leave the others no room."""
+        if width is None:
+            return None
+        asked = sum(column.width or 0.0 for column in self.table.columns)
+        room = self.whole - GUTTER - TICK * self.table.tick - STAR * self._stars
+        return width * min(1.0, room / asked)
 
     @property
     def manner(self) -> Markup:
@@ -71,13 +78,12 @@ class Sheet:
 
     @property
     def heads(self) -> Iterator[Cell]:
-        """The heads; a column without words has an empty one."""
+        """The heads; that of a column without words is heard, not seen."""
         for column in self.table.columns:
-            content = self.writer.said(column.head)
+            content = self.writer.said(column.head) or hidden(UNSEEN.get(column.role, "value"))
             if column.unit:
-                content += Markup('{}<span class="cs">{}</span>').format(
-                    Markup("<br>") if content else Markup(), column.unit
-                )
+                gap = Markup("<br>") if column.head else Markup()
+                content += Markup('{}<span class="cs">{}</span>').format(gap, column.unit)
             yield Cell(self._classes(column), content, Markup())
 
     def cells(self, row: Row) -> Iterator[Cell]:
@@ -112,9 +118,11 @@ class Sheet:
 
     def _width(self, column: TableColumn) -> float:
         """Return the width of a column, mm."""
-        if column.width is not None:
-            return column.width
-        return (self.whole - self._fixed) / self._stars
+        fitted = self._fit(column.width)
+        if fitted is not None:
+            return fitted
+        taken = sum(self._fit(other.width) or 0.0 for other in self.table.columns)
+        return (self.whole - GUTTER - TICK * self.table.tick - taken) / self._stars
 
     @staticmethod
     def _em(millimetres: float) -> float:
