@@ -67,6 +67,7 @@ WITHOUT_SOURCE = {
     "law",
     "open",
     "parallel",
+    "count",
     "applies_to",
     "cases",
     "kind",

@@ -62,7 +62,7 @@ def _complete(reader: Reader, stated: Fields, member: Mapping, at: str, bore: St
     note = member.get("note")
     if note is not None and basis.note:
         stated["note"] = Stated(basis.note, basis.note, note.mark)
-    for name in ("K", "K_reverse", "kind"):
+    for name in ("K", "K_reverse", "kind", "bore"):
         if name in stated and any((basis.source, basis.page, basis.grade, basis.note)):
             stated[name] = replace(stated[name], basis=basis)
     if "kind" in stated:

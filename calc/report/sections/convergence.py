@@ -54,14 +54,14 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     shown = branches if len(branches) <= MOST_BRANCHES else []
     flow = sheet.composer.flow_unit
     columns: list[TableColumn] = [
-        column("trial", 8.5),
-        figure_column("low end", "m", 17.5, edge=True),
-        figure_column("high end", "m", 17.5),
-        figure_column("head", "m", 17.5, edge=True),
+        column("trial", 11),
+        figure_column("low end", "m", 18, edge=True),
+        figure_column("high end", "m", 18),
+        figure_column("head", "m", 18, edge=True),
     ]
     for k, branch in enumerate(shown):
-        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=17, edge=k == 0, role="value"))
-    columns += [figure_column("imbalance", flow, 18.5, edge=True), column("head chosen by", edge=True)]
+        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=15.5, edge=k == 0, role="value"))
+    columns += [figure_column("imbalance", flow, 22, edge=True), column("head chosen by", edge=True)]
     rows = [_trial_row(sheet, case, trials, t, junction, shown) for t in range(len(trials.head))]
     sheet.table(f"trials-{case.id}", columns, rows)
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
@@ -80,7 +80,7 @@ def _trial_row(  # noqa: PLR0917
     composer, ledger = sheet.composer, sheet.composer.ledger
     head = _trial(ledger, "junctions.head", case.id, junction, t)
     imbalance = _trial(ledger, "junctions.imbalance", case.id, junction, t)
-    flow = Format(composer.flow_unit, decimals=4)
+    flow = Format(composer.flow_unit, decimals=3)
     cells: list[Parts] = [(Own(str(t + 1), "id"),)]
     for ends in (trials.low_end, trials.high_end):
         at = np.flatnonzero(trials.head[:t] == ends[t])
@@ -92,7 +92,7 @@ def _trial_row(  # noqa: PLR0917
         spot = _trial(ledger, "pipes.flow_toward", case.id, branch, t)
         cells.append((composer.number(spot, flow),))
         refs.append(spot.id)
-    cells.append((composer.number(imbalance, Format(composer.flow_unit, significant=4, bound=RESIDUAL)),))
+    cells.append((composer.number(imbalance, Format(composer.flow_unit, decimals=6, bound=RESIDUAL)),))
     cells.append(_chosen(case, trials, t))
     accepted = "sum" if t == trials.accepted else ""
     return sheet.row(*cells, refs=(*refs, imbalance.id), tone=accepted)

@@ -100,9 +100,9 @@ def _criteria(sheet: Sheet) -> None:
         column("governed by", 36),
         figure_column("found", width=16, edge=True),
         figure_column("limit", width=25),
-        figure_column("margin", width=16),
+        figure_column("margin", width=17),
         column("verdict", 19.5),
-        TableColumn(("from",), width=12, edge=True, role="from"),
+        TableColumn(("from",), width=14, edge=True, role="from"),
     )
     judged = sorted(sheet.composer.account.verdicts, key=lambda j: j.met)
     sheet.table("criteria", columns, [_criterion(sheet, one) for one in judged])
@@ -144,8 +144,8 @@ def _flows(sheet: Sheet) -> None:
         return
     columns: list[TableColumn] = [TableColumn(("flow, ", composer.flow_unit), role="statement")]
     for case in cases:
-        columns.append(TableColumn((name(case.id),), width=18, edge=True))
-        columns.append(TableColumn(("",), align="right", width=13, role="value"))
+        columns.append(TableColumn((name(case.id),), width=20.5, edge=True))
+        columns.append(TableColumn(("",), align="right", width=12, role="value"))
     project = composer.account.project
     many = len(project.pipes) > MOST_PIPES
     rows = [_reservoir(sheet, cases, one) for one in project.reservoirs] if many else []

@@ -15,8 +15,8 @@ def compose_references(composer: Composer) -> None:
     columns = (
         column("id", 14),
         column("title", role="statement"),
-        column("edition", 26, edge=True),
-        column("kind", 26),
+        column("edition", 25, edge=True),
+        column("kind", 29),
         column("date", 24),
     )
     rows = [

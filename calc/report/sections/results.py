@@ -144,24 +144,24 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     columns = (
         column("pipe", role="statement"),
         column("from", 24, edge=True),
-        figure_column("head", "m", 17),
+        figure_column("head", "m", 16.5),
         column("to", 24, edge=True),
-        figure_column("head", "m", 17),
+        figure_column("head", "m", 16.5),
         figure_column("loss", "m", 16, edge=True),
-        TableColumn(("gradient, one in",), align="right", width=17, role="value"),
-        figure_column("flow", composer.flow_unit, 18, edge=True),
+        TableColumn(("gradient, one in",), align="right", width=19, role="value"),
+        figure_column("flow", composer.flow_unit, 16.5, edge=True),
     )
     sheet.table(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
     sheet.add(Heading(("Pipes: velocities and losses",)))
     columns = (
         column("pipe", role="statement"),
-        figure_column("velocity", "m/s", 18, edge=True),
-        figure_column("Reynolds", width=19),
+        figure_column("velocity", "m/s", 19.5, edge=True),
+        figure_column("Reynolds", width=20),
         figure_column("Darcy f", width=16),
-        figure_column("friction", "m", 17, edge=True),
-        figure_column("fittings", "m", 17),
-        figure_column("share of fittings", "%", 18),
-        figure_column("loss", "m", 17),
+        figure_column("friction", "m", 19.5, edge=True),
+        figure_column("fittings", "m", 19.5),
+        figure_column("share of fittings", "%", 19.5),
+        figure_column("loss", "m", 16),
     )
     sheet.table(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
     said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
@@ -208,7 +208,7 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
     composer, ledger = sheet.composer, sheet.composer.ledger
     columns = (
         column("fitting or end", role="statement"),
-        figure_column("count", width=14, edge=True),
+        figure_column("count", width=15.5, edge=True),
         figure_column("K in use", width=20),
         figure_column("velocity", "m/s", 20, edge=True),
         figure_column("loss", "m", 20),
