@@ -112,12 +112,21 @@ def _nodes(account: Account, held: CaseAccount) -> dict[str, Any]:
     return nodes
 
 
-REPORTED = ("flow", "velocity", "head_loss", "friction_loss", "fitting_loss", "reynolds", "friction_factor")
+REPORTED = {
+    "flow": "flow",
+    "velocity": "velocity",
+    "head_loss": "head_loss",
+    "friction_loss": "friction_loss",
+    "fitting_loss": "fitting_loss",
+    "reynolds": "reynolds",
+    "friction_factor": "darcy_f",
+}
+"""What is told of a branch, and the ledger's word for it."""
 
 
 def _branches(account: Account, held: CaseAccount) -> dict[str, Any]:
     ledger, network = account.ledger, held.network
-    columns = {name: _here(ledger, f"pipes.{name}", held.id) for name in REPORTED}
+    columns = {told: _here(ledger, f"pipes.{name}", held.id) for told, name in REPORTED.items()}
     head = held.columns.head.values if held.columns else np.zeros(0)
     branches: dict[str, Any] = {}
     for k, name in enumerate(network.pipes.rows):

@@ -150,7 +150,7 @@ def losses(on: Evaluator[T], pipe: PipeTerms[T], limits: TransitionLimits[T], fl
         "pipes.reynolds", velocity.reynolds_number, velocity=mean, bore=pipe.bore, viscosity=pipe.viscosity
     )
     factor = on.apply(
-        "pipes.friction_factor",
+        "pipes.darcy_f",  # not the word of the input, which stands beside it
         friction.FRICTION_FACTOR,
         by=pipe.law,
         reynolds=reynolds,

@@ -2,20 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+import math
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 
+from calc.equation import Expression, Implicit, Literal, Operation, Term
 from calc.equation.evaluation import evaluate_leaf
 from calc.equation.law import takes
+from calc.equation.reading import OPERATIONS
 from calc.ledger.accountant import combined
-from calc.ledger.column import Column
+from calc.ledger.column import Array, Column
 from calc.ledger.ledger import Ledger
 from calc.ledger.origin import Combined, Converted, Derived, Judged
+from calc.problems import CalcError
 
 TOLERANCE = 1e-12
-"""Relative to the largest operand of a sum or to the value: archives cross machines, so bits may differ."""
+"""Relative to the value, or to what was added up for it: archives cross machines, so bits may differ."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,6 +81,33 @@ def _derived(origin: Derived, count: int) -> Iterator[tuple[float, float]]:
         for name in takes(leaf):
             array = arrays[name]
             one[name] = array if origin.inputs[name].shared else array[row : row + 1]
-        alike = [v for n, v in one.items() if takes(leaf)[n].kind.dimension == leaf.gives.kind.dimension]
-        size = max((abs(float(v[0])) for v in alike), default=0.0)
+        size = 0.0 if isinstance(leaf, Implicit) else _size(leaf.expression, one)[1]
         yield float(np.asarray(evaluate_leaf(leaf, one)).reshape(-1)[0]), size
+
+
+def _size(node: Expression, inputs: Mapping[str, Array]) -> tuple[Any, float]:
+    """Return a value with the size of what was added up for it, whose last digit it cannot better."""
+    if isinstance(node, Term):
+        return inputs[node.name], abs(float(inputs[node.name][0]))
+    if isinstance(node, Literal):
+        number = math.pi if node.text == "π" else float(node.text)
+        return number, abs(number)
+    if not isinstance(node, Operation):
+        raise CalcError(f"{type(node).__name__} has no size")
+    parts = [_size(part, inputs) for part in node.args]
+    value = UFUNCS[node.operation](*(part for part, _ in parts))
+    match node.operation:
+        case "add" | "subtract":
+            size = parts[0][1] + parts[1][1]
+        case "multiply":
+            size = parts[0][1] * parts[1][1]
+        case "divide":
+            size = parts[0][1] / abs(float(np.ravel(parts[1][0])[0]))
+        case "negative" | "abs":
+            size = parts[0][1]
+        case _:
+            size = abs(float(np.ravel(value)[0]))
+    return value, size
+
+
+UFUNCS = {name: ufunc for ufunc, name in OPERATIONS.items()}

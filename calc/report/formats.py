@@ -34,7 +34,7 @@ RESIDUAL = 1e-6
 
 BY_QUANTITY = {
     "reynolds": Format(decimals=0),
-    "friction_factor": Format(decimals=5),
+    "darcy_f": Format(decimals=5),
     "one_in": Format(decimals=0),
     "fitting_share": Format("%", decimals=1),
     "parallel": Format(decimals=0),

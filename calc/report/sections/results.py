@@ -19,7 +19,7 @@ CHAIN = (
     "velocity",
     "reynolds",
     "factor_turbulent",
-    "friction_factor",
+    "darcy_f",
     "friction_loss",
     "fitting_loss",
     "head_loss",
@@ -65,7 +65,7 @@ def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
         )
     )
     rows: list[Row] = []
-    used = ("friction_factor", "transition") in _leaves(ledger, case.id, pipe)
+    used = ("darcy_f", "transition") in _leaves(ledger, case.id, pipe)
     for quantity in CHAIN:
         if quantity == "factor_turbulent" and not used:
             continue
@@ -85,11 +85,11 @@ def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
 
 
 def _leaves(ledger: Ledger, case: str, pipe: str) -> set[tuple[str, str]]:
-    spot = _here(ledger, "pipes.friction_factor", case, pipe)
+    spot = _here(ledger, "pipes.darcy_f", case, pipe)
     if spot is None or not isinstance(spot.column.origin, Derived):
         return set()
     origin = spot.column.origin
-    return {("friction_factor", origin.labels[origin.which[spot.row]])}
+    return {("darcy_f", origin.labels[origin.which[spot.row]])}
 
 
 def _worked_fittings(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
@@ -186,7 +186,7 @@ def _pipe_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
 
 
 def _loss_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
-    wanted = ("velocity", "reynolds", "friction_factor", "friction_loss", "fitting_loss", "fitting_share", "head_loss")
+    wanted = ("velocity", "reynolds", "darcy_f", "friction_loss", "fitting_loss", "fitting_share", "head_loss")
     return _told(sheet, case, pipe, [(name(pipe),)], wanted)
 
 
