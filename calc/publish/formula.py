@@ -140,7 +140,7 @@ def _set(head: Setting, indent: float, lines: list[tuple[str, Setting]]) -> Mark
     # No width may hang on the last bit of a sum.
     style = Markup("padding-left:{}em;text-indent:-{}em").format(*[f"{indent:.2f}"] * 2)
     opening = Markup('<span class="eq" role="math" aria-label="{}" style="{}">').format(spoken, style)
-    left = Markup('<span class="lhs" style="width:{}em">{}</span>').format(f"{indent:.2f}", head.line)
+    left = Markup('<span class="lhs" style="width:{}em">{}</span>').format(f"{head.width:.2f}", head.line)
     said = _segment(*lines[0], left)
     for sign, line in lines[1:]:
         said += Markup("<br>" if len(line.pieces) > 1 else " ") + _segment(sign, line)
@@ -149,5 +149,8 @@ def _set(head: Setting, indent: float, lines: list[tuple[str, Setting]]) -> Mark
 
 def _segment(sign: str, line: Setting, left: Markup | None = None) -> Markup:
     first, *rest = line.pieces
-    pieces = [Markup("{}{} {}").format(left or "", sign, first.markup), *(piece.markup for piece in rest)]
+    pieces = [
+        Markup("{}{} {}").format(left + " " if left else "", sign, first.markup),
+        *(piece.markup for piece in rest),
+    ]
     return Markup(" ").join(Markup('<span class="nb">{}</span>').format(piece) for piece in pieces)

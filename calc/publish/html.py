@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+import contextlib
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
 from functools import lru_cache
 from typing import Any
 
-from jinja2 import FileSystemLoader, StrictUndefined
+from jinja2 import FileSystemLoader, StrictUndefined, Undefined, nodes
 from jinja2.sandbox import ImmutableSandboxedEnvironment
 from markupsafe import Markup, escape
 
@@ -20,6 +21,8 @@ from calc.publish.parts import Writer
 from calc.publish.tables import MEASURE, WIDE, Sheet, wide
 from calc.report.document import Block, Document, Figure, Listing, Section, Table
 
+RUNNING = 80
+"""Most characters of a section's title in the head of its pages."""
 FILTERS = ("e", "escape", "join", "lower", "trim")
 """Filters that stay; none of the rest makes or formats a number without the ledger."""
 
@@ -41,8 +44,10 @@ def finished(value: object) -> object:
     Unresolved
         If it is.
     """
-    if isinstance(value, Markup) or value is None:
-        return value if value is not None else ""
+    if isinstance(value, Markup):
+        return value
+    if isinstance(value, Undefined):
+        return str(value)  # which raises, and says what is missing
     if not isinstance(value, str):
         raise Unresolved(f"a template may not print {value!r}: only text, and numbers that are in the ledger")
     if any(character.isdecimal() for character in value):
@@ -50,10 +55,22 @@ def finished(value: object) -> object:
     return value
 
 
+class Sandbox(ImmutableSandboxedEnvironment):
+    """A sandbox that also looks at what a template prints without a name, which is set before `finished` sees it."""
+
+    def _parse(self, source: str, name: str | None, filename: str | None) -> nodes.Template:
+        parsed = super()._parse(source, name, filename)
+        for child in (child for output in parsed.find_all(nodes.Output) for child in output.nodes):
+            if not isinstance(child, nodes.TemplateData):
+                with contextlib.suppress(nodes.Impossible):
+                    finished(child.as_const())
+        return parsed
+
+
 @lru_cache(maxsize=1)
-def environment() -> ImmutableSandboxedEnvironment:
+def environment() -> Sandbox:
     """Return the environment that templates run in."""
-    made = ImmutableSandboxedEnvironment(
+    made = Sandbox(
         loader=FileSystemLoader(places.templates()),
         autoescape=True,
         undefined=StrictUndefined,
@@ -94,6 +111,7 @@ class Page:
             "own": own,
             "hidden": hidden,
             "verbatim": lambda text: escape(shown(text)),
+            "running": lambda text: escape(shown(text if len(text) <= RUNNING else f"{text[: RUNNING - 1]}…")),
             "kind_of": kind_of,
             "place": place,
             "target": self.target,

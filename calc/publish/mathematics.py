@@ -86,7 +86,7 @@ def symbol(text: str) -> Setting:
     """Return a letter with its subscript."""
     stem, _, below = text.strip("|").partition("_")
     bars = 2 * width("|") if text.startswith("|") else 0.0
-    return atom(letter(text), text, width(stem, ITALIC) + SMALL * width(below) + bars + 0.05)
+    return atom(letter(text), text.replace("-", MINUS), width(stem, ITALIC) + SMALL * width(below) + bars + 0.05)
 
 
 def literal(node: Literal) -> Setting:

@@ -11,12 +11,14 @@ from collections.abc import Generator, Mapping
 from contextlib import contextmanager
 from dataclasses import dataclass
 from datetime import UTC, datetime
+from importlib.resources import files
 from pathlib import Path
 from typing import Any
 
 import pikepdf
 import weasyprint
 from markupsafe import Markup
+from weasyprint.css import ColorProfile
 from weasyprint.urls import URLFetcher, URLFetcherResponse
 
 from calc.ledger import Ledger
@@ -32,6 +34,8 @@ VARIANT = "pdf/a-3a"
 UNDATED = "2000-01-01"
 """The date of a document whose revision states none: no clock is read."""
 SHOWN_DIGITS, GROUP = 12, 4
+RUNNING, STATUS = 64, 90
+"""Most characters of a running head, and of the status at the foot."""
 SORTS = {".yaml": "application/yaml", ".json": "application/json", ".csv": "text/csv"}
 OTHER = "application/octet-stream"
 FACES = (
@@ -61,7 +65,7 @@ class Shelf(URLFetcher):  # type: ignore[misc]  # the library ships no types
     """Serves what the page asks for from memory; nothing else on this machine or beyond can be reached."""
 
     def __init__(self, held: Mapping[str, tuple[str, bytes]]) -> None:
-        super().__init__(allowed_protocols={"data", "asset"}, allow_redirects=False, fail_on_errors=True)
+        super().__init__(allowed_protocols={"data", "asset"}, allow_redirects=False)
         self._held = held
 
     def fetch(self, url: str, headers: Any = None) -> Any:  # noqa: ANN401
@@ -110,8 +114,10 @@ def write(document: Document, page: str, pictures: Mapping[str, Picture], embedd
     with quick(), complaints(), formulas_tagged():
         laid = laid_out(document, page, pictures)
         laid.metadata = CalculationMetadata.of(laid.metadata, _facts(document))
+        laid.color_profiles["srgb"] = _inks()
         made = laid.write_pdf(
             pdf_variant=VARIANT,
+            output_intent="srgb, held in memory",  # else the library opens the profile and leaves it open
             pdf_tags=True,
             pdf_identifier=hashlib.sha256(page.encode("utf-8")).digest()[:16],
             attachments=[_attachment(document, name, embedded[name]) for name in sorted(embedded)],
@@ -193,6 +199,11 @@ def faces(address: str = "asset:{}.ttf") -> str:
     )
 
 
+def running(text: str, most: int = RUNNING) -> str:
+    """Return text as it fits the head of a page."""
+    return text if len(text) <= most else text[: most - 1].rstrip() + "…"
+
+
 def digest_head(document: Document) -> str:
     """Return the first digits of the digest in groups, as the foot of each page has them."""
     digits = document.digest.rpartition(":")[2][:SHOWN_DIGITS]
@@ -204,13 +215,19 @@ def quoted(text: str) -> str:
     return '"' + "".join(c if c.isalnum() and c.isascii() else f"\\{ord(c):06x}" for c in text) + '"'
 
 
+def _inks() -> Any:  # noqa: ANN401
+    """Return the colour profile that ships with the layout library."""
+    content = (files("weasyprint.pdf") / "sRGB2014.icc").read_bytes()
+    return ColorProfile(io.BytesIO(content), "sRGB2014.icc", "relative-colorimetric", (["r"], ["g"], ["b"]))
+
+
 def _styles(document: Document) -> str:
     issued = ", revision ".join(word for word in (document.number, document.revision) if word)
-    running = f"""@page {{ @top-left {{ content: {quoted(document.title)} }} @top-right {{ content: {quoted(issued)} }}
-      @bottom-left {{ content: {quoted(f"digest {digest_head(document)}")} }} @bottom-center {{ content: {quoted(document.status)} }} }}
+    heads = f"""@page {{ @top-left {{ content: {quoted(running(document.title))} }} @top-right {{ content: {quoted(running(issued))} }}
+      @bottom-left {{ content: {quoted(f"digest {digest_head(document)}")} }} @bottom-center {{ content: {quoted(running(document.status, STATUS))} }} }}
     @page :first {{ @top-left {{ content: none }} @top-center {{ content: none }} @top-right {{ content: none }} }}"""
     return "\n".join(
-        [faces(), style("page.css"), style("sheet.css"), running, style(f"sheet-{document.paper.lower()}.css")]
+        [faces(), style("page.css"), style("sheet.css"), heads, style(f"sheet-{document.paper.lower()}.css")]
     )
 
 

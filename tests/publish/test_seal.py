@@ -1,0 +1,127 @@
+"""The seal: every number is proved, and one altered value or digit does not pass."""
+
+from __future__ import annotations
+
+import re
+from dataclasses import replace
+
+import pytest
+import sample
+
+from calc.ledger import Ledger
+from calc.problems import IntegrityError
+from calc.publish import pdf
+from calc.publish.seal import printed, proved, seal, seal_document
+from calc.report.document import Document, Paragraph, Section
+
+ANCHOR = re.compile(r'<data class="n" value="([^"]*)" data-as="([^"]*)">(.*?)</data>', re.DOTALL)
+TAGS = re.compile(r"<[^>]*>")
+
+
+def other(digit: str) -> str:
+    return str((int(digit) + 1) % 10)
+
+
+def anchors(page: str) -> list[re.Match[str]]:
+    return list(ANCHOR.finditer(page))
+
+
+def test_paper_and_screen_are_sealed_with_every_number(a4, letter) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    for made in (a4, letter):
+        count = len(anchors(made.sheet))
+        assert count > 600
+        assert seal(made.sheet, made.ledger) == seal(made.screen, made.ledger) == count
+        assert seal_document(made.sheet, made.document, made.ledger) == len(list(printed(made.document)))
+
+
+def test_each_digit_of_each_number_counts(a4) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    tried = 0
+    for found in {match[0]: match for match in anchors(a4.sheet)}.values():
+        inner = found[3]
+        # a digit of the text, not of a tag
+        spans = [(tag.start(), tag.end()) for tag in TAGS.finditer(inner)]
+        for place, character in enumerate(inner):
+            if character.isdecimal() and not any(a <= place < b for a, b in spans):
+                altered = inner[:place] + other(character) + inner[place + 1 :]
+                page = found[0].replace(f">{inner}</data>", f">{altered}</data>")
+                assert seal(found[0], a4.ledger) == 1
+                with pytest.raises(IntegrityError, match="is printed, the ledger says"):
+                    seal(page, a4.ledger)
+                tried += 1
+    assert tried > 400
+
+
+def test_each_ledger_value_counts(a4) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    ledger = sample.ledger()
+    refs = dict.fromkeys(proved(a4.sheet, ledger))
+    fragments = {ref: [m[0] for m in anchors(a4.sheet) if m[1] == ref] for ref in refs}
+    for ref, pieces in fragments.items():
+        spot = ledger.spot(ref)
+        kept = spot.column.values
+        changed = kept.copy()
+        changed[spot.row] = changed[spot.row] * 1.7 + 1.0
+        object.__setattr__(spot.column, "values", changed)
+        for piece in pieces:
+            with pytest.raises(IntegrityError, match=re.escape(ref)):
+                seal(piece, ledger)
+        object.__setattr__(spot.column, "values", kept)
+    assert seal(a4.sheet, ledger) == len(anchors(a4.sheet))
+
+
+def test_one_digit_in_the_whole_page_fails_it(a4) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    for page in (a4.sheet, a4.screen):
+        found = anchors(page)[len(anchors(page)) // 2]
+        digit = next(k for k in range(len(found[3])) if found[3][k].isdecimal())
+        place = found.start(3) + digit
+        altered = page[:place] + other(page[place]) + page[place + 1 :]
+        with pytest.raises(IntegrityError):
+            seal(altered, a4.ledger)
+
+
+@pytest.mark.parametrize(
+    ("page", "said"),
+    [
+        ("<p>the flow is 83.1 L/s</p>", "has no line in the ledger"),
+        ("<p>the flow is ٣</p>", "has no line in the ledger"),
+        ("<p>x<sup>2</sup></p>", "has no line in the ledger"),
+        ('<p><data class="n" value="pipes.nowhere.flow" data-as="L/s|d1||">1.0</data></p>', "no number has the id"),
+        ('<p><data class="n" value="site.works.gravity" data-as="m/s²">9.81</data></p>', "is printed as"),
+        ("<p><b>x</p>", "closes <p>"),
+        ("<p>x", "ends inside <p>"),
+        (
+            '<data class="n" value="site.works.gravity" data-as="m/s²|d5||"><data class="n" value="site.works.gravity" data-as="m/s²|d5||">9.80665</data></data>',
+            "inside another",
+        ),
+        (
+            '<data class="n" value="site.works.gravity" data-as="m/s²|d5||">9.80665</data><span class="u">\u202fft/s²</span>',
+            "after a number in",
+        ),
+    ],
+)
+def test_what_does_not_prove(page: str, said: str) -> None:
+    with pytest.raises(IntegrityError, match=re.escape(said)):
+        seal(page, sample.ledger())
+
+
+@pytest.mark.parametrize("manner", ["own", "given", "lit"])
+def test_references_and_words_of_the_user_are_free(manner: str) -> None:
+    assert seal(f'<p><span class="{manner}">12 <b>3</b></span></p>', sample.ledger()) == 0
+    assert seal('<table class="listing"><tr><td>12 mm</td></tr></table>', sample.ledger()) == 0
+
+
+def short(ledger: Ledger, *refs: str) -> Document:
+    scribe = sample.Scribe(ledger)
+    parts = tuple(scribe.number(ref) for ref in refs)
+    return Document("Works", "", "", "", "", "A4", "", (Section("a", "1", "Words", (), (Paragraph(parts),)),))
+
+
+def test_a_number_left_out_moved_or_added_fails() -> None:
+    ledger = sample.ledger()
+    refs = ("site.works.gravity", "pipes.sedge-link.flow@base")
+    document = short(ledger, *refs)
+    page = pdf.sheet_html(document, ledger, {})
+    assert seal_document(page, document, ledger) == 2
+    for changed in (refs[:1], refs[::-1], (*refs, refs[0])):
+        other_document = replace(short(ledger, *changed))
+        with pytest.raises(IntegrityError, match="the page prints 2 numbers"):
+            seal_document(page, other_document, ledger)
