@@ -1,0 +1,118 @@
+"""``headtrace new``: a folder with a sample's inputs, written whole or not at all."""
+
+from __future__ import annotations
+
+import argparse
+import contextlib
+import os
+import shutil
+import tempfile
+from collections.abc import Generator
+from importlib import resources
+from importlib.resources.abc import Traversable
+from pathlib import Path
+
+from calc.cli.call import NAME, WrongCall
+from calc.cli.outcome import Outcome
+from calc.problems import nearest
+
+USUAL = "two-reservoirs"
+"""The sample that is copied when none is named."""
+
+
+def run(asked: argparse.Namespace) -> Outcome:
+    """Copy a sample into a new folder, or into an empty one."""
+    sample = _sample(USUAL if asked.like is None else asked.like)
+    folder = Path(asked.folder)
+    _refuse_what_is_held(folder)
+    contents = {file.name: file.read_bytes() for file in _files(sample)}
+    if folder.is_dir():
+        _fill(folder, contents)
+    else:
+        _make(folder, contents)
+    names = ", ".join(sorted(contents))
+    lines = [
+        f"{folder}: begun from {sample.name} ({names})",
+        "Its places and figures are invented: put yours in their stead. Then:",
+        f"  {NAME} inspect {folder}",
+        f"  {NAME} issue {folder}",
+    ]
+    return Outcome(said="\n".join(lines))
+
+
+def samples() -> dict[str, Traversable]:
+    """Return the shipped samples by name."""
+    shelf = resources.files("calc").joinpath("data", "samples")
+    return {one.name: one for one in sorted(shelf.iterdir(), key=lambda one: one.name) if _files(one)}
+
+
+def _files(sample: Traversable) -> list[Traversable]:
+    return [file for file in sample.iterdir() if file.name.endswith(".yaml")] if sample.is_dir() else []
+
+
+def _sample(name: str) -> Traversable:
+    known = samples()
+    if name not in known:
+        listed = ", ".join(known)
+        raise WrongCall(f"there is no sample '{name}'", f"one of {listed}", nearest(name[:100], list(known)))
+    return known[name]
+
+
+def _refuse_what_is_held(folder: Path) -> None:
+    if folder.is_dir():
+        if any(folder.iterdir()):
+            raise WrongCall(f"'{folder}' holds something already", "a folder that is new or empty")
+    elif os.path.lexists(folder):
+        raise WrongCall(f"'{folder}' is a file", "a folder that is new or empty")
+
+
+def _make(folder: Path, contents: dict[str, bytes]) -> None:
+    """Write aside, then rename; what was made on the way is taken away again when that fails."""
+    made = [parent for parent in folder.absolute().parents if not parent.exists()]
+    try:
+        folder.absolute().parent.mkdir(parents=True, exist_ok=True)
+        with _aside(folder.absolute().parent, contents) as aside:
+            aside.chmod(0o777 & ~_mask())
+            aside.rename(folder)
+    except BaseException:
+        for parent in made:
+            with contextlib.suppress(OSError):
+                parent.rmdir()
+        raise
+
+
+def _fill(folder: Path, contents: dict[str, bytes]) -> None:
+    """Write into a folder of its own within, then move each file up; on a failure the folder is empty again."""
+    moved: list[Path] = []
+    try:
+        with _aside(folder, contents) as aside:
+            for name in contents:
+                (aside / name).rename(folder / name)
+                moved.append(folder / name)
+    except BaseException:
+        for file in moved:
+            with contextlib.suppress(OSError):
+                file.unlink()
+        raise
+
+
+@contextlib.contextmanager
+def _aside(parent: Path, contents: dict[str, bytes]) -> Generator[Path, None, None]:
+    """Give a hidden folder that holds the files, safe on the disk; it is gone afterwards, unless renamed."""
+    aside = Path(tempfile.mkdtemp(prefix=".headtrace-", dir=parent))
+    try:
+        for name, content in contents.items():
+            with (aside / name).open("xb") as file:
+                file.write(content)
+                file.flush()
+                os.fsync(file.fileno())
+        yield aside
+    finally:
+        shutil.rmtree(aside, ignore_errors=True)
+
+
+def _mask() -> int:
+    """Return the mask for new files of this process."""
+    mask = os.umask(0o022)
+    os.umask(mask)
+    return mask

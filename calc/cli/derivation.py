@@ -1,0 +1,95 @@
+"""``headtrace trace``: one number's derivation, or the numbers of a column."""
+
+from __future__ import annotations
+
+import argparse
+import re
+from collections.abc import Iterator
+from pathlib import Path
+
+from calc import pipeline
+from calc.account import Account
+from calc.cli.call import WrongCall
+from calc.cli.outcome import Outcome
+from calc.cli.progress import Progress
+from calc.ledger import Ledger, Spot, trace
+from calc.problems import NotConverged, Unresolved, nearest
+from calc.project import BASE
+
+LONGEST = 200
+"""Characters of an id; a longer one has no near neighbour."""
+_COLUMN = re.compile(r"(?P<name>[\w-]+\.[\w-]+)(?:@(?P<case>[\w-]+))?", re.ASCII)
+
+
+def run(asked: argparse.Namespace) -> Outcome:
+    """Print the tree of a number, or the ids and values of a column."""
+    progress = Progress()
+    try:
+        account = pipeline.account(Path(asked.folder), progress.say)
+    finally:
+        progress.wipe()
+    return Outcome(said="\n".join(derivation(account, asked.id)))
+
+
+def derivation(account: Account, wanted: str) -> Iterator[str]:
+    """Yield the lines that answer an id; without ``@case`` it is of the base case.
+
+    Raises
+    ------
+    WrongCall
+        If nothing has this id; the hint is the nearest.
+    NotConverged
+        If its case has no solution.
+    """
+    ledger = account.ledger
+    try:
+        spot = ledger.spot(wanted)
+    except Unresolved:
+        rows = column_spots(ledger, wanted)
+        if not rows:
+            raise _unknown(account, wanted) from None
+        return (line_of(spot) for spot in rows)
+    return trace(ledger, spot)
+
+
+def line_of(spot: Spot) -> str:
+    """Return ``id = value unit``."""
+    return f"{spot.id} = {spot.value:.9g} {spot.column.kind.unit}".rstrip()
+
+
+def column_spots(ledger: Ledger, wanted: str) -> list[Spot]:
+    """Return the numbers of a column such as ``pipes.flow@peak``, each from the nearest case that states it."""
+    match = _COLUMN.fullmatch(wanted[:LONGEST])
+    if match is None:
+        return []
+    name, case = match["name"], match["case"] or ""
+    if not case and not ledger.find(name):
+        case = BASE
+    found: dict[str, Spot] = {}
+    for column in ledger.find(name, case):
+        for k, row in enumerate(column.rows):
+            found.setdefault(row, Spot(column, k))
+    return list(found.values())
+
+
+def _unknown(account: Account, wanted: str) -> Exception:
+    case = wanted.partition("@")[2].partition("#")[0] or BASE
+    held = account.cases.get(case)
+    if held is not None and not held.solution.converged:
+        return NotConverged(
+            f"no number has the id '{wanted[:LONGEST]}', and the case '{case}' has no solution: {held.solution.reason}"
+        )
+    hint = ""
+    if len(wanted) <= LONGEST:
+        full = wanted if "@" in wanted else f"{wanted}@{BASE}"
+        hint = nearest(full, list(_ids(account.ledger, case)))
+    return WrongCall(f"no number has the id '{wanted[:LONGEST]}'", "group.row.quantity@case", hint)
+
+
+def _ids(ledger: Ledger, case: str) -> Iterator[str]:
+    """Yield ids that may have been meant: those of the case, or all where there is no such case."""
+    cases = {column.case for column in ledger.columns}
+    for column in ledger.columns:
+        if case not in cases or column.case in (case, BASE, ""):
+            yield f"{column.name}@{column.case}"
+            yield from (column.id(k) for k in range(min(len(column.rows), LONGEST)))

@@ -1,0 +1,159 @@
+"""``headtrace solve``: every case solved, said in words or as data."""
+
+from __future__ import annotations
+
+import argparse
+import json
+from collections.abc import Iterator
+from dataclasses import replace
+from pathlib import Path
+from typing import Any
+
+from calc import pipeline
+from calc.account import Account, CaseAccount, results
+from calc.cli.amounts import NONE, amount, flow_text, flow_unit
+from calc.cli.call import WrongCall
+from calc.cli.judgement import verdict_lines
+from calc.cli.layout import columns
+from calc.cli.outcome import Outcome, Status
+from calc.cli.progress import Progress
+from calc.kinds import FLOW, HEAD, VELOCITY
+from calc.problems import nearest
+from calc.report.numbers import Format, written
+
+AGREED = {"flow": Format("L/s", significant=2, bound=1e-6), "head": Format("m", significant=2, bound=1e-6)}
+"""Formats of the largest differences from the second opinion."""
+
+
+def run(asked: argparse.Namespace) -> Outcome:
+    """Solve the cases of a folder and say what came out."""
+    progress = Progress()
+    try:
+        account = pipeline.account(Path(asked.folder), progress.say)
+    finally:
+        progress.wipe()
+    if asked.case is not None:
+        account = _only(account, asked.case)
+    found = results(account)
+    said = json.dumps(found, indent=2, allow_nan=False) if asked.json else "\n".join(_lines(account, found))
+    return Outcome(status_of(account), said, "\n".join(doubts(account)))
+
+
+def status_of(account: Account) -> Status:
+    """Return the highest status that an account calls for."""
+    if not account.confirmed:
+        return Status.NOT_PROVED
+    if not account.solved:
+        return Status.NO_SOLUTION
+    return Status.DONE if account.met else Status.NOT_MET
+
+
+def _only(account: Account, case: str) -> Account:
+    """Return the account of one case alone."""
+    if case not in account.cases:
+        known = list(account.cases)
+        raise WrongCall(f"there is no case '{case}'", f"one of {', '.join(known)}", nearest(case[:100], known))
+    judged = []
+    for criterion in account.verdicts:
+        kept = tuple(verdict for verdict in criterion.verdicts if verdict.case == case)
+        governing = min(kept, key=lambda verdict: verdict.margin.value, default=None)
+        least = None if governing is None else governing.margin
+        judged.append(replace(criterion, verdicts=kept, governing=governing, least_margin=least))
+    return replace(account, cases={case: account.cases[case]}, verdicts=tuple(judged))
+
+
+def doubts(account: Account) -> Iterator[str]:
+    """Yield what stands against an account: cases without a solution, solutions not confirmed."""
+    for case in account.cases.values():
+        if not case.solution.converged:
+            yield f"cases.{case.id}: no solution: {case.solution.reason}"
+        elif case.agreement is not None and not case.agreement.agrees:
+            yield f"cases.{case.id}: the second opinion does not confirm the solution: {case.agreement.reason}"
+
+
+def _lines(account: Account, found: dict[str, Any]) -> Iterator[str]:
+    header = account.project.header
+    yield f"{header.text('title')} ({header.text('number')}, revision {header.text('revision')})"
+    unit = flow_unit(account.project)
+    for case in account.cases.values():
+        yield ""
+        yield f"Case {case.id}: {case.title}"
+        yield from _case_lines(case, found["cases"][case.id], unit)
+    yield ""
+    yield "Head loss and velocity are positive from 'from' to 'to'."
+    yield from verdict_lines(account)
+    count = len(account.findings)
+    if count:
+        yield ""
+        yield f"{count} finding{'s' * (count != 1)}; 'headtrace inspect' lists those of the inputs"
+
+
+def _case_lines(case: CaseAccount, found: dict[str, Any], unit: str) -> Iterator[str]:
+    solution = case.solution
+    work = {"bracketing": "trial"}.get(solution.method, "iteration")
+    counted = f"{solution.iterations} {work}{'s' * (solution.iterations != 1)}"
+    if not solution.converged:
+        yield f"  no solution by {solution.method} after {counted}: {solution.reason}"
+        return
+    yield f"  {solution.method}, {counted}; {_opinion(case)}"
+    yield ""
+    yield from columns(_node_rows(found["nodes"], unit), "<<>><")
+    yield ""
+    yield from columns(_branch_rows(found["branches"], unit), "<<<>><")
+
+
+def _opinion(case: CaseAccount) -> str:
+    agreement = case.agreement
+    if agreement is None:
+        return "no second opinion"
+    if agreement.flow_difference is None or agreement.head_difference is None:
+        return f"the second opinion DISAGREES: {agreement.reason}"
+    flow = written(abs(agreement.flow_difference.value), FLOW, AGREED["flow"])
+    head = written(abs(agreement.head_difference.value), HEAD, AGREED["head"])
+    said = "agrees" if agreement.agrees else "DISAGREES"
+    what = "errors found" if agreement.evaluated else "differences"
+    return f"the second opinion ({agreement.method}) {said}: largest {what} {flow} L/s and {head} m"
+
+
+def _node_rows(nodes: dict[str, Any], unit: str) -> list[list[str]]:
+    rows = [["node", "", "head", "pressure head", ""], ["", "", "m", "m", ""]]
+    for name, node in nodes.items():
+        given = node["outflow"] if node["kind"] == "reservoir" else node["withdrawal"]
+        rows.append(
+            [
+                name,
+                node["kind"],
+                amount(node["head"], HEAD),
+                amount(node.get("pressure_head"), HEAD),
+                _exchange(node["kind"], given, unit),
+            ]
+        )
+    return rows
+
+
+def _exchange(kind: str, given: float, unit: str) -> str:
+    """Return in words what a reservoir gives to the pipes, or what a junction gives to users."""
+    size = flow_text(given, unit)
+    if kind == "reservoir":
+        return "at rest" if given == 0 else f"{'gives' if given > 0 else 'takes'} {size}"
+    return "" if given == 0 else f"{size} {'withdrawn' if given > 0 else 'brought in'}"
+
+
+def _branch_rows(branches: dict[str, Any], unit: str) -> list[list[str]]:
+    rows = [["branch", "from", "to", "head loss", "velocity", "flow"], ["", "", "", "m", "m/s", ""]]
+    for name, branch in branches.items():
+        shut = branch["state"] != "open"
+        velocity = NONE if shut else amount(branch["velocity"], VELOCITY, plus=True)
+        loss = amount(branch["head_loss"], HEAD, plus=True)
+        rows.append([name, branch["from"], branch["to"], loss, velocity, _direction(branch, unit)])
+    return rows
+
+
+def _direction(branch: dict[str, Any], unit: str) -> str:
+    flow = branch["flow"]
+    if branch["state"] != "open":
+        return "shut"
+    if flow == 0:
+        return "at rest"
+    giver, taker = (branch["from"], branch["to"]) if flow > 0 else (branch["to"], branch["from"])
+    return f"{giver} gives {flow_text(flow, unit)} to {taker}"
