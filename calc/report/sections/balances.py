@@ -14,7 +14,7 @@ from calc.report.composer import Composer, Sheet, cited, column, figure_column, 
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Row, Soft, Strong, TableColumn
 from calc.report.formats import usual
 from calc.report.numbers import Format, read_back, written
-from calc.report.sections.results import MOST_ROWS
+from calc.report.selection import MOST_PIPES, shown_junctions
 from calc.units import factor
 
 FULL_DECIMALS = 6
@@ -42,7 +42,10 @@ def _continuity(sheet: Sheet, case: CaseAccount) -> None:
     )
     rows: list[Row] = []
     imbalance = held[0]
-    for k, junction in enumerate(imbalance.rows[:MOST_ROWS]):
+    shown = set(shown_junctions(composer.account, case))
+    for k, junction in enumerate(imbalance.rows):
+        if junction not in shown:
+            continue
         rows.append(sheet.group("Junction ", name(junction)))
         rows += _junction(sheet, case, Spot(imbalance, k), junction)
     sheet.table(f"continuity-{case.id}", columns, rows)
@@ -129,7 +132,7 @@ def _energy(sheet: Sheet, case: CaseAccount) -> None:
         FROM,
     )
     rows: list[Row] = []
-    for path in case.paths[:MOST_ROWS]:
+    for path in case.paths[:MOST_PIPES]:
         rows += _path(sheet, case, path)
     sheet.table(f"energy-{case.id}", columns, rows)
     said = "Losses are reckoned in the direction of the walk; against the flow they are negative."
@@ -225,7 +228,7 @@ def _opinion(sheet: Sheet, case: CaseAccount) -> None:
 def _opinions(sheet: Sheet, case: CaseAccount) -> None:
     composer, ledger = sheet.composer, sheet.composer.ledger
     names = case.network.pipes.rows
-    if len(names) > MOST_ROWS or not [c for c in ledger.find("pipes.second_flow", case.id) if c.case == case.id]:
+    if len(names) > MOST_PIPES or not [c for c in ledger.find("pipes.second_flow", case.id) if c.case == case.id]:
         return
     unit = composer.flow_unit
     columns = (

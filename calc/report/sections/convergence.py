@@ -67,7 +67,9 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
     if not shown:
         said += " The flows of the branches are not printed, there being many."
-    said += " At a low end water is to spare, at a high end it lacks. Rules are stated under the method; the trials that a"
+    said += (
+        " At a low end water is to spare, at a high end it lacks. Rules are stated under the method; the trials that a"
+    )
     sheet.add(Paragraph((said + " rule stands on are named in the order of its letters a, b, c.",), "small"))
 
 

@@ -8,6 +8,7 @@ from calc.report.composer import INTO, Composer, Sheet, column, place
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
 from calc.report.formats import shortest
 from calc.report.numbers import written
+from calc.report.selection import shown_inputs
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
 FIGURES = 10
@@ -29,6 +30,9 @@ def compose_inputs(composer: Composer) -> None:
     if rows:
         sheet.add(Heading(("Defaults and shipped tables in use",)))
         sheet.table("inputs-shipped", COLUMNS, rows)
+    if shown_inputs(composer.account) is not None:
+        said = "Of pipes and junctions, those are listed whose results are printed; the rest stand in the input files "
+        sheet.add(Paragraph((said + "with their lines, and in the ledger file of this package.",), "small"))
     sheet.add(
         Paragraph(
             ("Grades: surveyed, drawing, manufacturer, measured, standard, assumed; – where none is given.",),
@@ -52,8 +56,11 @@ COLUMNS = (
 def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
     """Return rows gathered by component, in the order of the groups."""
     by_component: dict[tuple[str, str], list[Spot]] = {}
+    shown = shown_inputs(sheet.composer.account)
     for one in columns:
         for row, name in enumerate(one.rows):
+            if shown is not None and one.group in LARGE and name.partition("/")[0] not in shown:
+                continue
             by_component.setdefault((one.group, name), []).append(Spot(one, row))
     ordered = sorted(by_component, key=lambda key: ORDER.index(key[0]) if key[0] in ORDER else len(ORDER))
     rows: list[Row] = []
@@ -66,6 +73,9 @@ def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
         rows += [_row(sheet, spot, named=gathered) for spot in by_component[group, name]]
     return rows
 
+
+LARGE = ("pipes", "junctions", "fittings")
+"""Groups of which only a part is printed where they are large."""
 
 GATHERED = ("fittings", "criteria")
 """Groups whose components are small, listed under one heading."""

@@ -12,6 +12,9 @@ MOST_VERDICTS = 40
 """Verdicts of one criterion that are printed, those with the least margin first."""
 
 
+MOST_FINDINGS = 100
+
+
 def compose_judgement(composer: Composer) -> None:
     """Compose criteria and findings."""
     lead = "Every criterion in every case, the one that governs worked, and what a reviewer would remark on."
@@ -83,7 +86,7 @@ def _findings(sheet: Sheet) -> None:
             (Quoted(finding.text),),
             (place(finding.place) if finding.place else "–",),
         )
-        for finding in findings
+        for finding in findings[:MOST_FINDINGS]
     ]
     columns = (
         column("check", 14),
@@ -93,3 +96,7 @@ def _findings(sheet: Sheet) -> None:
         column("file and line", 27, edge=True),
     )
     sheet.table("findings", columns, rows)
+    if len(findings) > MOST_FINDINGS:
+        sheet.add(
+            Paragraph(("Many findings: the first are printed, the results file of this package holds all.",), "small")
+        )

@@ -14,11 +14,16 @@ def compose_listing(composer: Composer) -> None:
     for file in composer.account.project.files:
         text = file.content.decode("utf-8-sig", errors="replace")
         digest = hashlib.sha256(file.content).hexdigest()
-        sheet.add(Listing(file.name, tuple(text.splitlines()), digest))
+        lines = text.splitlines()
+        sheet.add(Listing(file.name, tuple(lines[:MOST_LINES]), digest))
+        if len(lines) > MOST_LINES:
+            said = "The listing of this file ends here, being long; the file itself is embedded whole."
+            sheet.add(Paragraph((said,), "small"))
     sheet.close()
 
 
-MOST_ENTRIES = 3000
+MOST_ENTRIES = 1000
+MOST_LINES = 5000
 
 
 def compose_index(composer: Composer) -> None:

@@ -48,7 +48,9 @@ def compose_method(composer: Composer) -> None:
     columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
     sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves])
     sheet.add(Heading(("Symbols",)))
-    symbols = {letter.text: (letter, words, unit) for leaf in laws_in_use(composer) for letter, words, unit in symbols_of(leaf)}
+    symbols = {
+        letter.text: (letter, words, unit) for leaf in laws_in_use(composer) for letter, words, unit in symbols_of(leaf)
+    }
     _symbols(sheet, list(symbols.values()))
     sheet.add(
         Paragraph(

@@ -10,9 +10,7 @@ from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure
 from calc.report.derivation import COLUMNS, line
 from calc.report.document import Heading, Paragraph, Parts, Row, Soft, TableColumn
 from calc.report.numbers import Format
-
-MOST_ROWS = 60
-"""Pipes above which only those that lose most head are printed."""
+from calc.report.selection import shown_junctions, shown_pipes
 
 CHAIN = (
     "flow_each",
@@ -135,11 +133,7 @@ def add_tables(sheet: Sheet, case: CaseAccount) -> None:
 
 def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     composer = sheet.composer
-    names = list(case.network.pipes.rows)
-    if len(names) > MOST_ROWS:
-        held = case.columns.results.head_loss.values if case.columns else np.zeros(0)
-        order = np.argsort(-np.abs(held), kind="stable")[:MOST_ROWS]
-        names = [case.columns.running[int(k)] for k in order] if case.columns else []
+    names = shown_pipes(case)
     sheet.add(Heading(("Pipes: heads and flows",)))
     columns = (
         column("pipe", role="statement"),
@@ -216,9 +210,10 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
     )
     rows = []
     fittings = case.columns.terms.fittings.rows if case.columns else ()
-    if len(fittings) > MOST_ROWS:
-        return
+    shown = set(shown_pipes(case))
     for fitting in fittings:
+        if fitting.rpartition("/")[0] not in shown:
+            continue
         spots = [_here(ledger, f"fittings.{quantity}", case.id, fitting) for quantity in FITTING_CHAIN]
         count = ledger.spot(f"fittings.{fitting}.count@{case.id}")
         held = [spot for spot in spots if spot is not None]
@@ -263,7 +258,7 @@ def _nodes(sheet: Sheet, case: CaseAccount) -> None:
         figure_column("largest velocity head", "m", 28, edge=True),
     )
     rows = []
-    for junction in list(composer.account.project.junctions)[: 2 * MOST_ROWS]:
+    for junction in shown_junctions(composer.account, case):
         cells: list[Parts] = [(name(junction),)]
         refs = []
         for quantity in ("head", "elevation", "pressure_head", "pressure", "velocity_head"):

@@ -22,7 +22,12 @@ def compose_software(composer: Composer) -> None:
         *((library.lower(), metadata.version(library)) for library in LIBRARIES),
     ]
     columns = (column("fact", 50), column("value", role="statement"))
-    sheet.table("software", columns, [sheet.row((Own(fact, "name"),), (Own(value, "name"),)) for fact, value in facts], tick=False)
+    sheet.table(
+        "software",
+        columns,
+        [sheet.row((Own(fact, "name"),), (Own(value, "name"),)) for fact, value in facts],
+        tick=False,
+    )
     sheet.close()
 
 
