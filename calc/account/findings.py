@@ -83,8 +83,12 @@ def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
             yield name, stated.mark.place
     for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
         for name, stated in part.stated.items():
+            if name == "K_reverse" and stated is part.stated.get("K"):
+                continue  # stated once, it holds both ways
             if name in ("K", "K_reverse") and not stated.shipped and not stated.basis.source:
-                yield f"{name} of {part.id.rpartition('/')[2]}", stated.mark.place
+                place = part.id.rpartition("/")[2]
+                where = f"of fitting {place}" if place.isdigit() else f"at '{place}'"
+                yield f"{name} {where}", stated.mark.place
 
 
 def without_fittings(project: Project) -> Iterator[Finding]:
