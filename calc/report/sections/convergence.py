@@ -273,7 +273,7 @@ def _step_table(sheet: Sheet, case: CaseAccount, steps: Steps) -> None:
     shown = junctions if steps.head is not None and len(junctions) <= MOST_HEADS else []
     columns: list[TableColumn] = [column("iteration", 14)]
     columns += [
-        TableColumn((name(j),), unit="head, m", align="right", edge=k == 0, role="value") for k, j in enumerate(shown)
+        TableColumn(("head ", name(j)), unit="m", align="right", edge=k == 0, role="value") for k, j in enumerate(shown)
     ]
     columns += [
         figure_column("largest imbalance", flow, 26, edge=True),
