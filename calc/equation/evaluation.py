@@ -89,8 +89,6 @@ def part(value: Any, rows: Rows) -> Any:  # noqa: ANN401
     """Return some rows of a value; a value of one row serves every row as it is."""
     if isinstance(value, Slope):
         return Slope(part(value.value, rows), part(value.slope, rows))
-    if isinstance(value, Labels):
-        return value.take(rows)
     array = np.asarray(value, dtype=np.float64)
     return array[rows] if array.size > 1 else array.reshape(-1)
 

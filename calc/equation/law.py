@@ -79,10 +79,6 @@ class Labels:
     words: tuple[str, ...]
     codes: npt.NDArray[np.int64]
 
-    def take(self, index: npt.NDArray[np.int64]) -> Labels:
-        """Return the labels of some rows."""
-        return self if len(self.codes) == 1 else Labels(self.words, self.codes[index])
-
 
 Leaf = Equation | Implicit
 Law = Equation | Implicit | Regimes | Choice

@@ -12,7 +12,8 @@ import numpy as np
 import pytest
 from arithmetic import compute
 
-from calc.equation import Equation, Reference, Symbol, Unit, equation, linear
+from calc.equation import Equation, Expression, Reference, Slope, Symbol, Unit, equation, linear
+from calc.equation.reading import Reading
 from calc.kinds import AREA, FLOW, LENGTH, NUMBER, TIME, VELOCITY, Kind
 from calc.problems import EquationError
 
@@ -196,6 +197,33 @@ def test_brackets_stand_where_they_must(body: Callable[..., Any], text: str, val
     assert linear(made.expression, lambda name: name) == text
     assert compute(text, {"x": 2.0, "y": 1.0}) == pytest.approx(value, rel=1e-15)
     assert made.body(x=np.array([2.0]), y=np.array([1.0]))[0] == pytest.approx(value, rel=1e-15)
+
+
+def test_a_value_alone_has_no_reading_of_its_own() -> None:
+    with pytest.raises(EquationError, match="has no sense for add"):
+        Reading() + 1.0
+    with pytest.raises(EquationError, match="has no prose"):
+        linear(Expression(), str)
+
+
+@pytest.mark.parametrize(
+    ("body", "slope"),
+    [
+        (lambda *, x, y: -x * y / y, -1.0),
+        (lambda *, x, y: np.square(x) / y, 4.0),
+        (lambda *, x, y: np.sqrt(x * y), 0.5 * math.sqrt(0.5)),
+        (lambda *, x, y: np.log(x / y) * y, 0.5),
+        (lambda *, x, y: np.log10(x / y) * y, 0.5 / math.log(10)),
+        (lambda *, x, y: np.exp(x / y) * y, math.exp(2)),
+        (lambda *, x, y: np.abs(-x) * y / y, 1.0),
+        (lambda *, x, y: y * 2 ** (x / y), 4 * math.log(2)),
+    ],
+)
+def test_every_operation_has_its_slope(body: Callable[..., Any], slope: float) -> None:
+    body.__doc__ = "A law under test."
+    made = declare(body, x=X, y=Y)
+    got = made.body(x=Slope(np.array([2.0]), np.ones(1)), y=np.array([1.0]))
+    assert got.slope[0] == pytest.approx(slope, rel=1e-14)
 
 
 def test_a_kind_of_another_dimension_cannot_slip_in() -> None:
