@@ -19,11 +19,13 @@ from calc.components import Network
 from calc.components.liquid import LiquidTerms, liquid
 from calc.equation import ARRAYS, Value, value_of
 from calc.ledger import Ledger
-from calc.problems import Problem, ProblemsFound
+from calc.problems import IntegrityError, Problem, ProblemsFound
 from calc.project import Project, network, read_project
 from calc.report.section import DISPLAY
 from calc.solve import Solution, solve
 from calc.solve.section import SOLVER, settings_of
+from calc.verification import enter_checks
+from calc.verification import run as verify
 
 if TYPE_CHECKING:
     from calc.report.document import Document
@@ -89,7 +91,17 @@ def account(folder: Path, say: Progress = _quietly) -> Account:
 
 
 def document(held: Account, purpose: str) -> Document:
-    """Return what the package of an account says, for a purpose of issue."""
+    """Return what the package of an account says, for a purpose of issue.
+
+    Raises
+    ------
+    IntegrityError
+        If this installation does not compute what is known to be right; then nothing may be issued.
+    """
     from calc.report.composition import compose  # noqa: PLC0415 - solving alone needs no report
 
-    return compose(held, purpose)
+    checks = verify()
+    if failing := [check.id for check in checks if not check.passed]:
+        raise IntegrityError(f"this installation fails its verification: {', '.join(failing)}")
+    enter_checks(held.ledger, checks)
+    return compose(held, purpose, checks)

@@ -23,6 +23,7 @@ from calc.report.document import (
 )
 from calc.report.formats import usual
 from calc.report.numbers import Format, written
+from calc.verification import Check
 
 NOTHING = "–"
 
@@ -36,12 +37,15 @@ class Composer:
         What is reported.
     purpose : str
         Purpose of issue: checking, approval or record.
+    checks : tuple of Check
+        The verification run for this issue.
     """
 
-    def __init__(self, account: Account, purpose: str) -> None:
+    def __init__(self, account: Account, purpose: str, checks: tuple[Check, ...] = ()) -> None:
         self.account = account
         self.ledger: Ledger = account.ledger
         self.purpose = purpose
+        self.checks = checks
         display = account.project.sections["display"]
         self.flow_unit = display.text("flow", "L/s").replace("m3", "m³")
         self.paper = display.text("paper", "A4")

@@ -10,9 +10,10 @@ from calc.report.composer import Composer, inputs_of
 from calc.report.document import Document
 from calc.report.sections import SECTIONS
 from calc.report.sections.decision import STATUS
+from calc.verification import Check
 
 
-def compose(account: Account, purpose: str) -> Document:
+def compose(account: Account, purpose: str, checks: tuple[Check, ...] = ()) -> Document:
     """Return what the package of an account says.
 
     Parameters
@@ -21,8 +22,10 @@ def compose(account: Account, purpose: str) -> Document:
         From `calc.account.keep_account`.
     purpose : str
         checking, approval or record.
+    checks : tuple of Check
+        The verification run for this issue, entered in the ledger of the account.
     """
-    composer = Composer(account, purpose)
+    composer = Composer(account, purpose, checks)
     for section in SECTIONS:
         section(composer)
     header = account.project.header

@@ -11,7 +11,6 @@ from calc.report import figures
 from calc.report.composer import NOTHING, Composer, Sheet, column, figure_column, name
 from calc.report.document import (
     Figure,
-    Formula,
     Heading,
     Number,
     Own,

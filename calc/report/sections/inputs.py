@@ -18,7 +18,11 @@ def compose_inputs(composer: Composer) -> None:
     """Compose the list of inputs."""
     lead = "Each given number as written and in SI: who gave it, how far it is trusted, and where it stands."
     sheet = composer.begin("inputs", "Inputs", lead)
-    given = [c for c in composer.ledger.columns if isinstance(c.origin, Given | Converted | Library)]
+    given = [
+        c
+        for c in composer.ledger.columns
+        if isinstance(c.origin, Given | Converted | Library) and c.group != "verification"
+    ]
     users = [c for c in given if not isinstance(c.origin, Library)]
     for case in composer.account.project.cases:
         rows = _rows(sheet, [c for c in users if c.case == case])

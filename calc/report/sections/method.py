@@ -109,9 +109,9 @@ def laws_in_use(composer: Composer) -> list[Leaf]:
     for one in composer.ledger.columns:
         if isinstance(one.origin, Derived):
             for leaf in one.origin.leaves:
-                found.setdefault(f"{leaf.name} {leaf.gives.kind.name}", leaf)
+                found.setdefault(leaf.name, leaf)
                 if isinstance(leaf, Implicit):
-                    found.setdefault(f"{leaf.start.name} start", leaf.start)
+                    found.setdefault(leaf.start.name, leaf.start)
     return list(found.values())
 
 

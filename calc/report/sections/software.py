@@ -5,8 +5,10 @@ from __future__ import annotations
 from importlib import metadata
 
 import calc
-from calc.report.composer import Composer, column
-from calc.report.document import Own
+from calc.report.composer import Composer, Sheet, column, figure_column
+from calc.report.document import Heading, Own, Parts, Row, Soft, Strong
+from calc.report.numbers import Format
+from calc.verification import Check
 
 LIBRARIES = ("numpy", "scipy", "pint", "PyYAML", "Jinja2", "weasyprint", "matplotlib", "pikepdf")
 
@@ -28,7 +30,48 @@ def compose_software(composer: Composer) -> None:
         [sheet.row((Own(fact, "name"),), (Own(value, "name"),)) for fact, value in facts],
         tick=False,
     )
+    _verification(sheet)
     sheet.close()
+
+
+FIGURES = 6
+
+
+def _verification(sheet: Sheet) -> None:
+    """Add the cases run for this issue: expected, got, difference."""
+    composer = sheet.composer
+    if not composer.checks:
+        return
+    sheet.add(Heading(("Verification run for this issue",)))
+    columns = (
+        column("case and quantity", role="statement"),
+        figure_column("expected", width=24, edge=True),
+        figure_column("got", width=24),
+        column("", 12, role="unit"),
+        figure_column("difference", width=26, edge=True),
+        figure_column("allowed", width=24),
+        column("", 16),
+    )
+    rows: list[Row] = []
+    standing = ""
+    for check in composer.checks:
+        if check.title != standing:
+            source = Soft((" – ", Own(check.source, "source"), "; ", check.source_class.replace("-", " ")))
+            rows.append(sheet.group(Own(check.title, "source"), source))
+        standing = check.title
+        rows.append(_check(sheet, check))
+    sheet.table("verification", columns, rows, tick=False)
+
+
+def _check(sheet: Sheet, check: Check) -> Row:
+    ledger, unit = sheet.composer.ledger, check.kind.unit
+    spots = {q: ledger.spot(f"verification.{check.id}.{q}") for q in ("expected", "got", "difference", "allowed")}
+    cells: list[Parts] = [(Own(check.quantity, "id"),)]
+    cells += [(sheet.composer.number(spots[q], Format(unit, significant=FIGURES)),) for q in ("expected", "got")]
+    cells.append((unit,))
+    cells += [(sheet.composer.number(spots[q], Format(unit, significant=2)),) for q in ("difference", "allowed")]
+    verdict: Parts = ("within",) if check.passed else (Strong(("outside",), bar=True),)
+    return sheet.row(*cells, verdict, refs=[spot.id for spot in spots.values()])
 
 
 def compose_record(composer: Composer) -> None:
