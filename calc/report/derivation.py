@@ -10,7 +10,7 @@ from calc.equation import Equation, Implicit, Leaf
 from calc.equation.evaluation import evaluate_leaf
 from calc.equation.law import takes
 from calc.ledger import Combined, Converted, Derived, Given, Library, Spot
-from calc.report.composer import FROM, INTO, Composer, Sheet, cited
+from calc.report.composer import FROM, INTO, Sheet, cited, inputs_of
 from calc.report.document import Cite, Formula, Letter, Number, Part, Parts, Row, TableColumn
 from calc.report.formats import shortest
 from calc.report.numbers import Format, last_place, read_back, written
@@ -39,7 +39,7 @@ class Worked:
     unit: str
 
 
-def worked(composer: Composer, spot: Spot) -> Worked:
+def worked(spot: Spot) -> Worked:
     """Return the worked line of a number in coherent SI units.
 
     Operands carry as many figures as it takes for the printed formula on the printed operands to give the printed
@@ -68,6 +68,7 @@ def _result(spot: Spot) -> Number:
 
 
 def _operands(origin: Derived, leaf: Leaf, row: int, result: Number) -> dict[str, Number]:
+    operands: dict[str, Number] = {}
     for figures in range(RESULT_FIGURES, MOST_FIGURES + 1):
         operands = {}
         for name in takes(leaf):
@@ -97,6 +98,8 @@ def _repeats(leaf: Leaf, operands: dict[str, Number], result: Number) -> bool:
 
 def _sum(origin: Combined, row: int) -> Parts:
     terms = [k for k, into in enumerate(origin.into.tolist()) if into == row]
+    if not terms:
+        return (f"{origin.operation.capitalize()}: {origin.words}. There are none.",)
     parts: list[Part] = [f"{origin.operation.capitalize()}: {origin.words}. "]
     for position, k in enumerate(terms[:MOST_TERMS]):
         found = origin.terms.spot(k)
@@ -116,9 +119,24 @@ def _sum(origin: Combined, row: int) -> Parts:
     return tuple(part for part in parts if part != "")
 
 
+UNTABLED = ("factor_turbulent", "factor_laminar", "limit_head", "speed", "gradient")
+"""Derived quantities that no table of a case holds: worked in front of the first line that needs them."""
+
+
+def lines(sheet: Sheet, spot: Spot, *before: Part) -> list[Row]:
+    """Return a worked number as the next line, after those it rests on that stand nowhere else."""
+    ledger, rows = sheet.composer.ledger, []
+    for ref in inputs_of(ledger, spot):
+        needed = ledger.spot(ref)
+        if needed.column.quantity in UNTABLED and isinstance(needed.column.origin, Derived):
+            if ref not in sheet.composer.addresses:
+                rows.append(line(sheet, needed, *before))
+    return [*rows, line(sheet, spot, *before)]
+
+
 def line(sheet: Sheet, spot: Spot, *before: Part) -> Row:
     """Return a worked number as the next line of a section."""
-    held = worked(sheet.composer, spot)
+    held = worked(spot)
     return sheet.row(
         (*before, *held.statement),
         (held.value,),

@@ -37,7 +37,7 @@ def compose_assumptions(composer: Composer) -> None:
         sheet.add(Paragraph(("No assumptions are stated.",)))
     if project.defaults:
         sheet.add(Heading(("Taken by default, because the inputs are silent",)))
-        columns = (
+        taken = (
             column("value", role="statement"),
             column("taken as", 30, edge=True),
             column("source", 50),
@@ -52,5 +52,5 @@ def compose_assumptions(composer: Composer) -> None:
             )
             for path, stated in project.defaults
         ]
-        sheet.table("defaults", columns, rows)
+        sheet.table("defaults", taken, rows)
     sheet.close()

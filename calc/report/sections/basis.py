@@ -13,18 +13,18 @@ CONVENTIONS = (
     "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
     "In the balance of a junction, flow toward the junction is positive; a withdrawal leaves it.",
     (
-        "The head of a node is total head, common to all branch ends there. Along a pipe the hydraulic grade line lies the "
-        "velocity head below the energy line."
+        "The head of a node is total head, common to all branch ends there. Along a pipe the hydraulic grade line "
+        "lies the velocity head below the energy line."
     ),
     (
-        "Pressure head is head less elevation; the velocity head is not deducted, and the largest at the node is printed "
-        "beside it. Pressures are gauge unless called absolute."
+        "Pressure head is head less elevation; the velocity head is not deducted, and the largest at the node is "
+        "printed beside it. Pressures are gauge unless called absolute."
     ),
     "With parallel pipes the flow is the total; velocity, Reynolds number, friction factor and fittings are per pipe.",
     "The friction factor is Darcy f throughout.",
     (
-        "A reservoir is held at its level. At a reservoir end the entry loss holds when water leaves the reservoir and the "
-        "exit loss when it enters. A coefficient without a reverse value holds both ways."
+        "A reservoir is held at its level. At a reservoir end the entry loss holds when water leaves the reservoir "
+        "and the exit loss when it enters. A coefficient without a reverse value holds both ways."
     ),
 )
 

@@ -15,30 +15,30 @@ NOT_COVERED = (
 
 CAUTIONS = (
     (
-        "This package supports judgement and does not replace it. A suitably licensed engineer must decide whether method, "
-        "inputs and results suit the purpose, and must take responsibility for their use."
+        "This package supports judgement and does not replace it. A suitably licensed engineer must decide whether "
+        "method, inputs and results suit the purpose, and must take responsibility for their use."
     ),
     (
-        "Local law, codes, utility standards and the reviewing authority prevail over anything printed here. “Met” means that "
-        "the project criterion is met as entered."
+        "Local law, codes, utility standards and the reviewing authority prevail over anything printed here. “Met” "
+        "means that the project criterion is met as entered."
     ),
     (
-        "Checks made by the program, the second opinion among them, are not the independent check. Blank boxes mean that no "
-        "check is recorded."
+        "Checks made by the program, the second opinion among them, are not the independent check. Blank boxes mean "
+        "that no check is recorded."
     ),
     (
-        "The flow is taken as steady, in full pipes, of one liquid. Where a pressure head is negative the assumption of full "
-        "pipes may not hold."
+        "The flow is taken as steady, in full pipes, of one liquid. Where a pressure head is negative the assumption "
+        "of full pipes may not hold."
     ),
     "Convergence shows that the equations were solved, not that they describe the works.",
     "Inputs are as supplied; open assumptions are listed. Coefficients hold within their stated ranges.",
     (
-        "Preliminary issues are not for construction. A changed, partial or superseded copy must not be relied on: check it "
-        "against the manifest."
+        "Preliminary issues are not for construction. A changed, partial or superseded copy must not be relied on: "
+        "check it against the manifest."
     ),
     (
-        "Failure of a transfer main can flood, deprive people of water or injure those at work on it. Isolate, drain and vent "
-        "by the owner’s procedures; results here are no permit to work."
+        "Failure of a transfer main can flood, deprive people of water or injure those at work on it. Isolate, drain "
+        "and vent by the owner’s procedures; results here are no permit to work."
     ),
 )
 

@@ -28,17 +28,17 @@ def compose_contents(composer: Composer) -> None:
 
 READING = (
     (
-        "Line: section and line. It stands still within a revision; quote it in a comment. The box at the right is for the "
-        "checker."
+        "Line: section and line. It stands still within a revision; quote it in a comment. The box at the right is "
+        "for the checker."
     ),
     (
-        "From and into: the lines that a number was computed from, and the lines that use it next. A number with no line in "
-        "front of it is an input; its file and line lead to the listing."
+        "From and into: the lines that a number was computed from, and the lines that use it next. A number with no "
+        "line in front of it is an input; its file and line lead to the listing."
     ),
     "Rules: single above a sum, double below a balance that is proved. A bar with a word in semibold needs the reader.",
     (
-        "Rounding: everything is computed in full and rounded for print alone. In worked lines the operands carry as many "
-        "figures as it takes for the printed formula on the printed operands to give the printed result within one in its "
-        "last figure. A residual smaller than its bound is printed as less than the bound."
+        "Rounding: everything is computed in full and rounded for print alone. In worked lines the operands carry as "
+        "many figures as it takes for the printed formula on the printed operands to give the printed result within "
+        "one in its last figure. A residual smaller than its bound is printed as less than the bound."
     ),
 )

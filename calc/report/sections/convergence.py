@@ -53,14 +53,14 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     shown = branches if len(branches) <= MOST_BRANCHES else []
     flow = sheet.composer.flow_unit
     columns: list[TableColumn] = [
-        column("trial", 11),
-        figure_column("low end", "m", 18, edge=True),
-        figure_column("high end", "m", 18),
+        column("trial", 10),
+        figure_column("low end", "m", 15, edge=True),
+        figure_column("high end", "m", 15),
         figure_column("head", "m", 18, edge=True),
     ]
     for k, branch in enumerate(shown):
-        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=15.5, edge=k == 0, role="value"))
-    columns += [figure_column("imbalance", flow, 22, edge=True), column("head chosen by", edge=True)]
+        columns.append(TableColumn((name(branch),), unit=flow, align="right", width=14, edge=k == 0, role="value"))
+    columns += [figure_column("imbalance", flow, 20, edge=True), column("head chosen by", edge=True)]
     rows = [_trial_row(sheet, case, trials, t, junction, shown) for t in range(len(trials.head))]
     sheet.table(f"trials-{case.id}", columns, rows)
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
@@ -73,6 +73,8 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
 
 
 HEAD_FORM = Format("m", decimals=5)
+END_FORM = Format("m", decimals=3)
+"""Ends of a bracket are earlier trial heads, printed in full on their own rows."""
 
 
 def _trial_row(  # noqa: PLR0917
@@ -81,19 +83,19 @@ def _trial_row(  # noqa: PLR0917
     composer, ledger = sheet.composer, sheet.composer.ledger
     head = _trial(ledger, "junctions.head", case.id, junction, t)
     imbalance = _trial(ledger, "junctions.imbalance", case.id, junction, t)
-    flow = Format(composer.flow_unit, decimals=3)
+    flow = Format(composer.flow_unit, decimals=2)
     cells: list[Parts] = [(Own(str(t + 1), "id"),)]
     for ends in (trials.low_end, trials.high_end):
         at = np.flatnonzero(trials.head[:t] == ends[t])
         spot = _trial(ledger, "junctions.head", case.id, junction, int(at[0])) if len(at) else None
-        cells.append((composer.number(spot, HEAD_FORM),) if spot else (NOTHING,))
+        cells.append((composer.number(spot, END_FORM),) if spot else (NOTHING,))
     cells.append((composer.number(head, HEAD_FORM),))
     refs = [head.id]
     for branch in shown:
         spot = _trial(ledger, "pipes.flow_toward", case.id, branch, t)
         cells.append((composer.number(spot, flow),))
         refs.append(spot.id)
-    cells.append((composer.number(imbalance, Format(composer.flow_unit, decimals=6, bound=RESIDUAL)),))
+    cells.append((composer.number(imbalance, Format(composer.flow_unit, significant=6)),))
     cells.append(_chosen(case, trials, t))
     accepted = "sum" if t == trials.accepted else ""
     return sheet.row(*cells, refs=(*refs, imbalance.id), tone=accepted)

@@ -8,7 +8,7 @@ from calc.equation import Equation, Implicit, Leaf
 from calc.ledger import Derived
 from calc.report.composer import Composer, Sheet, column
 from calc.report.derivation import symbols_of
-from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Part, Parts, Row, Soft
+from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Parts, Row, Soft
 from calc.solve.rules import RULES
 
 STATEMENTS = (
@@ -17,15 +17,16 @@ STATEMENTS = (
         "between its ends, every junction the balance of volume."
     ),
     (
-        "Bracketing, where one head is unknown: a trial head is put at the junction, the flow of each branch that loses the "
-        "head between its ends is found, and the flows toward the junction are summed less the withdrawal. The sum falls as "
-        "the head rises, so a positive sum puts the head sought above the trial and a negative one below. The search begins "
-        "at the levels of the reservoirs and widens where the head lies outside them; then the bracket is narrowed by the "
-        "rules printed with each case. Every evaluation is a row of its table."
+        "Bracketing, where one head is unknown: a trial head is put at the junction, the flow of each branch that "
+        "loses the head between its ends is found, and the flows toward the junction are summed less the withdrawal. "
+        "The sum falls as the head rises, so a positive sum puts the head sought above the trial and a negative one "
+        "below. The search begins at the levels of the reservoirs and widens where the head lies outside them; then "
+        "the bracket is narrowed by the rules printed with each case. Every evaluation is a row of its table."
     ),
     (
-        "Newton, for any number of junctions and loops: the gradient method of Todini and Pilati, in which heads and flows "
-        "are corrected together until every imbalance and every closing error is within its limit. Every iteration is a row."
+        "Newton, for any number of junctions and loops: the gradient method of Todini and Pilati, in which heads and "
+        "flows are corrected together until every imbalance and every closing error is within its limit. Every "
+        "iteration is a row."
     ),
     (
         "Second opinion: each case is solved again from the same inputs by separate code in another formulation, flows "
@@ -39,8 +40,7 @@ def compose_method(composer: Composer) -> None:
     """Compose the method and the equations in use."""
     lead = "The relations used, where each comes from, and the range in which it may be trusted."
     sheet = composer.begin("method", "Method and equations", lead)
-    columns = (column("method", role="statement"),)
-    sheet.table("method", columns, [sheet.row((text,)) for text in STATEMENTS])
+    sheet.table("method", (column("method", role="statement"),), [sheet.row((text,)) for text in STATEMENTS])
     _rules(sheet)
     rules = {rule.equation.name for rule in RULES.values()}
     leaves = [leaf for leaf in laws_in_use(composer) if leaf.name not in rules]
@@ -92,11 +92,9 @@ def _symbols(sheet: Sheet, symbols: list[tuple[Letter, str, str]]) -> None:
 
 def lettered(text: str) -> Parts:
     """Return a text about a range with its symbols set as letters."""
-    parts: list[Part] = []
-    for piece in SYMBOL.split(text):
-        if piece:
-            parts.append(Letter(piece) if SYMBOL.fullmatch(piece) else Own(piece, "source"))
-    return tuple(parts)
+    return tuple(
+        Letter(piece) if SYMBOL.fullmatch(piece) else Own(piece, "source") for piece in SYMBOL.split(text) if piece
+    )
 
 
 SYMBOL = re.compile(r"(\b[A-Za-zΔε]+_[A-Za-z]+\b)")

@@ -34,11 +34,11 @@ def compose_references(composer: Composer) -> None:
     else:
         sheet.add(Paragraph(("The project names no references.",)))
     sheet.add(Heading(("Of the equations",)))
-    sources = {}
+    sources: dict[str, str] = {}
     for leaf in laws_in_use(composer):
         equation = leaf.residual if isinstance(leaf, Implicit) else leaf
         sources.setdefault(equation.source.key, equation.source.text)
-    columns = (column("key", 34), column("source", role="statement"))
+    keyed = (column("key", 34), column("source", role="statement"))
     rows = [sheet.row((Own(key, "source"),), (Own(text, "source"),)) for key, text in sorted(sources.items())]
-    sheet.table("sources", columns, rows, tick=False)
+    sheet.table("sources", keyed, rows, tick=False)
     sheet.close()
