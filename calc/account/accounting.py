@@ -146,5 +146,5 @@ def _digest(project: Project, cases: Mapping[str, CaseAccount]) -> str:
     for name, case in cases.items():
         digest.update(f"\n{name} {case.solution.converged}".encode())
         for value in (*case.solution.head.tolist(), *case.solution.flow.tolist()):
-            digest.update(f" {value:.9e}".encode())
+            digest.update(f" {value + 0.0:.9e}".encode())  # a zero has no sign
     return f"sha256:{digest.hexdigest()}"

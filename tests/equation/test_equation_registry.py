@@ -130,6 +130,17 @@ def test_its_printed_formula_with_numbers_put_in_gives_its_value(one: Equation) 
 
 
 @pytest.mark.parametrize("one", EQUATIONS, ids=named)
+def test_another_body_prints_another_formula(one: Equation) -> None:
+    other = Equation(
+        one.name, one.title, one.gives, one.takes, lambda **given: 1.01 * one.body(**given), one.source, ""
+    )
+    assert other.formula() != one.formula()
+    inputs = {name: float(x[0]) for name, x in samples(one).items()}
+    printed, value = compute(linear(other.expression, lambda name: name), inputs), one.body(**inputs)
+    assert printed == pytest.approx(1.01 * float(value), rel=1e-12, abs=1e-15 * max(map(abs, inputs.values())))
+
+
+@pytest.mark.parametrize("one", EQUATIONS, ids=named)
 def test_pi_is_printed_as_such(one: Equation) -> None:
     assert not re.search(r"3\.14|6\.28|0\.785", one.formula())
 
