@@ -22,10 +22,34 @@ def _advances(face: str) -> dict[int, float]:
         return {code: widths[glyph][0] / em for code, glyph in font.getBestCmap().items()}
 
 
+@lru_cache(maxsize=50_000)
 def width(text: str, face: str = UPRIGHT) -> float:
     """Return the width of one line of text in em."""
     advances = _advances(face)
     return sum(advances.get(ord(character), UNKNOWN) for character in text)
+
+
+@lru_cache(maxsize=1)
+def _capitals() -> dict[int, float]:
+    """Return the advance of the small capital of each letter, in em."""
+    from fontTools.ttLib import TTFont
+
+    with TTFont(places.fonts() / "LedgerSmall-Regular.ttf", lazy=True) as font:
+        table, em, advances = font["GSUB"].table, font["head"].unitsPerEm, font["hmtx"]
+        wanted = {
+            k for f in table.FeatureList.FeatureRecord if f.FeatureTag == "smcp" for k in f.Feature.LookupListIndex
+        }
+        turned: dict[str, str] = {}
+        for lookup in (table.LookupList.Lookup[k] for k in sorted(wanted)):
+            for part in lookup.SubTable:
+                turned |= getattr(getattr(part, "ExtSubTable", part), "mapping", {})
+        return {code: advances[turned.get(glyph, glyph)][0] / em for code, glyph in font.getBestCmap().items()}
+
+
+def small_capitals(text: str, spaced: float = 0.0) -> float:
+    """Return the width of text in small capitals set ``spaced`` apart, in em."""
+    advances = _capitals()
+    return sum(advances.get(ord(character), UNKNOWN) + spaced for character in text.lower())
 
 
 @lru_cache(maxsize=2)

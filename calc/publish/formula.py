@@ -62,7 +62,10 @@ def formula(part: Formula, measure: float, anchor: Anchor) -> Markup:
 def _whole(setter: Setter, expression: Expression) -> Setting:
     """Return a right side; one of many lines is set flat, as fractions would only lengthen it."""
     made = setter.set(expression)
-    return setter.set(expression, flat=True) if len(made.pieces) > MANY else made
+    if len(made.pieces) == 1:
+        return made
+    flat = setter.set(expression, flat=True)
+    return flat if len(flat.pieces) == 1 or len(made.pieces) > MANY else made
 
 
 def occurrences(part: Formula) -> Iterator[Number]:

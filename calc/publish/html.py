@@ -15,11 +15,12 @@ from markupsafe import Markup, escape
 from calc.ledger import Ledger
 from calc.problems import Unresolved
 from calc.publish import places
+from calc.publish.columns import MEASURE, TURNED, Widths, widths
 from calc.publish.faces import shown
 from calc.publish.markup import hidden, named, own
 from calc.publish.parts import Writer
-from calc.publish.tables import MEASURE, WIDE, Sheet, wide
-from calc.report.document import Block, Document, Figure, Listing, Section, Table
+from calc.publish.tables import Sheet
+from calc.report.document import Block, Document, Figure, Listing, Masthead, Section, Table
 
 RUNNING = 80
 """Most characters of a section's title in the head of its pages."""
@@ -100,6 +101,7 @@ class Page:
     writer: Writer
     picture: Callable[[Figure], Markup]
     _placed: set[str] = field(default_factory=set)
+    _widths: dict[int, Widths] = field(default_factory=dict)
 
     def words(self) -> dict[str, Any]:
         """Return everything that a template knows, by name."""
@@ -130,12 +132,22 @@ class Page:
 
     def sheet(self, table: Table, section: Section) -> Sheet:
         """Return a table as it will stand on the document's paper."""
-        whole = (WIDE if self.turned(section) else MEASURE)[self.document.paper]
-        return Sheet(table, whole, self.writer)
+        needed, paper = self._widths_of(table), self.document.paper
+        whole = (TURNED if self.turned(section) else MEASURE)[paper]
+        return Sheet(table, needed.on(whole), self.writer, needed.dense)
 
     def turned(self, section: Section) -> bool:
-        """Return whether a section needs sheets turned on their side, for the width of one of its tables."""
-        return any(isinstance(block, Table) and wide(block, self.document.paper) for block in section.blocks)
+        """Return whether a section stands on turned sheets, as a table needs them; the first page never does."""
+        if any(isinstance(block, Masthead) for block in section.blocks):
+            return False
+        tables = [block for block in section.blocks if isinstance(block, Table)]
+        return any(self._widths_of(table).turned(self.document.paper) for table in tables)
+
+    def _widths_of(self, table: Table) -> Widths:
+        key = id(table)  # the document holds it as long as this page is made
+        if key not in self._widths:
+            self._widths[key] = widths(table, self.document)
+        return self._widths[key]
 
 
 def html(

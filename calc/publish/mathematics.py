@@ -123,7 +123,7 @@ class Setter:
         self.measure = measure
         self.worked = worked
 
-    def set(self, node: Expression, *, flat: bool = False) -> Setting:
+    def set(self, node: Expression, *, flat: bool = False) -> Setting:  # noqa: C901, PLR0911 - one line for each operation
         """Return an expression as set; ``flat`` writes fractions as divisions on one line."""
         match node:
             case Term(name=name):
@@ -182,7 +182,7 @@ class Setter:
         room = self.measure - left.width - 2 * BLANK - width("×()")
         if len(whole.pieces) == 1 or len(left.pieces) > 1 or room < self.measure * GLUED:
             return whole
-        right = Setter(self.put, room, worked=self.worked).set(node, flat=flat)
+        right = Setter(self.put, room, worked=self.worked).set(node, flat=True)
         made = self._product(left, right, glued=True)
         return made if max(piece.width for piece in made.pieces) <= self.measure else whole
 

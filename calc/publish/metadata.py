@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from typing import Any, ClassVar
-from xml.etree import ElementTree
+from xml.etree import ElementTree as ET
 from xml.sax.saxutils import escape
 
 from weasyprint.document import DocumentMetadata
@@ -51,7 +51,7 @@ class CalculationMetadata(DocumentMetadata):  # type: ignore[misc]  # the librar
         found = super().generate_rdf_metadata(variant, version, conformance).decode("utf-8")
         at = found.rindex("</rdf:RDF>")
         whole = f"{found[:at]}{_claim()}{_facts(self.facts)}{_schemas()}{found[at:]}"
-        ElementTree.fromstring(whole)  # noqa: S314 - made here; it must be well formed
+        ET.fromstring(whole)  # noqa: S314 - made here; it must be well formed
         return whole.encode("utf-8")
 
 

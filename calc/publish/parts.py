@@ -59,7 +59,7 @@ class Writer:
         """Return a number as an anchor of the id under which the ledger holds it."""
         return markup.anchored(self.ledger.spot(number.ref).id, number)
 
-    def _part(self, part: Part, measure: float, column: str | None) -> Markup:
+    def _part(self, part: Part, measure: float, column: str | None) -> Markup:  # noqa: PLR0911 - one line for each part
         match part:
             case str():
                 return markup.plain(part)

@@ -112,7 +112,7 @@ def write(document: Document, page: str, pictures: Mapping[str, Picture], embedd
         If anything of the page could not be set as written.
     """
     with quick(), complaints(), formulas_tagged():
-        laid = laid_out(document, page, pictures)
+        laid = laid_out(page, pictures)
         laid.metadata = CalculationMetadata.of(laid.metadata, _facts(document))
         laid.color_profiles["srgb"] = _inks()
         made = laid.write_pdf(
@@ -125,7 +125,7 @@ def write(document: Document, page: str, pictures: Mapping[str, Picture], embedd
     return finished(made, embedded)
 
 
-def laid_out(document: Document, page: str, pictures: Mapping[str, Picture]) -> Any:  # noqa: ANN401
+def laid_out(page: str, pictures: Mapping[str, Picture]) -> Any:  # noqa: ANN401
     """Return the page laid out on sheets."""
     held = {f"{name}.ttf": ("font/ttf", (places.fonts() / f"{name}.ttf").read_bytes()) for _, name, _, _ in FACES}
     held |= {
@@ -194,7 +194,8 @@ def quick() -> Generator[None, None, None]:
 def faces(address: str = "asset:{}.ttf") -> str:
     """Return the declarations of our faces; ``address`` gives the place of each from its name."""
     return "\n".join(
-        f'@font-face {{ font-family: "{family}"; src: url("{address.format(name)}"); font-style: {slant}; font-weight: {weight} }}'
+        f'@font-face {{ font-family: "{family}"; src: url("{address.format(name)}"); '
+        f"font-style: {slant}; font-weight: {weight} }}"
         for family, name, slant, weight in FACES
     )
 
@@ -223,9 +224,15 @@ def _inks() -> Any:  # noqa: ANN401
 
 def _styles(document: Document) -> str:
     issued = ", revision ".join(word for word in (document.number, document.revision) if word)
-    heads = f"""@page {{ @top-left {{ content: {quoted(running(document.title))} }} @top-right {{ content: {quoted(running(issued))} }}
-      @bottom-left {{ content: {quoted(f"digest {digest_head(document)}")} }} @bottom-center {{ content: {quoted(running(document.status, STATUS))} }} }}
-    @page :first {{ @top-left {{ content: none }} @top-center {{ content: none }} @top-right {{ content: none }} }}"""
+    said = {
+        "top-left": running(document.title),
+        "top-right": running(issued),
+        "bottom-left": f"digest {digest_head(document)}",
+        "bottom-center": running(document.status, STATUS),
+    }
+    heads = " ".join(f"@{place} {{ content: {quoted(text)} }}" for place, text in said.items())
+    none = " ".join(f"@{place} {{ content: none }}" for place in ("top-left", "top-center", "top-right"))
+    heads = f"@page {{ {heads} }}\n@page :first {{ {none} }}"
     return "\n".join(
         [faces(), style("page.css"), style("sheet.css"), heads, style(f"sheet-{document.paper.lower()}.css")]
     )

@@ -5,6 +5,8 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass
 
+from matplotlib.figure import Figure as Drawing
+
 from calc.publish.draw import balance, convergence, schematic, svg
 from calc.publish.faces import shown
 from calc.report import figures
@@ -27,11 +29,14 @@ def drawn(figure: Figure) -> Picture:
     drawing = figure.drawing
     match drawing:
         case figures.Schematic():
-            made, words = schematic.draw(drawing), schematic.alt(drawing)
+            return _picture(schematic.draw(drawing), schematic.alt(drawing))
         case figures.Balance():
-            made, words = balance.draw(drawing), balance.alt(drawing)
+            return _picture(balance.draw(drawing), balance.alt(drawing))
         case figures.Convergence():
-            made, words = convergence.draw(drawing), convergence.alt(drawing)
+            return _picture(convergence.draw(drawing), convergence.alt(drawing))
+
+
+def _picture(made: Drawing, words: str) -> Picture:
     text = _METADATA.sub("", _PROLOGUE.sub("", svg(made).decode("utf-8"), count=1))
     return Picture(text.strip(), shown(words))
 

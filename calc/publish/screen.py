@@ -57,9 +57,8 @@ def page(document: Document, ledger: Ledger, pictures: Mapping[str, Picture], bo
         '<meta http-equiv="Content-Security-Policy" content="{}"><meta name="viewport" '
         'content="width=device-width, initial-scale=1"><meta name="color-scheme" content="only light">'
     ).format(policy) + Markup("<style>{}</style>").format(Markup(_styles()))
-    tail = (
-        _panel(document) + _templates(ledger) + _carried("ledger", books) + _carried("names", _names(document, ledger))
-    )
+    carried = _carried("ledger", books) + _carried("names", _names(document, ledger))
+    tail = _panel(document) + _templates(ledger) + carried
     return html(document, ledger, picture, head=head, tail=tail + Markup("<script>{}</script>").format(Markup(script)))
 
 
@@ -77,7 +76,8 @@ def _panel(document: Document) -> Markup:
     """Return the place in which derivations are shown, and the foot that paper has on every sheet."""
     foot = Markup('<footer class="foot-line"><span class="own" data-sort="id">digest {}</span></footer>')
     return foot.format(digest_head(document)) + Markup(
-        '<aside id="walk" aria-label="Derivation of a number" hidden><button type="button" id="walk-close">close</button>'
+        '<aside id="walk" aria-label="Derivation of a number" hidden>'
+        '<button type="button" id="walk-close">close</button>'
         '<div id="walk-said" aria-live="polite"></div></aside>'
     )
 

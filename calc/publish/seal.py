@@ -7,7 +7,7 @@ digit that is neither a number of the ledger nor marked as one of the document's
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterator
 from dataclasses import dataclass, field
 from html.parser import HTMLParser
 
@@ -24,6 +24,7 @@ from calc.report.document import (
     Notes,
     Number,
     Paragraph,
+    Parts,
     Table,
 )
 from calc.report.numbers import parsed, written
@@ -114,7 +115,7 @@ def printed(document: Document) -> Iterator[Number]:
                 yield from numbers(parts)
 
 
-def _texts(block: Block) -> Iterator[Iterable[object]]:
+def _texts(block: Block) -> Iterator[Parts]:
     match block:
         case Masthead():
             yield block.title

@@ -8,18 +8,11 @@ from dataclasses import dataclass
 from markupsafe import Markup, escape
 
 from calc.problems import Unresolved
+from calc.publish.columns import GUTTER, PADDING, TEXT, TICK
 from calc.publish.markup import hidden
 from calc.publish.parts import Writer
 from calc.report.document import Number, Part, Parts, Row, Soft, Strong, Table, TableColumn
 
-GUTTER, TICK = 12.0, 6.5  # mm
-MEASURE = {"A4": 176.0, "Letter": 182.0}
-"""Width between the margins, mm."""
-WIDE = {"A4": 263.0, "Letter": 247.4}
-"""The same on a sheet turned on its side."""
-STAR = 24.0  # mm, the least that a column without a width is left
-PADDING = 3.2  # mm, at both sides of a cell
-EM = 9.5 * 25.4 / 72  # mm, the size of text in a table
 LETTERS = "abcdefghjkmnopqrstuvwxyz"
 ROLES = {"value": "val", "unit": "un", "from": "fr", "into": "to", "statement": "st", "": ""}
 ALIGN = {"left": "", "right": "r", "centre": "c"}
@@ -39,35 +32,24 @@ class Cell:
 
 @dataclass(frozen=True)
 class Sheet:
-    """A table as it will stand on a sheet that is ``whole`` millimetres wide between its margins."""
+    """A table as it will stand on a sheet, with the width of each column in mm."""
 
     table: Table
-    whole: float
+    widths: tuple[float, ...]
     writer: Writer
+    dense: bool = False
 
     @property
-    def _stars(self) -> int:
-        return sum(column.width is None for column in self.table.columns)
-
-    @property
-    def widths(self) -> Markup:
-        """The column widths, fixed; the others share what is left."""
-        said = [GUTTER, *(self._fit(column.width) for column in self.table.columns), *[TICK] * self.table.tick]
-        cols = [Markup("<col>") if w is None else Markup('<col style="width:{}mm">').format(f"{w:.2f}") for w in said]
+    def columns(self) -> Markup:
+        """The column widths as elements."""
+        said = [GUTTER, *self.widths, *[TICK] * self.table.tick]
+        cols = [Markup('<col style="width:{}mm">').format(f"{wide:.2f}") for wide in said]
         return Markup("<colgroup>{}</colgroup>").format(Markup().join(cols))
-
-    def _fit(self, width: float | None) -> float | None:
-        """Return the width of a column, narrowed where all together leave the others no room."""
-        if width is None:
-            return None
-        asked = sum(column.width or 0.0 for column in self.table.columns)
-        room = self.whole - GUTTER - TICK * self.table.tick - STAR * self._stars
-        return width * min(1.0, room / asked)
 
     @property
     def manner(self) -> Markup:
         """Classes of the table."""
-        return escape(f"t ledger {self.table.key}")
+        return escape(f"t ledger {self.table.key}{' dense' if self.dense else ''}")
 
     @property
     def letters(self) -> list[Markup]:
@@ -92,20 +74,18 @@ class Sheet:
         Raises
         ------
         Unresolved
-            If a row has neither one cell nor one for each column.
+            If no such tone exists.
         """
         columns = self.table.columns
         if row.tone not in TONES:
             raise Unresolved(f"table {self.table.key}, {row.address}: no tone is called '{row.tone}'")
         if len(row.cells) == 1 and len(columns) > 1:
             span = Markup(' colspan="{}"').format(str(len(columns)))
-            content = self.writer.said(row.cells[0], self._em(sum(self._width(c) for c in columns)))
+            content = self.writer.said(row.cells[0], self._em(sum(self.widths)))
             yield Cell(Markup("st"), content, span)
             return
-        if len(row.cells) != len(columns):
-            raise Unresolved(f"table {self.table.key}, {row.address}: {len(row.cells)} cells, {len(columns)} columns")
-        for column, parts in zip(columns, row.cells, strict=True):
-            content = self.writer.said(parts, self._em(self._width(column)), column.unit or None)
+        for column, parts, wide in zip(columns, row.cells, self.widths, strict=True):
+            content = self.writer.said(parts, self._em(wide), column.unit or None)
             summed = row.tone in ("sum", "proved") and any(_numbers(parts))
             ruled = " dbl" if summed and row.tone == "proved" else " one" if summed else ""
             yield Cell(self._classes(column) + Markup(ruled), content, Markup())
@@ -116,27 +96,9 @@ class Sheet:
         said = [ROLES[column.role], ALIGN[column.align], "edge" if column.edge else ""]
         return escape(" ".join(word for word in said if word))
 
-    def _width(self, column: TableColumn) -> float:
-        """Return the width of a column, mm."""
-        fitted = self._fit(column.width)
-        if fitted is not None:
-            return fitted
-        taken = sum(self._fit(other.width) or 0.0 for other in self.table.columns)
-        return (self.whole - GUTTER - TICK * self.table.tick - taken) / self._stars
-
     @staticmethod
     def _em(millimetres: float) -> float:
-        return (millimetres - PADDING) / EM
-
-
-def wide(table: Table, paper: str) -> bool:
-    """Return whether a table needs a sheet turned on its side."""
-    stars = sum(column.width is None for column in table.columns)
-    return _fixed(table) + STAR * stars > MEASURE[paper]
-
-
-def _fixed(table: Table) -> float:
-    return GUTTER + TICK * table.tick + sum(column.width or 0.0 for column in table.columns)
+        return (millimetres - PADDING) / TEXT
 
 
 def _numbers(parts: Parts) -> Iterator[Part]:

@@ -28,7 +28,7 @@ def formulas_tagged() -> Generator[None, None, None]:
     """
     if weasyprint.__version__ != BUILT_FOR:
         raise IntegrityError(f"weasyprint {weasyprint.__version__} is installed; this needs {BUILT_FOR}")
-    found = tags._build_box_tree
+    found = tags._build_box_tree  # noqa: SLF001 - the only place that knows element and tag
 
     def build(box: Any, *rest: Any) -> Iterator[Any]:  # noqa: ANN401
         page_element = getattr(box, "element", None)
@@ -38,8 +38,8 @@ def formulas_tagged() -> Generator[None, None, None]:
                 made["Alt"] = pydyf.String(page_element.get("aria-label"))
             yield made
 
-    tags._build_box_tree = build
+    tags._build_box_tree = build  # noqa: SLF001
     try:
         yield
     finally:
-        tags._build_box_tree = found
+        tags._build_box_tree = found  # noqa: SLF001

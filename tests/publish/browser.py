@@ -93,7 +93,8 @@ class Browser:
 
     def click(self, selector: str) -> None:
         at = self.do(
-            f"(() => {{ const e = document.querySelector({json.dumps(selector)}); e.scrollIntoView({{block: 'center'}}); "
+            f"(() => {{ const e = document.querySelector({json.dumps(selector)}); "
+            "e.scrollIntoView({block: 'center'}); "
             "const b = e.getBoundingClientRect(); return [b.x + b.width / 2, b.y + b.height / 2] })()"
         )
         for kind in ("mousePressed", "mouseReleased"):

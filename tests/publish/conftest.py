@@ -38,7 +38,7 @@ def made(paper: str) -> Made:
     pictures = all_drawn(document)
     sheet = pdf.sheet_html(document, books, pictures)
     page = screen.page(document, books, pictures, exported(books))
-    return Made(books, document, pictures, sheet, page, pdf.laid_out(document, sheet, pictures))
+    return Made(books, document, pictures, sheet, page, pdf.laid_out(sheet, pictures))
 
 
 @pytest.fixture(scope="session")

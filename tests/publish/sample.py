@@ -15,6 +15,7 @@ from calc.marks import Mark
 from calc.physics import energy, fitting, friction, velocity, water
 from calc.report import figures
 from calc.report.document import (
+    Block,
     Bullets,
     Cite,
     Contents,
@@ -46,12 +47,12 @@ PIPES = ("upper-ostrel-gravity-transfer-main", "sedge-link", "vell-rising-main")
 NETWORK = """\
 reservoirs:
   upper: {level: 214.60 m}
-  vell: {level: 183.0 m}   # from the survey; a remark that is long enough to run past the end of a printed line, as remarks in real files do
+  vell: {level: 183.0 m}   # from the survey; REMARK
 pipes:
   upper-ostrel-gravity-transfer-main: {length: 1850 m, bore: 384.4 mm, roughness: 0.15 mm}
   sedge-link: {length: 920.5 m, bore: 297.6 mm, roughness: 0.15 mm}
 \tvell-rising-main: {length: 2410 m, bore: 397.2 mm, roughness: 0.3 mm}
-"""
+""".replace("REMARK", "a remark that runs past the end of a printed line, as in real files, " * 2)
 CASES = """\
 cases:
   drawdown: {title: "Низкий уровень ≤ 209", with: {reservoirs.upper.level: 209.20 m}}
@@ -139,9 +140,9 @@ def _chain(made: Ledger, case: str, flows: Sequence[float]) -> None:
         "pipes.reynolds", velocity.reynolds_number, velocity=speed, bore=get["bore"], viscosity=viscosity
     )
     rough = {"roughness": get["roughness"], "bore": get["bore"], "reynolds": reynolds}
-    factor = books.apply("pipes.friction_factor", friction.colebrook_white, **rough)
-    books.apply("pipes.factor_haaland", friction.haaland, **rough)
-    books.apply("pipes.factor_swamee_jain", friction.swamee_jain, **rough)
+    factor = books.apply("pipes.friction_factor", friction.colebrook_white, by=None, **rough)
+    books.apply("pipes.factor_haaland", friction.haaland, by=None, **rough)
+    books.apply("pipes.factor_swamee_jain", friction.swamee_jain, by=None, **rough)
     loss = books.apply(
         "pipes.friction_loss",
         friction.darcy_weisbach,
@@ -244,12 +245,12 @@ def document(paper: str = "A4", made: Ledger | None = None) -> Document:
     )
 
 
-def _numbered(plan: list[tuple[str, str, Parts, list[object]]]) -> tuple[Section, ...]:
+def _numbered(plan: list[tuple[str, str, Parts, list[Block]]]) -> tuple[Section, ...]:
     """Give lines their addresses."""
     made = []
     for count, (key, title, lead, blocks) in enumerate(plan, 1):
         line = 0
-        said = []
+        said: list[Block] = []
         for block in blocks:
             if isinstance(block, Table):
                 rows = []
@@ -280,7 +281,7 @@ def _found(sections: tuple[Section, ...]) -> tuple[dict[str, str], dict[str, tup
     return addresses, {ref: users[k + 1 : k + 4] for k, ref in enumerate(users)}
 
 
-def _decision(scribe: Scribe) -> list[object]:
+def _decision(scribe: Scribe) -> list[Block]:
     columns = (
         TableColumn(("question",), role="statement"),
         TableColumn(("governing",), "", "right", 25, edge=True, role="value"),
@@ -367,17 +368,12 @@ def _decision(scribe: Scribe) -> list[object]:
                 ("cautions", ("Steady flow of one liquid in full pipes; surge and air lie outside this calculation.",)),
             )
         ),
-        SignOff((("Originator", "M. Halloran 3rd"), ("Checker", ""), ("Approver", "")), seal_area=paper_sealed(scribe)),
+        SignOff((("Originator", "M. Halloran 3rd"), ("Checker", ""), ("Approver", "")), seal_area=True),
     ]
 
 
-def paper_sealed(_: Scribe) -> bool:
-    """Return whether the sample leaves an area blank."""
-    return True
-
-
-def _basis() -> list[object]:
-    text = "Branch flow is positive from the first node to the second; in the balance of a junction, flow toward it is positive."
+def _basis() -> list[Block]:
+    text = "Branch flow is positive from the first node to the second; in a balance, flow toward the junction is."
     return [
         Heading(("Conventions",)),
         Bullets(
@@ -407,7 +403,7 @@ def _basis() -> list[object]:
     ]
 
 
-def _inputs_said(scribe: Scribe) -> list[object]:
+def _inputs_said(scribe: Scribe) -> list[Block]:
     columns = (
         TableColumn(("given",), role="statement"),
         TableColumn(("value",), "", "right", 21, edge=True, role="value"),
@@ -449,7 +445,7 @@ def _inputs_said(scribe: Scribe) -> list[object]:
     return [Table("inputs", columns, tuple(rows))]
 
 
-def _method() -> list[object]:
+def _method() -> list[Block]:
     columns = (
         TableColumn(("relation",), role="statement"),
         TableColumn(("source",), "", "left", 36, edge=True),
@@ -489,7 +485,7 @@ def _method() -> list[object]:
     return [Table("method", columns, tuple(rows))]
 
 
-def _derivation(scribe: Scribe) -> list[object]:
+def _derivation(scribe: Scribe) -> list[Block]:
     columns = (
         TableColumn(("statement",), role="statement"),
         TableColumn(("value",), "", "right", 24, edge=True, role="value"),
@@ -573,7 +569,7 @@ def _schedule(scribe: Scribe) -> Table:
     return Table("schedule", tuple(columns), tuple(rows), lettered=True)
 
 
-def _checks(scribe: Scribe) -> list[object]:
+def _checks(scribe: Scribe) -> list[Block]:
     columns = (
         TableColumn(("along the path",), role="statement"),
         TableColumn(("friction",), "m", "right", 24, edge=True),
@@ -619,7 +615,7 @@ def _checks(scribe: Scribe) -> list[object]:
     return [Heading(("Energy",)), Table("energy", columns, tuple(rows)), Heading(("Trials",)), trials]
 
 
-def _figures() -> list[object]:
+def _figures() -> list[Block]:
     reservoirs = (
         figures.Reservoir("upper", 214.6, "214.60 m"),
         figures.Reservoir("sedge", 189.2, "189.20 m"),
@@ -658,7 +654,7 @@ def _figures() -> list[object]:
     ]
 
 
-def _listings() -> list[object]:
+def _listings() -> list[Block]:
     return [Listing(name, tuple(content.decode().splitlines()), "5e" * 32) for name, content in FILES.items()]
 
 

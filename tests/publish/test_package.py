@@ -6,6 +6,7 @@ import errno
 import hashlib
 import json
 import os
+import tempfile
 from pathlib import Path
 
 import pytest
@@ -67,7 +68,7 @@ def test_a_disk_that_fills_leaves_nothing(tmp_path: Path, monkeypatch: pytest.Mo
             raise OSError(errno.ENOSPC, "No space left on device")
         real(handle)
 
-    monkeypatch.setattr(module.os, "fsync", flush)
+    monkeypatch.setattr(os, "fsync", flush)
     with pytest.raises(StorageError, match="No space left on device"):
         write_package(tmp_path / "a", FILES)
     # the last flush, of the parent, comes after the package is in place and whole
@@ -88,7 +89,7 @@ def test_no_permission_is_a_storage_error(tmp_path: Path, monkeypatch: pytest.Mo
     def refuse(*_: object, **__: object) -> str:
         raise PermissionError(errno.EACCES, "Permission denied")
 
-    monkeypatch.setattr(module.tempfile, "mkdtemp", refuse)
+    monkeypatch.setattr(tempfile, "mkdtemp", refuse)
     with pytest.raises(StorageError, match="Permission denied"):
         write_package(tmp_path / "a", FILES)
 
@@ -103,7 +104,7 @@ def test_another_that_came_first_is_kept(tmp_path: Path, monkeypatch: pytest.Mon
         (target / "package.pdf").write_bytes(b"first")
 
     monkeypatch.setattr(module, "_fill", slow)
-    with pytest.raises(ProblemsFound, match="1 problem|issued already"):
+    with pytest.raises(ProblemsFound, match=r"issued already"):
         write_package(target, FILES)
     assert held(target) == {"package.pdf": b"first"}
     assert [p.name for p in tmp_path.iterdir()] == ["a"]

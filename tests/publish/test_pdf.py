@@ -15,7 +15,7 @@ from typing import Any
 
 import page as validator
 import pikepdf
-import pypdfium2
+import pypdfium2  # type: ignore[import-untyped]
 import pytest
 import sample
 import weasyprint
@@ -51,7 +51,7 @@ def test_a_validator_finds_nothing(content: bytes, profile: str) -> None:
     assert report.is_compliant
 
 
-def test_the_validator_would_find_something(file: pikepdf.Pdf, content: bytes) -> None:
+def test_the_validator_would_find_something(content: bytes) -> None:
     with pikepdf.open(io.BytesIO(content)) as broken:
         del broken.Root.OutputIntents
         for item in broken.objects:
@@ -202,7 +202,7 @@ def plain(*sections: Section, paper: str = "A4", title: str = "Works") -> Docume
 
 
 def laid_out(document: Document) -> Any:  # noqa: ANN401
-    return pdf.laid_out(document, pdf.sheet_html(document, sample.ledger(), {}), {})
+    return pdf.laid_out(pdf.sheet_html(document, sample.ledger(), {}), {})
 
 
 def test_long_words_stay_in_their_place() -> None:
@@ -284,18 +284,18 @@ def test_a_sum_stands_with_a_row_of_its_own() -> None:
 
 def test_what_the_layout_library_logs_stops_the_build(a4: Any) -> None:  # noqa: ANN401
     broken = a4.sheet.replace("<style>", "<style>p { no-such-property: 1 }", 1)
-    with pytest.raises(IntegrityError, match="could not be set as written: .*no-such-property"):
+    with pytest.raises(IntegrityError, match=r"could not be set as written: .*no-such-property"):
         pdf.write(a4.document, broken, a4.pictures, {})
 
 
 @pytest.mark.parametrize("address", ["file:///etc/passwd", "https://example.org/a.png", "asset:other.png"])
 def test_a_page_reaches_nothing_but_what_it_is_given(a4: Any, address: str) -> None:  # noqa: ANN401
     broken = a4.sheet.replace("<main>", f'<main><img src="{address}" alt="x">', 1)
-    with pytest.raises(IntegrityError, match="which it may not have|Failed to load image"):
+    with pytest.raises(IntegrityError, match=r"which it may not have|Failed to load image"):
         pdf.write(a4.document, broken, a4.pictures, {})
 
 
-def test_logging_is_left_as_found(a4: Any) -> None:  # noqa: ANN401
+def test_logging_is_left_as_found() -> None:
     logger = logging.getLogger("weasyprint")
     before = list(logger.handlers)
     with pytest.raises(IntegrityError), pdf.complaints():

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import re
 from collections.abc import Iterator
 from pathlib import Path
 from typing import Any
@@ -20,6 +21,12 @@ pytestmark = pytest.mark.browser
 PIPE = sample.PIPES[0]
 LOSS = f"pipes.{PIPE}.friction_loss@base"
 BORE = f"pipes.{PIPE}.bore@base"
+GO = """const go = (id) => new Promise((done) => {
+  addEventListener('hashchange', () => setTimeout(done), {once: true});
+  location.hash = encodeURIComponent(id);
+});
+"""
+BLOCKS = "h1, h2, p, figure, .hold, .listing, .toc, #walk"
 
 
 @pytest.fixture(scope="module")
@@ -50,9 +57,8 @@ def panel(browser: Browser) -> str:
 
 
 def shows(browser: Browser, ref: str) -> None:
-    browser.wait(
-        f"!document.getElementById('walk').hidden && document.querySelector('#walk .id').textContent === {json.dumps(ref)}"
-    )
+    browser.wait("!document.getElementById('walk').hidden")
+    browser.wait(f"document.querySelector('#walk .id').textContent === {json.dumps(ref)}")
 
 
 @pytest.mark.parametrize("width", [360, 480, 768, 1024, 1280, 1600])
@@ -60,7 +66,8 @@ def shows(browser: Browser, ref: str) -> None:
 def test_nothing_is_wider_than_the_window(browser: Browser, place: Path, width: int, ref: str) -> None:
     browser.open(place, f"#{ref}" if ref else "", width)
     assert browser.do("document.documentElement.scrollWidth <= document.documentElement.clientWidth")
-    outside = "[...document.querySelectorAll('h1, h2, p, figure, .hold, .listing, .toc, #walk')].filter(e => e.getClientRects().length && e.getBoundingClientRect().right > innerWidth + 1).length"
+    outside = f"[...document.querySelectorAll('{BLOCKS}')].filter(e => e.getClientRects().length)"
+    outside += ".filter(e => e.getBoundingClientRect().right > innerWidth + 1).length"
     assert browser.do(outside) == 0
 
 
@@ -130,15 +137,16 @@ def test_the_keyboard_suffices(browser: Browser, place: Path) -> None:
     assert browser.do("document.activeElement.value") == LOSS
 
 
-def test_every_number_has_a_walk(browser: Browser, place: Path, a4: Any) -> None:  # noqa: ANN401
+def test_every_number_has_a_walk(browser: Browser, place: Path) -> None:
     browser.open(place)
     wrong = browser.do(
-        """(async () => {
+        GO
+        + """(async () => {
           const wrong = [];
           for (const id of new Set([...document.querySelectorAll('data.n')].map(e => e.value))) {
-            await new Promise(done => { addEventListener('hashchange', () => setTimeout(done), {once: true}); location.hash = encodeURIComponent(id); });
-            const said = document.getElementById('walk-said');
-            if (said.querySelector('.id')?.textContent !== id || !said.querySelector('h3') || /undefined|NaN|\\?/.test(said.innerText)) { wrong.push(id); }
+            await go(id);
+            const said = document.getElementById('walk-said'), odd = /undefined|NaN|\\?/.test(said.innerText);
+            if (said.querySelector('.id')?.textContent !== id || !said.querySelector('h3') || odd) { wrong.push(id); }
           }
           return wrong; })()"""
     )
@@ -146,17 +154,19 @@ def test_every_number_has_a_walk(browser: Browser, place: Path, a4: Any) -> None
     assert browser.do("document.querySelectorAll('data.n:not([tabindex])').length") == 0
 
 
-def test_every_step_leads_to_the_files(browser: Browser, place: Path, a4: Any) -> None:  # noqa: ANN401
+def test_every_step_leads_to_the_files(browser: Browser, place: Path) -> None:
     browser.open(place)
     ends = browser.do(
-        f"""(async () => {{
+        GO
+        + f"""(async () => {{
           const seen = new Set(), ends = new Set(), left = [{json.dumps(LOSS)}];
           while (left.length) {{
             const id = left.pop();
             if (seen.has(id)) continue;
             seen.add(id);
-            await new Promise(done => {{ addEventListener('hashchange', () => setTimeout(done), {{once: true}}); location.hash = encodeURIComponent(id); }});
-            const said = document.getElementById('walk-said'), next = [...said.querySelectorAll('li a')].map(a => decodeURIComponent(a.hash.slice(1)));
+            await go(id);
+            const said = document.getElementById('walk-said');
+            const next = [...said.querySelectorAll('li a')].map(a => decodeURIComponent(a.hash.slice(1)));
             left.push(...next);
             if (!next.length) ends.add(said.innerText.match(/at (\\S+:\\d+:\\d+)/)?.[1] ?? `none for ${{id}}`);
           }}
@@ -201,7 +211,5 @@ def test_only_our_own_script_may_run(browser: Browser, a4: Any, tmp_path: Path) 
 def test_the_page_says_the_same_as_the_sheets(browser: Browser, place: Path, a4: Any) -> None:  # noqa: ANN401
     browser.open(place)
     numbers = browser.do("[...document.querySelectorAll('data.n')].map(e => e.textContent)")
-    import re
-
     expected = [re.sub("<[^>]*>", "", m) for m in re.findall(r'<data class="n"[^>]*>(.*?)</data>', a4.sheet)]
     assert numbers == [text.replace("&lt;", "<") for text in expected]

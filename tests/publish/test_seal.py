@@ -15,6 +15,7 @@ from calc.publish.seal import printed, proved, seal, seal_document
 from calc.report.document import Document, Paragraph, Section
 
 ANCHOR = re.compile(r'<data class="n" value="([^"]*)" data-as="([^"]*)">(.*?)</data>', re.DOTALL)
+GRAVITY = '<data class="n" value="site.works.gravity" data-as="m/s²|d5||">9.80665</data>'
 TAGS = re.compile(r"<[^>]*>")
 
 
@@ -89,11 +90,11 @@ def test_one_digit_in_the_whole_page_fails_it(a4) -> None:  # type: ignore[no-un
         ("<p><b>x</p>", "closes <p>"),
         ("<p>x", "ends inside <p>"),
         (
-            '<data class="n" value="site.works.gravity" data-as="m/s²|d5||"><data class="n" value="site.works.gravity" data-as="m/s²|d5||">9.80665</data></data>',
+            f'<data class="n" value="site.works.gravity" data-as="m/s²|d5||">{GRAVITY}</data>',
             "inside another",
         ),
         (
-            '<data class="n" value="site.works.gravity" data-as="m/s²|d5||">9.80665</data><span class="u">\u202fft/s²</span>',
+            f'{GRAVITY}<span class="u">\u202fft/s²</span>',
             "after a number in",
         ),
     ],
