@@ -9,7 +9,7 @@ import numpy as np
 from calc.equation import Equation, Implicit, Leaf
 from calc.equation.evaluation import evaluate_leaf
 from calc.equation.law import takes
-from calc.ledger import Combined, Converted, Derived, Given, Library, Spot
+from calc.ledger import Combined, Derived, Spot
 from calc.report.composer import FROM, INTO, Sheet, cited, inputs_of
 from calc.report.document import Cite, Formula, Letter, Number, Part, Parts, Row, TableColumn
 from calc.report.formats import shortest
@@ -61,7 +61,7 @@ def worked(spot: Spot) -> Worked:
 
 def _result(spot: Spot) -> Number:
     unit = spot.column.kind.unit
-    form = Format(unit, significant=RESULT_FIGURES)
+    form = shortest(spot.value, unit, RESULT_FIGURES)
     if spot.column.quantity.endswith(("closing_error", "imbalance")) and abs(spot.value) < SMALLEST:
         form = Format(unit, decimals=9, bound=SMALLEST)
     return Number(spot.id, form, written(spot.value, spot.column.kind, form))
@@ -82,8 +82,7 @@ def _operands(origin: Derived, leaf: Leaf, row: int, result: Number) -> dict[str
 
 def _operand(spot: Spot, figures: int) -> Number:
     kind = spot.column.kind
-    stated = isinstance(spot.column.origin, Given | Converted | Library)
-    form = shortest(spot.value, kind.unit, figures) if stated else Format(kind.unit, significant=figures)
+    form = shortest(spot.value, kind.unit, figures)
     return Number(spot.id, form, written(spot.value, kind, form), with_unit=True)
 
 
@@ -128,9 +127,9 @@ def lines(sheet: Sheet, spot: Spot, *before: Part) -> list[Row]:
     ledger, rows = sheet.composer.ledger, []
     for ref in inputs_of(ledger, spot):
         needed = ledger.spot(ref)
-        if needed.column.quantity in UNTABLED and isinstance(needed.column.origin, Derived):
-            if ref not in sheet.composer.addresses:
-                rows.append(line(sheet, needed, *before))
+        derived = isinstance(needed.column.origin, Derived) and needed.column.quantity in UNTABLED
+        if derived and ref not in sheet.composer.addresses:
+            rows.append(line(sheet, needed, *before))
     return [*rows, line(sheet, spot, *before)]
 
 
