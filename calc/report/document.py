@@ -254,6 +254,8 @@ class Document:
         Ledger id to the address of the line where it stands.
     used_by : mapping of str to tuple of str
         Ledger id to the ids that cite it and are printed.
+    behind : mapping of str to tuple of str
+        For a cited ledger id that stands on no line, the ids with lines on which it rests.
     """
 
     title: str
@@ -266,12 +268,15 @@ class Document:
     sections: tuple[Section, ...]
     addresses: Mapping[str, str] = field(default_factory=dict)
     used_by: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    behind: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
 
     def cited(self, cite: Cite) -> str:
         """Return the addresses that a citation stands for, runs collapsed: ``5.1–5.4, 6.2``."""
         refs: Iterable[str] = cite.refs
         if cite.into:
             refs = [user for ref in cite.refs for user in self.used_by.get(ref, ())]
+        else:
+            refs = [line for ref in cite.refs for line in self.behind.get(ref, (ref,))]
         found = {self.addresses[ref] for ref in refs if ref in self.addresses}
         runs = collapsed(found).split(", ") if found else []
         return ", ".join(runs) if len(runs) <= MOST_RUNS else f"{', '.join(runs[: MOST_RUNS - 1])}, …"

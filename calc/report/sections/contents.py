@@ -33,7 +33,8 @@ READING = (
     ),
     (
         "From and into: the lines that a number was computed from, and the lines that use it next. A number with no "
-        "line in front of it is an input; its file and line lead to the listing."
+        "line in front of it is an input; its file and line lead to the listing. A "
+        "number between that has no line of its own is passed over: the lines that it rests on are named."
     ),
     "Rules: single above a sum, double below a balance that is proved. A bar with a word in semibold needs the reader.",
     (

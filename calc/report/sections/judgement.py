@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from calc.account import TITLES, CriterionVerdict
-from calc.report.composer import FROM, Composer, Sheet, column, figure_column, name, place
-from calc.report.derivation import COLUMNS, line
+from calc.account import TITLES, CriterionVerdict, Verdict
+from calc.report.composer import FROM, Composer, Sheet, column, figure_column, inputs_of, name, place
+from calc.report.derivation import COLUMNS, lines
 from calc.report.document import Cite, Heading, Own, Paragraph, Parts, Quoted, Row, Soft, Strong
 from calc.report.numbers import Format
 
@@ -36,7 +36,9 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
     if judged.governing is None or judged.least_margin is None:
         sheet.add(Paragraph(("No component that it applies to has a value in a solved case.",)))
         return
-    sheet.table(f"worked-{judged.id}", COLUMNS, [line(sheet, judged.governing.margin)])
+    governing = judged.governing
+    said = (name(governing.subject), Soft((", ", name(governing.case))), ": ")
+    sheet.table(f"worked-{judged.id}", COLUMNS, lines(sheet, governing.margin, *said))
     columns = (
         column("subject", role="statement"),
         column("case", 24, edge=True),
@@ -62,12 +64,20 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
                 (value.form.unit,),
                 (margin,),
                 told,
-                (Cite((one.value.id, one.limit.id)),),
+                (_rests_on(sheet, one),),
                 refs=(one.margin.id, one.value.id),
                 tone="" if one.met else "flag",
             )
         )
     sheet.table(f"verdicts-{judged.id}", columns, rows)
+
+
+def _rests_on(sheet: Sheet, verdict: Verdict) -> Cite:
+    """Cite value and limit; a value that first stands on this very line by what it was computed from."""
+    value = verdict.value
+    here = value.id not in sheet.composer.addresses
+    refs = inputs_of(sheet.composer.ledger, value) if here else [value.id]
+    return Cite((*refs, verdict.limit.id))
 
 
 def _findings(sheet: Sheet) -> None:

@@ -7,7 +7,7 @@ import numpy as np
 from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
-from calc.report.derivation import COLUMNS, line
+from calc.report.derivation import COLUMNS, line, lines
 from calc.report.document import Heading, Paragraph, Parts, Row, Soft, TableColumn
 from calc.report.numbers import Format
 from calc.report.selection import shown_junctions, shown_pipes
@@ -16,7 +16,6 @@ CHAIN = (
     "flow_each",
     "velocity",
     "reynolds",
-    "factor_turbulent",
     "darcy_f",
     "friction_loss",
     "fitting_loss",
@@ -53,25 +52,14 @@ def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
     if pipe is None:
         return
     ledger = sheet.composer.ledger
-    sheet.add(
-        Heading(
-            (
-                "Head lost in ",
-                name(pipe),
-                ", worked once",
-            )
-        )
-    )
+    sheet.add(Heading(("Head lost in ", name(pipe), ", worked once")))
     rows: list[Row] = []
-    used = ("darcy_f", "transition") in _leaves(ledger, case.id, pipe)
     for quantity in CHAIN:
-        if quantity == "factor_turbulent" and not used:
-            continue
         if quantity == "fitting_loss":
             rows += _worked_fittings(sheet, case, pipe)
         spot = _here(ledger, f"pipes.{quantity}", case.id, pipe)
         if spot is not None:
-            rows.append(line(sheet, spot))
+            rows += lines(sheet, spot)
     rows += _other_laws(sheet, case, pipe)
     junctions = case.columns.pressure_head.rows if case.columns else ()
     for quantity in NODE_CHAIN:
@@ -80,14 +68,6 @@ def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
             rows.append(line(sheet, spot, name(junctions[0]), ": "))
     sheet.table(f"derivation-{case.id}", COLUMNS, rows)
     sheet.add(Paragraph(("Every other pipe and node repeats these lines; their results follow.",), "small"))
-
-
-def _leaves(ledger: Ledger, case: str, pipe: str) -> set[tuple[str, str]]:
-    spot = _here(ledger, "pipes.darcy_f", case, pipe)
-    if spot is None or not isinstance(spot.column.origin, Derived):
-        return set()
-    origin = spot.column.origin
-    return {("darcy_f", origin.labels[origin.which[spot.row]])}
 
 
 def _worked_fittings(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
@@ -118,9 +98,9 @@ def _other_laws(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
                 continue
             shown = one.origin.which[one.index[pipe]] if pipe in one.index else -1
             for leaf in range(len(one.origin.leaves)):
-                if leaf != shown and quantity != "factor_turbulent":
+                if leaf != shown:
                     row = int(np.flatnonzero(one.origin.which == leaf)[0])
-                    rows.append(line(sheet, Spot(one, row), name(one.rows[row]), ": "))
+                    rows += lines(sheet, Spot(one, row), name(one.rows[row]), ": ")
     return rows
 
 
