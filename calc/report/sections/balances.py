@@ -69,7 +69,7 @@ def _junction(sheet: Sheet, case: CaseAccount, imbalance: Spot, junction: str) -
         full = composer.number(spot, Format(unit, decimals=FULL_DECIMALS, sign=sign))
         usual_form = usual(spot.column, unit)
         printed = composer.number(spot, Format(unit, usual_form.decimals, sign=sign))
-        rows.append(sheet.row(_said(spot, origin.signs[k]), (full,), (printed,), (Cite((spot.id,)),)))
+        rows.append(sheet.row(_said(case, spot, origin.signs[k]), (full,), (printed,), (Cite((spot.id,)),)))
         texts.append(printed.text)
         ids.append(spot.column.rows[spot.row] if not spot.column.of else spot.column.of)
     total = _printed_sum(composer, case, junction, ids, texts)
@@ -87,12 +87,14 @@ def _junction(sheet: Sheet, case: CaseAccount, imbalance: Spot, junction: str) -
     return rows
 
 
-def _said(spot: Spot, sign: float) -> Parts:
+def _said(case: CaseAccount, spot: Spot, sign: float) -> Parts:
     row = spot.column.rows[spot.row]
     if spot.column.group == "junctions":
-        return ("withdrawal",)
+        return ("withdrawal" if spot.value >= 0 else "inflow",)
     toward = sign * spot.value
     words = ", from it" if toward < 0 else ", to it" if toward > 0 else ", at rest"
+    if not case.network.open[case.network.pipes.rows.index(row)]:
+        words = ", shut"
     return (name(row), Soft((words,)))
 
 
@@ -156,11 +158,11 @@ def _path(sheet: Sheet, case: CaseAccount, path: Path) -> list[Row]:
         losses = []
         for quantity in ("friction_loss", "fitting_loss"):
             spot = ledger.spot(f"pipes.{pipe}.{quantity}@{case.id}")
-            losses.append((composer.number(spot, Format("m", decimals=4, sign="turned" if sign < 0 else "")), spot.id))
+            losses.append((composer.number(spot, Format("m", decimals=4, sign="turned" if sign < 0 else "+")), spot.id))
         head = _node(composer, case.id, node)
         rows.append(
             sheet.row(
-                ("less loss in ", name(pipe), ", ", name(node)),
+                (name(node), Soft((", less the loss in ", name(pipe)))),
                 (losses[0][0],),
                 (losses[1][0],),
                 (composer.number(head, HEAD),),
@@ -187,7 +189,7 @@ def _opinion(sheet: Sheet, case: CaseAccount) -> None:
     if agreement is None:
         return
     composer = sheet.composer
-    sheet.add(Heading(("Second opinion: ", agreement.method)))
+    sheet.add(Heading(("Second opinion, ", agreement.method)))
     if agreement.flow_difference is None or agreement.head_difference is None:
         sheet.add(Paragraph((Strong(("The second opinion does not agree: ", agreement.reason, "."), bar=True),)))
         return

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report import figures
 from calc.report.composer import Composer, Sheet, column
 from calc.report.derivation import COLUMNS, line
-from calc.report.document import Figure, Heading, Paragraph, Parts, Quoted
+from calc.report.document import Figure, Heading, Paragraph, Parts, Quoted, Strong
 
 CONVENTIONS = (
     "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
@@ -34,11 +36,13 @@ def compose_basis(composer: Composer) -> None:
     lead = "What is taken as true, which way is positive, and where the levels stand."
     sheet = composer.begin("basis", "Design basis", lead)
     project = composer.account.project
-    datum = project.header.text("datum") or "not stated"
-    statements: list[Parts] = [("Levels and elevations are above the datum: ", Quoted(datum), ".")]
+    datum = project.header.text("datum")
+    statements: list[Parts] = [("Purpose: ", Quoted(stated.text)) for stated in project.purpose]
+    if datum:
+        statements.append(("Levels and elevations are above the datum: ", Quoted(datum), "."))
+    else:
+        statements.append((Strong(("The datum of levels and elevations is not stated.",), bar=True),))
     statements += [(text,) for text in CONVENTIONS]
-    for stated in project.purpose:
-        statements.append(("Purpose: ", Quoted(stated.text)))
     columns = (column("statement", role="statement"),)
     sheet.table("conventions", columns, [sheet.row(parts) for parts in statements])
     _liquid(sheet)
@@ -57,10 +61,11 @@ def derived_of(ledger: Ledger, groups: tuple[str, ...], case: str) -> list[Spot]
 
 
 def _liquid(sheet: Sheet) -> None:
-    spots = [s for s in derived_of(sheet.composer.ledger, ("fluid", "site"), "base") if s.column.of == ""]
-    if spots:
-        sheet.add(Heading(("Liquid and air",)))
-        sheet.table("liquid", COLUMNS, [line(sheet, spot) for spot in spots])
+    for case in sheet.composer.account.project.cases:
+        spots = [s for s in derived_of(sheet.composer.ledger, ("fluid", "site"), case) if s.column.of == ""]
+        if spots:
+            sheet.add(Heading(("Liquid and air", *(() if case == "base" else (", case ", Quoted(case))))))
+            sheet.table("liquid", COLUMNS, [line(sheet, spot) for spot in spots])
 
 
 def _schematic(sheet: Sheet) -> None:
@@ -108,7 +113,7 @@ def schematic(composer: Composer, case: CaseAccount, solved: list[CaseAccount]) 
     )
 
 
-def _junction(composer: Composer, case: str, junction: str, text) -> figures.Junction:  # type: ignore[no-untyped-def]  # noqa: ANN001
+def _junction(composer: Composer, case: str, junction: str, text: Callable[[str], str]) -> figures.Junction:
     ledger = composer.ledger
     head = f"junctions.{junction}.head@{case}"
     elevation = f"junctions.{junction}.elevation@{case}"
@@ -127,14 +132,14 @@ def _junction(composer: Composer, case: str, junction: str, text) -> figures.Jun
     )
 
 
-def _pipe(  # type: ignore[no-untyped-def]  # noqa: PLR0917
+def _pipe(  # noqa: PLR0917 - what one drawing of a pipe rests on
     composer: Composer,
     case: CaseAccount,
     pipe: str,
     flows: dict[str, dict[str, float]],
     solved: list[CaseAccount],
     largest: float,
-    text,  # noqa: ANN001
+    text: Callable[[str], str],
 ) -> figures.Pipe:
     record = composer.account.project.pipes[pipe]
     row = case.network.pipes.rows.index(pipe)

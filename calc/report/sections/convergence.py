@@ -12,12 +12,14 @@ from calc.report.composer import NOTHING, Composer, Sheet, column, figure_column
 from calc.report.document import (
     Figure,
     Heading,
+    Letter,
     Number,
     Own,
     Paragraph,
     Part,
     Parts,
     Row,
+    Strong,
     TableColumn,
 )
 from calc.report.formats import RESIDUAL
@@ -66,10 +68,9 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
     if not shown:
         said += " The flows of the branches are not printed, there being many."
-    said += (
-        " At a low end water is to spare, at a high end it lacks. Rules are stated under the method; the trials that a"
-    )
-    sheet.add(Paragraph((said + " rule stands on are named in the order of its letters a, b, c.",), "small"))
+    said += " At a low end water is to spare, at a high end it is lacking. Rules are stated under the method;"
+    said += " the trials that a rule stands on are named in the order of its letters a, b, c."
+    sheet.add(Paragraph((said,), "small"))
 
 
 HEAD_FORM = Format("m", decimals=5)
@@ -96,7 +97,7 @@ def _trial_row(  # noqa: PLR0917
         cells.append((composer.number(spot, flow),))
         refs.append(spot.id)
     cells.append((composer.number(imbalance, Format(composer.flow_unit, significant=6)),))
-    cells.append(_chosen(case, trials, t))
+    cells.append(_chosen(sheet, case, trials, t))
     accepted = "sum" if t == trials.accepted else ""
     return sheet.row(*cells, refs=(*refs, imbalance.id), tone=accepted)
 
@@ -106,12 +107,19 @@ def _trial(ledger: Ledger, column_name: str, case: str, of: str, t: int) -> Spot
     return Spot(found, found.index[str(t + 1)])
 
 
-def _chosen(case: CaseAccount, trials: Trials, t: int) -> Parts:
+def _chosen(sheet: Sheet, case: CaseAccount, trials: Trials, t: int) -> Parts:
     rule = trials.rule[t]
+    accepted: Parts = ("; ", Strong(("accepted",))) if t == trials.accepted else ()
     if rule == "level":
-        return ("level of ", name(case.network.nodes[int(trials.reservoir[t])]))
+        return ("level of ", name(case.network.nodes[int(trials.reservoir[t])]), *accepted)
     uses = ", ".join(str(use + 1) for use in trials.uses[t])
-    return (rule, *((" on ", Own(uses, "id")) if uses else ()))
+    said: Parts = (rule, *((" on ", Own(uses, "id")) if uses else ()))
+    junction = case.network.nodes[trials.junction]
+    steps = [c for c in sheet.composer.ledger.find("junctions.step", case.id, junction) if str(t + 1) in c.index]
+    for step in steps:
+        number = sheet.composer.number(Spot(step, 0), Format("m", significant=3), with_unit=True)
+        said = (*said, ", ", Letter("s"), " = ", number)
+    return (*said, *accepted)
 
 
 def _stopping(sheet: Sheet, case: CaseAccount) -> None:
