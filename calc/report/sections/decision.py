@@ -64,21 +64,32 @@ def compose_decision(composer: Composer) -> None:
 
 def _sentence(composer: Composer) -> Parts:
     """Say what is not met first, in one sentence."""
+    return (*_unsolved(composer), *_judged(composer))
+
+
+def _unsolved(composer: Composer) -> Parts:
+    names: list[Part] = []
+    for case in composer.account.cases.values():
+        if not case.solution.converged:
+            names += [", ", name(case.id)] if names else [name(case.id)]
+    if not names:
+        return ()
+    said = Strong(("No solution in case ", *names, "."), bar=True)
+    return (said, " Nothing but the history of the attempt is printed, and nothing may be concluded. ")
+
+
+def _judged(composer: Composer) -> Parts:
     account = composer.account
-    unsolved = [case for case in account.cases.values() if not case.solution.converged]
-    if unsolved:
-        names: list[Part] = []
-        for case in unsolved:
-            names += [", " if names else "", name(case.id)]
-        return (
-            Strong(("No solution in case ", *names, "."), bar=True),
-            " Nothing below may be used for that case.",
-        )
-    failing = [judged for judged in account.verdicts if not judged.met]
     if not account.verdicts:
         return (Strong(("No criteria are set.",), bar=True), " This package shows flows and heads alone.")
+    failing = [judged for judged in account.verdicts if not judged.met]
+    without = [judged.criterion.title.lower() for judged in account.verdicts if judged.governing is None]
+    unjudged: Parts = ()
+    if without:
+        unjudged = (" ", Strong((f"Not judged, for want of a subject: {', '.join(without)}.",), bar=True))
     if not failing:
-        return ("Every criterion entered is met in every case it applies to.",)
+        every = "Every criterion that was judged" if without else "Every criterion entered"
+        return (f"{every} is met in every solved case it applies to.", *unjudged)
     parts: list[Part] = []
     for judged in failing:
         if judged.governing is not None:
@@ -91,7 +102,7 @@ def _sentence(composer: Composer) -> Parts:
             parts += [" in case ", name(judged.governing.case)]
     count = COUNT_WORDS[len(failing)] if len(failing) < len(COUNT_WORDS) else "many"
     verb = "criterion is" if len(failing) == 1 else "criteria are"
-    return (Strong((f"{count.capitalize()} {verb} not met: ", *parts, "."), bar=True),)
+    return (Strong((f"{count.capitalize()} {verb} not met: ", *parts, "."), bar=True), *unjudged)
 
 
 def _criteria(sheet: Sheet) -> None:
@@ -99,12 +110,13 @@ def _criteria(sheet: Sheet) -> None:
         column("criterion", role="statement"),
         column("governed by", 36),
         figure_column("found", width=16, edge=True),
-        figure_column("limit", width=25),
-        figure_column("margin", width=17),
-        column("verdict", 19.5),
+        figure_column("limit", width=17),
+        figure_column("margin", width=16),
+        column("", 11, role="unit"),
+        column("verdict", 19),
         TableColumn(("from",), width=14, edge=True, role="from"),
     )
-    judged = sorted(sheet.composer.account.verdicts, key=lambda j: j.met)
+    judged = sorted(sheet.composer.account.verdicts, key=lambda j: (j.met, j.governing is not None))
     sheet.table("criteria", columns, [_criterion(sheet, one) for one in judged])
 
 
@@ -112,9 +124,18 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
     composer, governing = sheet.composer, judged.governing
     if governing is None or judged.least_margin is None:
         blank: Parts = ("",)
-        return sheet.row((judged.criterion.title,), ("no subject",), blank, blank, blank, ("not judged",), blank)
+        return sheet.row(
+            (judged.criterion.title,),
+            ("no subject",),
+            blank,
+            blank,
+            blank,
+            blank,
+            (Strong(("not judged",), bar=True),),
+            blank,
+        )
     value = composer.number(governing.value)
-    limit = composer.number(governing.limit, value.form, with_unit=True)
+    limit = composer.number(governing.limit, value.form)
     margin = composer.number(judged.least_margin, Format(value.form.unit, value.form.decimals, sign="+"))
     sense = "≤ " if judged.criterion.sense == "at most" else "≥ "
     verdict: Part = "met" if judged.met else Strong(("not met",), bar=True)
@@ -128,6 +149,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
         told(value),
         (sense, limit),
         told(margin),
+        (value.form.unit,),
         (verdict,),
         (Cite((governing.margin.id,)),),
         refs=(judged.least_margin.id,),

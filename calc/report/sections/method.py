@@ -43,15 +43,15 @@ def compose_method(composer: Composer) -> None:
     sheet.table("method", (column("method", role="statement"),), [sheet.row((text,)) for text in STATEMENTS])
     _rules(sheet)
     rules = {rule.equation.name for rule in RULES.values()}
-    leaves = [leaf for leaf in laws_in_use(composer) if leaf.name not in rules]
+    leaves: dict[str, Leaf] = {}
+    for leaf in laws_in_use(composer):
+        if leaf.name not in rules:
+            leaves.setdefault(leaf.name, leaf)
     sheet.add(Heading(("Equations in use",)))
     columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
-    sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves])
+    sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves.values()])
     sheet.add(Heading(("Symbols",)))
-    symbols = {
-        letter.text: (letter, words, unit) for leaf in laws_in_use(composer) for letter, words, unit in symbols_of(leaf)
-    }
-    _symbols(sheet, list(symbols.values()))
+    _symbols(sheet, _gathered(laws_in_use(composer)))
     sheet.add(
         Paragraph(
             ("Empirical equations are worked in SI; their inputs are divided by the units shown first.",),
@@ -75,6 +75,17 @@ def _rules(sheet: Sheet) -> None:
     if rows:
         sheet.add(Heading(("Rules by which trial heads are chosen",)))
         sheet.table("rules", columns, rows)
+
+
+def _gathered(leaves: list[Leaf]) -> list[tuple[Letter, str, str]]:
+    """Return each symbol once; one that serves several kinds of quantity has the unit of the line it is used on."""
+    found: dict[tuple[str, str], list[str]] = {}
+    for leaf in leaves:
+        for letter, words, unit in symbols_of(leaf):
+            units = found.setdefault((letter.text, words), [])
+            if unit not in units:
+                units.append(unit)
+    return [(Letter(text), words, units[0] if len(units) == 1 else "as used") for (text, words), units in found.items()]
 
 
 def _symbols(sheet: Sheet, symbols: list[tuple[Letter, str, str]]) -> None:
