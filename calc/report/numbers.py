@@ -27,7 +27,7 @@ class Format:
     decimals : int or None
         Figures after the point; or
     significant : int or None
-        significant figures, written as a power of ten when very large or small.
+        significant figures, written as a power of ten when very large or small; whole figures are written all.
     sign : str
         Empty, or ``+`` (a positive number carries its sign), ``size`` (no number carries one: the direction is told
         in words) or ``turned`` (the number is reckoned the other way round, and carries its sign).
@@ -90,7 +90,8 @@ def _figures(number: float, form: Format) -> str:
         mantissa, _, power = f"{number:.{figures - 1}e}".partition("e")
         return f"{mantissa} × 10^{str(int(power)).replace('-', MINUS)}"
     place = math.floor(math.log10(float(f"{number:.{figures - 1}e}")))
-    return _grouped(f"{round(number, figures - 1 - place):.{max(0, figures - 1 - place)}f}")
+    # whole figures are never put to zero: the last figure written is always the last that counts
+    return _grouped(f"{number:.{max(0, figures - 1 - place)}f}")
 
 
 def _grouped(text: str) -> str:

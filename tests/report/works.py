@@ -1,0 +1,114 @@
+"""Small works that bring every law, regime and oddity of a calculation; their data are invented."""
+
+from __future__ import annotations
+
+from functools import lru_cache
+from pathlib import Path
+from tempfile import TemporaryDirectory
+from typing import NamedTuple
+
+from accounts import ROOT, accounted
+
+from calc import pipeline
+from calc.account import Account
+from calc.report.document import Document
+
+DEMO = ROOT / "projects" / "ostrel-transfer-main"
+
+OIL = """\
+fluid: {density: 870 kg/m³, viscosity: 0.35 Pa·s}
+reservoirs: {tank-farm: {level: 40 m}, quay: {level: 20 m}}
+junctions: {bend: {elevation: 12 m, withdrawal: 1.5 L/s}}
+pipes:
+  shore-line: {from: tank-farm, to: bend, length: 800 m, bore: 203 mm, roughness: 0.05 mm, fittings: [{K: 1.2}]}
+  quay-line: {from: bend, to: quay, length: 400 m, bore: 203 mm, roughness: 0.05 mm}
+"""
+
+TRANSITION = """\
+fluid: {kind: water, temperature: 12 degC}
+reservoirs: {tarn: {level: 102.4 m}, trough: {level: 100 m}, sink: {level: 99.1 m}}
+junctions: {split: {elevation: 90 m}}
+pipes:
+  thin: {from: tarn, to: split, length: 420 m, bore: 26 mm, roughness: 0.01 mm, law: LAW}
+  slow: {from: split, to: trough, length: 500 m, bore: 24 mm, roughness: 0.01 mm, law: LAW, ends: {to: square}}
+  crawl: {from: sink, to: split, length: 900 m, bore: 20 mm, roughness: 0.02 mm, law: LAW}
+"""
+
+LAWS = """\
+friction: swamee-jain
+constants: {transition: {laminar_below: 2100, turbulent_above: 3800}}
+reservoirs: {hill: {level: 250 m}, mill: {level: 231 m}, weir: {level: 222.25 m}}
+junctions: {meet: {elevation: 200 m, withdrawal: 18 L/s}}
+pipes:
+  fixed-main: {from: hill, to: meet, length: 2100 m, bore: 300 mm, law: fixed, friction_factor: 0.0185, parallel: 3}
+  haaland-main: {from: meet, to: mill, length: 950 m, bore: 250 mm, roughness: 0.3 mm, law: haaland}
+  default-main: {from: weir, to: meet, length: 1300 m, bore: 400 mm, roughness: 1.5 mm,
+                 fittings: [{K: 0.8, K_reverse: 1.7, bore: 350 mm, count: 2}, {kind: bend-90}], ends: {from: rounded}}
+"""
+
+LOOP = """\
+reservoirs: {north: {level: 80 m}, south: {level: 62 m}}
+junctions:
+  ash: {elevation: 40 m, withdrawal: 30 L/s}
+  beech: {elevation: 35 m, inflow: 6 L/s}
+pipes:
+  north-ash: {from: north, to: ash, length: 900 m, bore: 250 mm, roughness: 0.1 mm, ends: {from: square}}
+  ash-beech: {from: beech, to: ash, length: 400 m, bore: 200 mm, roughness: 0.1 mm}
+  ash-beech-old: {from: ash, to: beech, length: 460 m, bore: 150 mm, roughness: 1 mm, fittings: [{K: 3, K_reverse: 1}]}
+  beech-south: {from: beech, to: south, length: 700 m, bore: 250 mm, roughness: 0.1 mm, ends: {to: projecting}}
+cases:
+  shut: {title: Old link shut, with: {pipes.ash-beech-old.open: false}}
+  warm: {title: Warm water at double draw, with: {fluid.temperature: 25 degC}, times: {"junctions.*.withdrawal": 2}}
+criteria:
+  pressure-min: {limit: 2 bar}
+  velocity-max: {limit: 1.4 m/s}
+"""
+
+PLAIN = """\
+reservoirs: {fell: {level: 312.5 m}, dale: {level: 290 m}}
+pipes: {drop: {from: dale, to: fell, length: 1520 m, bore: 200 mm, roughness: 0.25 mm, ends: {from: square, to: square}}}
+"""
+
+DRY = """\
+reservoirs: {brook: {level: 52 m}, pond: {level: 50 m}}
+junctions: {draw: {elevation: 49 m, withdrawal: 95 L/s}}
+pipes:
+  brook-arm: {from: brook, to: draw, length: 600 m, bore: 200 mm, roughness: 0.3 mm}
+  pond-arm: {from: pond, to: draw, length: 500 m, bore: 150 mm, roughness: 0.3 mm}
+criteria: {pressure-min: {limit: 10 m}}
+"""
+
+UNSOLVED = LOOP + "solver: {tolerance: 1e-30 m³/s}\n"
+
+
+class Work(NamedTuple):
+    """A folder of text, accounted for and composed."""
+
+    name: str
+    account: Account
+    document: Document
+
+
+TEXTS = {
+    "oil": OIL,
+    "transition": TRANSITION.replace("LAW", "colebrook-white"),
+    "transition-haaland": TRANSITION.replace("LAW", "haaland"),
+    "transition-swamee-jain": TRANSITION.replace("LAW", "swamee-jain"),
+    "laws": LAWS,
+    "laws-colebrook": LAWS.replace("friction: swamee-jain", "friction: colebrook-white"),
+    "loop": LOOP,
+    "plain": PLAIN,
+    "dry": DRY,
+}
+NAMES = ("demo", *TEXTS)
+
+
+@lru_cache(maxsize=None)
+def work(name: str) -> Work:
+    """Return works by name; each is accounted for once."""
+    if name == "demo":
+        account = pipeline.account(DEMO)
+    else:
+        with TemporaryDirectory() as folder:
+            account = accounted(Path(folder) / name, TEXTS[name])
+    return Work(name, account, pipeline.document(account, "checking"))
