@@ -12,7 +12,6 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from pathlib import Path
-from typing import TYPE_CHECKING
 
 from calc.account import Account, keep_account, liquid_terms, open_books
 from calc.components import Network
@@ -21,14 +20,13 @@ from calc.equation import ARRAYS, Value, value_of
 from calc.ledger import Ledger
 from calc.problems import IntegrityError, Problem, ProblemsFound
 from calc.project import Project, network, read_project
+from calc.report.composition import compose
+from calc.report.document import Document
 from calc.report.section import DISPLAY
 from calc.solve import Solution, solve
 from calc.solve.section import SOLVER, settings_of
 from calc.verification import enter_checks
 from calc.verification import run as verify
-
-if TYPE_CHECKING:
-    from calc.report.document import Document
 
 SECTIONS = (SOLVER, DISPLAY)
 """Sections of a project that are declared above the reader and passed down to it."""
@@ -98,8 +96,6 @@ def document(held: Account, purpose: str) -> Document:
     IntegrityError
         If this installation does not compute what is known to be right; then nothing may be issued.
     """
-    from calc.report.composition import compose  # noqa: PLC0415 - solving alone needs no report
-
     checks = verify()
     if failing := [check.id for check in checks if not check.passed]:
         raise IntegrityError(f"this installation fails its verification: {', '.join(failing)}")
