@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from calc.account import WITHOUT_SOURCE
-from calc.ledger import Column, Converted, Given, Library, Spot
+from calc.ledger import Column, Converted, Derived, Given, Library, Spot
 from calc.report.composer import INTO, Composer, Sheet, column, place
+from calc.report.derivation import COLUMNS as WORKED
+from calc.report.derivation import line
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
 from calc.report.formats import shortest
 from calc.report.numbers import written
@@ -29,6 +31,8 @@ def compose_inputs(composer: Composer) -> None:
         if rows:
             sheet.add(Heading(("As stated",) if case == "base" else ("Changed by case ", Quoted(case))))
             sheet.table("inputs", COLUMNS, rows)
+        followed = [line(sheet, spot, Quoted(spot.column.rows[spot.row]), ": ") for spot in _followed(sheet, case)]
+        sheet.table(f"followed-{case}", WORKED, followed)
     shipped = [c for c in given if isinstance(c.origin, Library)]
     rows = _rows(sheet, shipped)
     if rows:
@@ -76,6 +80,23 @@ def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
         standing = group
         rows += [_row(sheet, spot, named=gathered) for spot in by_component[group, name]]
     return rows
+
+
+FOLLOWED = ("scaled_value", "withdrawal_of_inflow")
+"""Laws by which the inputs of a component follow from what is stated."""
+
+
+def _followed(sheet: Sheet, case: str) -> list[Spot]:
+    """Return what a case makes of the inputs of components: factors applied, inflows turned into withdrawals."""
+    shown = shown_inputs(sheet.composer.account)
+    return [
+        Spot(one, row)
+        for one in sheet.composer.ledger.columns
+        if one.case == case and not one.of and isinstance(one.origin, Derived)
+        for row, name in enumerate(one.rows)
+        if one.origin.leaves[one.origin.which[row]].name in FOLLOWED
+        and (shown is None or name.partition("/")[0] in shown)
+    ]
 
 
 LARGE = ("pipes", "junctions", "fittings")

@@ -8,7 +8,7 @@ from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
 from calc.report.derivation import COLUMNS, line, lines
-from calc.report.document import Heading, Paragraph, Parts, Row, Soft, TableColumn
+from calc.report.document import Heading, Paragraph, Parts, Row, Soft, Strong, TableColumn
 from calc.report.numbers import Format
 from calc.report.selection import shown_junctions, shown_pipes
 
@@ -238,9 +238,11 @@ def _nodes(sheet: Sheet, case: CaseAccount) -> None:
         figure_column("largest velocity head", "m", 28, edge=True),
     )
     rows = []
+    negative = False
     for junction in shown_junctions(composer.account, case):
         cells: list[Parts] = [(name(junction),)]
         refs = []
+        below = False
         for quantity in ("head", "elevation", "pressure_head", "pressure", "velocity_head"):
             found = _here(ledger, f"junctions.{quantity}", case.id, junction)
             if found is None and quantity == "elevation":
@@ -252,7 +254,12 @@ def _nodes(sheet: Sheet, case: CaseAccount) -> None:
             if quantity != "elevation":
                 refs.append(found.id)
             cells.append((composer.number(found),))
-        rows.append(sheet.row(*cells, refs=refs))
+            below = below or (quantity == "pressure_head" and found.value < 0)
+        rows.append(sheet.row(*cells, refs=refs, tone="flag" if below else ""))
+        negative = negative or below
     if rows:
         sheet.add(Heading(("Junctions",)))
         sheet.table(f"junctions-{case.id}", columns, rows)
+    if negative:
+        said = " The pipes may not run full there, and then these results do not hold."
+        sheet.add(Paragraph((Strong(("The head lies below a junction.",), bar=True), said)))
