@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import lru_cache
+from functools import cache
 from pathlib import Path
 from tempfile import TemporaryDirectory
 from typing import NamedTuple
@@ -66,7 +66,8 @@ criteria:
 
 PLAIN = """\
 reservoirs: {fell: {level: 312.5 m}, dale: {level: 290 m}}
-pipes: {drop: {from: dale, to: fell, length: 1520 m, bore: 200 mm, roughness: 0.25 mm, ends: {from: square, to: square}}}
+pipes:
+  drop: {from: dale, to: fell, length: 1520 m, bore: 200 mm, roughness: 0.25 mm, ends: {from: square, to: square}}
 """
 
 DRY = """\
@@ -103,7 +104,7 @@ TEXTS = {
 NAMES = ("demo", *TEXTS)
 
 
-@lru_cache(maxsize=None)
+@cache
 def work(name: str) -> Work:
     """Return works by name; each is accounted for once."""
     if name == "demo":
