@@ -10,21 +10,16 @@
   const THIN = "\u202f", MINUS = "\u2212";
   let returnTo = null, keyed = false;
 
-  const at = new Map();
-  books.forEach((column, k) => {
-    const [group, ...rest] = column.name.split(".");
-    const quantity = rest.join(".");
-    const tail = column.case ? "@" + column.case : "";
-    column.rows.forEach((row, r) => {
-      const id = column.of ? `${group}.${column.of}.${quantity}${tail}#${row}` : `${group}.${row}.${quantity}${tail}`;
-      if (!at.has(id)) { at.set(id, { k, r, id }); }
-    });
-  });
-  const idOf = (k, r) => {
+  const idOf = (k, r) => {  // a section that stands once has no row
     const column = books[k], [group, ...rest] = column.name.split(".");
-    const subject = column.of || column.rows[r];
-    return `${group}.${subject}.${rest.join(".")}` + (column.case ? "@" + column.case : "") + (column.of ? "#" + column.rows[r] : "");
+    const words = [group, column.of || column.rows[r], rest.join(".")].filter(Boolean).join(".");
+    return words + (column.case ? "@" + column.case : "") + (column.of ? "#" + column.rows[r] : "");
   };
+  const at = new Map();
+  books.forEach((column, k) => column.rows.forEach((_, r) => {
+    const id = idOf(k, r);
+    if (!at.has(id)) { at.set(id, { k, r, id }); }
+  }));
 
   // --- words and numbers
   function written(value, figures) {

@@ -106,10 +106,10 @@ def _inputs(made: Ledger) -> None:
         "pipes.parallel", kinds.NUMBER, PIPES, [1.0] * 3, Library(marks(3), ("1",) * 3, ("default",) * 3), case="base"
     )
     site = Library((Mark("defaults.yaml", 3, 12),), ("9.80665 m/s²",), ("standard gravity",))
-    made.enter("site.gravity", kinds.ACCELERATION, ["works"], [9.80665], site)
-    made.enter("fluid.temperature", kinds.TEMPERATURE, ["water"], [283.15], Given(marks(1), ("10 degC",), ("",)))
-    made.enter("site.laminar_below", kinds.NUMBER, ["works"], [2000.0], site)
-    made.enter("site.turbulent_above", kinds.NUMBER, ["works"], [4000.0], site)
+    made.enter("site.gravity", kinds.ACCELERATION, [""], [9.80665], site)
+    made.enter("fluid.temperature", kinds.TEMPERATURE, [""], [283.15], Given(marks(1), ("10 degC",), ("",)))
+    made.enter("site.laminar_below", kinds.NUMBER, [""], [2000.0], site)
+    made.enter("site.turbulent_above", kinds.NUMBER, [""], [4000.0], site)
     made.enter(
         "pipes.coefficient",
         kinds.NUMBER,
@@ -494,23 +494,21 @@ def _derivation(scribe: Scribe) -> list[Block]:
         TableColumn(("into",), "", "left", 19, role="into"),
     )
     rows = [line for pipe, case in ((PIPES[0], "base"), (PIPES[1], "base")) for line in _worked(scribe, pipe, case)]
-    water_names = {"temperature": "fluid.water.temperature"}
+    water_names = {"temperature": "fluid.temperature"}
     for law, name in (
         (water.density, "density"),
         (water.dynamic_viscosity, "dynamic_viscosity"),
         (water.vapour_pressure, "vapour_pressure"),
     ):
-        ref = f"fluid.water.{name}@base"
+        ref = f"fluid.{name}@base"
         rows.append(
-            _line(
-                scribe, law.title, scribe.worked(law, "", "base", ref, water_names), ref, ("fluid.water.temperature",)
-            )
+            _line(scribe, law.title, scribe.worked(law, "", "base", ref, water_names), ref, ("fluid.temperature",))
         )
     return [Heading(("Worked lines of ", Quoted(PIPES[0]))), Table("derivation", columns, tuple(rows))]
 
 
 def _worked(scribe: Scribe, pipe: str, case: str) -> list[Row]:
-    shared = {"gravity": "site.works.gravity", "viscosity": "fluid.water.viscosity@base"}
+    shared = {"gravity": "site.gravity", "viscosity": "fluid.viscosity@base"}
     plan = (
         ("flow_each", velocity.flow_each, {}),
         ("velocity", velocity.mean_velocity, {}),

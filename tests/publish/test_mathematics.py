@@ -153,6 +153,6 @@ def test_numbers_of_a_formula_are_counted_as_often_as_printed() -> None:
         sample.PIPES[0],
         "base",
         f"pipes.{sample.PIPES[0]}.friction_loss@base",
-        {"gravity": "site.works.gravity", "factor": f"pipes.{sample.PIPES[0]}.friction_factor@base"},
+        {"gravity": "site.gravity", "factor": f"pipes.{sample.PIPES[0]}.friction_factor@base"},
     )
     assert formula(part, 60, anchor).count("<data") == len(list(occurrences(part))) == 7

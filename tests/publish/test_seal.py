@@ -15,7 +15,7 @@ from calc.publish.seal import printed, proved, seal, seal_document
 from calc.report.document import Document, Paragraph, Section
 
 ANCHOR = re.compile(r'<data class="n" value="([^"]*)" data-as="([^"]*)">(.*?)</data>', re.DOTALL)
-GRAVITY = '<data class="n" value="site.works.gravity" data-as="m/s²|d5||">9.80665</data>'
+GRAVITY = '<data class="n" value="site.gravity" data-as="m/s²|d5||">9.80665</data>'
 TAGS = re.compile(r"<[^>]*>")
 
 
@@ -86,11 +86,11 @@ def test_one_digit_in_the_whole_page_fails_it(a4) -> None:  # type: ignore[no-un
         ("<p>the flow is ٣</p>", "has no line in the ledger"),
         ("<p>x<sup>2</sup></p>", "has no line in the ledger"),
         ('<p><data class="n" value="pipes.nowhere.flow" data-as="L/s|d1||">1.0</data></p>', "no number has the id"),
-        ('<p><data class="n" value="site.works.gravity" data-as="m/s²">9.81</data></p>', "is printed as"),
+        ('<p><data class="n" value="site.gravity" data-as="m/s²">9.81</data></p>', "is printed as"),
         ("<p><b>x</p>", "closes <p>"),
         ("<p>x", "ends inside <p>"),
         (
-            f'<data class="n" value="site.works.gravity" data-as="m/s²|d5||">{GRAVITY}</data>',
+            f'<data class="n" value="site.gravity" data-as="m/s²|d5||">{GRAVITY}</data>',
             "inside another",
         ),
         (
@@ -118,7 +118,7 @@ def short(ledger: Ledger, *refs: str) -> Document:
 
 def test_a_number_left_out_moved_or_added_fails() -> None:
     ledger = sample.ledger()
-    refs = ("site.works.gravity", "pipes.sedge-link.flow@base")
+    refs = ("site.gravity", "pipes.sedge-link.flow@base")
     document = short(ledger, *refs)
     page = pdf.sheet_html(document, ledger, {})
     assert seal_document(page, document, ledger) == 2
