@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 import argparse
+import contextlib
 import re
-from collections.abc import Iterator
+import sys
+from collections.abc import Generator, Iterator
 from pathlib import Path
 
 from calc import pipeline
@@ -18,6 +20,8 @@ from calc.project import BASE
 
 LONGEST = 200
 """Characters of an id; a longer one has no near neighbour."""
+FRAMES, DEEPEST = 5, 20_000
+"""Calls within calls for one step of a derivation, and the most that are allowed."""
 _COLUMN = re.compile(r"(?P<name>[\w-]+\.[\w-]+)(?:@(?P<case>[\w-]+))?", re.ASCII)
 
 
@@ -28,7 +32,19 @@ def run(asked: argparse.Namespace) -> Outcome:
         account = pipeline.account(Path(asked.folder), progress.say)
     finally:
         progress.wipe()
-    return Outcome(said="\n".join(derivation(account, asked.id)))
+    with room_for(account.ledger):
+        return Outcome(said="\n".join(derivation(account, asked.id)))
+
+
+@contextlib.contextmanager
+def room_for(ledger: Ledger) -> Generator[None, None, None]:
+    """Let a tree be as deep as the ledger is long: each case may build upon the one before."""
+    before = sys.getrecursionlimit()
+    sys.setrecursionlimit(min(before + FRAMES * len(ledger.columns), DEEPEST))
+    try:
+        yield
+    finally:
+        sys.setrecursionlimit(before)
 
 
 def derivation(account: Account, wanted: str) -> Iterator[str]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import os
 from collections.abc import Sequence
 from pathlib import Path
 
@@ -20,7 +21,7 @@ def run(asked: argparse.Namespace) -> Outcome:
     """Issue every folder of a call; one that cannot be issued keeps no other from it."""
     purpose = getattr(asked, "for") or "checking"
     out = None if asked.out is None else Path(asked.out)
-    folders = list({Path(name).resolve(): Path(name) for name in asked.folders}.values())
+    folders = list({os.path.abspath(name): Path(name) for name in asked.folders}.values())  # noqa: PTH100 - never looks
     progress = Progress()
     try:
         if len(folders) == 1:
