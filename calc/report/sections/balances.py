@@ -101,6 +101,11 @@ def _said(case: CaseAccount, spot: Spot, sign: float) -> Parts:
 def _printed_sum(composer: Composer, case: CaseAccount, junction: str, ids: list[str], texts: list[str]) -> Number:
     """Enter the rounded flows as printed, and their sum, so that the printed column adds up on paper."""
     ledger, unit = composer.ledger, composer.flow_unit
+    form = Format(unit, decimals=_decimals(texts))
+    standing = [c for c in ledger.find("printed.imbalance", case.id) if c.case == case.id and junction in c.index]
+    if standing:
+        spot = Spot(standing[0], standing[0].index[junction])
+        return Number(spot.id, form, written(spot.value, FLOW, form))
     scale = factor(unit, FLOW)
     values = [float(Decimal(repr(read_back(text))) / Decimal(repr(scale))) for text in texts]
     said = Program("a flow toward the junction as printed, rounded")
@@ -114,7 +119,6 @@ def _printed_sum(composer: Composer, case: CaseAccount, junction: str, ids: list
         [junction],
         words="sum of the flows as printed",
     )
-    form = Format(unit, decimals=_decimals(texts))
     return Number(total.id(0), form, written(float(total.values[0]), FLOW, form))
 
 
