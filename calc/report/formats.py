@@ -29,8 +29,11 @@ BY_KIND = {
 }
 
 FLOW_DECIMALS = {"L/s": 2, "m³/s": 5, "m³/h": 2, "ML/d": 3}
+"""Decimals of a flow in the tables: about a hundredth of a litre a second in any unit."""
+BRIEF, FULL = -1, 4
+"""Decimals more than that: on the first page, and where flows are written in full to be added up."""
 RESIDUAL = 1e-6
-"""Residuals smaller than this, in the printed unit, are written as less than it."""
+"""Residuals of head smaller than this, in metres, are written as less than it; those of flow by `flow_form`."""
 
 BY_QUANTITY = {
     "reynolds": Format(decimals=0),
@@ -52,6 +55,12 @@ BY_QUANTITY = {
 RESIDUALS = ("closing_error", "imbalance", "difference", "largest_energy_error", "largest_imbalance")
 
 
+def flow_form(unit: str, more: int = 0, sign: str = "", *, residual: bool = False) -> Format:
+    """Return a format of flows with so many decimals more than in the tables; a residual has a bound."""
+    decimals = FLOW_DECIMALS[unit] + more
+    return Format(unit, decimals, sign=sign, bound=10.0**-decimals if residual else None)
+
+
 def usual(column: Column, flow_unit: str) -> Format:
     """Return the format in which a column is usually written."""
     quantity = column.quantity
@@ -60,7 +69,9 @@ def usual(column: Column, flow_unit: str) -> Format:
         form = Format(flow_unit, decimals=FLOW_DECIMALS.get(flow_unit, 3))
     if form is None:
         form = BY_KIND[column.kind]
-    if quantity.endswith(RESIDUALS) and not column.of:
+    if quantity.endswith(RESIDUALS) and column.kind is kinds.FLOW and not column.of:
+        form = flow_form(flow_unit, FULL, residual=True)
+    elif quantity.endswith(RESIDUALS) and not column.of:
         form = replace(form, decimals=6, significant=None, bound=RESIDUAL)
     return form
 

@@ -10,8 +10,9 @@ from typing import NamedTuple
 from accounts import ROOT, accounted
 
 from calc import pipeline
-from calc.account import Account
+from calc.account import Account, keep_account, open_books
 from calc.report.document import Document
+from calc.solve import Settings, solve
 
 DEMO = ROOT / "projects" / "ostrel-transfer-main"
 
@@ -79,7 +80,17 @@ pipes:
 criteria: {pressure-min: {limit: 10 m}}
 """
 
-UNSOLVED = LOOP + "solver: {tolerance: 1e-30 m³/s}\n"
+GREAT = """\
+display: {flow: m3/s, paper: Letter}
+reservoirs: {high-lake: {level: 940.25 m}, low-lake: {level: 610.5 m}, forebay: {level: 655 m}}
+junctions: {fork: {elevation: 402 m, withdrawal: 1.25 m³/s}}
+pipes:
+  lake-main: {from: high-lake, to: fork, length: 21.4 km, bore: 1850 mm, roughness: 0.6 mm, ends: {from: rounded}}
+  valley-main: {from: fork, to: low-lake, length: 8.15 km, bore: 1400 mm, roughness: 0.3 mm, parallel: 2}
+  forebay-main: {from: forebay, to: fork, length: 950 m, bore: 900 mm, roughness: 0.3 mm}
+solver: {narrowing: bisection, start: {fork: 700 m}}
+criteria: {pressure-max: {limit: 25 bar}, gradient-max: {limit: 12 m/km}}
+"""
 
 
 class Work(NamedTuple):
@@ -100,6 +111,7 @@ TEXTS = {
     "loop": LOOP,
     "plain": PLAIN,
     "dry": DRY,
+    "great": GREAT,
 }
 NAMES = ("demo", *TEXTS)
 
@@ -113,3 +125,14 @@ def work(name: str) -> Work:
         with TemporaryDirectory() as folder:
             account = accounted(Path(folder) / name, TEXTS[name])
     return Work(name, account, pipeline.document(account, "checking"))
+
+
+def given_up(folder: Path, case: str, after: int) -> Work:
+    """Return works of which one case is given up after a few trials or iterations."""
+    project = pipeline.read(folder)
+    ledger = open_books(project)
+    solved = pipeline.solve_cases(project, ledger)
+    network = solved[case][0]
+    solved[case] = (network, solve(network, Settings(limit=after)))
+    account = keep_account(project, ledger, solved)
+    return Work(case, account, pipeline.document(account, "checking"))

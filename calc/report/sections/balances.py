@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from decimal import Decimal
 
 import numpy as np
@@ -12,12 +13,11 @@ from calc.ledger import Combined, Program, Spot, View
 from calc.ledger.accountant import Accountant
 from calc.report.composer import Composer, Sheet, cited, column, figure_column, name
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Row, Soft, Strong, TableColumn
-from calc.report.formats import usual
+from calc.report.formats import FULL, RESIDUAL, flow_form, usual
 from calc.report.numbers import Format, read_back, written
 from calc.report.selection import MOST_PIPES, shown_junctions
 from calc.units import factor
 
-FULL_DECIMALS = 6
 FROM = TableColumn(("from",), width=22, edge=True, role="from")
 
 
@@ -66,14 +66,14 @@ def _junction(sheet: Sheet, case: CaseAccount, imbalance: Spot, junction: str) -
             continue
         spot = Spot(*found)
         sign = "turned" if origin.signs[k] < 0 else "+"
-        full = composer.number(spot, Format(unit, decimals=FULL_DECIMALS, sign=sign))
+        full = composer.number(spot, flow_form(unit, FULL, sign))
         usual_form = usual(spot.column, unit)
         printed = composer.number(spot, Format(unit, usual_form.decimals, sign=sign))
         rows.append(sheet.row(_said(case, spot, origin.signs[k]), (full,), (printed,), (Cite((spot.id,)),)))
         texts.append(printed.text)
         ids.append(spot.column.rows[spot.row] if not spot.column.of else spot.column.of)
     total = _printed_sum(composer, case, junction, ids, texts)
-    full = composer.number(imbalance, Format(unit, decimals=FULL_DECIMALS, bound=10.0**-FULL_DECIMALS))
+    full = composer.number(imbalance, flow_form(unit, FULL, residual=True))
     rows.append(
         sheet.row(
             (Strong(("Imbalance",)),),
@@ -146,6 +146,7 @@ def _energy(sheet: Sheet, case: CaseAccount) -> None:
 
 
 HEAD = Format("m", decimals=4)
+HEAD_RESIDUAL = Format("m", decimals=6, bound=RESIDUAL)
 
 
 def _node(composer: Composer, case: str, node: str) -> Spot:
@@ -214,13 +215,14 @@ def _opinion(sheet: Sheet, case: CaseAccount) -> None:
         if allowed is None:
             continue
         within = spot.value <= allowed.value
-        unit = composer.flow_unit if spot.column.kind is FLOW else "m"
+        residual = flow_form(composer.flow_unit, FULL, residual=True) if spot.column.kind is FLOW else HEAD_RESIDUAL
+        unit = residual.unit
         verdict: Parts = ("agrees",) if within else (Strong(("differs",), bar=True),)
         rows.append(
             sheet.row(
                 (words,),
-                (composer.number(spot, Format(unit, decimals=6, bound=1e-6)),),
-                (composer.number(allowed, Format(unit, decimals=6)),),
+                (composer.number(spot, residual),),
+                (composer.number(allowed, replace(residual, bound=None)),),
                 (unit,),
                 verdict,
                 (cited(composer.ledger, [allowed]),),
@@ -246,8 +248,8 @@ def _opinions(sheet: Sheet, case: CaseAccount) -> None:
     rows = []
     for pipe in names:
         spots = [ledger.spot(f"pipes.{pipe}.{q}@{case.id}") for q in ("flow", "second_flow", "second_flow_difference")]
-        form = Format(unit, decimals=FULL_DECIMALS)
+        form = flow_form(unit, FULL)
         cells: list[Parts] = [(composer.number(spot, form),) for spot in spots[:2]]
-        cells.append((composer.number(spots[2], Format(unit, decimals=6, bound=1e-6)),))
+        cells.append((composer.number(spots[2], flow_form(unit, FULL, residual=True)),))
         rows.append(sheet.row((name(pipe),), *cells, refs=[spot.id for spot in spots[1:]]))
     sheet.table(f"opinions-{case.id}", columns, rows)

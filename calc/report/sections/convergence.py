@@ -22,7 +22,7 @@ from calc.report.document import (
     Strong,
     TableColumn,
 )
-from calc.report.formats import RESIDUAL
+from calc.report.formats import FULL, RESIDUAL, flow_form
 from calc.report.numbers import Format, raised
 from calc.solve import Steps, Trials
 from calc.solve.branch import Branches
@@ -84,7 +84,7 @@ def _trial_row(  # noqa: PLR0917
     composer, ledger = sheet.composer, sheet.composer.ledger
     head = _trial(ledger, "junctions.head", case.id, junction, t)
     imbalance = _trial(ledger, "junctions.imbalance", case.id, junction, t)
-    flow = Format(composer.flow_unit, decimals=2)
+    flow = flow_form(composer.flow_unit)
     cells: list[Parts] = [(Own(str(t + 1), "id"),)]
     for ends in (trials.low_end, trials.high_end):
         at = np.flatnonzero(trials.head[:t] == ends[t])
@@ -307,8 +307,10 @@ def _step_row(sheet: Sheet, case: CaseAccount, steps: Steps, k: int, shown: list
             return None
         spot = Spot(columns[0], columns[0].index[label])
         refs.append(spot.id)
-        unit = composer.flow_unit if spot.column.kind.unit == "m³/s" else spot.column.kind.unit
-        form = HEAD_FORM if column_name == "junctions.head" else Format(unit, significant=4, bound=RESIDUAL)
+        flow = spot.column.kind is FLOW
+        unit = composer.flow_unit if flow else spot.column.kind.unit
+        bound = flow_form(unit, FULL, residual=True).bound if flow else RESIDUAL
+        form = HEAD_FORM if column_name == "junctions.head" else Format(unit, significant=4, bound=bound)
         return composer.number(spot, form)
 
     def told(number: Number | None) -> Parts:

@@ -21,6 +21,7 @@ from calc.report.document import (
     Table,
     TableColumn,
 )
+from calc.report.formats import BRIEF, flow_form
 from calc.report.numbers import Format
 
 STATUS = {
@@ -188,7 +189,7 @@ def _pipe(sheet: Sheet, cases: list[CaseAccount], pipe: str) -> Row:
             continue
         to = record.text("to") if spot.value > 0 else record.text("from")
         words: Parts = ("to ", name(to)) if spot.value else ("at rest",)
-        form = Format(sheet.composer.flow_unit, decimals=1, sign="size")
+        form = flow_form(sheet.composer.flow_unit, BRIEF, "size")
         cells += [(Soft(words),), (sheet.composer.number(spot, form),)]
     return sheet.row(*cells)
 
@@ -198,7 +199,7 @@ def _reservoir(sheet: Sheet, cases: list[CaseAccount], reservoir: str) -> Row:
     for case in cases:
         spot = sheet.composer.ledger.spot(f"reservoirs.{reservoir}.outflow@{case.id}")
         words = "gives" if spot.value > 0 else "takes" if spot.value < 0 else "at rest"
-        form = Format(sheet.composer.flow_unit, decimals=1, sign="size")
+        form = flow_form(sheet.composer.flow_unit, BRIEF, "size")
         cells += [(Soft((words,)),), (sheet.composer.number(spot, form),)]
     return sheet.row(*cells)
 

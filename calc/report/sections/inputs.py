@@ -27,7 +27,7 @@ def compose_inputs(composer: Composer) -> None:
     ]
     users = [c for c in given if not isinstance(c.origin, Library)]
     for case in composer.account.project.cases:
-        rows = _rows(sheet, [c for c in users if c.case == case])
+        rows = _rows(sheet, [c for c in users if c.case == case or (case == "base" and not c.case)])
         if rows:
             sheet.add(Heading(("As stated",) if case == "base" else ("Changed by case ", Quoted(case))))
             sheet.table("inputs", COLUMNS, rows)
