@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from calc.account import CaseAccount
+from calc.account import MOST_BRANCHES, CaseAccount
 from calc.kinds import FLOW
 from calc.ledger import Ledger, Spot
 from calc.report import figures
@@ -28,8 +28,8 @@ from calc.solve import Steps, Trials
 from calc.solve.branch import Branches
 from calc.units import factor
 
-MOST_BRANCHES = 6
-"""Branches whose flows fit beside the trial heads; more are printed as norms."""
+ABREAST = 6
+"""Branches whose flows fit beside the trial heads; more have tables of their own."""
 MOST_HEADS = 5
 SAMPLES = 121
 
@@ -52,7 +52,7 @@ def add_convergence(sheet: Sheet, case: CaseAccount) -> None:
 def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     junction = case.network.nodes[trials.junction]
     branches = [case.network.pipes.rows[k] for k in trials.branches.tolist()]
-    shown = branches if len(branches) <= MOST_BRANCHES else []
+    shown = branches if len(branches) <= ABREAST else []
     flow = sheet.composer.flow_unit
     columns: list[TableColumn] = [
         column("trial", 10),
@@ -66,11 +66,27 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     rows = [_trial_row(sheet, case, trials, t, junction, shown) for t in range(len(trials.head))]
     sheet.table(f"trials-{case.id}", columns, rows)
     said = "Flows are toward the junction; the imbalance is their sum less the withdrawal."
-    if not shown:
+    if len(branches) > MOST_BRANCHES:
         said += " The flows of the branches are not printed, there being many."
     said += " At a low end water is to spare, at a high end it is lacking. Rules are stated under the method;"
     said += " the trials that a rule stands on are named in the order of its letters a, b, c."
     sheet.add(Paragraph((said,), "small"))
+    if ABREAST < len(branches) <= MOST_BRANCHES:
+        for first in range(0, len(branches), ABREAST):
+            _flow_table(sheet, case, trials, branches[first : first + ABREAST])
+
+
+def _flow_table(sheet: Sheet, case: CaseAccount, trials: Trials, branches: list[str]) -> None:
+    """Add the flows toward the junction of some branches at every trial."""
+    ledger, flow = sheet.composer.ledger, sheet.composer.flow_unit
+    columns = [column("trial", 10)]
+    columns += [TableColumn((name(branch),), unit=flow, align="right", role="value") for branch in branches]
+    rows = []
+    for t in range(len(trials.head)):
+        spots = [_trial(ledger, "pipes.flow_toward", case.id, branch, t) for branch in branches]
+        cells: list[Parts] = [(sheet.composer.number(spot, flow_form(flow)),) for spot in spots]
+        rows.append(sheet.row((Own(str(t + 1), "id"),), *cells, refs=[spot.id for spot in spots]))
+    sheet.table(f"flows-{case.id}", columns, rows)
 
 
 HEAD_FORM = Format("m", decimals=5)
