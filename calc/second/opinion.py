@@ -58,6 +58,4 @@ def form_opinion(works: Works) -> Opinion:
     head = walk_heads(works, tree, head_loss(pipes, flow)[0])
     if not (np.all(np.isfinite(flow)) and np.all(np.isfinite(head))):
         reason = BEYOND
-    return Opinion(
-        flow=flow, head=head, converged=not reason, method=METHOD, iterations=iterations, reason=reason
-    )
+    return Opinion(flow=flow, head=head, converged=not reason, method=METHOD, iterations=iterations, reason=reason)

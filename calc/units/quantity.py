@@ -78,9 +78,7 @@ def read(text: str, kind: Kind) -> Quantity:
             _refuse_text(text, kind)
         found = unit(rest[gap.end() :])
         if isinstance(found, Flaw):
-            raise UnitTrouble(
-                found.code, f"{quoted(text)} {found.reason}", _expected(kind, match[0]), found.hint
-            )
+            raise UnitTrouble(found.code, f"{quoted(text)} {found.reason}", _expected(kind, match[0]), found.hint)
         if found.dimension != kind.dimension:
             _refuse_dimension(text, kind, match[0], found)
     else:

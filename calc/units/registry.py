@@ -54,8 +54,7 @@ def worth(name: str) -> Worth:
     word = WORDS[name]
     if word.offset:
         zero, one = (
-            Fraction(registry.Quantity(Fraction(n), word.registry_name).to("kelvin").magnitude)
-            for n in (0, 1)
+            Fraction(registry.Quantity(Fraction(n), word.registry_name).to("kelvin").magnitude) for n in (0, 1)
         )
         return Worth(one - zero, zero, Dimension(temperature=Fraction(1)))
     quantity = (Fraction(1) * registry.parse_expression(word.registry_name)).to_base_units()

@@ -116,9 +116,7 @@ class _Composer:
             found = f"the anchor '&{shown(event.anchor)}' marks a value for use elsewhere"
             self.report(mark, "yaml-anchor", found, "the value alone", "remove the anchor")
         if event.tag is not None:
-            self.report(
-                mark, "yaml-tag", f"the tag '{shown(event.tag)}'", "the value alone", "remove the tag"
-            )
+            self.report(mark, "yaml-tag", f"the tag '{shown(event.tag)}'", "the value alone", "remove the tag")
 
     def count(self, mark: Mark) -> None:
         """Count a node; end the file at the limit."""
@@ -167,11 +165,7 @@ class _Composer:
     def take_key(self, top: _Open, node: Node) -> None:
         """Make a node the key of the next value; a key that is refused drops its value."""
         entries = top.entries or {}
-        if (
-            isinstance(node, Scalar)
-            and node.text not in entries
-            and (node.quoted or node.text not in {"", "<<"})
-        ):
+        if isinstance(node, Scalar) and node.text not in entries and (node.quoted or node.text not in {"", "<<"}):
             top.key = node
             return
         top.dropped = True

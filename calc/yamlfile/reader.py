@@ -40,9 +40,7 @@ class Sources:
     texts: dict[str, str]
 
 
-def read_text(
-    name: str, content: bytes | str, loader: type[Any] = LOADER
-) -> tuple[Mapping | None, list[Problem]]:
+def read_text(name: str, content: bytes | str, loader: type[Any] = LOADER) -> tuple[Mapping | None, list[Problem]]:
     """Read one YAML file.
 
     Parameters
@@ -77,9 +75,7 @@ def read_text(
     held = "a text" if isinstance(node, Scalar) else "a list"
     found = f"the file holds {held}"
     hint = "write a ':' and a space behind each key"
-    return None, sorted(
-        [*problems, Problem(node.mark, "not-a-mapping", "", found, "'key: value' lines", hint)]
-    )
+    return None, sorted([*problems, Problem(node.mark, "not-a-mapping", "", found, "'key: value' lines", hint)])
 
 
 def _tabs(name: str, text: str) -> tuple[list[Problem], bool]:
@@ -156,9 +152,7 @@ def _names(folder: Path) -> list[str] | Problem:
         return names
     misnamed = [name for name in present if name.lower().endswith((".yml", ".yaml")) and name.isprintable()]
     hint = f"rename '{misnamed[0]}' so that it ends in '.yaml'" if misnamed else ""
-    return Problem(
-        at, "nothing-to-read", "", "no *.yaml file lies in this folder", "a file network.yaml", hint
-    )
+    return Problem(at, "nothing-to-read", "", "no *.yaml file lies in this folder", "a file network.yaml", hint)
 
 
 def _add(sources: Sources, entry: Entry) -> None:
@@ -168,7 +162,5 @@ def _add(sources: Sources, entry: Entry) -> None:
         found = f"the key '{shown(entry.key.text)}' stands twice, first at {first.key.mark}"
         hint = "move both into one file, under one key"
         sources.problems.append(
-            Problem(
-                entry.key.mark, "duplicate-key", shown(entry.key.text), found, "each top-level key once", hint
-            )
+            Problem(entry.key.mark, "duplicate-key", shown(entry.key.text), found, "each top-level key once", hint)
         )

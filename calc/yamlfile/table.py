@@ -201,9 +201,7 @@ class _Reading:
             self.report(whole, "ragged-row", words)
             return
         id_cell = cells[self.id_at]
-        key = Scalar(
-            id_cell.text, Mark(self.name, number, id_cell.column, len(id_cell.text) or 1), id_cell.quoted
-        )
+        key = Scalar(id_cell.text, Mark(self.name, number, id_cell.column, len(id_cell.text) or 1), id_cell.quoted)
         if not key.text:
             self.report(key.mark, "missing-id", ("no id in this row", "an id", ""))
         elif key.text in entries:

@@ -57,9 +57,7 @@ def stubs(tmp_path: Path) -> Path:
     return tmp_path
 
 
-def test_a_tree_in_order_keeps_every_contract(
-    stubs: Path, repository: Path, monkeypatch: pytest.MonkeyPatch
-) -> None:
+def test_a_tree_in_order_keeps_every_contract(stubs: Path, repository: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     done = lint(repository, stubs, monkeypatch)
     assert done.returncode == 0, done.stdout + done.stderr
 

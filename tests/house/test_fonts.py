@@ -61,9 +61,7 @@ def test_faces_carry_our_names_and_the_licence(faces: dict[str, bytes]) -> None:
         assert "Reserved Font Name" in names.getDebugName(0)
         assert "Open Font License" in names.getDebugName(13)
         # the licence reserves this word: no name by which a face is called may hold it
-        assert not any(
-            "Source" in (names.getDebugName(number) or "") for number in (1, 2, 3, 4, 6, 16, 17, 25)
-        )
+        assert not any("Source" in (names.getDebugName(number) or "") for number in (1, 2, 3, 4, 6, 16, 17, 25))
     assert families == FAMILIES
     for licence in ("OFL-serif.txt", "OFL-mono.txt"):
         assert "SIL OPEN FONT LICENSE Version 1.1" in (places.fonts() / licence).read_text(encoding="utf-8")
@@ -73,9 +71,7 @@ def test_faces_hold_the_signs_that_pages_print(faces: dict[str, bytes]) -> None:
     signs = set("0123456789 −×·≥≤√∆′°²³ενρπμΣλφ½–—…éüñß") | {"\u00a0", "\u2009"}
     for name, content in faces.items():
         if not name.startswith("LedgerMono"):
-            assert {
-                sign for sign in signs if ord(sign) not in TTFont(BytesIO(content)).getBestCmap()
-            } == set(), name
+            assert {sign for sign in signs if ord(sign) not in TTFont(BytesIO(content)).getBestCmap()} == set(), name
 
 
 def test_figures_of_a_face_are_of_one_width(faces: dict[str, bytes]) -> None:

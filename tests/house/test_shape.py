@@ -12,11 +12,7 @@ REPOSITORY = Path(__file__).resolve().parents[2]
 CODE = [*sorted((REPOSITORY / "calc").rglob("*.py")), *sorted((REPOSITORY / ".build").glob("*.py"))]
 PACKAGES = sorted(path for path in CODE if path.name == "__init__.py")
 # The command and publishing import late, to start fast; everything else says at its top what it knows.
-EARLY = [
-    path
-    for path in CODE
-    if path.relative_to(REPOSITORY).parts[:2] not in {("calc", "cli"), ("calc", "publish")}
-]
+EARLY = [path for path in CODE if path.relative_to(REPOSITORY).parts[:2] not in {("calc", "cli"), ("calc", "publish")}]
 EARLY = [path for path in EARLY if path.name != "cli.py"]
 VAGUE = {"utils", "util", "helpers", "helper", "manager", "base", "data", "info", "process", "handle", "misc"}
 VISIBLE = {
@@ -58,9 +54,7 @@ def test_a_function_has_at_most_60_lines(path: Path) -> None:
 
 @pytest.mark.parametrize("path", CODE, ids=local)
 def test_names_say_what_is_meant(path: Path) -> None:
-    names = {
-        node.name.strip("_").lower() for node in definitions(ast.parse(path.read_text(encoding="utf-8")))
-    }
+    names = {node.name.strip("_").lower() for node in definitions(ast.parse(path.read_text(encoding="utf-8")))}
     assert VAGUE.isdisjoint(names)
     assert path.stem not in VAGUE
 

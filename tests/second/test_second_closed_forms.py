@@ -109,10 +109,7 @@ def test_a_tree_follows_from_continuity_alone(build: Build) -> None:
 def test_equal_levels_move_nothing(build: Build, pipe: dict[str, float]) -> None:
     ends = [(0, 2), (1, 2), (2, 3), (3, 2), (0, 1), (3, 0)]
     bores = [0.1, 3.0, 0.005, 2.0, 0.3, 1.0]
-    pipes = [
-        {"start": start, "end": end, "bore": bore, **pipe}
-        for (start, end), bore in zip(ends, bores, strict=True)
-    ]
+    pipes = [{"start": start, "end": end, "bore": bore, **pipe} for (start, end), bore in zip(ends, bores, strict=True)]
     opinion = form_opinion(build([77.7, 77.7, None, None], pipes))
     assert opinion.converged
     assert np.max(np.abs(opinion.flow)) <= 1e-12
@@ -212,9 +209,7 @@ def test_an_evaluation_tells_where_an_answer_is_wrong(build: Build) -> None:
     unit = drag(0.02, 100, 0.3)
     flow, head = np.array([0.2, 0.18, 0.0]), np.array([30.0, 26.0, 20.0])
     told = evaluate(works, flow, head)
-    np.testing.assert_allclose(
-        told.energy_error, [4.0 - unit * 0.2**2, 6.0 - unit * 0.18**2, 0.0], rtol=1e-12
-    )
+    np.testing.assert_allclose(told.energy_error, [4.0 - unit * 0.2**2, 6.0 - unit * 0.18**2, 0.0], rtol=1e-12)
     np.testing.assert_allclose(told.imbalance, [0.0, 0.2 - 0.18 - 0.01, 0.0], atol=1e-15)
     assert told.largest_energy_error == np.max(np.abs(told.energy_error))
     assert told.largest_imbalance == pytest.approx(0.01, rel=1e-12)

@@ -111,9 +111,7 @@ def test_a_fixed_factor_holds_at_every_reynolds_number(build: Build) -> None:
 
 def test_fittings_know_the_direction_and_parallel_pipes_share(build: Build) -> None:
     alone = one_pipe(build, length=50.0, bore=0.1, factor=0.02, loss_forward=40.0, loss_reverse=90.0)
-    three = one_pipe(
-        build, length=50.0, bore=0.1, factor=0.02, loss_forward=40.0, loss_reverse=90.0, parallel=3
-    )
+    three = one_pipe(build, length=50.0, bore=0.1, factor=0.02, loss_forward=40.0, loss_reverse=90.0, parallel=3)
     friction = 8.0 * 0.02 * 50.0 / (math.pi**2 * GRAVITY * 0.1**5)
     for sign, fittings in ((1.0, 40.0), (-1.0, 90.0)):
         expected = sign * (friction + fittings) * 0.02**2

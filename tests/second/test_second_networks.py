@@ -142,9 +142,7 @@ def test_one_pipe_laid_the_other_way_flips_its_sign_alone(build: Build) -> None:
         {"start": 2, "end": 0, "roughness": 1e-4, "loss_forward": 70.0, "loss_reverse": 20.0},
         *pipes[1:],
     ]
-    first, second = (
-        form_opinion(build([40.0, 25.0, None], each, [0.0, 0.0, 0.1])) for each in (pipes, turned)
-    )
+    first, second = (form_opinion(build([40.0, 25.0, None], each, [0.0, 0.0, 0.1])) for each in (pipes, turned))
     assert first.flow[0] > 0.0
     np.testing.assert_allclose(second.flow, first.flow * [-1.0, 1.0, 1.0], rtol=1e-11)
     np.testing.assert_allclose(second.head, first.head, rtol=1e-13)

@@ -52,9 +52,7 @@ def compare(got: dict[str, float], expected: dict[str, Any]) -> None:
     for name, published in expected.items():
         value = got[name] * published.get("scale", 1.0)
         # What is stated holds alone: without atol the default of 1e-12 is below any digit published.
-        assert value == pytest.approx(
-            published["value"], rel=published.get("rtol"), abs=published.get("atol")
-        ), name
+        assert value == pytest.approx(published["value"], rel=published.get("rtol"), abs=published.get("atol")), name
 
 
 def results(case: dict[str, Any], works: Works) -> dict[str, float]:

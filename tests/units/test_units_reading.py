@@ -114,9 +114,7 @@ def test_both_micro_signs_are_one() -> None:
         ("", kinds.TIME, "not-a-quantity", "nothing is written here", "a time, such as '6 h'", ""),
     ],
 )
-def test_problems_in_plain_words(
-    text: str, kind: Kind, code: str, found: str, expected: str, hint: str
-) -> None:
+def test_problems_in_plain_words(text: str, kind: Kind, code: str, found: str, expected: str, hint: str) -> None:
     raised = trouble(text, kind)
     assert (raised.code, raised.found, raised.expected, raised.hint) == (code, found, expected, hint)
 

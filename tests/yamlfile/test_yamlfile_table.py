@@ -34,9 +34,7 @@ def plain(node: Node) -> object:
 
 def test_a_table_reads_as_the_same_network_in_yaml(tmp_path: Path) -> None:
     written = "bore [mm],length [m],id,from,to,law\n384.4,1850,upper-main,upper,marl-cross,\n"
-    mapping, _ = read_text(
-        "network.yaml", "upper-main: {bore: 384.4 mm, length: 1850 m, from: upper, to: marl-cross}"
-    )
+    mapping, _ = read_text("network.yaml", "upper-main: {bore: 384.4 mm, length: 1850 m, from: upper, to: marl-cross}")
     found = read(tmp_path, written)
     assert found.problems == []
     assert mapping is not None

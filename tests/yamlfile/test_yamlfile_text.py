@@ -43,9 +43,7 @@ def test_nodes_keep_their_places() -> None:
     text = "pipes:\n  upper-main:\n    bore: 384.4 mm  # inside\n    fittings: [{kind: 'bend-90'}, x]\n"
     mapping, found = read(text)
     assert found == []
-    bore = Entry(
-        Scalar("bore", Mark("f.yaml", 3, 5, 4)), Scalar("384.4 mm", Mark("f.yaml", 3, 11, 8), quoted=False)
-    )
+    bore = Entry(Scalar("bore", Mark("f.yaml", 3, 5, 4)), Scalar("384.4 mm", Mark("f.yaml", 3, 11, 8), quoted=False))
     bend = Mapping(
         (
             Entry(
