@@ -34,12 +34,7 @@ def faults(figure: Figure) -> list[tuple[str, str, str]]:
         measured = [(t.get_text(), ink(t, renderer), t.get_fontsize()) for t in texts(figure)]
     width, height = figure.bbox.width, figure.bbox.height
     for k, (text, box, size) in enumerate(measured):
-        if (
-            box[0] < -TOLERANCE
-            or box[1] < -TOLERANCE
-            or box[2] > width + TOLERANCE
-            or box[3] > height + TOLERANCE
-        ):
+        if box[0] < -TOLERANCE or box[1] < -TOLERANCE or box[2] > width + TOLERANCE or box[3] > height + TOLERANCE:
             found.append(("off the sheet", text, ""))
         exponent = text.startswith("\u2212") and text[1:].isdigit()
         if size < (6.0 if exponent else 8.0):

@@ -104,15 +104,10 @@ def network(count: int, *, names: int = 0, level: float | None = None) -> Schema
 
     def named(i: int, what: str) -> str:
         place = f"{PLACES[i % len(PLACES)]}{'' if i < len(PLACES) else '-' + str(i // len(PLACES) + 1)}{what}"
-        return (
-            place
-            if len(place) >= names
-            else (place + "-" + "valve-house-on-the-north-road")[:names].rstrip("-")
-        )
+        return place if len(place) >= names else (place + "-" + "valve-house-on-the-north-road")[:names].rstrip("-")
 
     heads = [
-        level if level is not None else round(216.0 - 47.0 * i / nodes - 3.1 * ((7 * i) % 5), 2)
-        for i in range(nodes)
+        level if level is not None else round(216.0 - 47.0 * i / nodes - 3.1 * ((7 * i) % 5), 2) for i in range(nodes)
     ]
     titles = [named(i, "") for i in range(nodes)]
     pairs = [(i, i + 1 + (i % 2 if i + 2 < nodes else 0)) for i in range(nodes - 1)]

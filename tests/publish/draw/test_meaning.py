@@ -75,9 +75,7 @@ def test_arrowheads_point_the_way_the_water_runs(count: int) -> None:
         for pipe in figure.pipes:
             way = lines(drawn, f"pipe {pipe.name}")[0]
             run = (way[-1] - way[0]) / np.hypot(*(way[-1] - way[0]))
-            mine = min(
-                tips, key=lambda tip: abs(np.cross(np.append(run, 0), np.append(tip[0] - way[0], 0))[2])
-            )
+            mine = min(tips, key=lambda tip: abs(np.cross(np.append(run, 0), np.append(tip[0] - way[0], 0))[2]))
             assert (mine[0] - mine[1:3].mean(0)) @ run > 0
             junction = lines(drawn, "riser")[0][0]
             toward = np.hypot(*(way[-1] - junction)) < 1.0

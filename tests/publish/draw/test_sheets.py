@@ -151,8 +151,7 @@ def test_clean_for_any_course(seed: int) -> None:
     chance = random.Random(seed)  # noqa: S311 - seeded, not secret
     count = chance.randint(1, 60)
     values = tuple(
-        chance.choice([0.0, None, chance.choice([-1, 1]) * 10 ** chance.uniform(-14, 6)])
-        for _ in range(count)
+        chance.choice([0.0, None, chance.choice([-1, 1]) * 10 ** chance.uniform(-14, 6)]) for _ in range(count)
     )
     panel = Panel(
         "imbalance",
