@@ -64,9 +64,7 @@ def is_star(figure: Schematic) -> bool:
 
 def levels(figure: Schematic, *, by_distance: bool) -> list[float]:
     """Return every head, and where up is elevation every elevation, that the drawing must hold."""
-    found = [reservoir.level for reservoir in figure.reservoirs] + [
-        junction.head for junction in figure.junctions
-    ]
+    found = [reservoir.level for reservoir in figure.reservoirs] + [junction.head for junction in figure.junctions]
     if by_distance:
         found += [j.elevation for j in figure.junctions if j.elevation is not None]
     return found
@@ -97,9 +95,7 @@ def _lone(figure: Schematic, area: Box, up: Scale) -> Arrangement:
         pipe.start: (across.start, up.at(level[pipe.start])),
         pipe.end: (across.end, up.at(level[pipe.end])),
     }
-    return Arrangement(
-        places, {pipe.start: -1, pipe.end: 1}, {}, by_distance=True, area=area, up=up, across=across
-    )
+    return Arrangement(places, {pipe.start: -1, pipe.end: 1}, {}, by_distance=True, area=area, up=up, across=across)
 
 
 def _star(figure: Schematic, area: Box, up: Scale, heads: dict[str, float]) -> Arrangement | None:
@@ -150,10 +146,7 @@ def _star_price(
 
 def _angle_between(centre: Point, one: Point, other: Point) -> float:
     """Return the angle at the junction between the feet of two basins on one side, rad."""
-    a, b = (
-        atan2(point[1] - BASIN_DEPTH - centre[1], max(1e-9, abs(point[0] - centre[0])))
-        for point in (one, other)
-    )
+    a, b = (atan2(point[1] - BASIN_DEPTH - centre[1], max(1e-9, abs(point[0] - centre[0]))) for point in (one, other))
     return abs(a - b)
 
 

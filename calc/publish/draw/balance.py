@@ -87,9 +87,7 @@ def _draw(figure: Balance) -> Sheet:
     obstacles, labels = _trials(figure, sheet, plan, say)
     head = (plan.across.at(figure.accepted_head), plan.up.at(0.0))
     obstacles.append(marks.head(sheet, head))
-    labels.append(
-        Label(((f"head {figure.accepted_text}", say.accepted),), head, (), "NE SW ENE WSW N S", 6.0, 0)
-    )
+    labels.append(Label(((f"head {figure.accepted_text}", say.accepted),), head, (), "NE SW ENE WSW N S", 6.0, 0))
     lines.append(([(head[0], plan.rows.foot), (head[0], plan.plot.top)], 0.8))
     _rows(figure, sheet, plan, say, shown)
     frame = Box(plan.plot.left + 1, plan.plot.foot + 1, plan.plot.right - 1, plan.plot.top - 1)
@@ -125,9 +123,7 @@ def _named(figure: Balance) -> tuple[BalanceBranch, ...]:
     return tuple(branch for branch in figure.branches if id(branch) in chosen)
 
 
-def _endings(
-    figure: Balance, say: Voices, named: tuple[BalanceBranch, ...]
-) -> list[tuple[str, Voice, float]]:
+def _endings(figure: Balance, say: Voices, named: tuple[BalanceBranch, ...]) -> list[tuple[str, Voice, float]]:
     """Return the names in the right margin with the flow at which their curves end."""
     found = [(branch.name, say.plain, branch.flows[-1]) for branch in named]
     rest = [branch for branch in figure.branches if branch not in named]
@@ -177,9 +173,7 @@ def _axes(figure: Balance, sheet: Sheet, plan: Plan, say: Voices) -> None:
     baseline = sheet.box.top - 0.8 * say.italic.size
     sheet.write((sheet.box.left, baseline), say.italic.wrap(title, look.WIDTH * 0.9)[0], say.italic)
     zero = plan.up.at(0.0)
-    sheet.rule(
-        [(plan.plot.left, zero), (plan.plot.right, zero)], look.SOFT, look.AXIS_LINE, layer=1.5, name="zero"
-    )
+    sheet.rule([(plan.plot.left, zero), (plan.plot.right, zero)], look.SOFT, look.AXIS_LINE, layer=1.5, name="zero")
     scale.across_axis(sheet, plan.across, plan.rows.foot, say.soft)
     baseline = plan.rows.foot - scale.TICK - say.soft.line - 1.0 * say.italic.size - 1.0
     for line in say.italic.wrap(_across_title(figure), look.WIDTH * 0.8):
@@ -203,9 +197,7 @@ def _curves(
     points = list(zip(across, (plan.up.at(flow) for flow in figure.sums), strict=True))
     sheet.rule(points, look.INK, look.SUM_LINE, layer=4.0, name="sum")
     lines.append((points, 1.2))
-    endings = [
-        margin.Ending(plan.up.at(flow), name, speaker) for name, speaker, flow in _endings(figure, say, named)
-    ]
+    endings = [margin.Ending(plan.up.at(flow), name, speaker) for name, speaker, flow in _endings(figure, say, named)]
     margin.write(sheet, max(across), endings, plan.plot.foot, plan.plot.top + 4.0)
     return lines
 
@@ -232,8 +224,7 @@ def _trials(figure: Balance, sheet: Sheet, plan: Plan, say: Voices) -> tuple[lis
         else:
             groups.append((at, [trial.number]))
     labels = [
-        Label(((runs(numbers), say.strong),), at, (), "NW SE WNW ESE N S NE SW", 4.0, 1)
-        for at, numbers in groups
+        Label(((runs(numbers), say.strong),), at, (), "NW SE WNW ESE N S NE SW", 4.0, 1) for at, numbers in groups
     ]
     return boxes, labels
 

@@ -105,16 +105,13 @@ def _draw(figure: Convergence) -> Sheet:
         say.soft.width(text) + scale.TICK + 2.0 for found in decades for _, text in found.ticks()
     )
     right = sheet.box.right - max(
-        margin.room([(_limit(panel), say.soft)]) if panel.tolerance is not None else 14.0
-        for panel in figure.panels
+        margin.room([(_limit(panel), say.soft)]) if panel.tolerance is not None else 14.0 for panel in figure.panels
     )
     steps = scale.Scale(0.4, len(figure.numbers) + 0.6, left, right)
     for panel, found in zip(figure.panels, decades, strict=True):
         _panel(sheet, panel, found, steps, say)
     _foot(figure, sheet, steps, say, foot)
-    area = Box(
-        sheet.box.left, sheet.box.foot, sheet.box.right, sheet.box.foot + key.height(items, say.soft, full)
-    )
+    area = Box(sheet.box.left, sheet.box.foot, sheet.box.right, sheet.box.foot + key.height(items, say.soft, full))
     key.write(sheet, items, say.soft, area)
     return sheet
 
@@ -131,9 +128,7 @@ def alt(figure: Convergence) -> str:
         parts.append(f"{panel.name[:1].upper()}{panel.name[1:]}: {course}.")
         if panel.tolerance is not None:
             met = abs(known[-1][0]) <= panel.tolerance
-            parts.append(
-                f"The last is {'within' if met else 'outside'} the tolerance of {panel.tolerance_text}."
-            )
+            parts.append(f"The last is {'within' if met else 'outside'} the tolerance of {panel.tolerance_text}.")
     return " ".join(parts)
 
 
@@ -166,9 +161,7 @@ def _panel(sheet: Sheet, panel: Panel, decades: Decades, steps: scale.Scale, say
         say.italic,
     )
     foot = straight.start if decades.zero is None else straight.start - 3.0
-    sheet.rule(
-        [(steps.start, foot), (steps.start, straight.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis"
-    )
+    sheet.rule([(steps.start, foot), (steps.start, straight.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
     for up, text in decades.ticks():
         sheet.rule(
             [(steps.start - scale.TICK, up), (steps.start, up)],
@@ -236,9 +229,7 @@ def _points(
     foot = decades.straight.start if decades.zero is None else decades.zero
     frame = Box(steps.start + 1.0, foot - 5.0, sheet.box.right, decades.straight.end + 4.0)
     written = (
-        Box(
-            steps.end, decades.at(panel.tolerance) - 16.0, sheet.box.right, decades.at(panel.tolerance) + 16.0
-        )
+        Box(steps.end, decades.at(panel.tolerance) - 16.0, sheet.box.right, decades.at(panel.tolerance) + 16.0)
         if panel.tolerance
         else None
     )
@@ -293,6 +284,4 @@ def _foot(figure: Convergence, sheet: Sheet, steps: scale.Scale, say: Voices, fo
         sheet.rule([(x, up), (x, up - scale.TICK)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
         if k % every == 0:
             sheet.write((x, up - scale.TICK - say.soft.size), str(value), say.soft, "center")
-    sheet.write(
-        (steps.start, up - scale.TICK - say.soft.line - say.italic.size - 1.0), figure.step, say.italic
-    )
+    sheet.write((steps.start, up - scale.TICK - say.soft.line - say.italic.size - 1.0), figure.step, say.italic)

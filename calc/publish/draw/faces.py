@@ -82,9 +82,7 @@ class Voice:
     def clean(self, text: str) -> str:
         """Return the text in one line, with a question mark for every character the face lacks."""
         known = _characters(str(self.file))
-        return "".join(
-            c if ord(c) in known or c in "⁻⁰¹²³⁴⁵⁶⁷⁸⁹" else "?" for c in " ".join(text.split(" ")).strip()
-        )
+        return "".join(c if ord(c) in known or c in "⁻⁰¹²³⁴⁵⁶⁷⁸⁹" else "?" for c in " ".join(text.split(" ")).strip())
 
     def wrap(self, text: str, width: float) -> tuple[str, ...]:
         """Break a text into lines no wider than ``width`` points, at blanks and hyphens where it can be."""

@@ -37,12 +37,7 @@ class Box(NamedTuple):
 
     def meets(self, other: Box) -> bool:
         """Tell whether two boxes share any area."""
-        return (
-            self.left < other.right
-            and other.left < self.right
-            and self.foot < other.top
-            and other.foot < self.top
-        )
+        return self.left < other.right and other.left < self.right and self.foot < other.top and other.foot < self.top
 
 
 def boxes(rows: list[Box] | list[tuple[float, float, float, float]]) -> Array:

@@ -27,9 +27,7 @@ def rows(items: Sequence[Item], voice: Voice, width: float) -> list[list[tuple[I
             if found[-1] and (across + need > width or part):
                 found.append([])
                 across = 0.0
-            found[-1].append(
-                ((item[0] if not part else None, item[1]), text, across + (indent if part else 0.0))
-            )
+            found[-1].append(((item[0] if not part else None, item[1]), text, across + (indent if part else 0.0)))
             across += need + GAP
     return found
 

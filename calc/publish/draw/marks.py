@@ -35,14 +35,10 @@ def basin(sheet: Sheet, at: Point, size: float = 1.0, side: int = 0) -> Box:
     right, up = left + width, at[1]
     floor, rim = up - BASIN_DEPTH * size, up + FREEBOARD * size
     sheet.shape([(left, up), (right, up), (right, floor), (left, floor)], look.PAPER, layer=4.0)
-    sheet.rule(
-        [(left, rim), (left, floor), (right, floor), (right, rim)], look.INK, 1.0, layer=5.0, name="basin"
-    )
+    sheet.rule([(left, rim), (left, floor), (right, floor), (right, rim)], look.INK, 1.0, layer=5.0, name="basin")
     sheet.rule([(left, up), (right, up)], look.INK, 0.7, layer=4.5, name="surface")
     middle = (left + width / 2, up)
-    sheet.shape(
-        turned(middle, [(0, 0), (3.1, 5.2), (-3.1, 5.2)], size=size), look.PAPER, look.INK, 0.7, layer=6.0
-    )
+    sheet.shape(turned(middle, [(0, 0), (3.1, 5.2), (-3.1, 5.2)], size=size), look.PAPER, look.INK, 0.7, layer=6.0)
     for half, below in ((2.6, 2.2), (1.2, 4.2)):
         sheet.rule(
             turned(middle, [(-half, -below), (half, -below)], size=size),
@@ -69,9 +65,7 @@ def head(sheet: Sheet, at: Point, radius: float = 3.2) -> Box:
 
 def flow(sheet: Sheet, at: Point, degrees: float, size: float = 1.0, ink: str = look.INK) -> Box:
     """Draw a filled arrowhead lying on a pipe."""
-    sheet.shape(
-        turned(at, [(5.8, 0), (-4.4, 3.4), (-4.4, -3.4)], degrees, size), ink, look.PAPER, 0.6, layer=7.0
-    )
+    sheet.shape(turned(at, [(5.8, 0), (-4.4, 3.4), (-4.4, -3.4)], degrees, size), ink, look.PAPER, 0.6, layer=7.0)
     return Box(at[0], at[1], at[0], at[1]).grown(5.0 * size)
 
 
@@ -83,15 +77,11 @@ def turn(sheet: Sheet, at: Point, degrees: float, size: float = 1.0) -> Box:
     return Box(at[0], at[1], at[0], at[1]).grown(6.0 * size)
 
 
-def withdrawal(
-    sheet: Sheet, at: Point, size: float = 1.0, *, above: bool = False, inflow: bool = False
-) -> Box:
+def withdrawal(sheet: Sheet, at: Point, size: float = 1.0, *, above: bool = False, inflow: bool = False) -> Box:
     """Draw water leaving the works at a junction, below it or above it; or coming in."""
     side = size * (1.0 if above else -1.0)
     near, far = 4.0, 14.0
-    sheet.rule(
-        [(at[0], at[1] + side * near), (at[0], at[1] + side * far)], look.INK, 0.8, layer=6.0, name="mark"
-    )
+    sheet.rule([(at[0], at[1] + side * near), (at[0], at[1] + side * far)], look.INK, 0.8, layer=6.0, name="mark")
     tip, barb = (near, near + 4.0) if inflow else (far, far - 4.0)
     wings = [
         (at[0] - 2.6 * size, at[1] + side * barb),

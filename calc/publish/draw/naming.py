@@ -67,9 +67,7 @@ class Names:
         lines = self._lines(junction.name, self._strong if by_distance or self._full else self._plain)
         if by_distance:
             known = junction.elevation is not None
-            text = (
-                f"elevation {junction.elevation_text}" if known else "elevation not given: drawn at its head"
-            )
+            text = f"elevation {junction.elevation_text}" if known else "elevation not given: drawn at its head"
             return [Label((*lines, (text, self._soft)), at, (), "SW SE S W E SSW SSE", 5.0, 1)]
         lines = (*lines, (junction.head_text, self._violet))
         return [Label(lines, at, (), "NE SW NW SE N S E W", 3.5 + 2 * self._size, 2)]

@@ -194,9 +194,7 @@ def _side(part: float) -> float:
     return 0.0 if abs(part) < 0.2 else float(np.sign(part)) * min(1.0, abs(part) * 1.5)  # noqa: PLR2004
 
 
-def _fixed_price(
-    box: Array, anchor: Array, foot: Array, led: NDArray[np.bool_], around: Surroundings
-) -> Array:
+def _fixed_price(box: Array, anchor: Array, foot: Array, led: NDArray[np.bool_], around: Surroundings) -> Array:
     """Return the price of each box (n,) against frame, lines, marks and texts."""
     frame = around.frame
     outside = (
@@ -207,14 +205,11 @@ def _fixed_price(
     )
     starts, ends, weights = around.segments()
     near = box + np.array([-3, -2, 3, 2])
-    struck = (inside(starts, ends, box) * weights).sum(1) + 0.35 * (inside(starts, ends, near) * weights).sum(
-        1
-    )
+    struck = (inside(starts, ends, box) * weights).sum(1) + 0.35 * (inside(starts, ends, near) * weights).sum(1)
     marks = boxes(list(around.marks) + list(around.texts))
     leaders = np.where(
         led,
-        1.2 * inside(anchor, foot, marks).sum(0)
-        + 2.5 * (crossings(anchor, foot, starts, ends) * weights).sum(1),
+        1.2 * inside(anchor, foot, marks).sum(0) + 2.5 * (crossings(anchor, foot, starts, ends) * weights).sum(1),
         0.0,
     )
     texts = overlap(box, boxes(list(around.texts))).sum(1)

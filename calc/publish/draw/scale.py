@@ -70,18 +70,14 @@ def decade(power: int) -> str:
 
 def up_axis(sheet: Sheet, scale: Scale, across: float, voice: Voice, *, most: int = 7) -> None:
     """Rule an upright axis at ``across`` with its values on the left."""
-    sheet.rule(
-        [(across, scale.start), (across, scale.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis"
-    )
+    sheet.rule([(across, scale.start), (across, scale.end)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
     for value, text in scale.ticks(most):
         up = scale.at(value)
         sheet.rule([(across - TICK, up), (across, up)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
         sheet.write((across - TICK - 2.0, up - 0.32 * voice.size), text, voice, "right")
 
 
-def across_axis(
-    sheet: Sheet, scale: Scale, up: float, voice: Voice, *, most: int = 7, unsigned: bool = False
-) -> None:
+def across_axis(sheet: Sheet, scale: Scale, up: float, voice: Voice, *, most: int = 7, unsigned: bool = False) -> None:
     """Rule a level axis at ``up`` with its values beneath; ``unsigned`` for distances to either side."""
     sheet.rule([(scale.start, up), (scale.end, up)], look.SOFT, look.AXIS_LINE, layer=1.5, name="axis")
     for value, text in scale.ticks(most):

@@ -162,9 +162,7 @@ def _across_title(figure: Schematic, *, star: bool) -> str:
     if not star:
         return "across: order of the nodes, not to scale; the lines are not the pipes’ profiles"
     origin = figure.junctions[0].name if figure.junctions else figure.pipes[0].start
-    return (
-        f"distance along each pipe from {origin}, {figure.length_unit}; the lines are not the pipes’ profiles"
-    )
+    return f"distance along each pipe from {origin}, {figure.length_unit}; the lines are not the pipes’ profiles"
 
 
 def _key(figure: Schematic, *, star: bool) -> list[key.Item]:
@@ -184,9 +182,7 @@ def _key(figure: Schematic, *, star: bool) -> list[key.Item]:
     if False in water:
         found.append((lambda sheet, at: marks.withdrawal(sheet, (at[0], at[1] + 8), 0.9), "withdrawal"))
     if True in water:
-        found.append(
-            (lambda sheet, at: marks.withdrawal(sheet, (at[0], at[1] + 8), 0.9, inflow=True), "inflow")
-        )
+        found.append((lambda sheet, at: marks.withdrawal(sheet, (at[0], at[1] + 8), 0.9, inflow=True), "inflow"))
     found.append((None, "weight of line: bore"))
     if not star:
         found.append((None, "every pipe falls the way its water runs"))
@@ -273,12 +269,8 @@ def _junction(draft: Draft, names: Names, junction: Junction, laid: list[Route])
         draft.obstacles.append(marks.head(draft.sheet, at, 3.6 * draft.size + 0.4))
     draft.labels += names.junction(junction, at, by_distance=plan.by_distance)
     if junction.withdrawal_text:
-        above = _free_above(
-            at, junction, laid, below_only=plan.by_distance and plan.heads[junction.name] >= at[1]
-        )
-        draft.obstacles.append(
-            marks.withdrawal(draft.sheet, at, draft.size, above=above, inflow=junction.inflow)
-        )
+        above = _free_above(at, junction, laid, below_only=plan.by_distance and plan.heads[junction.name] >= at[1])
+        draft.obstacles.append(marks.withdrawal(draft.sheet, at, draft.size, above=above, inflow=junction.inflow))
         tip = (at[0], at[1] + (14 if above else -14) * draft.size)
         draft.labels += names.withdrawal(junction, tip, above=above)
 
@@ -307,9 +299,7 @@ def _arrows(draft: Draft, names: Names, laid: list[Route]) -> None:
         at, bearing = found.at(share)
         pipe = found.pipe
         if pipe.turns:
-            draft.obstacles.append(
-                marks.turn(draft.sheet, _aside(at, bearing, 8.5 * draft.size), bearing, draft.size)
-            )
+            draft.obstacles.append(marks.turn(draft.sheet, _aside(at, bearing, 8.5 * draft.size), bearing, draft.size))
         if pipe.open and pipe.flow:
             ink = look.TURNED if pipe.turns else look.INK
             draft.obstacles.append(marks.flow(draft.sheet, at, bearing, draft.size, ink))

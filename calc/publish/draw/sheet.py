@@ -95,9 +95,7 @@ class Sheet:
         """Draw a closed shape through points."""
         codes = [Outline.MOVETO, *[Outline.LINETO] * (len(points) - 1), Outline.CLOSEPOLY]
         outline = Outline([*points, points[0]], codes)
-        patch = PathPatch(
-            outline, facecolor=fill, edgecolor=edge, linewidth=weight if edge != "none" else 0.0
-        )
+        patch = PathPatch(outline, facecolor=fill, edgecolor=edge, linewidth=weight if edge != "none" else 0.0)
         patch.set(zorder=layer, clip_on=False, joinstyle="miter")
         self._axes.add_patch(patch)
 
