@@ -109,13 +109,13 @@ def _judged(composer: Composer) -> Parts:
 def _criteria(sheet: Sheet) -> None:
     columns = (
         column("criterion", role="statement"),
-        column("governed by", 36),
-        figure_column("found", width=16, edge=True),
-        figure_column("limit", width=17),
-        figure_column("margin", width=16),
+        column("governed by", 33.5),
+        figure_column("found", width=14, edge=True),
+        figure_column("limit", width=16.5),
+        figure_column("margin", width=15),
         column("", 11, role="unit"),
-        column("verdict", 19),
-        TableColumn(("from",), width=14, edge=True, role="from"),
+        column("verdict", 19.5),
+        TableColumn(("from",), width=12.5, edge=True, role="from"),
     )
     judged = sorted(sheet.composer.account.verdicts, key=lambda j: (j.met, j.governing is not None))
     sheet.table("criteria", columns, [_criterion(sheet, one) for one in judged])
