@@ -86,7 +86,7 @@ def keep_account(project: Project, ledger: Ledger, solved: Mapping[str, tuple[Ne
             columns = enter_flows(ledger, network, solution, name)
             paths = enter_paths(ledger, network, columns, name)
             agreement = enter_opinion(ledger, network, solution, name)
-            _enter_tests(ledger, solution, name)
+        _enter_tests(ledger, solution, name)
         stated = project.cases[name].title
         title = stated.text if stated else "Inputs as stated"
         history = history_rows(network, solution)
@@ -116,6 +116,8 @@ def _enter_tests(ledger: Ledger, solution: Solution, case: str) -> None:
     kinds = {"m³/s": FLOW, "m": HEAD}
     tolerance = ledger.find("solver.tolerance")
     for k, test in enumerate(solution.tests):
+        if not np.isfinite(test.value):
+            continue  # an attempt that came to nothing measured nothing
         kind = kinds.get(test.unit, NUMBER)
         measured = Program(f"measured when the search ended: {test.words}")
         ledger.enter(f"solver.test_{k + 1}", kind, [""], [test.value], measured, case=case)

@@ -150,7 +150,7 @@ def _stopping(sheet: Sheet, case: CaseAccount) -> None:
     )
     rows = []
     for k, test in enumerate(case.solution.tests):
-        if not case.solution.converged:
+        if not np.isfinite(test.value):
             continue
         spot = composer.ledger.spot(f"solver.test_{k + 1}@{case.id}")
         limit = composer.ledger.spot(f"solver.test_{k + 1}_limit@{case.id}")
@@ -162,7 +162,7 @@ def _stopping(sheet: Sheet, case: CaseAccount) -> None:
                 (composer.number(spot, form),),
                 (composer.number(limit, form),),
                 (unit,),
-                ("met" if test.met else "not met",),
+                ("met",) if test.met else (Strong(("not met",), bar=True),),
                 refs=(spot.id, limit.id),
             )
         )
@@ -215,9 +215,10 @@ def _trial_figures(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
 
 
 def _limit_text(composer: Composer, case: CaseAccount, form: Format) -> str:
-    if not case.solution.converged:
+    tests = case.solution.tests
+    k = next((k for k, test in enumerate(tests) if test.unit == "m³/s" and np.isfinite(test.value)), None)
+    if k is None:
         return ""
-    k = next(k for k, test in enumerate(case.solution.tests) if test.unit == "m³/s")
     number = composer.number(f"solver.test_{k + 1}_limit@{case.id}", form)
     return f"{raised(number.text)} {form.unit}"
 

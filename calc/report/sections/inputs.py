@@ -10,6 +10,7 @@ from calc.report.derivation import line
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
 from calc.report.formats import shortest
 from calc.report.numbers import written
+from calc.report.sections.results import kind_of_fitting
 from calc.report.selection import shown_inputs
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
@@ -122,7 +123,7 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
     if basis in GRADES:
         said = (Strong(("no source",), bar=True), Soft((", ", Quoted(basis))))
     return sheet.row(
-        (*((Quoted(spot.column.rows[spot.row]), ", ") if named else ()), spot.column.quantity.replace("_", " ")),
+        (*_named(sheet, spot, named=named), spot.column.quantity.replace("_", " ")),
         (Quoted(origin.written[spot.row]),),
         (number,),
         (kind.unit,),
@@ -131,3 +132,12 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
         (Cite((spot.id,), into=True),),
         refs=(spot.id,),
     )
+
+
+def _named(sheet: Sheet, spot: Spot, *, named: bool) -> Parts:
+    """Return the id of a small component before its quantity, with the kind of a fitting."""
+    if not named:
+        return ()
+    row = spot.column.rows[spot.row]
+    kind = kind_of_fitting(sheet.composer, row) if spot.column.group == "fittings" else ""
+    return (Quoted(row), *((" ", Quoted(kind)) if kind else ()), ", ")

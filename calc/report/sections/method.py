@@ -47,9 +47,10 @@ def compose_method(composer: Composer) -> None:
     for leaf in laws_in_use(composer):
         if leaf.name not in rules:
             leaves.setdefault(leaf.name, leaf)
+    estimates = {leaf.start.name for leaf in leaves.values() if isinstance(leaf, Implicit)} - _applied(composer)
     sheet.add(Heading(("Equations in use",)))
     columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
-    sheet.table("equations", columns, [_equation(sheet, leaf) for leaf in leaves.values()])
+    sheet.table("equations", columns, [_equation(sheet, leaf, estimates) for leaf in leaves.values()])
     sheet.add(Heading(("Symbols",)))
     _symbols(sheet, _gathered(laws_in_use(composer)))
     sheet.add(
@@ -113,10 +114,10 @@ SYMBOL = re.compile(r"(\b[A-Za-zΔε]+_[A-Za-z]+\b)")
 
 
 def laws_in_use(composer: Composer) -> list[Leaf]:
-    """Return every equation that gave some number of this package, in the order of first use."""
+    """Return every equation that gave some number of this project, in the order of first use."""
     found: dict[str, Leaf] = {}
     for one in composer.ledger.columns:
-        if isinstance(one.origin, Derived):
+        if isinstance(one.origin, Derived) and one.group != "verification":
             for leaf in one.origin.leaves:
                 found.setdefault(leaf.name, leaf)
                 if isinstance(leaf, Implicit):
@@ -124,9 +125,17 @@ def laws_in_use(composer: Composer) -> list[Leaf]:
     return list(found.values())
 
 
-def _equation(sheet: Sheet, leaf: Leaf) -> Row:
+def _applied(composer: Composer) -> set[str]:
+    """Return the names of the equations that gave numbers themselves."""
+    origins = [one.origin for one in composer.ledger.columns if one.group != "verification"]
+    return {leaf.name for origin in origins if isinstance(origin, Derived) for leaf in origin.leaves}
+
+
+def _equation(sheet: Sheet, leaf: Leaf, estimates: set[str]) -> Row:
     equation: Equation = leaf.residual if isinstance(leaf, Implicit) else leaf
     root = (Soft((" – ", Letter(leaf.gives.text), " is the root")),) if isinstance(leaf, Implicit) else ()
+    if leaf.name in estimates:
+        root = (Soft((" – first estimate of the root",)),)
     return sheet.row(
         (leaf.title, *root, Formula(leaf)),
         (Own(equation.source.key, "source"),),

@@ -197,7 +197,8 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
         spots = [_here(ledger, f"fittings.{quantity}", case.id, fitting) for quantity in FITTING_CHAIN]
         count = ledger.spot(f"fittings.{fitting}.count@{case.id}")
         held = [spot for spot in spots if spot is not None]
-        kind = _kind(composer, fitting)
+        said = kind_of_fitting(composer, fitting)
+        kind: Parts = (Soft((", ", name(said))),) if said else ()
         coefficient = Format(decimals=3)
         cells: list[Parts] = [(name(fitting), *kind), (composer.number(count),)]
         by_name = {spot.column.quantity: spot for spot in held}
@@ -213,18 +214,15 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
         sheet.table(f"fittings-{case.id}", columns, rows)
 
 
-def _kind(composer: Composer, fitting: str) -> Parts:
+def kind_of_fitting(composer: Composer, fitting: str) -> str:
+    """Return the kind or note of a fitting or end as the project has it, empty where it has none."""
     pipe, _, _ = fitting.rpartition("/")
     record = composer.account.project.pipes[pipe]
     for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
         if part.id == fitting:
-            said = (
-                part.text("kind")
-                or part.text("note")
-                or next((s.basis.note for s in part.stated.values() if s.basis.note), "")
-            )
-            return (Soft((", ", name(said))),) if said else ()
-    return ()
+            noted = next((s.basis.note for s in part.stated.values() if s.basis.note), "")
+            return part.text("kind") or part.text("note") or noted
+    return ""
 
 
 def _nodes(sheet: Sheet, case: CaseAccount) -> None:
