@@ -21,6 +21,9 @@ from dataclasses import dataclass
 
 from calc.marks import Mark
 
+WIDEST = 240
+"""Characters of a line that are shown with a problem."""
+
 
 class CalcError(Exception):
     """The root of every error this program raises on purpose."""
@@ -76,7 +79,8 @@ class ProblemsFound(CalcError):
 
     def __str__(self) -> str:
         """Return every problem in full, in the order of their places."""
-        return "\n".join(show(problem, self.texts) for problem in self.problems)
+        lines = {name: text.splitlines() for name, text in self.texts.items()}
+        return "\n".join(_shown(problem, lines.get(problem.mark.file, [])) for problem in self.problems)
 
 
 class NotConverged(CalcError):
@@ -100,21 +104,36 @@ class Unresolved(CalcError):
 
 
 def show(problem: Problem, texts: Mapping[str, str]) -> str:
-    """Return a problem as shown to the user: place and sentence, the line, carets, the hint."""
+    """Return a problem as shown to the user: place and sentence, the line, carets, the hint.
+
+    Of a line longer than `WIDEST` that part is shown in which the problem stands, with ``…`` for the rest.
+    """
+    return _shown(problem, texts.get(problem.mark.file, "").splitlines())
+
+
+def _shown(problem: Problem, lines: Sequence[str]) -> str:
     mark = problem.mark
     shown = [f"{mark}: {problem.sentence()}"]
-    lines = texts.get(mark.file, "").splitlines()
     if 0 < mark.line <= len(lines):
-        source = lines[mark.line - 1].replace("\t", " ")
+        source, column = _part(lines[mark.line - 1], mark.column)
         gutter = f"{mark.line:>3}"
-        length = max(1, min(mark.length, len(source) - mark.column + 1))
+        length = max(1, min(mark.length, len(source) - column + 1))
         shown += [
             f"{gutter} | {source}",
-            f"{' ' * len(gutter)} | {' ' * (mark.column - 1)}{'^' * length}",
+            f"{' ' * len(gutter)} | {' ' * (column - 1)}{'^' * length}",
         ]
     if problem.hint:
         shown.append(f"  hint: {problem.hint}")
     return "\n".join(shown)
+
+
+def _part(line: str, column: int) -> tuple[str, int]:
+    """Return the part of a line to show, and where in it a column of the whole line stands."""
+    start = 0 if len(line) <= WIDEST else max(0, column - 1 - WIDEST // 3)
+    end = start + WIDEST
+    part = line[start:end].replace("\t", " ")
+    before, after = "…" * (start > 0), "…" * (end < len(line))
+    return f"{before}{part}{after}", column - start + len(before)
 
 
 def nearest(word: str, known: Sequence[str]) -> str:

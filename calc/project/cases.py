@@ -45,9 +45,10 @@ def read_cases(
     found = {BASE: Case(BASE, entry.key.mark if entry else fluid.mark)}
     for key, member in members:
         found[key.text] = _read_case(reader, key, member, works, fluid)
+    written = entry.value.keys() if entry and isinstance(entry.value, MappingNode) else ()
     afters = {key.text: member.get("after") for key, member in members}
     for name, node in afters.items():
-        if isinstance(node, Scalar) and not empty(node) and node.text not in found:
+        if isinstance(node, Scalar) and not empty(node) and node.text not in (*found, *written):
             note_unknown_case(reader, node, f"cases.{name}.after", found)
     _check_circles(reader, found, afters)
     return found

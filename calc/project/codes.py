@@ -38,7 +38,7 @@ CODES: dict[str, str] = {
     "unknown-unit": "a unit that does not exist",
     "wrong-dimension": "a quantity of another kind",
     "wrong-end": "a reservoir end at a junction",
-    "wrong-group": "a criterion applied to another group than its own",
+    "wrong-group": "a component of another group than belongs there",
     "wrong-order": "two values that stand the wrong way round",
     "wrong-shape": "a list, mapping or text where another is expected",
 }

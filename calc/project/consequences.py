@@ -123,7 +123,8 @@ def _check_bores(reader: Reader, now: Effective, case: Case) -> None:
     lines = [line for line in case.lines if line.group == "pipes" and line.field in ("bore", "roughness")]
     if not lines:
         return
-    rough = now.numbers("pipes", "bore") <= now.numbers("pipes", "roughness")
+    bore = now.numbers("pipes", "bore")
+    rough = (bore > 0.0) & (bore <= now.numbers("pipes", "roughness"))  # one that is not above zero is told already
     _note_last(
         reader,
         now,

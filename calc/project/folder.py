@@ -70,7 +70,7 @@ def read_project(folder: Path, schemas: Sequence[SectionSchema]) -> Project:
     sources = read_folder(folder)
     if any(problem.code not in _PARTIAL for problem in sources.problems):
         raise ProblemsFound(sources.problems, sources.texts)
-    reader = Reader()
+    reader = Reader(doubtful={problem.path.partition(".")[0] for problem in sources.problems})
     with without_collector():
         project, works = _read(reader, folder, sources, schemas)
         if project is not None:
@@ -131,8 +131,9 @@ def _read(
         defaults=_in_order(reader.defaults),
         spreads=dict(reader.spreads),
     )
-    circular = any(problem.code in ("case-cycle", "unknown-case") for problem in reader.problems)
-    return (None if circular else project), works
+    circular = any(problem.code == "case-cycle" for problem in reader.problems)
+    broken = any(case.after and case.after not in cases for case in cases.values())
+    return (None if circular or broken else project), works
 
 
 def _in_order(used: Mapping[str, Stated]) -> tuple[tuple[str, Stated], ...]:

@@ -98,6 +98,8 @@ def _rows(
     rows = reader.reached[key]
     if rows:
         return Target(group, rows, None)
+    if group in reader.doubtful:
+        return None
     what = "matches" if "*" in pattern else "has the id"
     hint = reader.near(pattern, ids)
     found = f"none of the {group} {what} {quoted(pattern)}"

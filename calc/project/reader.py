@@ -34,6 +34,8 @@ class Reader(Notes):
     ----------
     references : frozenset of str
         Ids that ``source`` may name.
+    doubtful : set of str
+        Groups of which some ids could not be read; of paths into them it is not said that they lead nowhere.
     nodes : set of str or None
         Ids that ``from`` and ``to`` may name; None while a group could not be read, when nothing is said.
     spreads : dict
@@ -45,6 +47,7 @@ class Reader(Notes):
     """
 
     references: frozenset[str] = frozenset()
+    doubtful: set[str] = field(default_factory=set)
     nodes: set[str] | None = None
     spreads: dict[str, Record] = field(default_factory=dict)
     defaults: dict[str, Stated] = field(default_factory=dict)

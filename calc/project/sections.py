@@ -9,6 +9,7 @@ from calc.project.notes import empty
 from calc.project.reader import Reader
 from calc.project.records import Fields, read_fields, read_node
 from calc.project.section import SectionSchema
+from calc.project.wording import quoted
 from calc.project.works import Works
 from calc.yamlfile import Entry, Node, Scalar
 from calc.yamlfile import Mapping as MappingNode
@@ -45,7 +46,8 @@ def read_section(reader: Reader, schema: SectionSchema, entry: Entry | None, wor
         extra=by_node,
     )
     found = {
-        name: _by_node(reader, by_node[name].form, value, f"{schema.name}.{name}") for name, (_, value) in parts.items()
+        name: _by_node(reader, by_node[name].form, value, f"{schema.name}.{name}", works)
+        for name, (_, value) in parts.items()
     }
     return Record("", entry.key.mark, stated, found)
 
@@ -64,15 +66,18 @@ def _for_later(reader: Reader, schema: SectionSchema, entry: Entry) -> bool:
     return hint is not None
 
 
-def _by_node(reader: Reader, form: object, node: Node, path: str) -> tuple[Record, ...]:
+def _by_node(reader: Reader, form: object, node: Node, path: str, works: Works) -> tuple[Record, ...]:
     """Return one record a node, with its quantity under ``value``."""
-    found = []
+    found: list[Record] = []
     mapping = reader.mapping(node, path, "a mapping of node ids to values")
     for key, value in mapping.entries if mapping else ():
         at = f"{path}.{key.text[:64]}"
         named = read_node(reader, key, at)
         stated = reader.value(form, value, at)  # type: ignore[arg-type]
-        if named is not None and stated is not None:
+        if named is not None and named.text in works.reservoirs:
+            words = f"{quoted(named.text)} is a reservoir, whose head is its level"
+            reader.note(key.mark, "wrong-group", at, words, "the id of a junction", "leave it out")
+        elif named is not None and stated is not None:
             fields: Fields = {"value": stated}
             found.append(Record(key.text, key.mark, fields))
     return tuple(found)

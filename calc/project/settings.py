@@ -123,6 +123,8 @@ def read_fluid(reader: Reader, entry: Entry | None) -> Record:
         _read_viscosity(reader, parts["viscosity"][1], stated)
     if "kind" not in present:
         stated["kind"] = _default(reader, "fluid.kind")
+    if "temperature" in present and any(name in present for name in PROPERTIES):
+        return Record("", mark, stated)  # told already: one of the two
     if any(name in present for name in PROPERTIES):
         for name in ("density", "viscosity"):
             if name not in present:

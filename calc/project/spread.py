@@ -51,15 +51,16 @@ def read_spread(
         found = f"{quoted(stated.written)} is no quantity that could vary"
         notes.note(node.mark, "not-a-quantity", where, found, "a quantity")
     elif given == ["range"]:
-        return _range(notes, node, where, path, read)
+        return _range(notes, node, stated, path, read)
     else:
         return _deviation(notes, node, where, path, kind)
     return None
 
 
 def _range(
-    notes: Notes, node: Node, where: str, path: str, read: Callable[[Scalar, str], Stated | None]
+    notes: Notes, node: Node, stated: Stated, path: str, read: Callable[[Scalar, str], Stated | None]
 ) -> Record | None:
+    where = f"{path}.range"
     items = notes.items(node, where, TWO)
     scalars = [item for item in items if isinstance(item, Scalar)]
     if len(scalars) != len(("low", "high")) or len(items) != len(scalars):
@@ -72,6 +73,9 @@ def _range(
     if low.si >= high.si:
         found = f"{quoted(low.written)} is not below {quoted(high.written)}"
         notes.note(low.mark, "wrong-order", where, found, TWO)
+    elif not low.si <= stated.si <= high.si:
+        found = f"{quoted(stated.written)} lies outside its range, {low.written} to {high.written}"
+        notes.note(stated.mark, "out-of-range", path, found, "a value within its range")
     return Record(path, low.mark, {"low": low, "high": high})
 
 

@@ -53,12 +53,12 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
         ``whole`` is False when an id or an end of a pipe is in doubt, so that connections say nothing.
     """
     works = Works()
-    before = len(reader.problems)
     nodes: dict[str, Mark] = {}
     for name, records, schema in (
         ("reservoirs", works.reservoirs, reservoir.SCHEMA),
         ("junctions", works.junctions, junction.SCHEMA),
     ):
+        before = len(reader.problems)
         for key, member in _members(reader, works, folder, top.get(name), f"a {schema.singular}"):
             path = f"{name}.{key.text}"
             stated, _ = read_fields(reader, schema, member, path, key.mark)
@@ -69,14 +69,21 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
                 continue
             nodes[key.text] = key.mark
             records[key.text] = Record(key.text, key.mark, stated)
-    doubtful = any(problem.code not in _HARMLESS for problem in reader.problems[before:])
-    doubtful = doubtful or not works.reservoirs
+        _doubt(reader, name, before)
+    if not works.reservoirs:
+        reader.doubtful.add("reservoirs")
+    doubtful = not reader.doubtful.isdisjoint(("reservoirs", "junctions"))
     reader.nodes = None if doubtful else {*nodes, *_outlets(top)}
-    for key, member in _members(reader, works, folder, top.get("pipes"), "a pipe"):
+    before = len(reader.problems)
+    members = _members(reader, works, folder, top.get("pipes"), "a pipe")
+    _doubt(reader, "pipes", before)
+    for key, member in members:
         works.pipes[key.text] = _read_pipe(reader, key, member, works, friction)
+    if not works.pipes:
+        reader.doubtful.add("pipes")
     ends = ("from", "to")
     later_joins = any(name in top for name in ("outlets", "pumps", "valves"))
-    works.whole = not (doubtful or later_joins) and all(
+    works.whole = not (doubtful or "pipes" in reader.doubtful or later_joins) and all(
         all(end in one.stated for end in ends) and one.text("from") != one.text("to") for one in works.pipes.values()
     )
     _expect_some(reader, works, top)
@@ -91,6 +98,12 @@ _HARMLESS = frozenset(
     }
 )
 """Problems of nodes after which their ids still stand; after others, nothing is said of unknown nodes."""
+
+
+def _doubt(reader: Reader, group: str, before: int) -> None:
+    """Note that some ids of a group could not be read."""
+    if any(problem.code not in _HARMLESS for problem in reader.problems[before:]):
+        reader.doubtful.add(group)
 
 
 def _outlets(top: Mapping[str, Entry]) -> tuple[str, ...]:
@@ -190,7 +203,7 @@ def _expect_some(reader: Reader, works: Works, top: Mapping[str, Entry]) -> None
         entry = top.get(name)
         if records or (entry is not None and not empty(entry.value) and not _hollow(entry)):
             continue
-        first = next(iter(top.values()), None)
+        first = top.get("pipes") or top.get("junctions") or next(iter(top.values()), None)
         mark = entry.key.mark if entry else Mark(first.key.mark.file if first else "network.yaml", 1, 1)
         reader.note(mark, f"no-{name}", name, f"there are no {name}", f"at least one under '{name}'")
 
