@@ -141,7 +141,8 @@
       const r = other.rows.indexOf(subject);
       if (r >= 0) { proofs.push({ spot: { k, r } }); }
     });
-    return [make("h3", "found by iteration"), make("p", origin.statement), make("p", `${origin.method}, ${origin.iterations} iterations`, "note"), ...listed("proof", proofs)];
+    const rests = Object.values(origin.inputs).map(view => ({ spot: input(view, spot.r) })).filter(one => one.spot);
+    return [make("h3", "found by iteration"), make("p", origin.statement), make("p", `${origin.method}, ${origin.iterations} iterations`, "note"), ...listed("proof", proofs), ...listed("rests on", rests)];
   }
   function origins(spot) {
     const origin = books[spot.k].origin;

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import io
 import unicodedata
 from functools import lru_cache
 
@@ -9,6 +10,8 @@ from calc.publish import places
 
 UPRIGHT, ITALIC, MONO = "LedgerText-Regular", "LedgerText-Italic", "LedgerMono-Regular"
 WORDS = (UPRIGHT, ITALIC, "LedgerText-SemiBold", "LedgerSmall-Regular", "LedgerDisplay-Regular")
+FEATURES = ["kern", "liga", "ccmp", "locl", "mark", "mkmk", "lnum", "tnum", "smcp", "c2sc"]
+"""Those that the styles ask for, and those that are always on."""
 UNKNOWN = 0.6  # em, the width taken for a character that a face lacks
 TAB = 4  # blanks that a tab stands for in a listing
 
@@ -68,3 +71,18 @@ def shown(text: str, *, listing: bool = False) -> str:
     held = _held(listing=listing)
     whole = text.expandtabs(TAB) if listing else unicodedata.normalize("NFC", text)
     return "".join(c if ord(c) in held or c == "\n" else f"[U+{ord(c):04X}]" for c in whole)
+
+
+def cut(face: str, signs: frozenset[int]) -> bytes:
+    """Return a face as a file that holds only some signs, with their small capitals, figures and ligatures."""
+    from fontTools.subset import Options, Subsetter
+    from fontTools.ttLib import TTFont
+
+    options = Options(layout_features=FEATURES, hinting=False, recalc_timestamp=False, notdef_outline=True)
+    made = io.BytesIO()
+    with TTFont(places.fonts() / f"{face}.ttf", lazy=True, recalcTimestamp=False) as font:
+        cutter = Subsetter(options)
+        cutter.populate(unicodes=signs)
+        cutter.subset(font)
+        font.save(made)
+    return made.getvalue()

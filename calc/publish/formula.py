@@ -54,8 +54,8 @@ def formula(part: Formula, measure: float, anchor: Anchor) -> Markup:
         result = _put(part.result, anchor)
         if isinstance(law, Implicit):
             lines.append(("at", _equal(mathematics.symbol(law.gives.text), result)))
-        else:
-            lines.append(("=", result))
+        else:  # a result that is less than a bound says so itself
+            lines.append(("" if part.result.text.startswith("<") else "=", result))
     return _set(head, indent, lines)
 
 
@@ -139,7 +139,7 @@ def _terms(node: Expression) -> Iterator[str]:
 
 def _set(head: Setting, indent: float, lines: list[tuple[str, Setting]]) -> Markup:
     """Return lines that begin with a sign, one under the other where they do not fit side by side."""
-    spoken = head.text + "".join(f" {sign} {line.text}" for sign, line in lines)
+    spoken = head.text + "".join(f" {sign} {line.text}" if sign else f" {line.text}" for sign, line in lines)
     # No width may hang on the last bit of a sum.
     style = Markup("padding-left:{}em;text-indent:-{}em").format(*[f"{indent:.2f}"] * 2)
     opening = Markup('<span class="eq" role="math" aria-label="{}" style="{}">').format(spoken, style)
@@ -153,7 +153,7 @@ def _set(head: Setting, indent: float, lines: list[tuple[str, Setting]]) -> Mark
 def _segment(sign: str, line: Setting, left: Markup | None = None) -> Markup:
     first, *rest = line.pieces
     pieces = [
-        Markup("{}{} {}").format(left + " " if left else "", sign, first.markup),
+        Markup("{}{}{}").format(left + " " if left else "", f"{sign} " if sign else "", first.markup),
         *(piece.markup for piece in rest),
     ]
     return Markup(" ").join(Markup('<span class="nb">{}</span>').format(piece) for piece in pieces)

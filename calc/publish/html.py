@@ -20,10 +20,12 @@ from calc.publish.faces import shown
 from calc.publish.markup import hidden, named, own
 from calc.publish.parts import Writer
 from calc.publish.tables import Sheet
-from calc.report.document import Block, Document, Figure, Listing, Masthead, Section, Table
+from calc.report.document import Block, Document, Figure, Index, Listing, Masthead, Section, Table, collapsed
 
 RUNNING = 80
 """Most characters of a section's title in the head of its pages."""
+MANY = 12
+"""Rows on the first page above which they are set closer."""
 FILTERS = ("e", "escape", "join", "lower", "trim")
 """Filters that stay; none of the rest makes or formats a number without the ledger."""
 
@@ -119,8 +121,10 @@ class Page:
             "target": self.target,
             "sheet": self.sheet,
             "turned": self.turned,
+            "tight": tight,
             "picture": self.picture,
             "numbered": numbered,
+            "gathered": gathered,
         }
 
     def target(self, address: str) -> Markup:
@@ -132,22 +136,32 @@ class Page:
 
     def sheet(self, table: Table, section: Section) -> Sheet:
         """Return a table as it will stand on the document's paper."""
-        needed, paper = self._widths_of(table), self.document.paper
+        needed, paper = self._widths_of(table, close=_is_first(section)), self.document.paper
         whole = (TURNED if self.turned(section) else MEASURE)[paper]
         return Sheet(table, needed.on(whole), self.writer, needed.dense)
 
     def turned(self, section: Section) -> bool:
         """Return whether a section stands on turned sheets, as a table needs them; the first page never does."""
-        if any(isinstance(block, Masthead) for block in section.blocks):
+        if _is_first(section):
             return False
         tables = [block for block in section.blocks if isinstance(block, Table)]
         return any(self._widths_of(table).turned(self.document.paper) for table in tables)
 
-    def _widths_of(self, table: Table) -> Widths:
+    def _widths_of(self, table: Table, *, close: bool = False) -> Widths:
         key = id(table)  # the document holds it as long as this page is made
         if key not in self._widths:
-            self._widths[key] = widths(table, self.document)
+            self._widths[key] = widths(table, self.document, close=close)
         return self._widths[key]
+
+
+def _is_first(section: Section) -> bool:
+    return any(isinstance(block, Masthead) for block in section.blocks)
+
+
+def tight(section: Section) -> bool:
+    """Return whether the first page holds so many rows that they must be set closer."""
+    rows = sum(len(block.rows) for block in section.blocks if isinstance(block, Table))
+    return _is_first(section) and rows > MANY
 
 
 def html(
@@ -202,6 +216,34 @@ def numbered(listing: Listing) -> Iterator[Line]:
     """Yield the lines of a file with their numbers, counted from 1."""
     for number, text in enumerate(listing.lines, 1):
         yield Line(place("at", f"{listing.name}:{number}"), escape(str(number)), escape(shown(text, listing=True)))
+
+
+def gathered(index: Index) -> Iterator[tuple[str, str]]:
+    """Yield the entries of an index, gathered: each id without its cases, and the cases with their addresses.
+
+    Ids without a case that differ in their last word and stand on one line are one entry.
+    """
+    held: dict[str, dict[str, list[tuple[str, str]]]] = {}
+    alike: dict[tuple[str, str], list[str]] = {}
+    for ref, address in index.entries:
+        stem, _, case = ref.partition("@")
+        named, _, step = case.partition("#")
+        if case:
+            held.setdefault(stem, {}).setdefault(named, []).append((step, address))
+        else:
+            row, _, last = ref.rpartition(".")
+            alike.setdefault((row, address), []).append(last)
+    said = [(stem, ", ".join(_in_case(named, found) for named, found in cases.items())) for stem, cases in held.items()]
+    said += [(f"{row}.{', '.join(last)}", address) for (row, address), last in alike.items()]
+    yield from sorted(said)
+
+
+def _in_case(case: str, found: list[tuple[str, str]]) -> str:
+    """Return a case with the addresses where a number and its steps stand in it."""
+    said = collapsed(address for _, address in found)
+    steps = [step for step, _ in found if step]
+    counted = f"#{steps[0]}" if len(steps) == 1 else f"#{min(steps, key=int)}–{max(steps, key=int)}" if steps else ""
+    return f"@{case}{counted} {said}"
 
 
 def style(name: str) -> str:

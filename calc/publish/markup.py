@@ -14,6 +14,7 @@ NARROW = "\u202f"
 SORTS = frozenset({"address", "date", "document", "file", "source", "id", "name"})
 RAISED = " × 10^"
 _NEGATIVE_POWER = re.compile("⁻[⁰¹²³⁴⁵⁶⁷⁸⁹]+")
+_QUANTITY = re.compile(r"[-+−]?[0-9][0-9.,e+-]{0,14}( ?[^\s0-9]\S{0,7})?")
 _LOWERED = str.maketrans("⁻⁰¹²³⁴⁵⁶⁷⁸⁹", "−0123456789")
 
 
@@ -54,7 +55,13 @@ def named(text: str) -> Markup:
 
 def given(text: str) -> Markup:
     """Return text as the user wrote it."""
-    return Markup('<span class="given">{}</span>').format(words(text))
+    manner = "given nw" if is_quantity(text) else "given"
+    return Markup('<span class="{}">{}</span>').format(manner, words(text))
+
+
+def is_quantity(text: str) -> bool:
+    """Return whether text is a number with a short unit, which no line breaks."""
+    return _QUANTITY.fullmatch(text) is not None
 
 
 def hidden(text: str) -> Markup:

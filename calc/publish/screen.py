@@ -18,13 +18,16 @@ from calc.equation import Implicit, Leaf
 from calc.equation.law import takes
 from calc.ledger import Derived, Ledger
 from calc.problems import Unresolved
-from calc.publish import places
+from calc.publish.faces import cut
 from calc.publish.formula import formula, slots
 from calc.publish.html import html, style
 from calc.publish.pdf import FACES, digest_head, faces
 from calc.publish.pictures import Picture
 from calc.report.document import Document, Figure, Formula, Number
 
+FACES_HERE = "/* faces */"
+PLAIN = frozenset(range(0x20, 0x7F)) | frozenset(map(ord, "\u00a0\u2009\u202f−×·–—…‘’“”"))
+"""Signs that the script may put together."""
 PANEL = 30.0  # em, the width of a formula in the panel
 ESCAPES = {"<": "\\u003c", ">": "\\u003e", "&": "\\u0026", "\u2028": "\\u2028", "\u2029": "\\u2029"}
 
@@ -56,18 +59,18 @@ def page(document: Document, ledger: Ledger, pictures: Mapping[str, Picture], bo
     head = Markup(
         '<meta http-equiv="Content-Security-Policy" content="{}"><meta name="viewport" '
         'content="width=device-width, initial-scale=1"><meta name="color-scheme" content="only light">'
-    ).format(policy) + Markup("<style>{}</style>").format(Markup(_styles()))
+    ).format(policy) + Markup("<style>{}</style>").format(Markup(FACES_HERE))
     carried = _carried("ledger", books) + _carried("names", _names(document, ledger))
     tail = _panel(document) + _templates(ledger) + carried
-    return html(document, ledger, picture, head=head, tail=tail + Markup("<script>{}</script>").format(Markup(script)))
+    said = html(document, ledger, picture, head=head, tail=tail + Markup("<script>{}</script>").format(Markup(script)))
+    return said.replace(FACES_HERE, _styles(frozenset(map(ord, said))), 1)
 
 
-def _styles() -> str:
-    held = {
-        name: base64.b64encode((places.fonts() / f"{name}.ttf").read_bytes()).decode("ascii") for _, name, _, _ in FACES
-    }
+def _styles(signs: frozenset[int]) -> str:
+    """Return the styles of the page, with faces that hold the signs that stand in it, and those of plain writing."""
     declared = faces("{}")
-    for name, content in held.items():
+    for _, name, _, _ in FACES:
+        content = base64.b64encode(cut(name, signs | PLAIN)).decode("ascii")
         declared = declared.replace(f'url("{name}")', f'url("data:font/ttf;base64,{content}")')
     return "\n".join([declared, style("page.css"), style("screen.css")])
 

@@ -11,13 +11,15 @@ from calc.problems import Unresolved
 from calc.publish.columns import GUTTER, PADDING, TEXT, TICK
 from calc.publish.markup import hidden
 from calc.publish.parts import Writer
-from calc.report.document import Number, Part, Parts, Row, Soft, Strong, Table, TableColumn
+from calc.report.document import Formula, Number, Part, Parts, Row, Soft, Strong, Table, TableColumn
 
 LETTERS = "abcdefghjkmnopqrstuvwxyz"
 ROLES = {"value": "val", "unit": "un", "from": "fr", "into": "to", "statement": "st", "": ""}
 ALIGN = {"left": "", "right": "r", "centre": "c"}
 UNSEEN = {"unit": "unit", "statement": "statement", "from": "from", "into": "into"}
 """Heads of columns that have none to be seen, for a reader who cannot see the table."""
+FEW = 9
+"""Rows up to which a table is never divided between sheets."""
 TONES = {"", "group", "sum", "proved", "flag"}
 
 
@@ -50,6 +52,13 @@ class Sheet:
     def manner(self) -> Markup:
         """Classes of the table."""
         return escape(f"t ledger {self.table.key}{' dense' if self.dense else ''}")
+
+    @property
+    def short(self) -> bool:
+        """Whether the table is kept on one sheet: few rows, and no formula in them."""
+        rows = self.table.rows
+        parts = (part for row in rows for cell in row.cells for part in cell)
+        return len(rows) <= FEW and not any(isinstance(part, Formula) for part in parts)
 
     @property
     def letters(self) -> list[Markup]:

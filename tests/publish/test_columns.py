@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 import sample
 
-from calc.publish.columns import GUTTER, LONGEST, MEASURE, PADDING, TICK, TURNED, widths
+from calc.publish.columns import GUTTER, LONG, LONGEST, MEASURE, PADDING, TICK, TURNED, widths
 from calc.publish.faces import small_capitals, width
 from calc.report.document import Number, Quoted, Row, Table, TableColumn
 from calc.report.numbers import Format
@@ -43,9 +43,31 @@ def test_a_long_number_widens_its_column() -> None:
 def test_a_word_of_usual_length_is_not_broken_and_a_longer_one_may_be() -> None:
     columns = (TableColumn(("what",)), TableColumn(("grade",), width=5))
     usual = widths(table(*columns, cells=("word", Quoted("manufacturer"))), DOCUMENT).on(176.0)[1]
-    longer = widths(table(*columns, cells=("word", Quoted("m" * 200))), DOCUMENT).on(176.0)[1]
+    longer = widths(table(*columns, cells=("word", Quoted("m" * 200))), DOCUMENT).needed[1]
     assert usual >= width("manufacturer") * 9.5 * 25.4 / 72 + PADDING - 0.01
     assert longer == pytest.approx(LONGEST + PADDING)
+
+
+def test_room_goes_to_what_would_be_broken_before_it_goes_to_what_is_asked() -> None:
+    columns = (TableColumn(("what",)), TableColumn(("note",), width=20), TableColumn(("value",), width=60))
+    note = "a note of several words that fills one line"
+    got = widths(table(*columns, cells=("word", Quoted(note), number("1.00"))), DOCUMENT).on(176.0)
+    assert got[1] >= width(note) * 9.5 * 25.4 / 72
+    assert got[2] < 60
+
+
+def test_a_quantity_as_written_is_not_broken() -> None:
+    columns = (TableColumn(("what",)), TableColumn(("as written",), width=5))
+    needed = widths(table(*columns, cells=("word", Quoted("9.80665 m/s²"))), DOCUMENT).needed[1]
+    assert needed >= width("9.80665 m/s²") * 9.5 * 25.4 / 72 + PADDING - 0.01
+
+
+def test_a_long_table_is_set_dense_rather_than_with_broken_cells() -> None:
+    columns = tuple(TableColumn(("words",)) for _ in range(6))
+    cells = (Quoted("some words that take a line"),) * 6
+    assert not widths(table(*columns, cells=cells), DOCUMENT).dense
+    assert widths(table(*columns, cells=cells, rows=LONG + 1), DOCUMENT).dense
+    assert widths(table(*columns, cells=cells), DOCUMENT, close=True).dense
 
 
 def test_heads_in_small_capitals_are_measured_as_such() -> None:

@@ -28,11 +28,12 @@ if TYPE_CHECKING:
     from calc.report.figures import Convergence, Panel
 
 FEW = 14  # steps whose values are all printed
-TALL, LOW = 58.0, 40.0  # mm: height of the first panel and of the others
+TALL, LOW = 46.0, 26.0  # mm: height of the first panel and of the others
 BETWEEN = 8.0  # pt
 ZERO_ROOM = 16.0  # pt beneath the decades
 SPARE = 0.35  # decades beyond the values
 MOST_DECADES = 6  # named beside the axis
+LEAST_APART = 12.0  # pt between two of them
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,7 +60,8 @@ class Decades:
     def ticks(self) -> list[tuple[float, str]]:
         """Return the whole decades, all or every second, third …, with their texts."""
         first, last = ceil(self.straight.low - 1e-9), floor(self.straight.high + 1e-9)
-        step = max(1, ceil((last - first) / MOST_DECADES))
+        apart = abs(self.straight.at(1.0) - self.straight.at(0.0))
+        step = max(1, ceil((last - first) / MOST_DECADES), ceil(LEAST_APART / apart))
         found = [(self.straight.at(power), scale.decade(power)) for power in range(last, first - 1, -step)]
         return [*found, (self.zero, "0")] if self.zero is not None else found
 
