@@ -74,7 +74,7 @@ def shown(text: str, *, listing: bool = False) -> str:
 
 
 def cut(face: str, signs: frozenset[int]) -> bytes:
-    """Return a face as a file that holds only some signs, with their small capitals, figures and ligatures."""
+    """Return a face as a web font that holds only some signs, with their small capitals, figures and ligatures."""
     from fontTools.subset import Options, Subsetter
     from fontTools.ttLib import TTFont
 
@@ -84,5 +84,6 @@ def cut(face: str, signs: frozenset[int]) -> bytes:
         cutter = Subsetter(options)
         cutter.populate(unicodes=signs)
         cutter.subset(font)
+        font.flavor = "woff"
         font.save(made)
     return made.getvalue()

@@ -71,7 +71,7 @@ def _styles(signs: frozenset[int]) -> str:
     declared = faces("{}")
     for _, name, _, _ in FACES:
         content = base64.b64encode(cut(name, signs | PLAIN)).decode("ascii")
-        declared = declared.replace(f'url("{name}")', f'url("data:font/ttf;base64,{content}")')
+        declared = declared.replace(f'url("{name}")', f'url("data:font/woff;base64,{content}")')
     return "\n".join([declared, style("page.css"), style("screen.css")])
 
 

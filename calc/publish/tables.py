@@ -51,14 +51,19 @@ class Sheet:
     @property
     def manner(self) -> Markup:
         """Classes of the table."""
-        return escape(f"t ledger {self.table.key}{' dense' if self.dense else ''}")
+        sort = "worked" if self.formulas else "rows"
+        return escape(f"t ledger {self.table.key} {sort}{' dense' if self.dense else ''}")
+
+    @property
+    def formulas(self) -> bool:
+        """Whether formulas stand in it, whose rows are tall."""
+        parts = (part for row in self.table.rows for cell in row.cells for part in cell)
+        return any(isinstance(part, Formula) for part in parts)
 
     @property
     def short(self) -> bool:
-        """Whether the table is kept on one sheet: few rows, and no formula in them."""
-        rows = self.table.rows
-        parts = (part for row in rows for cell in row.cells for part in cell)
-        return len(rows) <= FEW and not any(isinstance(part, Formula) for part in parts)
+        """Whether the table is kept on one sheet."""
+        return len(self.table.rows) <= FEW and not self.formulas
 
     @property
     def letters(self) -> list[Markup]:
