@@ -124,7 +124,8 @@ class Iteration:
         change, turn = self._turn(state)
         before = float(np.sum(state.error * turn))
         judged = (
-            np.max(np.abs(turn), initial=0.0) > DECIDED * state.largest
+            before > self._doubt(state, change, turn)
+            and np.max(np.abs(turn), initial=0.0) > DECIDED * state.largest
             and state.largest_imbalance <= DECIDED * state.largest
         )
         share = 1.0
@@ -138,13 +139,21 @@ class Iteration:
             new = self._moved(state, change, turn, share)
         return new, share
 
+    def _doubt(self, state: State, change: Array, turn: Array) -> float:
+        """Return the most by which imbalances, before a step and left by it, can falsify the slope along it, m·m³/s."""
+        left = state.imbalance + self.grid.gathered(turn)
+        return float(np.sum(np.abs(change[self.network.unknown]) * (np.abs(state.imbalance) + np.abs(left))))
+
     def _turn(self, state: State) -> tuple[Array, Array]:
         """Return the changes of head, shape (n,), and of flow, shape (m,), that a full step makes.
 
         Where wide short pipes hang on narrow long ones the system may be singular to rounding; the widest are
         then taken as less wide, which changes the way to the answer and not the answer.
         """
-        enough = max(KEPT * state.largest + float(np.max(self.trickle)), 0.1 * state.largest_imbalance)
+        held = state.largest_imbalance
+        enough = max(KEPT * state.largest + float(np.max(self.trickle)), 0.1 * held)
+        told = held > RELATIVE * state.largest  # then a step that leaves the imbalance is no step
+        fair: tuple[Array, Array] | None = None
         for largest in RANGES:
             conductance = _capped(state.conductance, largest)
             pushed = np.where(self.between, 0.0, conductance * state.error)
@@ -154,9 +163,12 @@ class Iteration:
                 continue
             drawn = conductance * self.grid.drop(change, np.zeros_like(change))
             turn = pushed + np.where(self.between, 0.0, drawn)
-            left = state.imbalance + self.grid.gathered(turn)
-            if np.max(np.abs(left), initial=0.0) <= enough:
+            left = float(np.max(np.abs(state.imbalance + self.grid.gathered(turn)), initial=0.0))
+            if left <= enough and (left <= max(0.5 * held, KEPT * float(np.max(np.abs(turn)))) or not told):
                 return change, turn
+            fair = fair or ((change, turn) if left <= enough else None)
+        if fair is not None:
+            return fair
         raise SingularGrid("the conductances of the pipes differ too much")
 
     def _moved(self, state: State, change: Array, turn: Array, share: float) -> State:
