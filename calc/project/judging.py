@@ -7,7 +7,7 @@ from dataclasses import replace
 
 from calc.components import Field, Quantity, Record, Schema, Stated, Text
 from calc.criteria import ALL, Criterion
-from calc.kinds import Kind
+from calc.kinds import GRADIENT, VELOCITY, Kind
 from calc.project import later
 from calc.project.header import joined, scalars
 from calc.project.model import Project
@@ -20,6 +20,8 @@ from calc.yamlfile import Mapping as MappingNode
 
 BY_ID: dict[str, Criterion] = {criterion.id: criterion for criterion in ALL}
 _SCHEMA = Schema("criteria", "criterion", (Field("title", Text()),))
+WITHOUT_SIGN = (GRADIENT, VELOCITY)
+"""Kinds that criteria judge without sign, so that a limit below zero says nothing."""
 _OWN_KEYS = ("limit", "applies_to", "cases")
 
 
@@ -83,7 +85,7 @@ def _read(
 
 def _read_limit(reader: Reader, criterion: Criterion, node: Node, path: str, stated: dict[str, Stated]) -> None:
     """Read a limit in any of the kinds a criterion takes, and say which."""
-    forms = tuple(Quantity(kind) for kind in criterion.kinds)
+    forms = tuple(Quantity(kind, at_least=0.0 if kind in WITHOUT_SIGN else None) for kind in criterion.kinds)
     used: list[Kind] = []
 
     def read(scalar: Scalar, at: str) -> Stated | None:

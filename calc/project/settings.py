@@ -53,7 +53,7 @@ SITE = Schema(
     "site",
     (
         Field("altitude", Quantity(ELEVATION, at_least=-430.0, at_most=9000.0), words="altitude above sea level"),
-        Field("gravity", Quantity(ACCELERATION, at_least=9.7, at_most=9.9), words="gravity"),
+        Field("gravity", Quantity(ACCELERATION, at_least=9.7, at_most=10.0), words="gravity"),
     ),
 )
 TRANSITION = Schema(

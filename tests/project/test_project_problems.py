@@ -521,7 +521,7 @@ CASES: list[tuple[str, str, str]] = [
     (
         "out-of-range",
         added("cases: {odd: {with: {site.gravity: 9 m/s²}}}\n"),
-        "19:36: cases.odd.with.site.gravity: '9 m/s²' is out of range; expected an acceleration from 9.7 to 9.9 m/s²",
+        "19:36: cases.odd.with.site.gravity: '9 m/s²' is out of range; expected an acceleration from 9.7 to 10 m/s²",
     ),
     (
         "rough-bore",

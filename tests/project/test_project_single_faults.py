@@ -62,6 +62,11 @@ CASES: list[tuple[str, str, str]] = [
         "10:21: pipes.upper-main.length: '1850 m' lies outside its range, 1860 m to 1870 m",
     ),
     (
+        "out-of-range",
+        SOUND + "criteria: {velocity-max: {limit: -2 m/s}}\n",
+        "19:34: criteria.velocity-max.limit: '-2 m/s' is out of range; expected a velocity of at least 0 m/s",
+    ),
+    (
         "wrong-group",
         SOUND + "solver: {start: {marl-cross: 190 m, vell: 190 m}}\n",
         "19:37: solver.start.vell: 'vell' is a reservoir, whose head is its level; expected the id of a junction",
@@ -74,6 +79,11 @@ def test_a_fault_drags_no_others_along(tmp_path: Path, code: str, text: str, sai
     (found,) = problems_in(tmp_path, text)
     assert show(found, {}).startswith(f"network.yaml:{said}")
     assert found.code == code
+
+
+def test_gravity_may_be_taken_as_ten(tmp_path: Path) -> None:
+    # as many textbook examples do, common practice
+    assert problems_in(tmp_path, SOUND + "site: {gravity: 10 m/s²}\n") == ()
 
 
 def test_a_value_at_an_end_of_its_range_stands(tmp_path: Path) -> None:
