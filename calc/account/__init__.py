@@ -10,10 +10,10 @@ Knows project, criteria, solutions and ledger; knows nothing of how they are sai
 from calc.account.accounting import Account, CaseAccount, keep_account
 from calc.account.books import liquid_terms, open_books
 from calc.account.findings import TITLES, WITHOUT_SOURCE, Finding, input_findings
-from calc.account.history import MOST_BRANCHES
 from calc.account.opinion import Agreement
 from calc.account.outcome import results
 from calc.account.paths import Path
+from calc.account.trials import MOST_BRANCHES
 from calc.account.verdicts import CriterionVerdict, Verdict
 
 __all__ = [

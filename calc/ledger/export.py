@@ -68,6 +68,7 @@ def _origin(column: Column, number: dict[int, int]) -> dict[str, Any]:
         case Solved():
             told = {"kind": "solved", "statement": origin.statement, "method": origin.method}
             told |= {"iterations": origin.iterations, "proof": list(origin.proof)}
+            told["inputs"] = {name: _view(view, number) for name, view in origin.inputs.items()}
         case Judged():
             rule = "1 if margin >= 0 else 0"
             told = {"kind": "judged", "rule": rule, "margin": _view(origin.margin, number)}

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 import numpy as np
 import numpy.typing as npt
@@ -85,12 +85,15 @@ class Solved(Origin):
         Rows of the history.
     proof : tuple of str
         Names of the columns of the same case in which the condition is evaluated at the answer.
+    inputs : mapping of str to View
+        What the condition rests on, aligned with the rows, where no column evaluates it: flows at a trial head.
     """
 
     statement: str
     method: str
     iterations: int
     proof: tuple[str, ...]
+    inputs: Mapping[str, View] = field(default_factory=dict)
 
 
 @dataclass(frozen=True, eq=False, slots=True)

@@ -57,6 +57,7 @@ class _Tracer:
                 yield f"{head}   solved: {origin.statement} ({how}){below}"
                 if origin.proof:
                     self.waiting.append(spot)
+                yield from self._inputs([view.spot(row) for view in origin.inputs.values()], depth)
             case Judged():
                 said = "met: the margin is not negative" if spot.value else "not met: the margin is negative"
                 yield f"{head}   {said}"

@@ -152,7 +152,8 @@ def inputs_of(ledger: Ledger, spot: Spot) -> list[str]:
         case Judged():
             found = [origin.margin.spot(row)]
         case Solved():
-            return [proof.id for proof in proofs(ledger, spot.column, row)]
+            rests = [view.spot(row) for view in origin.inputs.values()]
+            return [proof.id for proof in (*proofs(ledger, spot.column, row), *(Spot(*one) for one in rests if one))]
         case _:
             return []
     return [Spot(*one).id for one in found if one is not None]

@@ -108,8 +108,10 @@ def own_inputs(account: Account, ref: str) -> set[str]:
             found = [origin.terms.spot(k) for k in range(len(origin.into)) if origin.into[k] == spot.row]
         case Judged() as origin:
             found = [origin.margin.spot(spot.row)]
-        case Solved():
-            return {proof.id for proof in proofs(account.ledger, spot.column, spot.row)}
+        case Solved() as origin:
+            proved = {proof.id for proof in proofs(account.ledger, spot.column, spot.row)}
+            rests = (view.spot(spot.row) for view in origin.inputs.values())
+            return proved | {Spot(*one).id for one in rests if one is not None}
         case Given() | Converted() | Library() | Program():
             found = []
         case other:
