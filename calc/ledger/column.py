@@ -22,7 +22,7 @@ class Origin:
     __slots__ = ()
 
 
-@dataclass(frozen=True, eq=False)
+@dataclass(frozen=True, eq=False, repr=False)
 class Column:
     """One quantity for all components of a case, or of one component for all trials, with one origin.
 
@@ -56,6 +56,10 @@ class Column:
         """Freeze the values."""
         self.values.flags.writeable = False
 
+    def __repr__(self) -> str:
+        """Name the column and no more: its origin leads to all that it rests on."""
+        return f"<Column {self.name}@{self.case}{f' of {self.of}' if self.of else ''}, {len(self.rows)} rows>"
+
     @property
     def group(self) -> str:
         """The group of components, the first word of an id."""
@@ -81,7 +85,7 @@ class Column:
         return {row: k for k, row in enumerate(self.rows)}
 
 
-@dataclass(frozen=True, eq=False)
+@dataclass(frozen=True, eq=False, repr=False)
 class View:
     """Rows of columns, in an order of their own: what laws take and give.
 
@@ -102,6 +106,10 @@ class View:
     at: Rows
     rows: tuple[str, ...]
     shared: bool = False
+
+    def __repr__(self) -> str:
+        """Name the sources and no more."""
+        return f"<View of {', '.join(sorted({column.name for column in self.sources}))}, {len(self.rows)} rows>"
 
     @classmethod
     def whole(cls, column: Column, *, shared: bool = False) -> View:
