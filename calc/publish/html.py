@@ -234,7 +234,7 @@ def gathered(index: Index) -> Iterator[tuple[str, str]]:
             row, _, last = ref.rpartition(".")
             alike.setdefault((row, address), []).append(last)
     said = [(stem, ", ".join(_in_case(named, found) for named, found in cases.items())) for stem, cases in held.items()]
-    said += [(f"{row}.{', '.join(last)}", address) for (row, address), last in alike.items()]
+    said += [(row, f"{', '.join(f'.{word}' for word in last)} {address}") for (row, address), last in alike.items()]
     yield from sorted(said)
 
 

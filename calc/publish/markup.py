@@ -50,7 +50,7 @@ def own(text: str, sort: str) -> Markup:
 
 def named(text: str) -> Markup:
     """Return a heading or label that may hold the user's own words, and so digits."""
-    return own(text, "document") if any(c.isdecimal() for c in text) else words(text)
+    return own(text, "document") if any(c.isdecimal() for c in shown(text)) else words(text)
 
 
 def given(text: str) -> Markup:

@@ -24,6 +24,7 @@ from weasyprint.urls import URLFetcher, URLFetcherResponse
 from calc.ledger import Ledger
 from calc.problems import IntegrityError
 from calc.publish import places
+from calc.publish.faces import shown
 from calc.publish.html import html, style
 from calc.publish.metadata import CalculationMetadata
 from calc.publish.pictures import Picture
@@ -230,7 +231,7 @@ def _styles(document: Document) -> str:
         "bottom-left": f"digest {digest_head(document)}",
         "bottom-center": running(document.status, STATUS),
     }
-    heads = " ".join(f"@{place} {{ content: {quoted(text)} }}" for place, text in said.items())
+    heads = " ".join(f"@{place} {{ content: {quoted(shown(text))} }}" for place, text in said.items())
     none = " ".join(f"@{place} {{ content: none }}" for place in ("top-left", "top-center", "top-right"))
     heads = f"@page {{ {heads} }}\n@page :first {{ {none} }}"
     return "\n".join(

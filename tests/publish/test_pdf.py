@@ -10,6 +10,7 @@ import re
 import subprocess
 import sys
 from collections.abc import Iterator
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -24,9 +25,21 @@ from weasyprint.formatting_structure import boxes
 from calc.problems import IntegrityError
 from calc.publish import pdf
 from calc.publish.faces import shown
-from calc.publish.seal import printed
+from calc.publish.seal import printed, seal_document
 from calc.publish.tagging import formulas_tagged
-from calc.report.document import Document, Heading, Listing, Paragraph, Quoted, Row, Section, Table, TableColumn
+from calc.report.document import (
+    Document,
+    Heading,
+    Listing,
+    Masthead,
+    Paragraph,
+    Quoted,
+    Row,
+    Section,
+    SignOff,
+    Table,
+    TableColumn,
+)
 
 pytestmark = pytest.mark.pdf
 PAPERS = {"A4": (595.28, 841.89), "Letter": (612.0, 792.0)}
@@ -314,6 +327,21 @@ def test_signs_of_other_scripts_bring_no_other_face() -> None:
     text = "".join(box.text for p in laid.pages for box, _, _ in walked(p._page_box) if isinstance(box, boxes.TextBox))
     assert shown("水") in text
     assert "水" not in text
+
+
+def test_names_in_other_scripts_can_be_published() -> None:
+    word = "水道 \U0001f600"
+    blocks = (Heading((Quoted(word),)), SignOff((("originator", word),), seal_area=False))
+    sections = (
+        Section("decision", "1", "Decision", (), (Masthead((Quoted(word),), (Quoted(word),), "Issued", ()), *blocks)),
+        Section("a", "2", word, (Quoted(word),), blocks),
+    )
+    document = replace(plain(*sections, title=word), number=word, revision=word)
+    ledger = sample.ledger()
+    page = pdf.sheet_html(document, ledger, {})
+    assert seal_document(page, document, ledger) == 0
+    pages = text_of(pdf.write(document, page, {}, {}))
+    assert "[U+6C34]" in squeezed(pages[0])
 
 
 CODE = """
