@@ -10,7 +10,6 @@ import numpy.typing as npt
 
 from calc.components import Network
 from calc.components.pipe import FittingTerms, PipeResults, PipeTerms, losses, transition_limits
-from calc.equation import Labels
 from calc.kinds import FLOW, HEAD
 from calc.ledger import Accountant, Ledger, Solved, View
 from calc.ledger.column import ABSENT
@@ -78,7 +77,7 @@ def pipe_terms(ledger: Ledger, network: Network, case: str, chosen: Rows) -> Pip
     def pipes(name: str) -> View:
         return ledger.view(f"pipes.{name}", case, rows)
 
-    law = Labels(arrays.law.words, np.broadcast_to(arrays.law.codes, (len(arrays.rows),))[chosen])
+    law = arrays.law.take(chosen)
     bore = pipes("bore")
     return PipeTerms(
         rows=rows,

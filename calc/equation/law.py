@@ -74,10 +74,24 @@ class Implicit:
 
 @dataclass(frozen=True)
 class Labels:
-    """A word for each row: ``words[codes[i]]``; what a Choice reads."""
+    """A word for each row: ``words[codes[i]]``; what a Choice reads. ``places`` says where each was stated."""
 
     words: tuple[str, ...]
     codes: npt.NDArray[np.int64]
+    places: tuple[str, ...] = ()
+
+    def take(self, index: npt.NDArray[np.int64]) -> Labels:
+        """Return the labels of some rows; one label for all serves as it is."""
+        if len(self.codes) == 1 < len(index):
+            return self
+        places = tuple(self.places[int(k)] for k in index) if self.places else ()
+        return Labels(self.words, self.codes[index], places)
+
+    def said(self, row: int) -> str:
+        """Return the word of a row, with the place where it was stated."""
+        at = 0 if len(self.codes) == 1 else row
+        word = self.words[int(self.codes[at])]
+        return f"{word} at {self.places[at]}" if self.places else word
 
 
 Leaf = Equation | Implicit

@@ -63,6 +63,7 @@ class Accountant:
             leaves=leaves,
             labels=labels,
             inputs=inputs,
+            by=by,
             shared=shared,
         )
 
@@ -77,6 +78,7 @@ class Accountant:
         leaves: Sequence[Leaf],
         labels: Sequence[str],
         inputs: Mapping[str, View],
+        by: Labels | None,
         shared: bool,
     ) -> View:
         kept = np.flatnonzero(which != ABSENT)
@@ -90,6 +92,7 @@ class Accountant:
             which[kept],
             tuple(labels),
             {n: view.take(kept) for n, view in inputs.items() if n in needed},
+            tuple(by.said(int(k)) for k in kept) if by is not None else (),
         )
         column = self.ledger.enter(
             name,

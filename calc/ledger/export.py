@@ -99,6 +99,8 @@ def _derived(origin: Derived, number: dict[int, int]) -> dict[str, Any]:
         ]
         told["law_of_row"] = origin.which.tolist()
     told["inputs"] = {name: _view(view, number) for name, view in origin.inputs.items()}
+    if origin.choices:
+        told["choices"] = list(origin.choices)
     return told
 
 

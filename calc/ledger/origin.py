@@ -62,6 +62,8 @@ class Derived(Origin):
         For each leaf, the regime or choice it stands for; empty where the law is one equation.
     inputs : mapping of str to View
         Aligned with the rows, or shared; absent where the governing leaf does not take it.
+    choices : tuple of str
+        For each row, the word that a Choice read, with the place where it was stated; empty where there is no Choice.
     """
 
     law: Law
@@ -69,6 +71,7 @@ class Derived(Origin):
     which: Rows
     labels: tuple[str, ...]
     inputs: Mapping[str, View]
+    choices: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, eq=False, slots=True)

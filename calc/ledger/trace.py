@@ -74,7 +74,8 @@ class _Tracer:
         root = f"root {leaf.gives.text} of 0 = " if isinstance(leaf, Implicit) else ""
         formula = equation.formula() if not root else linear(equation.expression, lambda n: equation.takes[n].text)
         said = f", {label}" if label else ""
-        yield f"{head}   {root}{formula}   [{equation.title}{said}; {equation.source.key}]"
+        chosen = f"; law {origin.choices[row]}" if origin.choices else ""
+        yield f"{head}   {root}{formula}   [{equation.title}{said}; {equation.source.key}{chosen}]"
         yield from self._inputs([origin.inputs[name].spot(row) for name in takes(leaf)], depth)
 
     def _combined(self, head: str, origin: Combined, row: int, depth: int) -> Iterator[str]:

@@ -63,6 +63,12 @@ class _Inputs:
         return np.array([_CODES.get(pipe.text("law"), -1) for pipe in pipes], dtype=np.int64)
 
     @cached_property
+    def law_places(self) -> npt.NDArray[np.object_]:
+        """Where the law of each pipe is stated, as ``file:line:column``; empty where it could not be read."""
+        stated = (pipe.stated.get("law") for pipe in self.groups["pipes"].values())
+        return np.array(["" if law is None else str(law.mark) for law in stated], dtype=object)
+
+    @cached_property
     def ends(self) -> tuple[Rows, Rows]:
         """The nodes at ``from`` and ``to``."""
         pipes = self.groups["pipes"].values()
@@ -148,13 +154,15 @@ class Effective:
     def law(self) -> Labels:
         """Return the friction law of each pipe."""
         codes, follows = self.inputs.law.copy(), self.inputs.follows.copy()
+        places = self.inputs.law_places.copy()
         for line in self.lines:
             if line.group == "friction":
-                codes[follows] = _CODES[line.stated.text]
+                codes[follows], places[follows] = _CODES[line.stated.text], str(line.stated.mark)
             elif line.group == "pipes" and line.field == "law":
                 at = self.rows(line)
                 codes[at], follows[at] = _CODES[line.stated.text], False
-        return Labels(LAW_NAMES, codes)
+                places[at] = str(line.stated.mark)
+        return Labels(LAW_NAMES, codes, tuple(places.tolist()))
 
 
 def network(project: Project, case: str, viscosity: float) -> Network:
