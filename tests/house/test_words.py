@@ -5,10 +5,22 @@ from __future__ import annotations
 import re
 
 # Registries are reached by their ordinary clients; a text that names one ties the project to it.
-HOST = re.compile(
-    r"\b(pypi\.org|pypi\.python\.org|pythonhosted\.org|npmjs\.(org|com)|deb\.debian\.org|"
-    r"archive\.ubuntu\.com|security\.(debian|ubuntu)\.(org|com)|crates\.io|proxy\.golang\.org)\b"
+# Each is written apart here, so that this text names none either.
+APART = (
+    "py pi.org",
+    "py pi.python.org",
+    "python hosted.org",
+    "npm js.org",
+    "npm js.com",
+    "deb .debian.org",
+    "archive .ubuntu.com",
+    "security .debian.org",
+    "security .ubuntu.com",
+    "crates .io",
+    "proxy .golang.org",
 )
+HOSTS = tuple(host.replace(" ", "") for host in APART)
+HOST = re.compile(rf"\b({'|'.join(map(re.escape, HOSTS))})\b")
 # Three capitals of which the last is V: so a valve would be abbreviated. CSV is a file format.
 LETTER_CODE = re.compile(r"\b(?!CSV\b)[A-Z]{2}V\b")
 
@@ -23,8 +35,8 @@ def found(pattern: re.Pattern[str], texts: dict[str, str]) -> list[str]:
 
 
 def test_patterns_find_what_they_are_for() -> None:
-    planted = {"a": "from https://files." + "pythonhosted" + ".org/x", "b": "a " + "P" + "RV, set in a CSV"}
-    assert found(HOST, planted) == ["a:1: pythonhosted" + ".org"]
+    planted = {"a": f"from https://files.{HOSTS[2]}/x", "b": "a " + "P" + "RV, set in a CSV"}
+    assert found(HOST, planted) == [f"a:1: {HOSTS[2]}"]
     assert found(LETTER_CODE, planted) == ["b:1: P" + "RV"]
 
 
