@@ -43,7 +43,6 @@ ALTITUDE = Symbol("z_a", kinds.ELEVATION, "altitude of the site")
 GEOPOTENTIAL_ALTITUDE = Symbol("z_g", kinds.ELEVATION, "geopotential altitude of the site")
 GRADIENT = Symbol("S_f", kinds.GRADIENT, "friction gradient")
 CLOSING_ERROR = Symbol("e", kinds.HEAD, "closing error of energy along a branch")
-IMBALANCE = Symbol("F", kinds.FLOW, "imbalance at a junction, flow toward it positive")
 WITHDRAWAL = Symbol("W", kinds.FLOW, "withdrawal at a junction")
 
 METRE = Unit("m", kinds.LENGTH.dimension)

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from calc.equation import Equation, Implicit, Leaf
+from calc.equation import Leaf
 from calc.equation.evaluation import evaluate_leaf
 from calc.equation.law import takes
 from calc.ledger import Combined, Derived, Spot
@@ -150,8 +150,3 @@ def symbols_of(leaf: Leaf) -> list[tuple[Letter, str, str]]:
     """Return the symbols of a law with their words and units, the result first."""
     every = [leaf.gives, *takes(leaf).values()]
     return [(Letter(symbol.text), symbol.words, symbol.kind.unit) for symbol in every]
-
-
-def residual_of(leaf: Leaf) -> Equation:
-    """Return the equation of a leaf: the residual of an implicit law."""
-    return leaf.residual if isinstance(leaf, Implicit) else leaf

@@ -11,7 +11,6 @@ SOFT = "#4a443e"
 ADDRESS = "#4c2563"  # the accepted solution alone
 TURNED = "#a8360a"  # what turns round between cases alone
 RULE = "#7d746a"
-FEINT = "#c9c1b7"
 PAPER = "#ffffff"
 
 POINTS_PER_MM = 72 / 25.4
