@@ -4,13 +4,13 @@
 
     CalcError
       ProblemsFound      the inputs or the call are wrong: a list of Problem (exit 2)
+      NotConverged       a case has no solution: with the history of the attempt (exit 3)
       IntegrityError     a package or a printed number does not prove (exit 4)
       StorageError       disk or permission (exit 5)
       EquationError      an equation is badly declared (ours, raised at import)
       Unresolved         a printed number has no line in the ledger (ours, stops publishing)
 
-A criterion not met is a verdict, a doubtful practice a finding, and a case without a solution a result that says
-why; none of them is a problem or an error.
+A criterion not met is a verdict and a doubtful practice is a finding; neither is a problem.
 """
 
 from __future__ import annotations
@@ -81,6 +81,10 @@ class ProblemsFound(CalcError):
         """Return every problem in full, in the order of their places."""
         lines = {name: text.splitlines() for name, text in self.texts.items()}
         return "\n".join(_shown(problem, lines.get(problem.mark.file, [])) for problem in self.problems)
+
+
+class NotConverged(CalcError):
+    """A case has no solution, or none was found; carries why."""
 
 
 class IntegrityError(CalcError):
