@@ -104,14 +104,13 @@
     return [make("h3", "formula"), make("p", title), copy.querySelector(".symbols"), note, make("h3", "numbers put in, in SI"), copy.querySelector(".worked")];
   }
   function derived(origin, spot) {
-    const leaf = origin.laws ? origin.laws[origin.law_of_row[spot.r]] : origin;
-    const letters = names.letters[leaf.equation] || {};
+    const letters = names.letters[origin.equation] || {};
     const inputs = new Map(Object.entries(origin.inputs).map(([name, view]) => [name, input(view, spot.r)]).filter(([name, one]) => one && name in letters));
-    const regime = leaf.regime ? `, ${leaf.regime}` : "";
+    const regime = origin.regime ? `, ${origin.regime}` : "";
     return [
-      ...filled(leaf.equation, inputs, leaf.root_of ? { unknown: leaf.root_of, spot } : null, leaf.title + regime,
-        make("p", `Source: ${leaf.source}. Range: ${leaf.range}.`, "note")),
-      make("p", [leaf.root_of ? "zero at " : "= ", amount(spot, 9)]),
+      ...filled(origin.equation, inputs, origin.root_of ? { unknown: origin.root_of, spot } : null, origin.title + regime,
+        make("p", `Source: ${origin.source}. Range: ${origin.range}.`, "note")),
+      make("p", [origin.root_of ? "zero at " : "= ", amount(spot, 9)]),
       ...listed("inputs", [...inputs].map(([name, one]) => ({ spot: one, sign: letter(letters[name]) }))),
     ];
   }

@@ -57,17 +57,16 @@ class Reader:
     def derived(self, column: dict[str, Any]) -> Iterator[tuple[float, float]]:
         origin = column["origin"]
         for row in range(len(column["rows"])):
-            law = origin if "laws" not in origin else origin["laws"][origin["law_of_row"][row]]
             found = {}
             for name, view in origin["inputs"].items():
                 if "columns" not in view or view["columns"][row] is not None:
                     found[name] = self.look(view, row)
             values = {name: value for name, (value, _) in found.items()}
-            adds = " + " in law["formula"] or " - " in law["formula"]
+            adds = " + " in origin["formula"] or " - " in origin["formula"]
             own = column["unit"] or column["kind"]
             alike = [abs(value) for value, unit in found.values() if adds and unit == own != "pure number"]
             size = max(alike, default=0.0)
-            yield solve(law, values), size
+            yield solve(origin, values), size
 
     def converted(self, column: dict[str, Any]) -> Iterator[tuple[float, float]]:
         origin = column["origin"]

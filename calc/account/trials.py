@@ -19,8 +19,6 @@ from calc.solve.rules import RULES
 MOST_BRANCHES = 12
 """Branches above which tables print norms and the worst node instead of every branch."""
 
-ZERO = np.zeros(1, dtype=np.int64)
-
 
 def enter_trials(ledger: Ledger, network: Network, trials: Trials, case: str) -> None:
     """Enter every evaluation of the balance, each head by its rule on earlier rows."""
@@ -58,7 +56,7 @@ class _Table:
         rule = RULES[self.trials.rule[t]]
         cited = {name: self._cited(t, column, place) for name, column, place in rule.places}
         inputs: Mapping[str, View] = {name: cited[name] for name in takes(rule.equation)}
-        origin = Derived(rule.equation, (rule.equation,), ZERO, (self.trials.rule[t],), inputs)
+        origin = Derived(rule.equation, rule.equation, self.trials.rule[t], inputs)
         head = [self.trials.head[t]]
         return self.ledger.enter("junctions.head", HEAD, [str(t + 1)], head, origin, case=self.case, of=self.junction)
 

@@ -114,7 +114,8 @@ class _Once(Accountant):
 
     def apply(self, name: str, law: Law, /, *, by: Labels | None = None, **inputs: View) -> View:
         standing = [column for column in self.ledger.find(name, self.case) if column.case == self.case]
-        return View.whole(standing[0]) if standing else super().apply(name, law, by=by, **inputs)
+        owner = next(view for view in inputs.values() if not view.shared)
+        return View.assembled(standing, owner.rows) if standing else super().apply(name, law, by=by, **inputs)
 
 
 def _limit(criterion: Criterion, books: Accountant) -> View:

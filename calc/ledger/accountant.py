@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from typing import Any
 
 import numpy as np
 import numpy.typing as npt
 
-from calc.equation import Choice, Labels, Law, Leaf, Regimes, select
+from calc.equation import Labels, Law, Leaf, select
 from calc.equation.evaluation import evaluate_leaf, part
 from calc.equation.law import gives, takes
+from calc.equation.slope import value_of
 from calc.kinds import Kind
 from calc.ledger.column import ABSENT, Array, Column, Rows, View
 from calc.ledger.ledger import Ledger
@@ -43,69 +44,26 @@ class Accountant:
         arrays: dict[str, Any] = {n: view.values for n, view in inputs.items()}
         if by is not None:
             arrays["by"] = by
-        values = np.full(len(rows), np.nan)
-        which = np.full(len(rows), ABSENT, dtype=np.int64)
-        leaves: list[Leaf] = []
-        labels: list[str] = []
+        governed: dict[tuple[str, str], tuple[Leaf, list[Rows]]] = {}
         for at, leaf, label in select(law, arrays, len(rows)):
-            if leaf is None:
-                continue
-            which[at] = len(leaves)
-            leaves.append(leaf)
-            labels.append(label if isinstance(law, Regimes | Choice) else "")
-            values[at] = evaluate_leaf(leaf, {n: part(arrays[n], at) for n in takes(leaf)})
-        return self._entered(
-            name,
-            law,
-            rows,
-            values=values,
-            which=which,
-            leaves=leaves,
-            labels=labels,
-            inputs=inputs,
-            by=by,
-            shared=shared,
-        )
-
-    def _entered(
-        self,
-        name: str,
-        law: Law,
-        rows: Sequence[str],
-        *,
-        values: Array,
-        which: Rows,
-        leaves: Sequence[Leaf],
-        labels: Sequence[str],
-        inputs: Mapping[str, View],
-        by: Labels | None,
-        shared: bool,
-    ) -> View:
-        kept = np.flatnonzero(which != ABSENT)
-        if not len(kept):
-            empty = np.full(len(rows), ABSENT, dtype=np.int64)
-            return View((), empty, np.zeros(len(rows), dtype=np.int64), tuple(rows))
-        needed = {n for leaf in leaves for n in takes(leaf)}
-        origin = Derived(
-            law,
-            tuple(leaves),
-            which[kept],
-            tuple(labels),
-            {n: view.take(kept) for n, view in inputs.items() if n in needed},
-            tuple(by.said(int(k)) for k in kept) if by is not None else (),
-        )
-        column = self.ledger.enter(
-            name,
-            gives(leaves[0]).kind,
-            [rows[int(k)] for k in kept],
-            values[kept],
-            origin,
-            case=self.case,
-            of=self.of,
-        )
-        at = np.zeros(len(rows), dtype=np.int64)
-        at[kept] = np.arange(len(kept))
-        return View((column,), np.where(which == ABSENT, ABSENT, 0), at, tuple(rows), shared)
+            if leaf is not None:
+                governed.setdefault((leaf.name, label), (leaf, []))[1].append(at)
+        columns: list[Column] = []
+        which = np.full(len(rows), ABSENT, dtype=np.int64)
+        place = np.zeros(len(rows), dtype=np.int64)
+        for (_, label), (leaf, pieces) in governed.items():
+            at = np.sort(np.concatenate(pieces))
+            which[at], place[at] = len(columns), np.arange(len(at))
+            chosen = tuple(by.said(int(k)) for k in at) if by is not None else ()
+            cited = {n: inputs[n].take(at) for n in takes(leaf)}
+            origin = Derived(law, leaf, label, cited, chosen)
+            values = np.broadcast_to(
+                value_of(evaluate_leaf(leaf, {n: part(arrays[n], at) for n in takes(leaf)})), at.shape
+            )
+            held = [rows[int(k)] for k in at]
+            kind = gives(leaf).kind
+            columns.append(self.ledger.enter(name, kind, held, values, origin, case=self.case, of=self.of))
+        return View(tuple(columns), which, place, tuple(rows), shared and bool(columns))
 
     def gather(self, value: View, at: Rows, rows: tuple[str, ...], /) -> View:
         """Return one number for each of ``rows``."""

@@ -88,16 +88,9 @@ def _stated(origin: Given | Converted | Library) -> dict[str, Any]:
 
 
 def _derived(origin: Derived, number: dict[int, int]) -> dict[str, Any]:
-    told: dict[str, Any] = {"kind": "derived", "law": origin.law.name}
-    if len(origin.leaves) == 1:
-        told |= _leaf(origin.leaves[0])
-        if origin.labels[0]:
-            told["regime"] = origin.labels[0]
-    else:
-        told["laws"] = [
-            {**_leaf(leaf), "regime": label} for leaf, label in zip(origin.leaves, origin.labels, strict=True)
-        ]
-        told["law_of_row"] = origin.which.tolist()
+    told: dict[str, Any] = {"kind": "derived", "law": origin.law.name, **_leaf(origin.leaf)}
+    if origin.label:
+        told["regime"] = origin.label
     told["inputs"] = {name: _view(view, number) for name, view in origin.inputs.items()}
     if origin.choices:
         told["choices"] = list(origin.choices)

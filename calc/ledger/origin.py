@@ -48,28 +48,25 @@ class Library(Origin):
 
 @dataclass(frozen=True, eq=False, slots=True)
 class Derived(Origin):
-    """Computed by a law from other columns.
+    """Computed by a law from other columns; rows that another of its equations governs are another column.
 
     Attributes
     ----------
     law : Law
         As declared.
-    leaves : tuple of Leaf
-        The equations (or implicit laws) that governed some row.
-    which : ndarray of int
-        For each row, the leaf that governed it. Shape (n,).
-    labels : tuple of str
-        For each leaf, the regime or choice it stands for; empty where the law is one equation.
+    leaf : Leaf
+        The equation (or implicit law) that governed these rows.
+    label : str
+        The regime or choice that it stands for; empty where the law is one equation.
     inputs : mapping of str to View
-        Aligned with the rows, or shared; absent where the governing leaf does not take it.
+        What the leaf takes, aligned with the rows or shared.
     choices : tuple of str
         For each row, the word that a Choice read, with the place where it was stated; empty where there is no Choice.
     """
 
     law: Law
-    leaves: tuple[Leaf, ...]
-    which: Rows
-    labels: tuple[str, ...]
+    leaf: Leaf
+    label: str
     inputs: Mapping[str, View]
     choices: tuple[str, ...] = ()
 

@@ -75,8 +75,8 @@ def _again(column: Column) -> Iterator[tuple[float, float]]:
 
 def _derived(origin: Derived, count: int) -> Iterator[tuple[float, float]]:
     arrays = {name: view.values for name, view in origin.inputs.items()}
+    leaf = origin.leaf
     for row in range(count):
-        leaf = origin.leaves[origin.which[row]]
         one = {}
         for name in takes(leaf):
             array = arrays[name]

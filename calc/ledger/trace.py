@@ -68,8 +68,7 @@ class _Tracer:
                 raise CalcError(f"{column.name}: no words for the origin {type(origin).__name__}")
 
     def _derived(self, head: str, origin: Derived, row: int, depth: int) -> Iterator[str]:
-        leaf = origin.leaves[origin.which[row]]
-        label = origin.labels[origin.which[row]]
+        leaf, label = origin.leaf, origin.label
         equation = leaf.residual if isinstance(leaf, Implicit) else leaf
         root = f"root {leaf.gives.text} of 0 = " if isinstance(leaf, Implicit) else ""
         formula = equation.formula() if not root else linear(equation.expression, lambda n: equation.takes[n].text)

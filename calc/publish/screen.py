@@ -105,8 +105,7 @@ def _leaves(ledger: Ledger) -> dict[str, Leaf]:
     found: dict[str, Leaf] = {}
     for column in ledger.columns:
         if isinstance(column.origin, Derived):
-            for leaf in column.origin.leaves:
-                found.setdefault(_equation(leaf), leaf)
+            found.setdefault(_equation(column.origin.leaf), column.origin.leaf)
     return found
 
 
@@ -121,12 +120,12 @@ def _names(document: Document, ledger: Ledger) -> dict[str, Any]:
     for column in ledger.columns:
         if not isinstance(column.origin, Derived):
             continue
-        for leaf in column.origin.leaves:
-            words.setdefault(column.name, leaf.gives.words)
-            for name, symbol in takes(leaf).items():
-                letters.setdefault(_equation(leaf), {})[name] = symbol.text
-                for source in column.origin.inputs[name].sources:
-                    words.setdefault(source.name, symbol.words)
+        leaf = column.origin.leaf
+        words.setdefault(column.name, leaf.gives.words)
+        for name, symbol in takes(leaf).items():
+            letters.setdefault(_equation(leaf), {})[name] = symbol.text
+            for source in column.origin.inputs[name].sources:
+                words.setdefault(source.name, symbol.words)
     at = {ledger.spot(ref).id: address for ref, address in document.addresses.items()}
     return {"words": words, "letters": letters, "at": at, "parents": dict(ledger.parents)}
 

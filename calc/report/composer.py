@@ -145,7 +145,7 @@ def inputs_of(ledger: Ledger, spot: Spot) -> list[str]:
     origin, row = spot.column.origin, spot.row
     match origin:
         case Derived():
-            leaf = origin.leaves[origin.which[row]]
+            leaf = origin.leaf
             found = [origin.inputs[n].spot(row) for n in takes(leaf)]
         case Combined():
             found = [origin.terms.spot(k) for k, into in enumerate(origin.into.tolist()) if into == row]

@@ -48,10 +48,10 @@ def worked(spot: Spot) -> Worked:
     origin, unit = spot.column.origin, spot.column.kind.unit
     result = _result(spot)
     if isinstance(origin, Derived):
-        leaf = origin.leaves[origin.which[spot.row]]
+        leaf = origin.leaf
         operands = _operands(origin, leaf, spot.row, result)
         title = leaf.title
-        label = origin.labels[origin.which[spot.row]]
+        label = origin.label
         said: tuple[Part, ...] = (title, f" ({label})" if label and label not in title else "")
         return Worked((*said, Formula(leaf, operands, result)), result, unit)
     if isinstance(origin, Combined):

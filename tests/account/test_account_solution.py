@@ -228,7 +228,7 @@ def test_the_transition_is_worked_from_its_two_ends(tmp_path: Path) -> None:
     assert 2000 < reynolds < 4000
     spot = account.ledger.spot("pipes.link.darcy_f@base")
     assert isinstance(spot.column.origin, Derived)
-    assert spot.column.origin.labels == ("transition",)
+    assert spot.column.origin.label == "transition"
     upper = value(account, "pipes.link.factor_turbulent@base")
     share = np.log(reynolds / 2000) / np.log(2)
     assert spot.value == pytest.approx((64 / 2000) ** (1 - share) * upper**share, rel=1e-13)

@@ -188,7 +188,7 @@ def test_rows_without_a_value_stay_absent() -> None:
     np.testing.assert_array_equal(got.values, [np.nan, 0.1])
     assert ledger.columns[-1].rows == ("slow",)
     origin: Any = ledger.columns[-1].origin
-    assert origin.labels == ("laminar",)
+    assert origin.label == "laminar"
     assert set(origin.inputs) == {"reynolds"}
 
 

@@ -101,7 +101,7 @@ def own_inputs(account: Account, ref: str) -> set[str]:
     spot = account.ledger.spot(ref)
     match spot.column.origin:
         case Derived() as origin:
-            law = origin.leaves[origin.which[spot.row]]
+            law = origin.leaf
             takes = set(law.residual.takes) - {law.unknown} if hasattr(law, "residual") else set(law.takes)
             found = [origin.inputs[name].spot(spot.row) for name in takes]
         case Total() as origin:

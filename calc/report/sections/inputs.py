@@ -94,9 +94,9 @@ def _followed(sheet: Sheet, case: str) -> list[Spot]:
         Spot(one, row)
         for one in sheet.composer.ledger.columns
         if one.case == case and not one.of and isinstance(one.origin, Derived)
+        if one.origin.leaf.name in FOLLOWED
         for row, name in enumerate(one.rows)
-        if one.origin.leaves[one.origin.which[row]].name in FOLLOWED
-        and (shown is None or name.partition("/")[0] in shown)
+        if (shown is None or name.partition("/")[0] in shown)
     ]
 
 

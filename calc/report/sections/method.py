@@ -118,17 +118,17 @@ def laws_in_use(composer: Composer) -> list[Leaf]:
     found: dict[str, Leaf] = {}
     for one in composer.ledger.columns:
         if isinstance(one.origin, Derived) and one.group != "verification":
-            for leaf in one.origin.leaves:
-                found.setdefault(leaf.name, leaf)
-                if isinstance(leaf, Implicit):
-                    found.setdefault(leaf.start.name, leaf.start)
+            leaf = one.origin.leaf
+            found.setdefault(leaf.name, leaf)
+            if isinstance(leaf, Implicit):
+                found.setdefault(leaf.start.name, leaf.start)
     return list(found.values())
 
 
 def _applied(composer: Composer) -> set[str]:
     """Return the names of the equations that gave numbers themselves."""
     origins = [one.origin for one in composer.ledger.columns if one.group != "verification"]
-    return {leaf.name for origin in origins if isinstance(origin, Derived) for leaf in origin.leaves}
+    return {origin.leaf.name for origin in origins if isinstance(origin, Derived)}
 
 
 def _equation(sheet: Sheet, leaf: Leaf, estimates: set[str]) -> Row:

@@ -96,11 +96,8 @@ def _other_laws(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
         for one in ledger.find(f"pipes.{quantity}", case.id):
             if one.case != case.id or not isinstance(one.origin, Derived):
                 continue
-            shown = one.origin.which[one.index[pipe]] if pipe in one.index else -1
-            for leaf in range(len(one.origin.leaves)):
-                if leaf != shown:
-                    row = int(np.flatnonzero(one.origin.which == leaf)[0])
-                    rows += lines(sheet, Spot(one, row), name(one.rows[row]), ": ")
+            if pipe not in one.index:
+                rows += lines(sheet, Spot(one, 0), name(one.rows[0]), ": ")
     return rows
 
 
