@@ -67,6 +67,10 @@ def publish(
     inside = {name: pdf.Embedded(content, "Source", "Input file as read") for name, content in inputs.items()}
     inside["results.json"] = pdf.Embedded(found["results.json"], "Data", "Results")
     inside["ledger.json"] = pdf.Embedded(found["ledger.json"], "Data", "Every number with its origin")
+    for name, content in document.files.items():
+        checked(name)
+        found[name] = content
+        inside.setdefault(name, pdf.Embedded(content, "Data", "Table cited on the pages"))
     found["package.pdf"] = pdf.write(document, sheet, pictures, inside)
     found["package.html"] = page.encode("utf-8")
     found |= {f"{INPUTS}/{name}": content for name, content in inputs.items()}

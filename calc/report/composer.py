@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import replace
 
+import numpy as np
+
 from calc.account import Account
 from calc.equation.law import takes
 from calc.ledger import Combined, Derived, Judged, Ledger, Solved, Spot, proofs
@@ -51,6 +53,7 @@ class Composer:
         self.paper = display.text("paper", "A4")
         self.addresses: dict[str, str] = {}
         self.sections: list[Section] = []
+        self.files: dict[str, bytes] = {}
         self.figures = 0
 
     def begin(self, key: str, title: str, *lead: Part) -> Sheet:
@@ -148,7 +151,7 @@ def inputs_of(ledger: Ledger, spot: Spot) -> list[str]:
             leaf = origin.leaf
             found = [origin.inputs[n].spot(row) for n in takes(leaf)]
         case Combined():
-            found = [origin.terms.spot(k) for k, into in enumerate(origin.into.tolist()) if into == row]
+            found = [origin.terms.spot(int(k)) for k in np.flatnonzero(origin.into == row)]
         case Judged():
             found = [origin.margin.spot(row)]
         case Solved():

@@ -6,6 +6,7 @@ from collections import defaultdict
 from collections.abc import Iterator, Mapping
 
 from calc.account import Account
+from calc.ledger import Solved
 from calc.report.composer import Composer, inputs_of
 from calc.report.document import Cite, Document, Table
 from calc.report.sections import SECTIONS
@@ -43,6 +44,7 @@ def compose(account: Account, purpose: str, checks: tuple[Check, ...] = ()) -> D
         addresses=composer.addresses,
         used_by=_users(composer, behind),
         behind=behind,
+        files=composer.files,
     )
 
 
@@ -66,10 +68,13 @@ def _cited(composer: Composer) -> Iterator[str]:
 
 
 def _lines_behind(composer: Composer, ref: str) -> Iterator[str]:
-    """Yield the nearest numbers with lines on which a number rests."""
+    """Yield the nearest numbers with lines on which a number rests; what proves a solved number is not behind it."""
     waiting, seen = [ref], {ref}
     while waiting:
-        for used in inputs_of(composer.ledger, composer.ledger.spot(waiting.pop())):
+        spot = composer.ledger.spot(waiting.pop())
+        if spot.id != ref and isinstance(spot.column.origin, Solved) and not spot.column.of:
+            continue
+        for used in inputs_of(composer.ledger, spot):
             if used in seen:
                 continue
             seen.add(used)

@@ -256,6 +256,8 @@ class Document:
         Ledger id to the ids that cite it and are printed.
     behind : mapping of str to tuple of str
         For a cited ledger id that stands on no line, the ids with lines on which it rests.
+    files : mapping of str to bytes
+        Tables that the pages cite by their digests, by path inside the package.
     """
 
     title: str
@@ -269,6 +271,7 @@ class Document:
     addresses: Mapping[str, str] = field(default_factory=dict)
     used_by: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
     behind: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    files: Mapping[str, bytes] = field(default_factory=dict)
 
     def cited(self, cite: Cite) -> str:
         """Return the addresses that a citation stands for, runs collapsed: ``5.1–5.4, 6.2``."""

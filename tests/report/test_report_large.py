@@ -2,14 +2,18 @@
 
 from __future__ import annotations
 
+import csv
+import hashlib
+import io
 from pathlib import Path
 
 import pytest
 from accounts import accounted
 from pages import figure_of, numbers, parts_within, plain, row_of, section, table, tables, texts_of
-from works import Work
+from works import Work, work
 
 from calc import pipeline
+from calc.account import results as pipeline_results
 from calc.report.document import Cite, Formula
 from calc.report.numbers import written
 from calc.report.selection import MOST_PIPES
@@ -84,3 +88,24 @@ def test_the_governing_verdicts_are_printed(large: Work) -> None:
         margins = sorted(verdict.margin.value for verdict in one.verdicts)[: len(rows)]
         printed = [figure_of(row.cells[5]) for row in rows]
         assert [large.account.ledger.spot(number.ref).value for number in printed if number] == margins
+
+
+def test_every_pipe_stands_in_a_file_that_the_page_cites_by_its_digest(large: Work) -> None:
+    results = pipeline_results(large.account)
+    for case in large.account.cases:
+        path = f"results/{case}-pipes.csv"
+        content = large.document.files[path]
+        said = " ".join(plain(parts) for parts in texts_of(section(large.document, f"case-{case}")))
+        assert f"All pipes stand in {path} of this package, digest {hashlib.sha256(content).hexdigest()}." in said
+        rows = list(csv.DictReader(io.StringIO(content.decode())))
+        branches = results["cases"][case]["branches"]
+        assert [row["id"] for row in rows] == list(branches)
+        for row in rows:
+            told = branches[row["id"]]
+            assert (row["from"], row["to"], row["state"]) == (told["from"], told["to"], told["state"])
+            assert float(row["flow [m³/s]"]) == told["flow"]
+            assert float(row["head_loss [m]"]) == told["head_loss"]
+
+
+def test_works_that_are_printed_whole_have_no_such_file() -> None:
+    assert work("demo").document.files == {}

@@ -2,15 +2,18 @@
 
 from __future__ import annotations
 
+import hashlib
+
 import numpy as np
 
 from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
 from calc.report.derivation import COLUMNS, line, lines
-from calc.report.document import Heading, Paragraph, Parts, Row, Soft, Strong, TableColumn
+from calc.report.document import Heading, Own, Paragraph, Parts, Row, Soft, Strong, TableColumn
 from calc.report.numbers import Format
 from calc.report.selection import shown_junctions, shown_pipes
+from calc.report.tables import junctions_file, pipes_file
 
 CHAIN = (
     "flow_each",
@@ -137,8 +140,18 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     sheet.table(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
     said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
     if len(names) < len(case.network.pipes.rows):
-        said += " The pipes that lose most head are printed; the results file of this package holds all."
+        said += " The pipes that lose most head are printed."
     sheet.add(Paragraph((said,), "small"))
+    if len(names) < len(case.network.pipes.rows):
+        _cite_file(sheet, "All pipes", f"results/{case.id}-pipes.csv", pipes_file(composer.ledger, case))
+
+
+def _cite_file(sheet: Sheet, what: str, path: str, content: bytes) -> None:
+    """Put a table in the package, and cite it by its digest."""
+    sheet.composer.files[path] = content
+    digest = hashlib.sha256(content).hexdigest()
+    parts: Parts = (f"{what} stand in ", Own(path, "file"), " of this package, digest ", Own(digest, "document"), ".")
+    sheet.add(Paragraph(parts, "small"))
 
 
 def _node_head(composer: Composer, case: str, node: str) -> Spot:
@@ -255,6 +268,9 @@ def _nodes(sheet: Sheet, case: CaseAccount) -> None:
     if rows:
         sheet.add(Heading(("Junctions",)))
         sheet.table(f"junctions-{case.id}", columns, rows)
+    if len(rows) < len(composer.account.project.junctions):
+        content = junctions_file(composer.ledger, case)
+        _cite_file(sheet, "All junctions", f"results/{case.id}-junctions.csv", content)
     if negative:
         said = " The pipes may not run full there, and then these results do not hold."
         sheet.add(Paragraph((Strong(("The head lies below a junction.",), bar=True), said)))
