@@ -97,7 +97,7 @@ def _symbols(sheet: Sheet, symbols: list[tuple[Letter, str, str]]) -> None:
     for k in range(half):
         cells: list[Parts] = []
         for pair in (symbols[k], symbols[k + half] if k + half < len(symbols) else None):
-            cells += [(pair[0],), (pair[1],), (pair[2] or "–",)] if pair else [("",), ("",), ("",)]
+            cells += [(pair[0],), lettered(pair[1]), (pair[2] or "–",)] if pair else [("",), ("",), ("",)]
         rows.append(sheet.row(*cells))
     sheet.table("symbols", (*head, *head), rows, tick=False)
 
