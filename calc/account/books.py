@@ -41,9 +41,15 @@ SINGLE: dict[str, dict[str, Kind]] = {
         "vapour_pressure": PRESSURE,
     },
     "site": {"altitude": ELEVATION, "gravity": ACCELERATION},
-    "constants": {"laminar_below": NUMBER, "turbulent_above": NUMBER},
+    "constants": {
+        "laminar_below": NUMBER,
+        "turbulent_above": NUMBER,
+        "coefficient": NUMBER,
+        "flow_exponent": NUMBER,
+        "bore_exponent": NUMBER,
+    },
 }
-"""Kinds of the fields of sections that stand once."""
+"""Kinds of the fields of sections that stand once; under ``constants`` those of all its groups."""
 
 
 @equation(

@@ -43,7 +43,7 @@ def unsourced(project: Project) -> Iterator[Finding]:
         "criteria": project.criteria,
         "fluid": {"": project.fluid},
         "site": {"": project.site},
-        "constants": {"transition": project.transition},
+        "constants": project.constants,
     }
     for group, records in groups.items():
         for record in records.values():

@@ -9,7 +9,7 @@ import numpy as np
 import numpy.typing as npt
 
 from calc.components import Network
-from calc.components.pipe import FittingTerms, PipeResults, PipeTerms, losses, transition_limits
+from calc.components.pipe import EmpiricalConstants, FittingTerms, PipeResults, PipeTerms, losses, transition_limits
 from calc.kinds import FLOW, HEAD
 from calc.ledger import Accountant, Ledger, Solved, View
 from calc.ledger.column import ABSENT
@@ -85,6 +85,8 @@ def pipe_terms(ledger: Ledger, network: Network, case: str, chosen: Rows) -> Pip
         bore=bore,
         roughness=pipes("roughness"),
         friction_factor=pipes("friction_factor"),
+        hazen_williams_c=pipes("hazen_williams_c"),
+        manning_n=pipes("manning_n"),
         parallel=pipes("parallel"),
         law=law,
         fittings=_fitting_terms(ledger, network, case, chosen, bore),
@@ -92,6 +94,22 @@ def pipe_terms(ledger: Ledger, network: Network, case: str, chosen: Rows) -> Pip
         gravity=ledger.shared("site.gravity", case),
         laminar_below=ledger.shared("constants.laminar_below", case),
         turbulent_above=ledger.shared("constants.turbulent_above", case),
+        constants=_constants(ledger, case),
+    )
+
+
+def _constants(ledger: Ledger, case: str) -> EmpiricalConstants[View]:
+    """Return the constants of the empirical laws, absent where no pipe needs the law."""
+
+    def constant(law: str, field: str) -> View:
+        return ledger.shared_of(f"constants.{field}", law, case)
+
+    return EmpiricalConstants(
+        hazen_williams_coefficient=constant("hazen_williams", "coefficient"),
+        hazen_williams_flow_exponent=constant("hazen_williams", "flow_exponent"),
+        hazen_williams_bore_exponent=constant("hazen_williams", "bore_exponent"),
+        manning_coefficient=constant("manning", "coefficient"),
+        manning_bore_exponent=constant("manning", "bore_exponent"),
     )
 
 
@@ -174,13 +192,24 @@ def _enter_pipe_flows(ledger: Ledger, network: Network, solution: Solution, case
 
 
 def _enter_ratios(books: Accountant, terms: PipeTerms[View], results: PipeResults[View]) -> None:
-    """Enter what a reader compares pipes by: the gradient as 1 in N, and the share of the fittings."""
+    """Enter what a reader compares pipes by: the gradient as 1 in N, an equivalent Darcy f, the share of fittings."""
     books.apply(
         "pipes.one_in",
         friction.ONE_IN,
         reynolds=results.reynolds,
         length=terms.length,
         friction_loss=results.friction_loss,
+    )
+    books.apply(
+        "pipes.equivalent_f",
+        friction.EQUIVALENT_FACTOR,
+        by=terms.law,
+        reynolds=results.reynolds,
+        friction_loss=results.friction_loss,
+        bore=terms.bore,
+        length=terms.length,
+        gravity=terms.gravity,
+        velocity=results.velocity,
     )
     books.apply(
         "pipes.fitting_share",

@@ -84,7 +84,7 @@ class Agreement:
 
 def works_of(network: Network) -> second.Works:
     """Return a case in the form in which the second opinion takes it."""
-    pipes, fittings = network.pipes, network.pipes.fittings
+    pipes, fittings, constants = network.pipes, network.pipes.fittings, network.pipes.constants
     count = len(pipes.rows)
     gravity = float(pipes.gravity[0])
 
@@ -106,6 +106,8 @@ def works_of(network: Network) -> second.Works:
         bore=pipes.bore,
         roughness=pipes.roughness,
         factor=pipes.friction_factor,
+        hazen_williams_c=pipes.hazen_williams_c,
+        manning_n=pipes.manning_n,
         law=tuple(pipes.law.words[int(code)] for code in codes),
         loss_forward=summed(fittings.coefficient_forward),
         loss_reverse=summed(fittings.coefficient_reverse),
@@ -113,6 +115,12 @@ def works_of(network: Network) -> second.Works:
         viscosity=float(pipes.viscosity[0]),
         laminar_below=float(pipes.laminar_below[0]),
         turbulent_above=float(pipes.turbulent_above[0]),
+        hazen_williams=(
+            float(constants.hazen_williams_coefficient[0]),
+            float(constants.hazen_williams_flow_exponent[0]),
+            float(constants.hazen_williams_bore_exponent[0]),
+        ),
+        manning=(float(constants.manning_coefficient[0]), float(constants.manning_bore_exponent[0])),
     )
 
 

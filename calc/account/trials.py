@@ -8,11 +8,12 @@ import numpy as np
 
 from calc.account.flows import joined, pipe_terms
 from calc.components import Network
-from calc.components.pipe import PipeTerms
+from calc.components.pipe import LAW_CONSTANTS, LAW_INPUT, PipeTerms
 from calc.equation.law import takes
 from calc.kinds import FLOW, HEAD, LENGTH
 from calc.ledger import Accountant, Column, Derived, Ledger, Program, Solved, View
 from calc.ledger.column import ABSENT
+from calc.physics.friction import ROUGH_PIPE_LAWS
 from calc.solve import Trials
 from calc.solve.rules import RULES
 
@@ -112,15 +113,20 @@ class _Table:
 def _resting(terms: PipeTerms[View], k: int) -> dict[str, View]:
     """Return the inputs of one pipe that the head it loses rests on."""
     at = np.array([k])
+    law = terms.law.word(k)
+    needed = LAW_INPUT[law]
     held = {
         "length": terms.length,
         "bore": terms.bore,
-        "roughness": terms.roughness,
-        "friction factor": terms.friction_factor,
+        needed.replace("_", " "): getattr(terms, needed),
         "parallel": terms.parallel,
-        "viscosity": terms.viscosity,
         "gravity": terms.gravity,
     }
+    if law in ROUGH_PIPE_LAWS:
+        held["viscosity"] = terms.viscosity
+    for name, view in vars(terms.constants).items():
+        if law in LAW_CONSTANTS and name.startswith(LAW_CONSTANTS[law]):
+            held[name.replace("_", " ")] = view
     found = {name: view.take(at) for name, view in held.items()}
     fittings = terms.fittings
     for row in np.flatnonzero(fittings.pipe == k).tolist():
@@ -132,4 +138,4 @@ def _resting(terms: PipeTerms[View], k: int) -> dict[str, View]:
             f"{label} K in reverse": fittings.coefficient_reverse.take(one),
             f"{label} bore": fittings.bore.take(one),
         }
-    return {name: view for name, view in found.items() if view.shared or view.which[0] != ABSENT}
+    return {name: view for name, view in found.items() if view.which[0] != ABSENT}

@@ -121,7 +121,7 @@ def _whole_works() -> Json:
         "fluid": fluid,
         "site": record(settings.SITE),
         "friction": {"enum": list(LAW_NAMES), "description": "friction law of pipes that state none"},
-        "constants": forms.closed({"transition": record(settings.TRANSITION)}),
+        "constants": forms.closed({name: record(one) for name, one in settings.CONSTANTS.items()}),
     }
 
 

@@ -74,12 +74,15 @@ class Field:
         Whether it must be stated.
     words : str
         What it is, for schemas and input tables.
+    example : str
+        A value as a user would write it, where that of its kind would not fit.
     """
 
     name: str
     form: Form
     required: bool = False
     words: str = ""
+    example: str = ""
 
 
 @dataclass(frozen=True, slots=True)

@@ -20,7 +20,14 @@ SCHEMA = Schema(
         Field("length", Quantity(LENGTH, above=0.0), required=True, words="length along the pipe"),
         Field("bore", Quantity(BORE, above=0.0), required=True, words="bore"),
         Field("roughness", Quantity(ROUGHNESS, at_least=0.0), words="roughness height"),
-        Field("friction_factor", Quantity(NUMBER, above=0.0), words="Darcy f, fixed"),
+        Field("friction_factor", Quantity(NUMBER, above=0.0), words="Darcy f, fixed", example="0.02"),
+        Field(
+            "hazen_williams_c",
+            Quantity(NUMBER, at_least=10.0, at_most=200.0),
+            words="Hazen–Williams C",
+            example="130",
+        ),
+        Field("manning_n", Quantity(NUMBER, at_least=0.005, at_most=0.1), words="Manning n", example="0.011"),
         Field("law", Word(friction.LAW_NAMES), words="friction law"),
         Field("ends", Ends(), words="losses at reservoir ends"),
         Field("fittings", Fittings(), words="fittings"),
@@ -44,8 +51,16 @@ FITTING_SCHEMA = Schema(
 )
 """The options of ``kind`` are the entries of the shipped table, which the reader supplies."""
 
-LAW_INPUT = {**dict.fromkeys(friction.ROUGH_PIPE_LAWS, "roughness"), "fixed": "friction_factor"}
+LAW_INPUT = {
+    **dict.fromkeys(friction.ROUGH_PIPE_LAWS, "roughness"),
+    "fixed": "friction_factor",
+    "hazen-williams": "hazen_williams_c",
+    "manning": "manning_n",
+}
 """The field that each friction law needs."""
+
+LAW_CONSTANTS = {"hazen-williams": "hazen_williams", "manning": "manning"}
+"""The group under ``constants`` that an empirical law takes."""
 
 T = TypeVar("T")
 
@@ -63,12 +78,23 @@ class FittingTerms(Generic[T]):
 
 
 @dataclass(frozen=True)
+class EmpiricalConstants(Generic[T]):
+    """Constants of the empirical laws in SI, one row for all; NaN or absent where no pipe follows the law."""
+
+    hazen_williams_coefficient: T
+    hazen_williams_flow_exponent: T
+    hazen_williams_bore_exponent: T
+    manning_coefficient: T
+    manning_bore_exponent: T
+
+
+@dataclass(frozen=True)
 class PipeTerms(Generic[T]):
-    """Inputs of the chain for all pipes, one row each; the last four have one row for all.
+    """Inputs of the chain for all pipes, one row each; from ``viscosity`` on there is one row for all.
 
     Attributes
     ----------
-    roughness, friction_factor : T
+    roughness, friction_factor, hazen_williams_c, manning_n : T
         NaN (arrays) or absent (columns) where the law does not use it.
     law : Labels
         The friction law of each pipe.
@@ -79,6 +105,8 @@ class PipeTerms(Generic[T]):
     bore: T
     roughness: T
     friction_factor: T
+    hazen_williams_c: T
+    manning_n: T
     parallel: T
     law: Labels
     fittings: FittingTerms[T]
@@ -86,6 +114,7 @@ class PipeTerms(Generic[T]):
     gravity: T
     laminar_below: T
     turbulent_above: T
+    constants: EmpiricalConstants[T]
 
 
 @dataclass(frozen=True)
@@ -175,6 +204,9 @@ def losses(on: Evaluator[T], pipe: PipeTerms[T], limits: TransitionLimits[T], fl
         gravity=pipe.gravity,
         viscosity=pipe.viscosity,
         flow_each=each,
+        hazen_williams_c=pipe.hazen_williams_c,
+        manning_n=pipe.manning_n,
+        **vars(pipe.constants),
     )
     fitted = _fitting_losses(on, pipe, each)
     head = on.apply("pipes.head_loss", energy.head_loss, friction_loss=friction_loss, fitting_loss=fitted[-1])

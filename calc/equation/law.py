@@ -87,11 +87,14 @@ class Labels:
         places = tuple(self.places[int(k)] for k in index) if self.places else ()
         return Labels(self.words, self.codes[index], places)
 
+    def word(self, row: int) -> str:
+        """Return the word of a row."""
+        return self.words[int(self.codes[0 if len(self.codes) == 1 else row])]
+
     def said(self, row: int) -> str:
         """Return the word of a row, with the place where it was stated."""
-        at = 0 if len(self.codes) == 1 else row
-        word = self.words[int(self.codes[at])]
-        return f"{word} at {self.places[at]}" if self.places else word
+        place = self.places[0 if len(self.codes) == 1 else row] if self.places else ""
+        return f"{self.word(row)} at {place}" if self.places else self.word(row)
 
 
 Leaf = Equation | Implicit

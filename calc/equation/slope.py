@@ -62,7 +62,8 @@ def _function(operation: str, x: Any, dx: Any) -> Slope:  # noqa: ANN401
 
 def _power(x: Any, dx: Any, y: Any, exponent: Any) -> Slope:  # noqa: ANN401
     value = x**y
-    slope = y * x ** (y - 1) * dx
+    still = dx == 0  # at zero a power below one is steep without bound, and yet nothing moves
+    slope = np.where(still, 0.0, y * np.where(still, 1.0, x) ** (y - 1) * dx)
     if isinstance(exponent, Slope):
         slope = slope + value * np.log(x) * exponent.slope
     return Slope(value, slope)

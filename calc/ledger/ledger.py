@@ -144,6 +144,11 @@ class Ledger:
             raise Unresolved(f"no column is named {name}@{case}")
         return self.serving(columns[0])
 
+    def shared_of(self, name: str, row: str, case: str = "") -> View:
+        """Return the number of one row of a name, to serve every row; absent where nothing states it."""
+        found = self.view(name, case, (row,))
+        return View(found.sources, found.which, found.at, found.rows, shared=True)
+
     @staticmethod
     def serving(column: Column, row: int = 0) -> View:
         """Return one number of a column, to serve every row."""

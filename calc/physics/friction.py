@@ -8,6 +8,7 @@ import numpy as np
 from calc import kinds
 from calc.equation import Bound, Choice, Equation, Implicit, Law, Reference, Regimes, Symbol, equation
 from calc.physics import symbols as s
+from calc.physics.empirical import EMPIRICAL_LAWS
 
 WEISBACH_1845 = Reference("Weisbach 1845", "J. Weisbach, Lehrbuch der Ingenieur- und Maschinen-Mechanik, Vieweg, 1845")
 POISEUILLE_1840 = Reference(
@@ -153,10 +154,15 @@ ROUGH_PIPE_LAWS: dict[str, Law] = {
 }
 """Laws that take a roughness height and hold above the transition. A new one is a line here."""
 
-LAW_NAMES = (*ROUGH_PIPE_LAWS, "fixed")
+LAW_NAMES = (*ROUGH_PIPE_LAWS, "fixed", *EMPIRICAL_LAWS)
 """Every friction law, as written in ``friction`` and ``law``."""
 
-AT_TURBULENT_LIMIT = Choice("factor_turbulent", "Darcy f of the law at Re_T", "by", {**ROUGH_PIPE_LAWS, "fixed": None})
+_WITHOUT_FACTOR = dict.fromkeys(EMPIRICAL_LAWS)
+"""Laws for which no factor is defined."""
+
+AT_TURBULENT_LIMIT = Choice(
+    "factor_turbulent", "Darcy f of the law at Re_T", "by", {**ROUGH_PIPE_LAWS, "fixed": None, **_WITHOUT_FACTOR}
+)
 
 
 def _regimes(law: Law) -> Regimes:
@@ -174,7 +180,7 @@ FRICTION_FACTOR = Choice(
     "friction_factor",
     "Darcy f",
     "by",
-    {**{name: _regimes(law) for name, law in ROUGH_PIPE_LAWS.items()}, "fixed": fixed},
+    {**{name: _regimes(law) for name, law in ROUGH_PIPE_LAWS.items()}, "fixed": fixed, **_WITHOUT_FACTOR},
 )
 
 _LOSS = Regimes(
@@ -187,8 +193,26 @@ _LOSS = Regimes(
 )
 
 FRICTION_LOSS = Choice(
-    "friction_loss", "Friction loss", "by", {**dict.fromkeys(ROUGH_PIPE_LAWS, _LOSS), "fixed": darcy_weisbach}
+    "friction_loss",
+    "Friction loss",
+    "by",
+    {**dict.fromkeys(ROUGH_PIPE_LAWS, _LOSS), "fixed": darcy_weisbach, **EMPIRICAL_LAWS},
 )
+
+
+@equation(
+    gives=s.FACTOR_EQUIVALENT,
+    source=WEISBACH_1845,
+    valid="water in motion; for comparing an empirical law with Darcy–Weisbach",
+    friction_loss=s.FRICTION_LOSS,
+    bore=s.BORE,
+    length=s.LENGTH,
+    gravity=s.GRAVITY,
+    velocity=s.VELOCITY,
+)
+def equivalent_factor(*, friction_loss, bore, length, gravity, velocity):
+    """Darcy f that gives the same loss."""
+    return friction_loss * (bore / length) * (2 * gravity / (velocity * np.abs(velocity)))
 
 
 @equation(
@@ -241,3 +265,10 @@ def in_motion(law: Equation) -> Regimes:
 
 ONE_IN = in_motion(one_in_length)
 FITTING_SHARE = in_motion(share_of_fittings)
+EQUIVALENT_FACTOR = Choice(
+    "equivalent_factor",
+    "Darcy f that gives the same loss",
+    "by",
+    {**dict.fromkeys((*ROUGH_PIPE_LAWS, "fixed")), **dict.fromkeys(EMPIRICAL_LAWS, in_motion(equivalent_factor))},
+)
+"""For laws that know no Darcy f; the others have their own."""

@@ -11,7 +11,7 @@ import numpy as np
 import numpy.typing as npt
 
 from calc.components import Network, Record
-from calc.components.pipe import LAW_INPUT, FittingTerms, PipeTerms
+from calc.components.pipe import LAW_INPUT, EmpiricalConstants, FittingTerms, PipeTerms
 from calc.equation import Labels
 from calc.physics.friction import LAW_NAMES
 from calc.project.cases import follows_friction, lines_in
@@ -151,6 +151,11 @@ class Effective:
         """Return one value in SI."""
         return float(self.numbers(group, field)[self.inputs.index[group][row]])
 
+    def constant(self, law: str, field: str) -> Array:
+        """Return a constant of a law, shape (1,); NaN where no case needs that law."""
+        at = self.inputs.index["constants"].get(law)
+        return np.array([np.nan]) if at is None else self.numbers("constants", field)[at : at + 1]
+
     def law(self) -> Labels:
         """Return the friction law of each pipe."""
         codes, follows = self.inputs.law.copy(), self.inputs.follows.copy()
@@ -209,6 +214,8 @@ def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
         bore=bore,
         roughness=_where_used(now, "roughness", law),
         friction_factor=_where_used(now, "friction_factor", law),
+        hazen_williams_c=_where_used(now, "hazen_williams_c", law),
+        manning_n=_where_used(now, "manning_n", law),
         parallel=now.numbers("pipes", "parallel"),
         law=law,
         fittings=FittingTerms(
@@ -221,8 +228,15 @@ def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
         ),
         viscosity=np.array([viscosity]),
         gravity=now.numbers("site", "gravity"),
-        laminar_below=now.numbers("constants", "laminar_below"),
-        turbulent_above=now.numbers("constants", "turbulent_above"),
+        laminar_below=now.constant("transition", "laminar_below"),
+        turbulent_above=now.constant("transition", "turbulent_above"),
+        constants=EmpiricalConstants(
+            hazen_williams_coefficient=now.constant("hazen_williams", "coefficient"),
+            hazen_williams_flow_exponent=now.constant("hazen_williams", "flow_exponent"),
+            hazen_williams_bore_exponent=now.constant("hazen_williams", "bore_exponent"),
+            manning_coefficient=now.constant("manning", "coefficient"),
+            manning_bore_exponent=now.constant("manning", "bore_exponent"),
+        ),
     )
 
 

@@ -15,7 +15,7 @@ from calc.project.cases import lines_in
 from calc.project.model import Case, Line, Project
 from calc.project.paths import GROUPS, SINGLE
 from calc.project.reader import Reader
-from calc.project.settings import TRANSITION, VISCOSITIES
+from calc.project.settings import CONSTANTS, VISCOSITIES
 from calc.project.wording import quoted
 
 Mask = npt.NDArray[np.bool_]
@@ -55,7 +55,7 @@ def _check_range(reader: Reader, project: Project, now: Effective, case: Case, l
 
 
 def _field(project: Project, line: Line) -> Field | None:
-    schema = GROUPS.get(line.group) or SINGLE.get(line.group) or TRANSITION
+    schema = GROUPS.get(line.group) or SINGLE.get(line.group) or CONSTANTS[line.rows[0]]
     field = schema.field(line.field)
     if line.group == "fluid" and line.field == "viscosity" and project.fluid.text("viscosity_kind").startswith("d"):
         return Field("viscosity", VISCOSITIES[1])

@@ -13,7 +13,7 @@ from calc.project.cases import read_cases
 from calc.project.connection import check_connection
 from calc.project.consequences import check_cases
 from calc.project.judging import read_criteria
-from calc.project.model import Project
+from calc.project.model import Case, Project
 from calc.project.paths import follow
 from calc.project.reader import Reader
 from calc.project.section import SectionSchema
@@ -103,6 +103,7 @@ def _read(
     for written, path in affects:
         follow(reader, written, path, ids, whole=True)
     cases = read_cases(reader, top.get("cases"), ids, fluid)
+    constants = settings.read_constants(reader, top.get("constants"))
     files = _files(sources.files, works.tables)
     project = Project(
         folder=folder,
@@ -118,7 +119,7 @@ def _read(
         revisions=header.read_revisions(reader, top.get("revisions")),
         fluid=fluid,
         site=settings.read_site(reader, top.get("site")),
-        transition=settings.read_transition(reader, top.get("constants")),
+        constants=_constants(reader, constants, works, cases),
         friction=friction or defaults()["friction"],
         reservoirs=works.reservoirs,
         junctions=works.junctions,
@@ -134,6 +135,17 @@ def _read(
     circular = any(problem.code == "case-cycle" for problem in reader.problems)
     broken = any(case.after and case.after not in cases for case in cases.values())
     return (None if circular or broken else project), works
+
+
+def _constants(
+    reader: Reader, constants: Mapping[str, Record], works: Works, cases: Mapping[str, Case]
+) -> dict[str, Record]:
+    """Return the constants that some case needs, or that the inputs state."""
+    lines = [line for case in cases.values() for line in case.lines]
+    laws = {pipe.text("law") for pipe in works.pipes.values()}
+    laws |= {line.stated.text for line in lines if line.field == "law"}
+    changed = {row for line in lines if line.group == "constants" for row in line.rows}
+    return settings.in_force(reader, constants, laws, changed)
 
 
 def _in_order(used: Mapping[str, Stated]) -> tuple[tuple[str, Stated], ...]:

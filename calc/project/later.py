@@ -5,7 +5,6 @@ from __future__ import annotations
 from calc.project.section import Later
 
 _PIPE_SERIES = "write one pipe for each length, joined by junctions"
-_LAW = "state a roughness and use colebrook-white, or a Darcy f and use fixed"
 _SIZE = "state the bore itself, such as '384.4 mm'"
 
 TOP: dict[str, str] = {
@@ -25,16 +24,10 @@ FIELDS: dict[str, dict[str, str]] = {
     "pipes": {
         "segments": _PIPE_SERIES,
         "profile": "leave it out",
-        "hazen_williams_c": _LAW,
-        "manning_n": _LAW,
     },
-    "constants": {"hazen_williams": _LAW, "manning": _LAW},
     "bore": {"size": _SIZE, "standard": _SIZE, "class": _SIZE},
 }
 """By group, fields of components."""
-
-LAWS: dict[str, str] = {"hazen-williams": _LAW, "manning": _LAW}
-"""Friction laws."""
 
 CRITERIA: dict[str, str] = {
     "pressure-static-max": "use pressure-max in a case without flow",

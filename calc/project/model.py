@@ -110,9 +110,12 @@ class Project:
         By role or id. An assumption's ``affects`` is one text, paths joined by ``, ``.
     revisions : tuple of Record
         In the order of the file.
-    fluid, site, transition : Record
+    fluid, site : Record
         Defaults filled in. ``fluid`` has ``kind`` and either ``temperature``, or ``density`` and
         ``viscosity`` with ``viscosity_kind`` naming which viscosity it is, and perhaps ``vapour_pressure``.
+    constants : mapping of str to Record
+        ``transition``, and ``hazen_williams`` and ``manning`` where a pipe follows that law in some case or the
+        inputs state them; defaults filled in.
     friction : Stated
         The default law.
     reservoirs, junctions, pipes : mapping of str to Record
@@ -143,7 +146,7 @@ class Project:
     revisions: tuple[Record, ...]
     fluid: Record
     site: Record
-    transition: Record
+    constants: Mapping[str, Record]
     friction: Stated
     reservoirs: Mapping[str, Record]
     junctions: Mapping[str, Record]
@@ -161,10 +164,8 @@ class Project:
 
     def group(self, name: str) -> Mapping[str, Record]:
         """Return the records of a group; ``fluid``, ``site`` and ``friction`` have the one id ''."""
-        if name in ("reservoirs", "junctions", "pipes"):
+        if name in ("reservoirs", "junctions", "pipes", "constants"):
             return getattr(self, name)  # type: ignore[no-any-return]
-        if name == "constants":
-            return {"transition": self.transition}
         if name == "friction":
             return {"": Record("", self.friction.mark, {"law": self.friction})}
         return {"": {"fluid": self.fluid, "site": self.site}[name]}

@@ -11,7 +11,7 @@ from calc.components import SCHEMAS, Field, Schema, Word
 from calc.physics.friction import LAW_NAMES
 from calc.project import later
 from calc.project.reader import Reader
-from calc.project.settings import FLUID, SITE, TRANSITION
+from calc.project.settings import CONSTANTS, FLUID, SITE
 from calc.project.wording import listed, quoted
 from calc.yamlfile import Scalar
 
@@ -72,8 +72,8 @@ def follow(
             return Target("friction", ("",), FRICTION.fields[0])
         case [group, _] if group in SINGLE:
             return _field(reader, written, path, SINGLE[group], Target(group, ("",), None))
-        case ["constants", "transition", _]:
-            return _field(reader, written, path, TRANSITION, Target("constants", ("transition",), None))
+        case ["constants", name, _] if name in CONSTANTS:
+            return _field(reader, written, path, CONSTANTS[name], Target("constants", (name,), None))
         case [group, pattern] if whole and group in GROUPS and _WORD.fullmatch(pattern):
             return _rows(reader, written, path, works, group)
         case [group, pattern, _] if group in GROUPS and _WORD.fullmatch(pattern):

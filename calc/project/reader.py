@@ -71,9 +71,6 @@ class Reader(Notes):
             return None
         if scalar.text in options:
             return Stated(scalar.text, scalar.text, scalar.mark)
-        if code == "unknown-law" and scalar.text in later.LAWS:
-            self.not_yet(scalar.mark, path, scalar.text, later.LAWS[scalar.text])
-            return None
         found = f"unknown {what} {quoted(scalar.text)}"
         self.note(scalar.mark, code, path, found, f"one of {listed(options)}", self.near(scalar.text, options))
         return None

@@ -2,7 +2,10 @@
 
 from __future__ import annotations
 
+from collections.abc import Collection, Mapping
+
 from calc.components import Field, Quantity, Record, Schema, Stated, Text
+from calc.components.pipe import LAW_CONSTANTS
 from calc.kinds import (
     ACCELERATION,
     DENSITY,
@@ -15,7 +18,7 @@ from calc.kinds import (
 )
 from calc.marks import Mark
 from calc.physics.friction import LAW_NAMES
-from calc.project import later, shipped
+from calc.project import shipped
 from calc.project.notes import empty
 from calc.project.reader import Reader
 from calc.project.records import read_fields
@@ -69,6 +72,26 @@ TRANSITION = Schema(
     ),
 )
 
+HAZEN_WILLIAMS = Schema(
+    "hazen_williams",
+    "Hazen–Williams",
+    (
+        Field("coefficient", Quantity(NUMBER, at_least=8.0, at_most=13.0), words="k of h = k L Q^a / (C^a D^b) in SI"),
+        Field("flow_exponent", Quantity(NUMBER, at_least=1.5, at_most=2.0), words="a, exponent of flow"),
+        Field("bore_exponent", Quantity(NUMBER, at_least=4.0, at_most=6.0), words="b, exponent of bore"),
+    ),
+)
+MANNING = Schema(
+    "manning",
+    "Manning",
+    (
+        Field("coefficient", Quantity(NUMBER, at_least=8.0, at_most=13.0), words="k of h = k n² L Q² / D^b in SI"),
+        Field("bore_exponent", Quantity(NUMBER, at_least=4.0, at_most=6.0), words="b, exponent of bore"),
+    ),
+)
+CONSTANTS: dict[str, Schema] = {schema.group: schema for schema in (TRANSITION, HAZEN_WILLIAMS, MANNING)}
+"""What stands under ``constants``. The bounds of a coefficient leave out the forms of its law in other units."""
+
 
 def read_friction(reader: Reader, entry: Entry | None) -> Stated | None:
     """Return the default law; None when it could not be read."""
@@ -82,24 +105,43 @@ def read_site(reader: Reader, entry: Entry | None) -> Record:
     return _read(reader, SITE, entry, "site")
 
 
-def read_transition(reader: Reader, entry: Entry | None) -> Record:
-    """Return the Reynolds numbers between which flow is in transition."""
-    node: Node | None = None
-    mark = entry.key.mark if entry else _nowhere("constants.transition.laminar_below")
+def read_constants(reader: Reader, entry: Entry | None) -> dict[str, Record]:
+    """Return the constants of the laws by group, defaults filled in."""
+    standing: dict[str, Entry] = {}
     constants = reader.mapping(entry.value, "constants", "a mapping") if entry else None
-    for key, value in constants.entries if constants else ():
-        at = f"constants.{key.text}"
-        if key.text == "transition":
-            node, mark = value, key.mark
-        elif key.text in later.FIELDS["constants"]:
-            reader.not_yet(key.mark, at, key.text, later.FIELDS["constants"][key.text])
+    for one in constants.entries if constants else ():
+        if one.key.text in CONSTANTS:
+            standing[one.key.text] = one
         else:
-            reader.unknown(key, at, ("transition",))
-    record = _read(
-        reader, TRANSITION, Entry(Scalar("transition", mark), node) if node else None, "constants.transition"
-    )
-    check_transition(reader, record.stated.get("laminar_below"), record.stated.get("turbulent_above"))
-    return record
+            reader.unknown(one.key, f"constants.{one.key.text}", tuple(CONSTANTS))
+    found = {name: _read(reader, schema, standing.get(name), f"constants.{name}") for name, schema in CONSTANTS.items()}
+    transition = found[TRANSITION.group].stated
+    check_transition(reader, transition.get("laminar_below"), transition.get("turbulent_above"))
+    return found
+
+
+def in_force(
+    reader: Reader, constants: Mapping[str, Record], laws: Collection[str], changed: Collection[str]
+) -> dict[str, Record]:
+    """Return the constants without those that nobody states and no pipe needs; their defaults are not in use.
+
+    Parameters
+    ----------
+    reader : Reader
+        Holds the defaults in use.
+    constants : mapping of str to Record
+        From `read_constants`.
+    laws : collection of str
+        Friction laws that pipes follow in some case.
+    changed : collection of str
+        Groups of constants that cases change.
+    """
+    idle = {group for law, group in LAW_CONSTANTS.items() if law not in laws and group not in changed}
+    idle = {group for group in idle if all(stated.shipped for stated in constants[group].stated.values())}
+    for group in idle:
+        for name in constants[group].stated:
+            reader.defaults.pop(f"constants.{group}.{name}", None)
+    return {group: record for group, record in constants.items() if group not in idle}
 
 
 def check_transition(reader: Reader, low: Stated | None, high: Stated | None) -> None:

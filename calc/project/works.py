@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 
-from calc.components import Record, Stated, junction, pipe, reservoir
+from calc.components import Quantity, Record, Stated, junction, pipe, reservoir
 from calc.components.pipe import LAW_INPUT
 from calc.marks import Mark
 from calc.project import shipped
@@ -128,6 +128,7 @@ def _members(
                 reader.note(key.mark, "excluded-pair", f"{path}.{key.text}", found, "the table alone", hint)
         read = read_table(folder, table, path)
         reader.problems.extend(read.problems)
+        reader.told |= {problem.mark for problem in read.problems}
         if read.file is not None and all(one.name != read.file.name for one in works.tables):
             works.tables.append(read.file)
             works.texts[read.file.name] = read.text
@@ -190,9 +191,8 @@ def note_missing_input(reader: Reader, mark: Mark, path: str, needed: str, law: 
     """Note that a pipe does not state what its friction law needs."""
     found = f"'{needed}' is missing, which the law {law.text} needs"
     field = pipe.SCHEMA.field(needed)
-    example = getattr(getattr(field, "form", None), "kind").example  # noqa: B009 - every law input is a quantity
-    if needed == "friction_factor":
-        example = "0.02"
+    form = field.form if field else None
+    example = field.example if field and field.example else form.kind.example if isinstance(form, Quantity) else ""
     hint = f"the law is stated at {law.mark}" if not law.shipped else f"{law.text} is the law by default"
     reader.note(mark, "missing-law-input", path, found, f"'{needed}: {example}'", hint)
 

@@ -4,6 +4,7 @@ Darcy f is read through the Reynolds number as a power law of its own local expo
 gives two things: f and d ln f / d ln Re. Colebrook–White is solved exactly by the Wright ω function in
 the form that does not cancel: with a = ε/3.7D, b = 2.51/Re, c = 2/ln 10 and s = a + b/√f, the law
 1/√f = −c ln s becomes w + ln w = a/(bc) − ln(bc) for w = s/(bc), and d ln f / d ln Re = −2/(1 + w).
+Hazen–Williams and Manning know no f: their loss is a power of the flow, worked in logarithms.
 """
 
 from __future__ import annotations
@@ -39,6 +40,12 @@ class Pipes:
         Exponent of Re in f through the transition.
     chosen : dict of str to ndarray of bool
         Which pipes follow each law.
+    raised : ndarray of bool
+        Which pipes lose a power of the flow, by Hazen–Williams or Manning.
+    power : ndarray
+        That power; 2 where the law is another.
+    gain : ndarray
+        Friction loss of one pipe at 1 m³/s by that power, in m; 0 where the law is another.
     """
 
     works: Works
@@ -48,6 +55,9 @@ class Pipes:
     relative: Floats
     knee: Floats
     chosen: dict[str, Flags]
+    raised: Flags
+    power: Floats
+    gain: Floats
 
 
 def colebrook_white(reynolds: Floats, relative: Floats) -> tuple[Floats, Floats]:
@@ -74,19 +84,41 @@ def haaland(reynolds: Floats, relative: Floats) -> tuple[Floats, Floats]:
 TURBULENT = {"colebrook-white": colebrook_white, "swamee-jain": swamee_jain, "haaland": haaland}
 
 
+def hazen_williams(works: Works, of_law: Flags) -> tuple[float, Floats]:
+    """Return the power of the flow and the loss of each pipe at 1 m³/s; h = k L Q^a / (C^a D^b)."""
+    coefficient, power, narrowing = works.hazen_williams
+    length, bore, c = works.length[of_law], works.bore[of_law], works.hazen_williams_c[of_law]
+    return power, coefficient * np.exp(np.log(length) - power * np.log(c) - narrowing * np.log(bore))
+
+
+def manning(works: Works, of_law: Flags) -> tuple[float, Floats]:
+    """Return the power of the flow and the loss of each pipe at 1 m³/s; h = k n² L Q² / D^b."""
+    coefficient, narrowing = works.manning
+    length, bore, n = works.length[of_law], works.bore[of_law], works.manning_n[of_law]
+    return 2.0, coefficient * np.exp(np.log(length) + 2.0 * np.log(n) - narrowing * np.log(bore))
+
+
+POWERS = {"hazen-williams": hazen_williams, "manning": manning}
+
+
 def prepare(works: Works) -> Pipes:
     """Return the constants that the head losses of `works` need, for all its pipes, open or shut."""
     laws = np.asarray(works.law, dtype=object)
-    chosen: dict[str, Flags] = {law: np.equal(laws, law) for law in (*TURBULENT, "fixed")}
+    chosen: dict[str, Flags] = {law: np.equal(laws, law) for law in (*TURBULENT, "fixed", *POWERS)}
     gravity, viscosity, bore = works.gravity, works.viscosity, works.bore
     low, high = works.laminar_below, works.turbulent_above
-    relative = np.where(chosen["fixed"], 0.0, works.roughness / bore)
+    rough = chosen["colebrook-white"] | chosen["swamee-jain"] | chosen["haaland"]
+    relative = np.where(rough, works.roughness / bore, 0.0)
     knee = np.zeros(len(bore))
     for law, factor in TURBULENT.items():
         of_law = chosen[law]
         if high > low and np.any(of_law):
             turbulent = factor(np.full(np.count_nonzero(of_law), high), relative[of_law])[0]
             knee[of_law] = np.log(turbulent * low / 64.0) / math.log(high / low)
+    power, gain = np.full(len(bore), 2.0), np.zeros(len(bore))
+    for law, read in POWERS.items():
+        if np.any(of_law := chosen[law]):
+            power[of_law], gain[of_law] = read(works, of_law)
     return Pipes(
         works=works,
         drag=8.0 * works.length / (math.pi**2 * gravity * bore**5),
@@ -95,19 +127,23 @@ def prepare(works: Works) -> Pipes:
         relative=relative,
         knee=knee,
         chosen=chosen,
+        raised=chosen["hazen-williams"] | chosen["manning"],
+        power=power,
+        gain=gain,
     )
 
 
 def factors(pipes: Pipes, reynolds: Floats) -> tuple[Floats, Floats]:
     """Return Darcy f and d ln f / d ln Re of every pipe, each of shape (m,).
 
-    In laminar flow both are NaN: there the loss is stated in the flow itself, which holds at rest too.
+    In laminar flow both are NaN: there the loss is stated in the flow itself, which holds at rest too. They
+    are NaN also where the loss is a power of the flow.
     """
     works = pipes.works
     factor = np.where(pipes.chosen["fixed"], works.factor, np.nan)
     exponent = np.where(pipes.chosen["fixed"], 0.0, np.nan)
     turbulent = reynolds >= works.turbulent_above
-    between = ~pipes.chosen["fixed"] & ~turbulent & (reynolds >= works.laminar_below)
+    between = regimes(pipes) & ~turbulent & (reynolds >= works.laminar_below)
     for law, function in TURBULENT.items():
         here = pipes.chosen[law] & turbulent
         if np.any(here):
@@ -116,6 +152,12 @@ def factors(pipes: Pipes, reynolds: Floats) -> tuple[Floats, Floats]:
     factor[between] = 64.0 / works.laminar_below * ratio ** pipes.knee[between]
     exponent[between] = pipes.knee[between]
     return factor, exponent
+
+
+def regimes(pipes: Pipes) -> Flags:
+    """Return which pipes follow a law that knows laminar and transitional flow."""
+    every: Flags = ~(pipes.chosen["fixed"] | pipes.raised)
+    return every
 
 
 def head_loss(pipes: Pipes, flow: Floats) -> tuple[Floats, Floats]:
@@ -133,14 +175,16 @@ def head_loss(pipes: Pipes, flow: Floats) -> tuple[Floats, Floats]:
     loss : ndarray, shape (m,)
         Friction and fittings, in m, with the sign of the flow.
     slope : ndarray, shape (m,)
-        Its derivative by the total flow, in s/m²; zero for a fixed f at rest.
+        Its derivative by the total flow, in s/m²; at rest zero for a fixed f and for a power of the flow.
     """
     works = pipes.works
     single = flow / works.parallel
     speed = np.abs(single)
     factor, exponent = factors(pipes, pipes.reynolds * speed)
-    laminar = ~pipes.chosen["fixed"] & (pipes.reynolds * speed < works.laminar_below)
+    laminar = regimes(pipes) & (pipes.reynolds * speed < works.laminar_below)
     friction = np.where(laminar, pipes.laminar, pipes.drag * factor * speed)
+    friction = np.where(pipes.raised, pipes.gain * speed ** (pipes.power - 1.0), friction)
+    exponent = np.where(pipes.raised, pipes.power - 2.0, exponent)
     fittings = np.where(single >= 0.0, works.loss_forward, works.loss_reverse) * speed
     slope = np.where(laminar, pipes.laminar, (2.0 + exponent) * friction) + 2.0 * fittings
     return (friction + fittings) * single, slope / works.parallel

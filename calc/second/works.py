@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from typing import TypeAlias
 
@@ -12,7 +13,7 @@ Floats: TypeAlias = NDArray[np.float64]
 Integers: TypeAlias = NDArray[np.int64]
 Flags: TypeAlias = NDArray[np.bool_]
 
-LAWS = ("colebrook-white", "swamee-jain", "haaland", "fixed")
+LAWS = ("colebrook-white", "swamee-jain", "haaland", "fixed", "hazen-williams", "manning")
 
 
 @dataclass(frozen=True, slots=True, eq=False, kw_only=True)
@@ -36,9 +37,11 @@ class Works:
     length, bore : ndarray, shape (m,)
         In m, both above zero.
     roughness : ndarray, shape (m,)
-        In m; not read where the law is ``fixed``.
+        In m; read where the law is one of Colebrook–White, Swamee–Jain and Haaland.
     factor : ndarray, shape (m,)
         Darcy f where the law is ``fixed``; not read elsewhere.
+    hazen_williams_c, manning_n : ndarray, shape (m,)
+        Of the pipe; each is read where the law is its own.
     law : tuple of str, length m
         One of `LAWS` for each pipe.
     loss_forward, loss_reverse : ndarray, shape (m,)
@@ -48,6 +51,10 @@ class Works:
         In m/s² and m²/s (kinematic).
     laminar_below, turbulent_above : float
         Reynolds numbers that bound the transition.
+    hazen_williams : tuple of float
+        k, a and b of h = k L Q^a / (C^a D^b), in m and m³/s.
+    manning : tuple of float
+        k and b of h = k n² L Q² / D^b, in m and m³/s.
 
     Raises
     ------
@@ -66,6 +73,8 @@ class Works:
     bore: Floats
     roughness: Floats
     factor: Floats
+    hazen_williams_c: Floats
+    manning_n: Floats
     law: tuple[str, ...]
     loss_forward: Floats
     loss_reverse: Floats
@@ -73,12 +82,15 @@ class Works:
     viscosity: float
     laminar_below: float = 2000.0
     turbulent_above: float = 4000.0
+    hazen_williams: tuple[float, float, float] = (10.67, 1.852, 4.8704)
+    manning: tuple[float, float] = (4.0 ** (10.0 / 3.0) / math.pi**2, 16.0 / 3.0)
 
     def __post_init__(self) -> None:
         """Refuse arrays that do not fit together."""
         count = len(self.start)
-        names = ("end", "open", "parallel", "length", "bore", "roughness", "factor", "law")
-        wrong = [n for n in (*names, "loss_forward", "loss_reverse") if len(getattr(self, n)) != count]
+        names = ("end", "open", "parallel", "length", "bore", "law", "loss_forward", "loss_reverse")
+        inputs = ("roughness", "factor", "hazen_williams_c", "manning_n")
+        wrong = [n for n in (*names, *inputs) if len(getattr(self, n)) != count]
         wrong += [n for n in ("level", "withdrawal") if len(getattr(self, n)) != self.node_count]
         if wrong:
             raise ValueError(f"of another length than the pipes or the nodes: {', '.join(wrong)}")

@@ -9,11 +9,23 @@ import pytest
 
 from calc.components import SCHEMAS, Count, Field, Network, Quantity
 from calc.components.liquid import LiquidTerms, liquid
-from calc.components.pipe import FITTING_SCHEMA, LAW_INPUT, FittingTerms, PipeTerms, losses, transition_limits
+from calc.components.pipe import (
+    FITTING_SCHEMA,
+    LAW_INPUT,
+    EmpiricalConstants,
+    FittingTerms,
+    PipeTerms,
+    losses,
+    transition_limits,
+)
 from calc.equation import ARRAYS, Labels, Slope, Value, value_of
 from calc.physics.friction import LAW_NAMES
 
 FLOWS = np.array([0.03, -0.03, 0.0, 1e-5])
+
+CONSTANTS: EmpiricalConstants[Value] = EmpiricalConstants(
+    *(np.array([x]) for x in (10.67, 1.852, 4.8704, 10.2936, 5.33333))
+)
 
 
 def terms(**other: Value) -> PipeTerms[Value]:
@@ -23,6 +35,8 @@ def terms(**other: Value) -> PipeTerms[Value]:
         "bore": np.full(4, 0.2),
         "roughness": np.full(4, 1e-4),
         "friction_factor": np.full(4, np.nan),
+        "hazen_williams_c": np.full(4, np.nan),
+        "manning_n": np.full(4, np.nan),
         "parallel": np.full(4, 2.0),
         "viscosity": np.array([1e-6]),
         "gravity": np.array([9.81]),
@@ -38,7 +52,8 @@ def terms(**other: Value) -> PipeTerms[Value]:
         bore=np.tile([0.2, 0.1], 4),
     )
     law = Labels(LAW_NAMES, np.array([LAW_NAMES.index("colebrook-white")]))
-    return PipeTerms(rows=("a", "b", "c", "d"), law=law, fittings=parts, **{**four, **other})
+    rest = {"law": law, "fittings": parts, "constants": CONSTANTS}
+    return PipeTerms(rows=("a", "b", "c", "d"), **{**rest, **four, **other})  # type: ignore[arg-type]
 
 
 def test_the_chain_by_hand() -> None:

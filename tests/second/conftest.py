@@ -17,7 +17,7 @@ def build_works(
     levels: Sequence[float | None],
     pipes: Sequence[Mapping[str, Any]],
     withdrawals: Sequence[float] | None = None,
-    **constants: float,
+    **constants: Any,  # noqa: ANN401
 ) -> Works:
     """Return works of `levels` (None at a junction) and `pipes` (start, end and what differs)."""
 
@@ -36,6 +36,8 @@ def build_works(
         bore=column("bore", 0.3),
         roughness=column("roughness", np.nan),
         factor=column("factor", np.nan),
+        hazen_williams_c=column("hazen_williams_c", np.nan),
+        manning_n=column("manning_n", np.nan),
         law=tuple(pipe.get("law", "colebrook-white" if "roughness" in pipe else "fixed") for pipe in pipes),
         loss_forward=column("loss_forward", 0.0),
         loss_reverse=column("loss_reverse", 0.0),

@@ -21,6 +21,9 @@ Build = Callable[..., Works]
 RANGES = [(0.0, 500.0), (100.0, 100.001), (100.0, 100.0), (200.0, 230.0)]
 
 
+ROUGH = ("colebrook-white", "swamee-jain", "haaland")
+
+
 def works_on(
     nodes: int, ends: NDArray[Any], chance: Generator, levels: tuple[float, float], *, wide: bool, held: int
 ) -> Works:
@@ -34,7 +37,7 @@ def works_on(
     if not wide:
         bore, length = chance.uniform(0.1, 0.6, count), chance.uniform(50.0, 500.0, count)
     law = tuple(str(name) for name in chance.choice(LAWS, count))
-    fixed = np.array([name == "fixed" for name in law])
+    named = np.array(law)
     velocity_head = 2.0 * 9.81 * (np.pi / 4.0 * bore**2) ** 2
     return Works(
         node_count=nodes,
@@ -46,8 +49,10 @@ def works_on(
         parallel=chance.integers(1, 4, count).astype(np.float64),
         length=length,
         bore=bore,
-        roughness=np.where(fixed, np.nan, bore * 10 ** chance.uniform(-6.0, -1.5, count)),
-        factor=np.where(fixed, 0.02, np.nan),
+        roughness=np.where(np.isin(named, ROUGH), bore * 10 ** chance.uniform(-6.0, -1.5, count), np.nan),
+        factor=np.where(named == "fixed", 0.02, np.nan),
+        hazen_williams_c=np.where(named == "hazen-williams", chance.uniform(60.0, 150.0, count), np.nan),
+        manning_n=np.where(named == "manning", chance.uniform(0.009, 0.02, count), np.nan),
         law=law,
         loss_forward=chance.uniform(0.0, 3.0, count) / velocity_head,
         loss_reverse=chance.uniform(0.0, 3.0, count) / velocity_head,
@@ -104,6 +109,8 @@ def renumbered(works: Works, chance: Generator) -> tuple[Works, NDArray[Any], ND
         loss_reverse=np.where(turned, forward, reverse),
         roughness=works.roughness[pipes],
         factor=works.factor[pipes],
+        hazen_williams_c=works.hazen_williams_c[pipes],
+        manning_n=works.manning_n[pipes],
         law=tuple(works.law[pipe] for pipe in pipes),
         **kept,
     )

@@ -9,7 +9,7 @@ import numpy as np
 import numpy.typing as npt
 
 from calc.components.network import Network
-from calc.components.pipe import FittingTerms, PipeTerms
+from calc.components.pipe import LAW_INPUT, EmpiricalConstants, FittingTerms, PipeTerms
 from calc.equation import Labels
 from calc.physics.friction import LAW_NAMES
 
@@ -26,6 +26,8 @@ class Pipe:
     bore: float = 0.3
     roughness: float = np.nan
     factor: float = np.nan
+    hazen_williams_c: float = np.nan
+    manning_n: float = np.nan
     law: str = ""
     parallel: float = 1.0
     open: bool = True
@@ -33,7 +35,19 @@ class Pipe:
 
     @property
     def label(self) -> str:
-        return self.law or ("fixed" if np.isnan(self.roughness) else "colebrook-white")
+        if self.law:
+            return self.law
+        stated = {"colebrook-white": self.roughness, "hazen-williams": self.hazen_williams_c, "manning": self.manning_n}
+        return next((law for law, value in stated.items() if not np.isnan(value)), "fixed")
+
+
+CONSTANTS = {
+    "hazen_williams_coefficient": 10.67,
+    "hazen_williams_flow_exponent": 1.852,
+    "hazen_williams_bore_exponent": 4.8704,
+    "manning_coefficient": 4 ** (10 / 3) / np.pi**2,
+    "manning_bore_exponent": 16 / 3,
+}
 
 
 def network(
@@ -42,8 +56,9 @@ def network(
     pipes: Sequence[Pipe],
     viscosity: float = 1.0e-6,
     gravity: float = 9.81,
+    **constants: float,
 ) -> Network:
-    """Return the case: reservoirs with their levels, junctions with their withdrawals, pipes."""
+    """Return the case: reservoirs with their levels, junctions with their withdrawals, pipes; other constants."""
     nodes = (*levels, *withdrawals)
     at = {name: i for i, name in enumerate(nodes)}
     parts = [(i, *part) for i, pipe in enumerate(pipes) for part in pipe.fittings]
@@ -54,6 +69,8 @@ def network(
         bore=np.array([p.bore for p in pipes]),
         roughness=np.array([p.roughness for p in pipes]),
         friction_factor=np.array([p.factor for p in pipes]),
+        hazen_williams_c=np.array([p.hazen_williams_c for p in pipes]),
+        manning_n=np.array([p.manning_n for p in pipes]),
         parallel=np.array([p.parallel for p in pipes]),
         law=Labels(LAW_NAMES, np.array([LAW_NAMES.index(p.label) for p in pipes])),
         fittings=FittingTerms(
@@ -68,6 +85,7 @@ def network(
         gravity=np.array([gravity]),
         laminar_below=np.array([2000.0]),
         turbulent_above=np.array([4000.0]),
+        constants=EmpiricalConstants(**{name: np.array([x]) for name, x in {**CONSTANTS, **constants}.items()}),
     )
     return Network(
         nodes=nodes,
@@ -102,9 +120,15 @@ def random_pipe(rng: np.random.Generator, start: str, end: str, law: str = "") -
     """Return a pipe of 30 mm to 1.2 m, 20 m to 20 km, of a law drawn or named."""
     bore, length = np.exp(rng.uniform(np.log([0.03, 20.0]), np.log([1.2, 2e4])))
     word = law or str(rng.choice(LAW_NAMES))
-    factor, roughness = rng.uniform(0.01, 0.05), rng.choice([0.0, 1e-5, 1.5e-4, 1e-3])
+    stated = {
+        "roughness": rng.choice([0.0, 1e-5, 1.5e-4, 1e-3]),
+        "friction_factor": rng.uniform(0.01, 0.05),
+        "hazen_williams_c": rng.uniform(60.0, 150.0),
+        "manning_n": rng.uniform(0.009, 0.02),
+    }
     fittings = [(float(rng.integers(1, 4)), *rng.uniform(0.0, 3.0, 2))] if rng.random() < 0.3 else []
-    given = {"factor": float(factor)} if word == "fixed" else {"roughness": float(roughness)}
+    needed = LAW_INPUT[word]
+    given = {needed.replace("friction_factor", "factor"): float(stated[needed])}
     parallel = float(rng.choice([1.0, 1.0, 2.0]))
     return Pipe(start, end, float(length), float(bore), law=word, parallel=parallel, fittings=fittings, **given)
 
