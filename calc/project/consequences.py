@@ -55,8 +55,8 @@ def _check_range(reader: Reader, project: Project, now: Effective, case: Case, l
 
 
 def _field(project: Project, line: Line) -> Field | None:
-    schema = GROUPS.get(line.group) or SINGLE.get(line.group) or CONSTANTS[line.rows[0]]
-    field = schema.field(line.field)
+    schema = GROUPS.get(line.group) or SINGLE.get(line.group) or CONSTANTS.get(line.rows[0])
+    field = schema.field(line.field) if schema else None
     if line.group == "fluid" and line.field == "viscosity" and project.fluid.text("viscosity_kind").startswith("d"):
         return Field("viscosity", VISCOSITIES[1])
     return field
