@@ -45,9 +45,12 @@ class Notes:
     ----------
     problems : list of Problem
         In the order found.
+    told : set of Mark
+        Places in tables of which enough is told.
     """
 
     problems: list[Problem] = field(default_factory=list)
+    told: set[Mark] = field(default_factory=set)
     _keys_noted: set[Mark] = field(default_factory=set)
     _hints: int = 0
 
@@ -55,6 +58,8 @@ class Notes:
         self, mark: Mark, code: str, path: str, found: str, expected: str = "", hint: str = ""
     ) -> None:
         """Note a problem; of a key that heads a column it is noted once, not for every row."""
+        if mark in self.told:
+            return
         if code in ("unknown-key", "not-yet"):
             if mark in self._keys_noted:
                 return

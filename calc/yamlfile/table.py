@@ -45,7 +45,7 @@ class Table:
     ----------
     rows : Mapping
         Ids with mappings of fields. A cell under a header with a unit reads ``384.4 mm``; its mark is the
-        cell's. An empty cell is a field left out.
+        cell's. An empty cell is a field left out; one that is no number stands as written.
     problems : list of Problem
         Sorted by place.
     file : SourceFile or None
@@ -231,7 +231,7 @@ class _Reading:
                         "the unit stands in the header",
                     )
                     self.report(mark, "not-a-number", words, key.text, column.key.text)
-                    continue
-                text = f"{text} {column.unit}"
+                else:
+                    text = f"{text} {column.unit}"
             fields.append(Entry(column.key, Scalar(text, mark, cell.quoted)))
         return Mapping(tuple(fields), Mark(self.name, number, 1))
