@@ -26,12 +26,12 @@ class Pipe:
     bore: float = 0.3
     roughness: float = np.nan
     factor: float = np.nan
-    hazen_williams_c: float = np.nan
-    manning_n: float = np.nan
     law: str = ""
     parallel: float = 1.0
     open: bool = True
     fittings: Sequence[tuple[float, float, float]] = ()
+    hazen_williams_c: float = np.nan
+    manning_n: float = np.nan
 
     @property
     def label(self) -> str:
@@ -120,11 +120,12 @@ def random_pipe(rng: np.random.Generator, start: str, end: str, law: str = "") -
     """Return a pipe of 30 mm to 1.2 m, 20 m to 20 km, of a law drawn or named."""
     bore, length = np.exp(rng.uniform(np.log([0.03, 20.0]), np.log([1.2, 2e4])))
     word = law or str(rng.choice(LAW_NAMES))
+    share = rng.random()
     stated = {
+        "friction_factor": 0.01 + 0.04 * share,
+        "hazen_williams_c": 60.0 + 90.0 * share,
+        "manning_n": 0.009 + 0.011 * share,
         "roughness": rng.choice([0.0, 1e-5, 1.5e-4, 1e-3]),
-        "friction_factor": rng.uniform(0.01, 0.05),
-        "hazen_williams_c": rng.uniform(60.0, 150.0),
-        "manning_n": rng.uniform(0.009, 0.02),
     }
     fittings = [(float(rng.integers(1, 4)), *rng.uniform(0.0, 3.0, 2))] if rng.random() < 0.3 else []
     needed = LAW_INPUT[word]

@@ -10,6 +10,7 @@ import pytest
 from solve_cases import Array, network, random_pipe
 
 from calc.components.network import Network
+from calc.physics.friction import LAW_NAMES
 from calc.solve.branch import Branches
 from calc.solve.search import Balance, Outcome, Search
 
@@ -31,7 +32,7 @@ def build(rng: np.random.Generator, count: int, branches: int) -> Stars:
     withdrawal = rng.choice([0.0, 0.0, 1e-4, 0.01, 0.2], count) * rng.normal(size=count)
     levels = {f"r{i}-{k}": float(level[i, k]) for i in range(count) for k in range(branches)}
     withdrawals = {f"j{i}": float(withdrawal[i]) for i in range(count)}
-    laws = rng.choice(["fixed", "colebrook-white", "swamee-jain", "haaland", ""], count)
+    laws = rng.choice([*LAW_NAMES, ""], count)
     pipes = [random_pipe(rng, f"r{i}-{k}", f"j{i}", str(laws[i])) for i in range(count) for k in range(branches)]
     return Stars(network(levels, withdrawals, pipes), level, withdrawal)
 
