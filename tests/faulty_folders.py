@@ -13,7 +13,8 @@ A file there is a theme; each of its cases is one fault in a sound folder::
 that is changed (``sound`` if not said, ``none`` for an empty one); ``after``, lines put behind the line that
 holds a text; ``without``, lines left out; ``add``, lines at the end of ``network.yaml``; ``files``, whole files;
 ``fill``, a sign and the text that stands for it, so many times over; ``encoding`` of the file at fault; ``links``
-and ``folders`` made in the folder; ``place``, where no text can be underlined; ``asked``, the file called instead of the folder; ``hint``, the way out that is told.
+and ``folders`` made in the folder; ``place``, where no text can be underlined; ``asked``, the file called instead
+of the folder; ``hint``, the way out that is told.
 ``says`` is the beginning of what is said behind the place. ``schema`` tells whether a schema of one file could
 refuse it too.
 """

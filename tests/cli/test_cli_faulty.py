@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable
+from itertools import pairwise
 from pathlib import Path
 
 import pytest
@@ -32,8 +33,10 @@ def test_a_fault_is_told_once_at_its_place_with_a_way_out(fault: FaultyFolder, t
     assert [line.removeprefix("  hint: ") for line in rest if line.startswith("  hint: ")] == [fault.hint] * bool(
         fault.hint
     )
-    carets = [line for line in rest if re.fullmatch(r" *\| *\^+", line)]
-    assert [line.count("^") for line in carets] == [fault.length] * bool(fault.length), told
+    carets = [(above, line) for above, line in pairwise(rest) if re.fullmatch(r" *\| *\^+", line)]
+    assert len(carets) == bool(fault.length)
+    for above, line in carets:
+        assert line.count("^") == min(fault.length, len(above) - line.index("^")), told
     with pytest.raises(ProblemsFound) as found:
         pipeline.read(folder)
     assert [problem.code for problem in found.value.problems] == [fault.code]
