@@ -10,6 +10,7 @@ import numpy as np
 from calc.account import Account
 from calc.equation.law import takes
 from calc.ledger import Combined, Derived, Judged, Ledger, Solved, Spot, proofs
+from calc.report.display import Display
 from calc.report.document import (
     Block,
     Cite,
@@ -23,7 +24,6 @@ from calc.report.document import (
     Table,
     TableColumn,
 )
-from calc.report.formats import usual
 from calc.report.numbers import Format, written
 from calc.verification import Check
 
@@ -48,13 +48,23 @@ class Composer:
         self.ledger: Ledger = account.ledger
         self.purpose = purpose
         self.checks = checks
-        display = account.project.sections["display"]
-        self.flow_unit = display.text("flow", "L/s").replace("m3", "m³")
-        self.paper = display.text("paper", "A4")
+        asked = account.project.sections["display"]
+        self.display = Display.of(asked)
+        self.beside = Display.usual_of(asked.text("beside")) if "beside" in asked.stated else None
+        self.paper = asked.text("paper", "A4")
         self.addresses: dict[str, str] = {}
         self.sections: list[Section] = []
         self.files: dict[str, bytes] = {}
         self.figures = 0
+
+    @property
+    def flow_unit(self) -> str:
+        """The unit of flows, as printed."""
+        return self.display.unit("flow")
+
+    def unit(self, field: str) -> str:
+        """Return the unit in which a kind of quantity is displayed, such as that of ``head``."""
+        return self.display.unit(field)
 
     def begin(self, key: str, title: str, *lead: Part) -> Sheet:
         """Begin a section."""
@@ -63,13 +73,13 @@ class Composer:
     def number(self, at: Spot | str, form: Format | None = None, *, with_unit: bool = False) -> Number:
         """Return a ledger value as printed, in its usual format unless another is given."""
         spot = self.ledger.spot(at) if isinstance(at, str) else at
-        form = form or usual(spot.column, self.flow_unit)
+        form = form or self.display.usual(spot.column)
         return Number(spot.id, form, written(spot.value, spot.column.kind, form), with_unit)
 
     def turned(self, at: Spot | str, sign: str) -> Number:
         """Return a ledger value in its usual format with another treatment of its sign."""
         spot = self.ledger.spot(at) if isinstance(at, str) else at
-        return self.number(spot, replace(usual(spot.column, self.flow_unit), sign=sign))
+        return self.number(spot, replace(self.display.usual(spot.column), sign=sign))
 
     def figure_number(self) -> str:
         """Return the number of the next figure."""

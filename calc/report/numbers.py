@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import lru_cache
 
 from calc.kinds import Kind
-from calc.units import factor
+from calc.units import scale
 
 THIN = "\u202f"
 MINUS = "−"
@@ -23,7 +24,7 @@ class Format:
     Attributes
     ----------
     unit : str
-        Unit printed, such as ``L/s``; empty for pure numbers.
+        Unit printed, such as ``L/s`` or ``°F``; empty for pure numbers.
     decimals : int or None
         Figures after the point; or
     significant : int or None
@@ -62,13 +63,30 @@ def parsed(spec: str) -> Format:
     )
 
 
+NAMES = {"MGD": "us_mgd"}
+"""Units that are printed under a name which inputs may not use, as it does not say enough there."""
+
+
+@lru_cache(maxsize=256)
+def _scale(unit: str, kind: Kind) -> tuple[float, float]:
+    return scale(NAMES.get(unit, unit), kind)
+
+
+def shown(value: float, kind: Kind, unit: str) -> float:
+    """Return a value in SI as a number in a unit; a temperature as it stands on its scale."""
+    if not unit:
+        return value
+    factor, zero = _scale(unit, kind)
+    return value * factor - zero
+
+
 def written(value: float, kind: Kind, form: Format) -> str:
     """Return a value in SI as text in a format.
 
     Minus is U+2212, thousands are set apart by U+202F, a power of ten is ``1.3 × 10^−6`` (the caret is set as a raised
     exponent). A value that rounds to zero has no sign.
     """
-    number = value * (factor(form.unit, kind) if form.unit else 1.0)
+    number = shown(value, kind, form.unit)
     if form.sign == "turned":
         number = -number
     if form.bound is not None and abs(number) < form.bound:

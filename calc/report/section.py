@@ -1,16 +1,15 @@
 """The section ``display`` of a project: units and paper of its package."""
 
 from calc.components import Field, Word
-from calc.project.section import Later, SectionSchema
-
-FLOW_UNITS = ("L/s", "m³/s", "m3/s", "m³/h", "m3/h", "ML/d")
+from calc.project.section import SectionSchema
+from calc.report.shown import SHOWN, SYSTEMS
 
 DISPLAY = SectionSchema(
     "display",
     (
-        Field("units", Word(("SI",)), words="system of units"),
-        Field("flow", Word(FLOW_UNITS), words="unit of flow"),
+        Field("units", Word(SYSTEMS), words="system of units; each quantity may have a unit of its own"),
+        Field("beside", Word(SYSTEMS), words="the other system of units, in columns beside those of the results"),
+        *(Field(one.field, Word(tuple(one.spellings)), words=one.words) for one in SHOWN),
         Field("paper", Word(("A4", "Letter")), words="paper"),
     ),
-    later=(Later("units", "US", "state inputs in any unit; packages are printed in SI"),),
 )

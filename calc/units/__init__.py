@@ -1,7 +1,8 @@
 """Units: text such as ``384.4 mm`` becomes an SI float, or a problem in plain words.
 
 For
-    reading every quantity of a project, and giving the factors by which results are displayed.
+    reading every quantity of a project, and giving the factors by which results are displayed (with the zero of
+    a temperature scale).
 Takes
     text as written and the `calc.kinds.Kind` asked for.
 Gives
@@ -18,7 +19,7 @@ Why this way
 
 from __future__ import annotations
 
-from calc.units.quantity import Quantity, factor, measures, read
+from calc.units.quantity import Quantity, factor, measures, read, scale
 from calc.units.trouble import UnitTrouble
 
-__all__ = ["Quantity", "UnitTrouble", "factor", "measures", "read"]
+__all__ = ["Quantity", "UnitTrouble", "factor", "measures", "read", "scale"]

@@ -18,6 +18,7 @@ _MOST_FACTORS = 6
 _LOWERED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻⁺", "0123456789-+")
 _RAISED = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
 _NATION = re.compile(r"\b(us|imp)[ _]+(gal|gpm|mgd)\b", re.ASCII | re.IGNORECASE)
+_THOUSAND = re.compile(r"(?<![0-9.])1000 ?(?:ft|feet)\b", re.ASCII)
 _JOIN = re.compile(r" *([/·*⋅]) *| +")
 _FACTOR = re.compile(r"([A-Za-z_µ°%]+)(?:(?:\^|\*\*)?([+-]?[1-9])(?![0-9]))?", re.ASCII)
 _RAISED_TEXT = re.compile("[⁻⁺]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+")
@@ -72,6 +73,7 @@ def _powers(text: str) -> list[_Power] | Flaw:
     """Split unit text into names with powers, in the order written."""
     plain = _RAISED_TEXT.sub(lambda raised: "^" + raised[0].translate(_LOWERED), text.replace("μ", "µ"))
     plain = _NATION.sub(lambda match: f"{match[1]}_{match[2]}".lower(), plain).replace("**", "^")
+    plain = _THOUSAND.sub("thousand_ft", plain)
     pieces = _JOIN.split(plain)
     if len(pieces) > 2 * _MOST_FACTORS - 1:
         return Flaw("unknown-unit", f"has a unit of more than {_MOST_FACTORS} names")

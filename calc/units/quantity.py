@@ -191,16 +191,46 @@ def factor(unit_text: str, kind: Kind) -> float:
     UnitTrouble
         When the unit is unknown, of another kind, or a scale with a zero of its own.
     """
+    found = _of_kind(unit_text, kind)
+    if found.offset:
+        reason = f"{quoted(unit_text)} has a zero of its own, so no factor leads to it"
+        raise UnitTrouble("wrong-dimension", reason, _unit_of(kind))
+    return float(1 / found.factor)
+
+
+def scale(unit_text: str, kind: Kind) -> tuple[float, float]:
+    """Return factor and zero by which an SI value is shown in a unit: ``shown = value * factor - zero``.
+
+    Parameters
+    ----------
+    unit_text : str
+        The unit to show, which may have a zero of its own: ``°F``; empty for a pure number.
+    kind : Kind
+        What the value measures.
+
+    Returns
+    -------
+    factor, zero : float
+        ``(1.8, 459.67)`` for ``°F``; the zero is in the unit shown, 0 for all but temperatures.
+
+    Raises
+    ------
+    UnitTrouble
+        When the unit is unknown or of another kind.
+    """
+    found = _of_kind(unit_text, kind)
+    return float(1 / found.factor), float(found.offset / found.factor)
+
+
+def _of_kind(unit_text: str, kind: Kind) -> Unit:
+    """Return a unit that measures a kind."""
     found = unit(unit_text) if unit_text else _NO_UNIT
     if isinstance(found, Flaw):
         raise UnitTrouble(found.code, f"{quoted(unit_text)} {found.reason}", _unit_of(kind), found.hint)
     if found.dimension != kind.dimension:
         reason = f"{quoted(unit_text)} is a unit of {measured(found.dimension)}"
         raise UnitTrouble("wrong-dimension", reason, _unit_of(kind))
-    if found.offset:
-        reason = f"{quoted(unit_text)} has a zero of its own, so no factor leads to it"
-        raise UnitTrouble("wrong-dimension", reason, _unit_of(kind))
-    return float(1 / found.factor)
+    return found
 
 
 def _unit_of(kind: Kind) -> str:

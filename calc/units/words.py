@@ -88,6 +88,7 @@ WORDS: dict[str, Word] = {
     """),
     "um": Word("µm", "micrometer"),
     "µm": Word("µm", "micrometer"),
+    "thousand_ft": Word("1000 ft", "1000 * foot"),
     "us_gal": Word("US gal", "US_liquid_gallon"),
     "us_gpm": Word("US gpm", "US_liquid_gallon / minute"),
     "us_mgd": Word("US mgd", "10 ** 6 * US_liquid_gallon / day"),
