@@ -66,6 +66,10 @@ class Composer:
         """Return the unit in which a kind of quantity is displayed, such as that of ``head``."""
         return self.display.unit(field)
 
+    def form(self, field: str, more: int = 0, sign: str = "", *, residual: bool = False) -> Format:
+        """Return the format of a kind of quantity as displayed, with so many decimals more than in the tables."""
+        return self.display.form(field, more, sign, residual=residual)
+
     def begin(self, key: str, title: str, *lead: Part) -> Sheet:
         """Begin a section."""
         return Sheet(self, key, str(len(self.sections) + 1), title, lead)

@@ -12,11 +12,10 @@ from calc.kinds import FLOW
 from calc.ledger import Combined, Program, Spot, View
 from calc.ledger.accountant import Accountant
 from calc.report.composer import Composer, Sheet, cited, column, figure_column, name
+from calc.report.display import FINE, FULL
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Row, Soft, Strong, TableColumn
-from calc.report.formats import FULL, RESIDUAL, flow_form, usual
 from calc.report.numbers import Format, read_back, written
 from calc.report.selection import MOST_PIPES, shown_junctions
-from calc.units import factor
 
 FROM = TableColumn(("from",), width=22, edge=True, role="from")
 
@@ -59,21 +58,19 @@ def _junction(sheet: Sheet, case: CaseAccount, imbalance: Spot, junction: str) -
     if not isinstance(origin, Combined):
         return []
     rows, texts, ids = [], [], []
-    unit = composer.flow_unit
     for k, into in enumerate(origin.into.tolist()):
         found = origin.terms.spot(k)
         if into != imbalance.row or found is None:
             continue
         spot = Spot(*found)
         sign = "turned" if origin.signs[k] < 0 else "+"
-        full = composer.number(spot, flow_form(unit, FULL, sign))
-        usual_form = usual(spot.column, unit)
-        printed = composer.number(spot, Format(unit, usual_form.decimals, sign=sign))
+        full = composer.number(spot, composer.form("flow", FULL, sign))
+        printed = composer.number(spot, composer.form("flow", sign=sign))
         rows.append(sheet.row(_said(case, spot, origin.signs[k]), (full,), (printed,), (Cite((spot.id,)),)))
         texts.append(printed.text)
         ids.append(spot.column.rows[spot.row] if not spot.column.of else spot.column.of)
     total = _printed_sum(composer, case, junction, ids, texts)
-    full = composer.number(imbalance, flow_form(unit, FULL, residual=True))
+    full = composer.number(imbalance, composer.form("flow", FULL, residual=True))
     rows.append(
         sheet.row(
             (Strong(("Imbalance",)),),
@@ -106,8 +103,8 @@ def _printed_sum(composer: Composer, case: CaseAccount, junction: str, ids: list
     if standing:
         spot = Spot(standing[0], standing[0].index[junction])
         return Number(spot.id, form, written(spot.value, FLOW, form))
-    scale = factor(unit, FLOW)
-    values = [float(Decimal(repr(read_back(text))) / Decimal(repr(scale))) for text in texts]
+    scale = Decimal(repr(composer.display.shown(1.0, "flow")))
+    values = [float(Decimal(repr(read_back(text))) / scale) for text in texts]
     said = Program("a flow toward the junction as printed, rounded")
     rows = [f"{junction}/{row}" for row in ids]
     held = ledger.enter("printed.flow_toward", FLOW, rows, values, said, case=case.id)
@@ -130,11 +127,12 @@ def _energy(sheet: Sheet, case: CaseAccount) -> None:
     if not case.paths:
         return
     sheet.add(Heading(("Energy between reservoirs",)))
+    unit = sheet.composer.unit("head")
     columns = (
         column("along the path", role="statement"),
-        figure_column("friction", "m", 26, edge=True),
-        figure_column("fittings", "m", 26),
-        figure_column("head", "m", 26, edge=True),
+        figure_column("friction", unit, 26, edge=True),
+        figure_column("fittings", unit, 26),
+        figure_column("head", unit, 26, edge=True),
         FROM,
     )
     rows: list[Row] = []
@@ -145,8 +143,8 @@ def _energy(sheet: Sheet, case: CaseAccount) -> None:
     sheet.add(Paragraph((said,), "small"))
 
 
-HEAD = Format("m", decimals=4)
-HEAD_RESIDUAL = Format("m", decimals=6, bound=RESIDUAL)
+ADDED = 1
+"""Decimals more than in the tables, of heads and losses that are added up."""
 
 
 def _node(composer: Composer, case: str, node: str) -> Spot:
@@ -157,20 +155,20 @@ def _node(composer: Composer, case: str, node: str) -> Spot:
 def _path(sheet: Sheet, case: CaseAccount, path: Path) -> list[Row]:
     composer, ledger = sheet.composer, sheet.composer.ledger
     rows = [sheet.group("From ", name(path.start), " to ", name(path.end))]
-    start = _node(composer, case.id, path.start)
-    rows.append(sheet.row((name(path.start),), ("",), ("",), (composer.number(start, HEAD),), (Cite((start.id,)),)))
+    start, form = _node(composer, case.id, path.start), composer.form("head", ADDED)
+    rows.append(sheet.row((name(path.start),), ("",), ("",), (composer.number(start, form),), (Cite((start.id,)),)))
     for pipe, node, sign in zip(path.pipes, path.nodes[1:], path.signs, strict=True):
         losses = []
         for quantity in ("friction_loss", "fitting_loss"):
             spot = ledger.spot(f"pipes.{pipe}.{quantity}@{case.id}")
-            losses.append((composer.number(spot, Format("m", decimals=4, sign="turned" if sign < 0 else "+")), spot.id))
+            losses.append((composer.number(spot, replace(form, sign="turned" if sign < 0 else "+")), spot.id))
         head = _node(composer, case.id, node)
         rows.append(
             sheet.row(
                 (name(node), Soft((", less the loss in ", name(pipe)))),
                 (losses[0][0],),
                 (losses[1][0],),
-                (composer.number(head, HEAD),),
+                (composer.number(head, form),),
                 (Cite((losses[0][1], losses[1][1], head.id)),),
             )
         )
@@ -215,7 +213,8 @@ def _opinion(sheet: Sheet, case: CaseAccount) -> None:
         if allowed is None:
             continue
         within = spot.value <= allowed.value
-        residual = flow_form(composer.flow_unit, FULL, residual=True) if spot.column.kind is FLOW else HEAD_RESIDUAL
+        flowing = spot.column.kind is FLOW
+        residual = composer.form("flow" if flowing else "head", FULL if flowing else FINE, residual=True)
         unit = residual.unit
         verdict: Parts = ("agrees",) if within else (Strong(("differs",), bar=True),)
         rows.append(
@@ -248,8 +247,8 @@ def _opinions(sheet: Sheet, case: CaseAccount) -> None:
     rows = []
     for pipe in names:
         spots = [ledger.spot(f"pipes.{pipe}.{q}@{case.id}") for q in ("flow", "second_flow", "second_flow_difference")]
-        form = flow_form(unit, FULL)
+        form = composer.form("flow", FULL)
         cells: list[Parts] = [(composer.number(spot, form),) for spot in spots[:2]]
-        cells.append((composer.number(spots[2], flow_form(unit, FULL, residual=True)),))
+        cells.append((composer.number(spots[2], composer.form("flow", FULL, residual=True)),))
         rows.append(sheet.row((name(pipe),), *cells, refs=[spot.id for spot in spots[1:]]))
     sheet.table(f"opinions-{case.id}", columns, rows)

@@ -99,7 +99,7 @@ def schematic(composer: Composer, case: CaseAccount, solved: list[CaseAccount]) 
         return f"{number.text} {number.form.unit}".strip()
 
     reservoirs = tuple(
-        figures.Reservoir(r, ledger.spot(id_).value, text(id_))
+        figures.Reservoir(r, composer.display.shown(ledger.spot(id_).value, "elevation"), text(id_))
         for r in project.reservoirs
         for id_ in [f"reservoirs.{r}.level@{case.id}"]
     )
@@ -108,9 +108,9 @@ def schematic(composer: Composer, case: CaseAccount, solved: list[CaseAccount]) 
     largest = max((abs(float(q)) for q in flows[case.id].values()), default=0.0)
     pipes = tuple(_pipe(composer, case, pipe, flows, solved, largest, text) for pipe in case.network.pipes.rows)
     datum = project.header.text("datum")
-    return figures.Schematic(
-        f"{project.header.text('title')}, case {case.id}", reservoirs, junctions, pipes, "m", "m", datum
-    )
+    title = f"{project.header.text('title')}, case {case.id}"
+    units = composer.unit("elevation"), composer.unit("length")
+    return figures.Schematic(title, reservoirs, junctions, pipes, *units, datum)
 
 
 def _junction(composer: Composer, case: str, junction: str, text: Callable[[str], str]) -> figures.Junction:
@@ -123,9 +123,9 @@ def _junction(composer: Composer, case: str, junction: str, text: Callable[[str]
     number = composer.turned(f"junctions.{junction}.withdrawal@{case}", "size") if withdrawal else None
     return figures.Junction(
         junction,
-        ledger.spot(head).value,
+        composer.display.shown(ledger.spot(head).value, "elevation"),
         text(head),
-        ledger.spot(elevation).value if stated else None,
+        composer.display.shown(ledger.spot(elevation).value, "elevation") if stated else None,
         text(elevation) if stated else "",
         f"{number.text} {number.form.unit}" if number else "",
         inflow=withdrawal < 0,
@@ -153,8 +153,8 @@ def _pipe(  # noqa: PLR0917 - what one drawing of a pipe rests on
         record.text("to"),
         shown,
         f"{number.text} {number.form.unit}",
-        float(case.network.pipes.length[row]),
-        float(case.network.pipes.bore[row]) * 1000,
+        composer.display.shown(float(case.network.pipes.length[row]), "length"),
+        composer.display.shown(float(case.network.pipes.bore[row]), "bore"),
         f"{text(f'pipes.{pipe}.length@{case.id}')}, {text(f'pipes.{pipe}.bore@{case.id}')}",
         "",
         other,

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from calc.account import MOST_BRANCHES, CaseAccount
@@ -9,6 +11,7 @@ from calc.kinds import FLOW
 from calc.ledger import Ledger, Spot
 from calc.report import figures
 from calc.report.composer import NOTHING, Composer, Sheet, column, figure_column, name
+from calc.report.display import FINE, FULL
 from calc.report.document import (
     Figure,
     Heading,
@@ -22,11 +25,9 @@ from calc.report.document import (
     Strong,
     TableColumn,
 )
-from calc.report.formats import FULL, RESIDUAL, flow_form
 from calc.report.numbers import Format, raised
 from calc.solve import Steps, Trials
 from calc.solve.branch import Branches
-from calc.units import factor
 
 ABREAST = 6
 """Branches whose flows fit beside the trial heads; more have tables of their own."""
@@ -53,12 +54,12 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     junction = case.network.nodes[trials.junction]
     branches = [case.network.pipes.rows[k] for k in trials.branches.tolist()]
     shown = branches if len(branches) <= ABREAST else []
-    flow = sheet.composer.flow_unit
+    flow, head = sheet.composer.unit("flow"), sheet.composer.unit("head")
     columns: list[TableColumn] = [
         column("trial", 10),
-        figure_column("low end", "m", 15, edge=True),
-        figure_column("high end", "m", 15),
-        figure_column("head", "m", 18, edge=True),
+        figure_column("low end", head, 15, edge=True),
+        figure_column("high end", head, 15),
+        figure_column("head", head, 18, edge=True),
     ]
     for k, branch in enumerate(shown):
         columns.append(TableColumn((name(branch),), unit=flow, align="right", width=14, edge=k == 0, role="value"))
@@ -84,14 +85,13 @@ def _flow_table(sheet: Sheet, case: CaseAccount, trials: Trials, branches: list[
     rows = []
     for t in range(len(trials.head)):
         spots = [_trial(ledger, "pipes.flow_toward", case.id, branch, t) for branch in branches]
-        cells: list[Parts] = [(sheet.composer.number(spot, flow_form(flow)),) for spot in spots]
+        cells: list[Parts] = [(sheet.composer.number(spot, sheet.composer.form("flow")),) for spot in spots]
         rows.append(sheet.row((Own(str(t + 1), "id"),), *cells, refs=[spot.id for spot in spots]))
     sheet.table(f"flows-{case.id}", columns, rows)
 
 
-HEAD_FORM = Format("m", decimals=5)
-END_FORM = Format("m", decimals=3)
-"""Ends of a bracket are earlier trial heads, printed in full on their own rows."""
+TRIAL = 2
+"""Decimals more than in the tables, of trial heads; ends of a bracket are earlier ones, in full on their own rows."""
 
 
 def _trial_row(  # noqa: PLR0917
@@ -100,13 +100,13 @@ def _trial_row(  # noqa: PLR0917
     composer, ledger = sheet.composer, sheet.composer.ledger
     head = _trial(ledger, "junctions.head", case.id, junction, t)
     imbalance = _trial(ledger, "junctions.imbalance", case.id, junction, t)
-    flow = flow_form(composer.flow_unit)
+    flow = composer.form("flow")
     cells: list[Parts] = [(Own(str(t + 1), "id"),)]
     for ends in (trials.low_end, trials.high_end):
         at = np.flatnonzero(trials.head[:t] == ends[t])
         spot = _trial(ledger, "junctions.head", case.id, junction, int(at[0])) if len(at) else None
-        cells.append((composer.number(spot, END_FORM),) if spot else (NOTHING,))
-    cells.append((composer.number(head, HEAD_FORM),))
+        cells.append((composer.number(spot, composer.form("head")),) if spot else (NOTHING,))
+    cells.append((composer.number(head, composer.form("head", TRIAL)),))
     refs = [head.id]
     for branch in shown:
         spot = _trial(ledger, "pipes.flow_toward", case.id, branch, t)
@@ -133,7 +133,8 @@ def _chosen(sheet: Sheet, case: CaseAccount, trials: Trials, t: int) -> Parts:
     junction = case.network.nodes[trials.junction]
     steps = [c for c in sheet.composer.ledger.find("junctions.step", case.id, junction) if str(t + 1) in c.index]
     for step in steps:
-        number = sheet.composer.number(Spot(step, 0), Format("m", significant=3), with_unit=True)
+        form = Format(sheet.composer.unit("head"), significant=3)
+        number = sheet.composer.number(Spot(step, 0), form, with_unit=True)
         said = (*said, ", ", Letter("s"), " = ", number)
     return (*said, *accepted)
 
@@ -154,7 +155,7 @@ def _stopping(sheet: Sheet, case: CaseAccount) -> None:
             continue
         spot = composer.ledger.spot(f"solver.test_{k + 1}@{case.id}")
         limit = composer.ledger.spot(f"solver.test_{k + 1}_limit@{case.id}")
-        unit = composer.flow_unit if test.unit == "m³/s" else test.unit
+        unit = {"m³/s": composer.unit("flow"), "m": composer.unit("head")}.get(test.unit, test.unit)
         form = Format(unit, significant=3)
         rows.append(
             sheet.row(
@@ -177,7 +178,7 @@ def _trial_figures(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     composer, ledger = sheet.composer, sheet.composer.ledger
     junction = case.network.nodes[trials.junction]
     unit = composer.flow_unit
-    scale = _scale(composer)
+    display = composer.display
     imbalance: list[Spot | None] = [
         _trial(ledger, "junctions.imbalance", case.id, junction, t) for t in range(len(trials.head))
     ]
@@ -188,16 +189,16 @@ def _trial_figures(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
         figures.Panel(
             "imbalance",
             unit,
-            tuple(float(v) * scale for v in trials.imbalance),
+            tuple(display.shown(float(v), "flow") for v in trials.imbalance),
             _texts(composer, imbalance, Format(unit, significant=3)),
-            None if tolerance is None else tolerance * scale,
+            None if tolerance is None else display.shown(tolerance, "flow"),
             "" if tolerance is None else _limit_text(composer, case, limit),
             signed=True,
         ),
         figures.Panel(
             "width of bracket",
-            "m",
-            tuple(None if np.isnan(w) else float(w) for w in width),
+            composer.unit("head"),
+            tuple(None if np.isnan(w) else display.shown(float(w), "head") for w in width),
             tuple("" for _ in width),
         ),
     ]
@@ -223,12 +224,8 @@ def _limit_text(composer: Composer, case: CaseAccount, form: Format) -> str:
     return f"{raised(number.text)} {form.unit}"
 
 
-def _scale(composer: Composer) -> float:
-    return factor(composer.flow_unit, FLOW)
-
-
 def _balance_figure(composer: Composer, case: CaseAccount, trials: Trials) -> Figure:
-    network, scale = case.network, _scale(composer)
+    network, display = case.network, composer.display
     junction = network.nodes[trials.junction]
     levels = network.level[~np.isnan(network.level)]
     accepted = float(case.solution.head[trials.junction])
@@ -244,23 +241,23 @@ def _balance_figure(composer: Composer, case: CaseAccount, trials: Trials) -> Fi
         flow = branches.flows(at[ends[:, 0]] - at[ends[:, 1]])
         toward = np.where(network.end == trials.junction, flow, -flow)
         curves.append(np.where(network.open, toward, 0.0)[trials.branches])
-    table = np.array(curves) * scale
-    sums = table.sum(axis=1) - float(network.withdrawal[trials.junction]) * scale
+    table = np.array(curves)
+    sums = table.sum(axis=1) - float(network.withdrawal[trials.junction])
     held = tuple(
         figures.BalanceBranch(
             network.pipes.rows[k],
-            tuple(table[:, j].tolist()),
-            float(trials.flows[trials.accepted, j]) * scale,
+            tuple(display.shown(flow, "flow") for flow in table[:, j].tolist()),
+            display.shown(float(trials.flows[trials.accepted, j]), "flow"),
         )
         for j, k in enumerate(trials.branches.tolist())
     )
     points = tuple(
         figures.Trial(
             t + 1,
-            float(trials.head[t]),
-            float(trials.imbalance[t]) * scale,
-            _known(trials.low_end[t]),
-            _known(trials.high_end[t]),
+            display.shown(float(trials.head[t]), "head"),
+            display.shown(float(trials.imbalance[t]), "flow"),
+            _known(display.shown(trials.low_end[t], "head")),
+            _known(display.shown(trials.high_end[t], "head")),
         )
         for t in range(len(trials.head))
     )
@@ -268,14 +265,14 @@ def _balance_figure(composer: Composer, case: CaseAccount, trials: Trials) -> Fi
     drawing = figures.Balance(
         f"Balance at {junction}, case {case.id}",
         junction,
-        tuple(heads.tolist()),
+        tuple(display.shown(head, "head") for head in heads.tolist()),
         held,
-        tuple(sums.tolist()),
+        tuple(display.shown(flow, "flow") for flow in sums.tolist()),
         points,
-        accepted,
-        f"{number.text} m",
-        composer.flow_unit,
-        "m",
+        display.shown(accepted, "head"),
+        f"{number.text} {number.form.unit}",
+        composer.unit("flow"),
+        composer.unit("head"),
         composer.account.project.header.text("datum"),
     )
     caption: Parts = (
@@ -294,17 +291,18 @@ def _known(value: float) -> float | None:
 
 def _step_table(sheet: Sheet, case: CaseAccount, steps: Steps) -> None:
     composer, network = sheet.composer, case.network
-    flow = composer.flow_unit
+    flow, head = composer.unit("flow"), composer.unit("head")
     junctions = [network.nodes[k] for k in network.unknown.tolist()]
     shown = junctions if steps.head is not None and len(junctions) <= MOST_HEADS else []
     columns: list[TableColumn] = [column("iteration", 14)]
     columns += [
-        TableColumn(("head ", name(j)), unit="m", align="right", edge=k == 0, role="value") for k, j in enumerate(shown)
+        TableColumn(("head ", name(junction)), unit=head, align="right", edge=k == 0, role="value")
+        for k, junction in enumerate(shown)
     ]
     columns += [
         figure_column("largest imbalance", flow, 26, edge=True),
         column("at", None if not shown else 24),
-        figure_column("largest closing error", "m", 26, edge=True),
+        figure_column("largest closing error", head, 26, edge=True),
         column("at", None if not shown else 24),
         figure_column("largest change", flow, 24, edge=True),
     ]
@@ -324,11 +322,11 @@ def _step_row(sheet: Sheet, case: CaseAccount, steps: Steps, k: int, shown: list
             return None
         spot = Spot(columns[0], columns[0].index[label])
         refs.append(spot.id)
-        flow = spot.column.kind is FLOW
-        unit = composer.flow_unit if flow else spot.column.kind.unit
-        bound = flow_form(unit, FULL, residual=True).bound if flow else RESIDUAL
-        form = HEAD_FORM if column_name == "junctions.head" else Format(unit, significant=4, bound=bound)
-        return composer.number(spot, form)
+        if column_name == "junctions.head":
+            return composer.number(spot, composer.form("head", TRIAL))
+        flowing = spot.column.kind is FLOW
+        fine = composer.form("flow" if flowing else "head", FULL if flowing else FINE, residual=True)
+        return composer.number(spot, replace(fine, decimals=None, significant=4))
 
     def told(number: Number | None) -> Parts:
         return (number,) if number else (NOTHING,)
@@ -347,21 +345,21 @@ def _step_row(sheet: Sheet, case: CaseAccount, steps: Steps, k: int, shown: list
 
 def _step_figure(sheet: Sheet, case: CaseAccount, steps: Steps) -> None:
     composer = sheet.composer
-    unit, scale = composer.flow_unit, _scale(composer)
+    unit, display = composer.unit("flow"), composer.display
     limits = {test.unit: test.limit for test in case.solution.tests}
     panels = (
         figures.Panel(
             "largest imbalance",
             unit,
-            tuple(_sized(v * scale) for v in steps.imbalance),
+            tuple(_sized(display.shown(v, "flow")) for v in steps.imbalance),
             tuple("" for _ in steps.imbalance),
-            limits["m³/s"] * scale if "m³/s" in limits else None,
+            display.shown(limits["m³/s"], "flow") if "m³/s" in limits else None,
             _limit_text(composer, case, Format(unit, significant=1)) if "m³/s" in limits else "",
         ),
         figures.Panel(
             "largest closing error",
-            "m",
-            tuple(_sized(v) for v in steps.energy_error),
+            composer.unit("head"),
+            tuple(_sized(display.shown(v, "head")) for v in steps.energy_error),
             tuple("" for _ in steps.energy_error),
         ),
     )

@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from calc.account import CaseAccount, CriterionVerdict
 from calc.report.composer import Composer, Sheet, column, figure_column, name
+from calc.report.display import BRIEF
 from calc.report.document import (
     Cite,
     Masthead,
@@ -21,8 +24,6 @@ from calc.report.document import (
     Table,
     TableColumn,
 )
-from calc.report.formats import BRIEF, flow_form
-from calc.report.numbers import Format
 
 STATUS = {
     "checking": "Issued for checking – preliminary, not for construction",
@@ -137,7 +138,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
         )
     value = composer.number(governing.value)
     limit = composer.number(governing.limit, value.form)
-    margin = composer.number(judged.least_margin, Format(value.form.unit, value.form.decimals, sign="+"))
+    margin = composer.number(judged.least_margin, replace(value.form, sign="+"))
     sense = "≤ " if judged.criterion.sense == "at most" else "≥ "
     verdict: Part = "met" if judged.met else Strong(("not met",), bar=True)
 
@@ -189,7 +190,7 @@ def _pipe(sheet: Sheet, cases: list[CaseAccount], pipe: str) -> Row:
             continue
         to = record.text("to") if spot.value > 0 else record.text("from")
         words: Parts = ("to ", name(to)) if spot.value else ("at rest",)
-        form = flow_form(sheet.composer.flow_unit, BRIEF, "size")
+        form = sheet.composer.form("flow", BRIEF, "size")
         cells += [(Soft(words),), (sheet.composer.number(spot, form),)]
     return sheet.row(*cells)
 
@@ -199,16 +200,16 @@ def _reservoir(sheet: Sheet, cases: list[CaseAccount], reservoir: str) -> Row:
     for case in cases:
         spot = sheet.composer.ledger.spot(f"reservoirs.{reservoir}.outflow@{case.id}")
         words = "gives" if spot.value > 0 else "takes" if spot.value < 0 else "at rest"
-        form = flow_form(sheet.composer.flow_unit, BRIEF, "size")
+        form = sheet.composer.form("flow", BRIEF, "size")
         cells += [(Soft((words,)),), (sheet.composer.number(spot, form),)]
     return sheet.row(*cells)
 
 
 def _head(sheet: Sheet, cases: list[CaseAccount], junction: str) -> Row:
-    cells: list[Parts] = [("Head at ", name(junction), ", m")]
+    cells: list[Parts] = [("Head at ", name(junction), f", {sheet.composer.unit('head')}")]
     for case in cases:
         spot = sheet.composer.ledger.spot(f"junctions.{junction}.head@{case.id}")
-        cells += [("",), (sheet.composer.number(spot, Format("m", decimals=2)),)]
+        cells += [("",), (sheet.composer.number(spot, sheet.composer.form("head", BRIEF)),)]
     return sheet.row(*cells)
 
 

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from calc.account import TITLES, CriterionVerdict, Verdict
 from calc.report.composer import FROM, Composer, Sheet, column, figure_column, inputs_of, name, place
 from calc.report.derivation import COLUMNS, lines
 from calc.report.document import Cite, Heading, Own, Paragraph, Parts, Quoted, Row, Soft, Strong
-from calc.report.numbers import Format
 
 MOST_VERDICTS = 40
 """Verdicts of one criterion that are printed, those with the least margin first."""
@@ -53,7 +54,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
     for one in sorted(judged.verdicts, key=lambda v: v.margin.value)[:MOST_VERDICTS]:
         value = composer.number(one.value)
         limit = composer.number(one.limit, value.form)
-        margin = composer.number(one.margin, Format(value.form.unit, value.form.decimals, sign="+"))
+        margin = composer.number(one.margin, replace(value.form, sign="+"))
         told: Parts = ("met",) if one.met else (Strong(("not met",), bar=True),)
         rows.append(
             sheet.row(

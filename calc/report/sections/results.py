@@ -113,29 +113,29 @@ def add_tables(sheet: Sheet, case: CaseAccount) -> None:
 
 def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     composer = sheet.composer
-    names = shown_pipes(case)
+    names, head, flow = shown_pipes(case), composer.unit("head"), composer.unit("flow")
     sheet.add(Heading(("Pipes: heads and flows",)))
     columns = (
         column("pipe", role="statement"),
         column("from", 24, edge=True),
-        figure_column("head", "m", 16.5),
+        figure_column("head", head, 16.5),
         column("to", 24, edge=True),
-        figure_column("head", "m", 16.5),
-        figure_column("loss", "m", 16, edge=True),
+        figure_column("head", head, 16.5),
+        figure_column("loss", head, 16, edge=True),
         TableColumn(("gradient, one in",), align="right", width=19, role="value"),
-        figure_column("flow", composer.flow_unit, 16.5, edge=True),
+        figure_column("flow", flow, 16.5, edge=True),
     )
     sheet.table(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
     sheet.add(Heading(("Pipes: velocities and losses",)))
     columns = (
         column("pipe", role="statement"),
-        figure_column("velocity", "m/s", 19.5, edge=True),
+        figure_column("velocity", composer.unit("velocity"), 19.5, edge=True),
         figure_column("Reynolds", width=20),
         figure_column("Darcy f", width=16),
-        figure_column("friction", "m", 19.5, edge=True),
-        figure_column("fittings", "m", 19.5),
+        figure_column("friction", head, 19.5, edge=True),
+        figure_column("fittings", head, 19.5),
         figure_column("share of fittings", "%", 19.5),
-        figure_column("loss", "m", 16),
+        figure_column("loss", head, 16),
     )
     sheet.table(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
     said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
@@ -165,7 +165,7 @@ def _pipe_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
     cells: list[Parts] = [(name(pipe),)]
     for end in ("from", "to"):
         node = record.text(end)
-        cells += [(name(node),), (composer.number(_node_head(composer, case.id, node), Format("m", decimals=3)),)]
+        cells += [(name(node),), (composer.number(_node_head(composer, case.id, node), composer.form("head")),)]
     return _told(sheet, case, pipe, cells, ("head_loss", "one_in", "flow"))
 
 
@@ -194,8 +194,8 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
         column("fitting or end", role="statement"),
         figure_column("count", width=15.5, edge=True),
         figure_column("K in use", width=20),
-        figure_column("velocity", "m/s", 20, edge=True),
-        figure_column("loss", "m", 20),
+        figure_column("velocity", composer.unit("velocity"), 20, edge=True),
+        figure_column("loss", composer.unit("head"), 20),
         TableColumn(("from",), width=30, edge=True, role="from"),
     )
     rows = []
@@ -215,7 +215,7 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
         cells.append((composer.number(by_name["coefficient"], coefficient),))
         cells += [
             (composer.number(by_name["velocity"]),),
-            (composer.number(by_name["loss"], Format("m", decimals=4)),),
+            (composer.number(by_name["loss"], composer.form("head", 1)),),
         ]
         cells.append((cited(ledger, held[1:2]),))
         rows.append(sheet.row(*cells, refs=[spot.id for spot in held]))
@@ -237,13 +237,14 @@ def kind_of_fitting(composer: Composer, fitting: str) -> str:
 
 def _nodes(sheet: Sheet, case: CaseAccount) -> None:
     composer, ledger = sheet.composer, sheet.composer.ledger
+    head = composer.unit("head")
     columns = (
         column("junction", role="statement"),
-        figure_column("head", "m", 24, edge=True),
-        figure_column("elevation", "m", 24),
-        figure_column("pressure head", "m", 26, edge=True),
-        figure_column("pressure", "kPa", 24),
-        figure_column("largest velocity head", "m", 28, edge=True),
+        figure_column("head", head, 24, edge=True),
+        figure_column("elevation", composer.unit("elevation"), 24),
+        figure_column("pressure head", head, 26, edge=True),
+        figure_column("pressure", composer.unit("pressure"), 24),
+        figure_column("largest velocity head", head, 28, edge=True),
     )
     rows = []
     negative = False
