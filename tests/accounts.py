@@ -76,8 +76,14 @@ class Draft:
         if random.random() < 0.5:
             start, end = end, start
         parts = [f"from: {start}, to: {end}, length: {self.between(100, 4000)} m", f"bore: {self.between(4, 20)} inch"]
-        if random.random() < 0.2:
-            parts.append(f"law: fixed, friction_factor: {self.between(0.012, 0.03)}")
+        if random.random() < 0.4:
+            laws = {
+                "fixed": f"friction_factor: {self.between(0.012, 0.03)}",
+                "hazen-williams": f"hazen_williams_c: {self.between(60, 150)}",
+                "manning": f"manning_n: {self.between(0.009, 0.02)}",
+            }
+            law = str(random.choice(list(laws)))
+            parts.append(f"law: {law}, {laws[law]}")
         else:
             parts.append(f"roughness: {self.between(0.01, 1.5)} mm")
         if random.random() < 0.5:
@@ -94,7 +100,8 @@ class Draft:
         pond, factor = self.random.choice(self.reservoirs), self.between(0.3, 2)
         return [
             "cases:",
-            f'  low: {{with: {{reservoirs.{pond}.level: {self.between(50, 100)} m}}, times: {{"pipes.*.bore": 0.9}}}}',
+            f"  low: {{with: {{reservoirs.{pond}.level: {self.between(50, 100)} m}},",
+            '        times: {"pipes.*.bore": 0.9, "pipes.*.hazen_williams_c": 0.8}}',
             "  peak:",
             "    after: low",
             "    with: {fluid.temperature: 25 degC}",

@@ -14,6 +14,7 @@ import pytest
 
 from calc.second import Works
 from calc.second.friction import TURBULENT, Pipes, colebrook_white, head_loss, prepare
+from calc.second.works import LAWS
 
 Build = Callable[..., Works]
 # Darcy f to 25 digits; each row is held to the equation below before it is used.
@@ -119,7 +120,29 @@ def test_fittings_know_the_direction_and_parallel_pipes_share(build: Build) -> N
         assert head_loss(three, np.array([sign * 0.06]))[0][0] == pytest.approx(expected, rel=1e-13)
 
 
-@pytest.mark.parametrize("law", [*sorted(TURBULENT), "fixed"])
+@pytest.mark.parametrize("reynolds", [0.1, 1000.0, 3000.0, 1e6])
+def test_empirical_laws_are_as_stated_at_every_reynolds_number(build: Build, reynolds: float) -> None:
+    # h = 10.67 L Q^1.852 / (C^1.852 D^4.8704) and h = 10.2936 n² L Q² / D^(16/3), 30 digits
+    flow = flow_at(reynolds, 0.04)
+    with mpmath.workdps(30):
+        q, bore = mpmath.mpf(flow), mpmath.mpf("0.04")
+        exponent, narrowing = mpmath.mpf("1.852"), mpmath.mpf("4.8704")
+        expected = {
+            "hazen-williams": mpmath.mpf("10.67") * 50 * (q / 120) ** exponent / bore**narrowing,
+            "manning": mpmath.mpf(4) ** (mpmath.mpf(10) / 3)
+            / mpmath.pi**2
+            * mpmath.mpf("0.012") ** 2
+            * 50
+            * q**2
+            / bore ** (mpmath.mpf(16) / 3),
+        }
+    for law, value in expected.items():
+        pipes = one_pipe(build, length=50.0, bore=0.04, law=law, hazen_williams_c=120.0, manning_n=0.012)
+        for sign in (1.0, -1.0):
+            assert head_loss(pipes, np.array([sign * flow]))[0][0] == pytest.approx(sign * float(value), rel=1e-13)
+
+
+@pytest.mark.parametrize("law", LAWS)
 @pytest.mark.parametrize("reynolds", [300.0, 2500.0, 3900.0, 5000.0, 1e5, 1e8])
 @pytest.mark.parametrize("sign", [1.0, -1.0])
 def test_the_slope_is_that_of_the_loss(build: Build, law: str, reynolds: float, sign: float) -> None:
@@ -129,6 +152,8 @@ def test_the_slope_is_that_of_the_loss(build: Build, law: str, reynolds: float, 
         bore=0.25,
         roughness=3e-4,
         factor=0.02,
+        hazen_williams_c=110.0,
+        manning_n=0.013,
         law=law,
         loss_forward=60.0,
         loss_reverse=85.0,
@@ -142,7 +167,8 @@ def test_the_slope_is_that_of_the_loss(build: Build, law: str, reynolds: float, 
 
 
 def test_nothing_is_lost_at_rest(build: Build) -> None:
-    for pipe in ({"roughness": 1e-4}, {"factor": 0.02}):
+    raised = [{"law": "hazen-williams", "hazen_williams_c": 120.0}, {"law": "manning", "manning_n": 0.012}]
+    for pipe in ({"roughness": 1e-4}, {"factor": 0.02}, *raised):
         loss, slope = head_loss(one_pipe(build, **pipe), np.array([0.0]))
         assert loss[0] == 0.0
         assert slope[0] >= 0.0

@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 from solve_cases import Pipe, network, random_pipe
 
+from calc.physics.friction import LAW_NAMES
 from calc.solve.branch import Branches
 
 G, NU = 9.81, 1.0e-6
@@ -72,9 +73,22 @@ def test_many_pipes_at_once_lose_what_is_asked(seed: int) -> None:
     assert np.all(slope > 0)
 
 
-@pytest.mark.parametrize("law", ["colebrook-white", "swamee-jain", "haaland", "fixed"])
+@pytest.mark.parametrize("difference", [-80.0, 1e-12, 1e-3, 0.4, 1e6])
+def test_empirical_laws_against_their_closed_forms(difference: float) -> None:
+    # Hazen–Williams and Manning solved for Q by hand
+    size = abs(difference) / 730.0
+    flow = (size * 120.0**1.852 * 0.25**4.8704 / 10.67) ** (1 / 1.852)
+    found = flow_of(Pipe("a", "b", 730.0, 0.25, hazen_williams_c=120.0), difference)
+    assert found == pytest.approx(np.sign(difference) * flow, rel=1e-14)
+    flow = 2 * np.sqrt(size * np.pi**2 / 4 ** (10 / 3) / 0.012**2 * 0.25 ** (16 / 3))
+    found = flow_of(Pipe("a", "b", 730.0, 0.25, parallel=2, manning_n=0.012), difference)
+    assert found == pytest.approx(np.sign(difference) * flow, rel=1e-14)
+
+
+@pytest.mark.parametrize("law", LAW_NAMES)
 def test_head_lost_rises_with_flow_through_every_regime(law: str) -> None:
-    given = {"factor": 0.03} if law == "fixed" else {"roughness": 3e-4}
+    stated = {"fixed": {"factor": 0.03}, "hazen-williams": {"hazen_williams_c": 110.0}, "manning": {"manning_n": 0.013}}
+    given = stated.get(law, {"roughness": 3e-4})
     branches = Branches(network({"a": 0.0, "b": 0.0}, {}, [Pipe("a", "b", 100.0, 0.1, law=law, **given)] * 2000))
     asked = np.geomspace(1e-8, 1e3, 2000)
     assert np.all(np.diff(branches.flows(asked)) > 0)

@@ -55,6 +55,42 @@ def test_with_fixed_factors_fourfold_heads_double_the_flows(seed: int) -> None:
 
 
 @pytest.mark.parametrize("seed", SEEDS)
+@pytest.mark.parametrize(("law", "power"), [("hazen-williams", 1.852), ("manning", 2.0)])
+def test_with_a_power_of_the_flow_heads_scale_by_that_power(law: str, power: float, seed: int) -> None:
+    levels, withdrawals, pipes = random_net(np.random.default_rng(seed), law)
+    pipes = [replace(pipe, fittings=()) for pipe in pipes]  # what fittings lose goes with the square
+    plain = solve(network(levels, withdrawals, pipes))
+    more = {k: 3**power * v for k, v in levels.items()}
+    found = solve(network(more, {k: 3 * v for k, v in withdrawals.items()}, pipes))
+    assert found.flow == pytest.approx(3 * plain.flow, abs=3e-10)
+    assert found.head == pytest.approx(3**power * plain.head, abs=1e-7, rel=1e-9)
+
+
+@pytest.mark.parametrize("seed", SEEDS)
+@pytest.mark.parametrize("law", ["hazen-williams", "manning"])
+def test_viscosity_and_gravity_change_nothing_in_empirical_laws(law: str, seed: int) -> None:
+    levels, withdrawals, pipes = random_net(np.random.default_rng(seed), law)
+    pipes = [replace(pipe, fittings=()) for pipe in pipes]
+    plain = solve(network(levels, withdrawals, pipes))
+    found = solve(network(levels, withdrawals, pipes, viscosity=1e-4, gravity=9.7))
+    assert found.flow == pytest.approx(plain.flow, abs=1e-10)
+    assert found.head == pytest.approx(plain.head, abs=1e-7)
+
+
+@pytest.mark.parametrize("seed", SEEDS)
+def test_a_coefficient_is_a_power_of_every_roughness(seed: int) -> None:
+    # k/C^1.852: a coefficient 2^1.852 times as large is C twice as large, and four times Manning's is half of n
+    rng = np.random.default_rng(seed)
+    levels, withdrawals, pipes = random_net(rng, str(rng.choice(["hazen-williams", "manning"])))
+    plain = solve(network(levels, withdrawals, pipes))
+    other = [replace(p, hazen_williams_c=2 * p.hazen_williams_c, manning_n=p.manning_n / 2) for p in pipes]
+    more = {"hazen_williams_coefficient": 2**1.852 * 10.67, "manning_coefficient": 4 ** (13 / 3) / np.pi**2}
+    found = solve(network(levels, withdrawals, other, **more))
+    assert found.flow == pytest.approx(plain.flow, abs=1e-10)
+    assert found.head == pytest.approx(plain.head, abs=1e-7)
+
+
+@pytest.mark.parametrize("seed", SEEDS)
 def test_lifting_the_datum_lifts_the_heads(seed: int) -> None:
     levels, withdrawals, pipes = random_net(np.random.default_rng(seed))
     plain = solve(network(levels, withdrawals, pipes))
