@@ -84,6 +84,7 @@ PRESSURE = Kind("pressure", "Pa", _dimension(-1, 1, -2), "350 kPa")
 TEMPERATURE = Kind("temperature", "K", _dimension(0, 0, 0, 1), "10 degC")
 TIME = Kind("time", "s", _dimension(0, 0, 1), "6 h")
 GRADIENT = Kind("gradient", "", _dimension(), "0.005")
+ANGLE = Kind("angle", "rad", _dimension(), "45 deg")
 RESISTANCE = Kind("resistance", "s²/m⁵", _dimension(-5, 0, 2), "850 s²/m⁵")
 
 KINDS: tuple[Kind, ...] = (
@@ -104,6 +105,7 @@ KINDS: tuple[Kind, ...] = (
     TEMPERATURE,
     TIME,
     GRADIENT,
+    ANGLE,
     RESISTANCE,
 )
 """Every kind; one line here is all that a new kind needs."""

@@ -12,6 +12,7 @@ FUNCTIONS: dict[str, Callable[[float], float]] = {
     "log10": math.log10,
     "ln": math.log,
     "exp": math.exp,
+    "sin": math.sin,
     "abs": abs,
 }
 

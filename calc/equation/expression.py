@@ -93,7 +93,7 @@ def linear(node: Expression, write: Callable[[str], str]) -> str:
     Returns
     -------
     str
-        Operators ``+ - * / ^``, functions sqrt, log10, ln, exp, abs, and ``pi``; amounts as their SI number.
+        Operators ``+ - * / ^``, functions sqrt, log10, ln, exp, sin, abs, and ``pi``; amounts as their SI number.
     """
     return _linear(node, write, 0)
 

@@ -26,6 +26,7 @@ OPERATIONS: dict[Any, str] = {
     np.log10: "log10",
     np.log: "ln",
     np.exp: "exp",
+    np.sin: "sin",
     np.absolute: "abs",
 }
 """The ufuncs that a body may use, and the names the readings know them by."""

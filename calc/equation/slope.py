@@ -56,6 +56,8 @@ def _function(operation: str, x: Any, dx: Any) -> Slope:  # noqa: ANN401
             return Slope(np.log10(x), dx / (x * np.log(10.0)))
         case "exp":
             return Slope(raised := np.exp(x), raised * dx)
+        case "sin":
+            return Slope(np.sin(x), np.cos(x) * dx)
         case _:
             raise EquationError(f"{operation} has no slope")
 

@@ -21,7 +21,7 @@ def exported(ledger: Ledger) -> dict[str, Any]:
     Every input of a derived value is ``{"column": k}`` (row for row), ``{"column": k, "row": r}`` (one number
     for all rows), ``{"column": k, "rows": [...]}`` (a row of one column for each), or ``{"columns": [...],
     "rows": [...]}`` (a pair for each row, null where not taken). Formulas name inputs as the ``inputs`` do,
-    with ``+ - * / ^``, ``pi`` and the functions abs, sqrt, ln, log10, exp.
+    with ``+ - * / ^``, ``pi`` and the functions abs, sqrt, ln, log10, exp, sin.
     """
     number = {id(column): k for k, column in enumerate(ledger.columns)}
     return {

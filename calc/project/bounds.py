@@ -19,6 +19,7 @@ COMPUTABLE: dict[str, tuple[float, float]] = {
     "dynamic viscosity": (1e-7, 1e5),
     "pressure": (-1e10, 1e10),
     "gradient": (-1e6, 1e6),
+    "angle": (-1e3, 1e3),
 }
 """By kind, in SI: far wider than any works, and narrow enough that no power of a value overflows."""
 

@@ -25,7 +25,7 @@ BLANK = 0.25
 THIN_BLANK = "\u2009"
 DIVISION = " / "
 GLUED = 0.6  # of the measure, what must be left after a factor for it to stay with the next
-FUNCTIONS = {"log10": ("log", "10"), "ln": ("ln", ""), "exp": ("exp", "")}
+FUNCTIONS = {"log10": ("log", "10"), "ln": ("ln", ""), "exp": ("exp", ""), "sin": ("sin", "")}
 
 
 @dataclass(frozen=True, slots=True)

@@ -31,6 +31,7 @@ class Unit(NamedTuple):
     factor: Fraction
     offset: Fraction
     dimension: Dimension
+    angle: bool = False
 
 
 class Flaw(NamedTuple):
@@ -127,10 +128,13 @@ def unit(text: str) -> Unit | Flaw:
         if len(powers) > 1 or powers[0].exponent != 1:
             return Flaw("ambiguous-unit", "uses a temperature scale within a product", "write 'K'")
         return Unit(_printed(powers), one.factor, one.offset, one.dimension)
+    angle = any(WORDS[power.name].angle for power in powers)
+    if angle and (len(powers) > 1 or powers[0].exponent != 1):
+        return Flaw("unknown-unit", "uses an angle within a product", "write the angle alone: 'deg' or 'rad'")
     factor, dimension = Fraction(1), Dimension()
     for power in powers:
         exponent = -power.exponent if power.divided else power.exponent
         one = worth(power.name)
         factor *= one.factor**exponent
         dimension = dimension.times(one.dimension.power(Fraction(exponent)))
-    return Unit(_printed(powers), factor, Fraction(0), dimension)
+    return Unit(_printed(powers), factor, Fraction(0), dimension, angle)

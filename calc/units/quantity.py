@@ -7,7 +7,7 @@ import re
 from fractions import Fraction
 from typing import NamedTuple, NoReturn
 
-from calc.kinds import Dimension, Kind
+from calc.kinds import ANGLE, Dimension, Kind
 from calc.units.grammar import Flaw, Unit, unit
 from calc.units.names import measured
 from calc.units.trouble import UnitTrouble, quoted
@@ -79,7 +79,7 @@ def read(text: str, kind: Kind) -> Quantity:
         found = unit(rest[gap.end() :])
         if isinstance(found, Flaw):
             raise UnitTrouble(found.code, f"{quoted(text)} {found.reason}", _expected(kind, match[0]), found.hint)
-        if found.dimension != kind.dimension:
+        if not _measures(found, kind):
             _refuse_dimension(text, kind, match[0], found)
     else:
         found = _NO_UNIT
@@ -146,7 +146,7 @@ def _refuse_text(text: str, kind: Kind) -> NoReturn:
 
 def _refuse_dimension(text: str, kind: Kind, number_text: str, found: Unit) -> NoReturn:
     """Raise for a quantity of another kind."""
-    name = measured(found.dimension)
+    name = _name(found)
     article = "an" if name[0] in "aeiou" else "a"
     raise UnitTrouble("wrong-dimension", f"{quoted(text)} is {article} {name}", _expected(kind, number_text))
 
@@ -168,7 +168,7 @@ def measures(text: str) -> str | None:
     match = _NUMBER.match(text)
     rest = text[match.end() :].lstrip(" ") if match else text
     found = unit(rest) if rest else None
-    return measured(found.dimension) if isinstance(found, Unit) else None
+    return _name(found) if isinstance(found, Unit) else None
 
 
 def factor(unit_text: str, kind: Kind) -> float:
@@ -227,10 +227,19 @@ def _of_kind(unit_text: str, kind: Kind) -> Unit:
     found = unit(unit_text) if unit_text else _NO_UNIT
     if isinstance(found, Flaw):
         raise UnitTrouble(found.code, f"{quoted(unit_text)} {found.reason}", _unit_of(kind), found.hint)
-    if found.dimension != kind.dimension:
-        reason = f"{quoted(unit_text)} is a unit of {measured(found.dimension)}"
+    if not _measures(found, kind):
+        reason = f"{quoted(unit_text)} is a unit of {_name(found)}"
         raise UnitTrouble("wrong-dimension", reason, _unit_of(kind))
     return found
+
+
+def _measures(found: Unit, kind: Kind) -> bool:
+    """Return whether a unit is one of a kind; an angle is a pure number, but none stands for the other."""
+    return found.dimension == kind.dimension and found.angle == (kind.name == ANGLE.name)
+
+
+def _name(found: Unit) -> str:
+    return ANGLE.name if found.angle else measured(found.dimension)
 
 
 def _unit_of(kind: Kind) -> str:

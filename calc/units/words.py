@@ -16,11 +16,14 @@ class Word(NamedTuple):
         Expression that the registry evaluates; ours, never the user's.
     offset : bool
         Whether the scale has a zero of its own; such a unit stands alone.
+    angle : bool
+        Whether it measures an angle, which is a pure number and yet never stands for one; it stands alone.
     """
 
     printed: str
     registry_name: str
     offset: bool = False
+    angle: bool = False
 
 
 def _words(rows: str) -> dict[str, Word]:
@@ -98,6 +101,9 @@ WORDS: dict[str, Word] = {
     "degC": Word("°C", "degC", offset=True),
     "°C": Word("°C", "degC", offset=True),
     "degF": Word("°F", "degF", offset=True),
+    "deg": Word("°", "degree", angle=True),
+    "°": Word("°", "degree", angle=True),
+    "rad": Word("rad", "radian", angle=True),
     "°F": Word("°F", "degF", offset=True),
 }
 """``gpm`` is the US gallon per minute, as common practice has it; all else is as pint defines it."""
@@ -148,5 +154,9 @@ INSTEAD: dict[str, str] = {
     "kpa": "kPa",
     "lbs": "lb",
     "sq": "m²",
+    "degree": "deg",
+    "degrees": "deg",
+    "radian": "rad",
+    "radians": "rad",
 }
 """Names in use that are not read, and the name to write."""

@@ -32,6 +32,7 @@ PLAUSIBLE = {
     "pressure": (1e4, 9e5),
     "temperature": (275.0, 370.0),
     "gradient": (1e-3, 1e-2),
+    "angle": (0.1, 0.7),
 }
 BY_LETTER = {
     "Re": (5e3, 5e6),

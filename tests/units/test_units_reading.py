@@ -110,6 +110,17 @@ def test_both_micro_signs_are_one() -> None:
             "a pure number, such as '2.5'",
             "",
         ),
+        ("45", kinds.ANGLE, "bare-number", "'45' has no unit", "an angle, such as '45 deg'", ""),
+        ("45 %", kinds.ANGLE, "wrong-dimension", "'45 %' is a pure number", "an angle, such as '45 deg'", ""),
+        ("2 deg", kinds.NUMBER, "wrong-dimension", "'2 deg' is an angle", "a pure number, such as '2'", ""),
+        (
+            "3 rad/s",
+            kinds.ANGLE,
+            "unknown-unit",
+            "'3 rad/s' uses an angle within a product",
+            "an angle, such as '45 deg'",
+            "write the angle alone: 'deg' or 'rad'",
+        ),
         ("no", kinds.TIME, "not-a-quantity", "'no' is not a quantity", "a time, such as '6 h'", ""),
         ("", kinds.TIME, "not-a-quantity", "nothing is written here", "a time, such as '6 h'", ""),
     ],
@@ -227,7 +238,7 @@ NUMBERS = st.floats(-1e9, 1e9, allow_nan=False)
 def test_the_value_is_the_float_nearest_the_exact_product(number: float, name: str) -> None:
     found = unit(name)
     assert isinstance(found, Unit)
-    kind = Kind("thing", "x", found.dimension, "1 x")
+    kind = kinds.ANGLE if found.angle else Kind("thing", "x", found.dimension, "1 x")
     quantity = read(f"{number!r} {name}", kind)
     assert quantity.number == number
     assert quantity.value == float(Fraction(repr(number)) * found.factor + found.offset)
