@@ -25,7 +25,7 @@ from calc.report.document import Document
 from calc.report.section import DISPLAY
 from calc.solve import Solution, solve
 from calc.solve.section import SOLVER, settings_of
-from calc.verification import enter_checks
+from calc.verification import enter_checks, in_use
 from calc.verification import run as verify
 
 SECTIONS = (SOLVER, DISPLAY)
@@ -96,7 +96,7 @@ def document(held: Account, purpose: str) -> Document:
     IntegrityError
         If this installation does not compute what is known to be right; then nothing may be issued.
     """
-    checks = verify()
+    checks = verify(in_use(held))
     if failing := [check.id for check in checks if not check.passed]:
         raise IntegrityError(f"this installation fails its verification: {', '.join(failing)}")
     if not held.ledger.find("verification.expected"):  # an account may be composed for several purposes

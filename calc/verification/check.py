@@ -18,6 +18,8 @@ class Check:
         ``case/quantity``: the row in the ledger.
     title, source, source_class : str
         Of the case.
+    concerns : tuple of str
+        What the case was run for, among `calc.verification.use.TITLES`; none when it is run for every issue.
     quantity : str
         The path of the value, such as ``pipes.highest-main.flow``.
     kind : Kind
@@ -36,6 +38,7 @@ class Check:
     title: str
     source: str
     source_class: str
+    concerns: tuple[str, ...]
     quantity: str
     kind: Kind
     stated: Stated

@@ -12,7 +12,7 @@ from calc.components import Basis, Stated
 from calc.kinds import DENSITY, FLOW, HEAD, KINEMATIC_VISCOSITY, NUMBER, PRESSURE, VELOCITY, Kind
 from calc.problems import ProblemsFound
 from calc.yamlfile import Mapping as MappingNode
-from calc.yamlfile import Node, Scalar, read_text
+from calc.yamlfile import Node, Scalar, Sequence, read_text
 
 PLACE = "calc/data/verification.yaml"
 
@@ -24,6 +24,10 @@ KINDS: dict[str, Kind] = {
     "flow": FLOW,
     "velocity": VELOCITY,
     "head": HEAD,
+    "pressure_head": HEAD,
+    "friction_loss": HEAD,
+    "fitting_loss": HEAD,
+    "head_loss": HEAD,
 }
 """Kinds of what may be expected, by the last word of its path."""
 
@@ -41,12 +45,13 @@ class Expected:
 
 @dataclass(frozen=True, slots=True)
 class Case:
-    """A case: inputs of a law in ``given``, or the name of a project folder in ``works``."""
+    """A case: inputs of a law in ``given``, or the name of a project folder in ``works``; what it ``concerns``."""
 
     id: str
     title: str
     source: str
     source_class: str
+    concerns: tuple[str, ...]
     works: str
     given: Mapping[str, str]
     expected: tuple[Expected, ...]
@@ -76,6 +81,7 @@ def _case(name: str, node: MappingNode) -> Case:
         _text(node, "title"),
         source,
         _text(node, "source_class"),
+        tuple(_scalar(item).text for item in _items(node.get("concerns"))),
         _text(node, "works") if node.get("works") is not None else "",
         {} if given is None else {e.key.text: _scalar(e.value).text for e in _mapping(given).entries},
         tuple(
@@ -107,6 +113,12 @@ def _scalar(node: Node | None) -> Scalar:
     if isinstance(node, Scalar):
         return node
     raise TypeError(f"{PLACE}: a text is missing")
+
+
+def _items(node: Node | None) -> tuple[Node, ...]:
+    if isinstance(node, Sequence):
+        return tuple(node.items)
+    raise TypeError(f"{PLACE}: a list is missing")
 
 
 def _mapping(node: Node | None) -> MappingNode:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
+from collections.abc import Collection, Mapping
 from importlib import resources
 from pathlib import Path
 
@@ -18,22 +18,34 @@ from calc.kinds import NUMBER, TEMPERATURE
 from calc.physics.friction import ROUGH_PIPE_LAWS
 from calc.project import BASE, network, read_project
 from calc.solve import solve
+from calc.solve.section import SOLVER, settings_of
 from calc.verification.check import Check
 from calc.verification.reading import Case, read_cases
 
 
-def run() -> tuple[Check, ...]:
-    """Return a check for each value of each shipped case, computed now.
+def run(used: Collection[str] | None = None) -> tuple[Check, ...]:
+    """Return a check for each value of the shipped cases that are asked for, computed now.
+
+    Parameters
+    ----------
+    used : collection of str, optional
+        What a project uses, from `calc.verification.in_use`: cases that concern any of it are run, and those
+        that concern no single law or method. Without it every case is run.
 
     Returns
     -------
     tuple of Check
         In the order of ``calc/data/verification.yaml``; one whose case has no solution did not pass.
     """
-    return tuple(check for case in read_cases() for check in _checks(case))
+    found: list[Check] = []
+    for case in read_cases():
+        concerns = tuple(word for word in case.concerns if used is None or word in used)
+        if concerns or not case.concerns:
+            found += _checks(case, concerns)
+    return tuple(found)
 
 
-def _checks(case: Case) -> list[Check]:
+def _checks(case: Case, concerns: tuple[str, ...]) -> list[Check]:
     got = _works(case.works) if case.works else _laws(case.given)
     return [
         Check(
@@ -41,6 +53,7 @@ def _checks(case: Case) -> list[Check]:
             case.title,
             case.source,
             case.source_class,
+            concerns,
             expected.quantity,
             expected.kind,
             expected.stated,
@@ -73,29 +86,33 @@ def _water(temperature: float) -> dict[str, float]:
 
 
 def _works(name: str) -> dict[str, float]:
-    """Return heads, flows and velocities of a shipped project folder; nothing when it has no solution."""
+    """Return the results of a shipped project folder; nothing when it has no solution."""
     with resources.as_file(resources.files("calc").joinpath("data", "verification", name)) as folder:
         return solve_folder(folder)
 
 
 def solve_folder(folder: Path) -> dict[str, float]:
-    """Return heads, flows and velocities of a project folder in its base case, by path; in SI.
+    """Return heads, flows, velocities and losses of a project folder in its base case, by path; in SI.
 
     Raises
     ------
     ProblemsFound
         If the inputs are wrong.
     """
-    project = read_project(folder, ())
+    project = read_project(folder, (SOLVER,))
     stated: LiquidTerms[Value] = liquid_terms(open_books(project), BASE).each(lambda view: view.values)
     works = network(project, BASE, float(value_of(liquid(ARRAYS, stated).viscosity)[0]))
-    solution = solve(works)
+    solution = solve(works, settings_of(project))
     if not solution.converged:
         return {}
     with np.errstate(all="ignore"):
         results = losses(ARRAYS, works.pipes, transition_limits(ARRAYS, works.pipes), solution.flow)
-    found = {f"junctions.{works.nodes[int(k)]}.head": float(solution.head[k]) for k in works.unknown}
-    for k, pipe in enumerate(works.pipes.rows):
-        found[f"pipes.{pipe}.flow"] = float(solution.flow[k])
-        found[f"pipes.{pipe}.velocity"] = float(value_of(results.velocity)[k])
-    return found
+    found: dict[str, float] = {}
+    for k in works.unknown.tolist():
+        name, head = works.nodes[k], float(solution.head[k])
+        found[f"junctions.{name}.head"] = head
+        found[f"junctions.{name}.pressure_head"] = head - project.junctions[name].number("elevation")
+    for quantity in ("velocity", "friction_loss", "fitting_loss", "head_loss"):
+        values = value_of(getattr(results, quantity))
+        found |= {f"pipes.{pipe}.{quantity}": float(values[k]) for k, pipe in enumerate(works.pipes.rows)}
+    return found | {f"pipes.{pipe}.flow": float(solution.flow[k]) for k, pipe in enumerate(works.pipes.rows)}

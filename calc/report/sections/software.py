@@ -6,9 +6,9 @@ from importlib import metadata
 
 import calc
 from calc.report.composer import Composer, Sheet, column, figure_column
-from calc.report.document import Heading, Own, Parts, Row, Soft, Strong
+from calc.report.document import Heading, Own, Paragraph, Parts, Row, Soft, Strong
 from calc.report.numbers import Format
-from calc.verification import Check
+from calc.verification import TITLES, Check
 
 LIBRARIES = ("numpy", "scipy", "pint", "PyYAML", "Jinja2", "weasyprint", "matplotlib", "pikepdf")
 
@@ -43,6 +43,7 @@ def _verification(sheet: Sheet) -> None:
     if not composer.checks:
         return
     sheet.add(Heading(("Verification run for this issue",)))
+    sheet.add(Paragraph((_why(composer.checks),)))
     columns = (
         column("case and quantity", role="statement"),
         figure_column("expected", width=24, edge=True),
@@ -56,15 +57,31 @@ def _verification(sheet: Sheet) -> None:
     standing = ""
     for check in composer.checks:
         if check.title != standing:
-            source = Soft((" – ", Own(check.source, "source"), "; ", check.source_class.replace("-", " ")))
+            words = f"{check.source_class.replace('-', ' ')}; run for {_titles(check.concerns) or 'every issue'}"
+            source = Soft((" – ", Own(check.source, "source"), "; ", words))
             rows.append(sheet.group(Own(check.title, "source"), source))
         standing = check.title
         rows.append(_check(sheet, check))
     sheet.table("verification", columns, rows, tick=False)
 
 
+def _titles(concerns: tuple[str, ...]) -> str:
+    return ", ".join(TITLES[word] for word in concerns)
+
+
+def _why(checks: tuple[Check, ...]) -> str:
+    """Return the sentence that says which of the shipped cases were run, and why these."""
+    held = {word for check in checks for word in check.concerns}
+    titles = _titles(tuple(word for word in TITLES if word in held))
+    return (
+        "Of the cases that ship with the program, those that concern what this calculation uses were run again, by "
+        f"the same reader, laws and solvers: {titles}. A value outside the difference allowed would have stopped "
+        "this issue."
+    )
+
+
 def _check(sheet: Sheet, check: Check) -> Row:
-    ledger, unit = sheet.composer.ledger, check.kind.unit
+    ledger, unit = sheet.composer.ledger, check.stated.unit  # as published, so that the figure is known again
     spots = {q: ledger.spot(f"verification.{check.id}.{q}") for q in ("expected", "got", "difference", "allowed")}
     cells: list[Parts] = [(Own(check.quantity, "id"),)]
     cells += [(sheet.composer.number(spots[q], Format(unit, significant=FIGURES)),) for q in ("expected", "got")]
