@@ -70,6 +70,12 @@ class Derived(Origin):
     inputs: Mapping[str, View]
     choices: tuple[str, ...] = ()
 
+    @property
+    def remark(self) -> str:
+        """The label, empty where the title of the leaf says it already."""
+        title = self.leaf.title.casefold().replace("–", "-")
+        return "" if self.label.casefold() in title else self.label
+
 
 @dataclass(frozen=True, eq=False, slots=True)
 class Solved(Origin):

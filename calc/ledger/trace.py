@@ -68,11 +68,11 @@ class _Tracer:
                 raise CalcError(f"{column.name}: no words for the origin {type(origin).__name__}")
 
     def _derived(self, head: str, origin: Derived, row: int, depth: int) -> Iterator[str]:
-        leaf, label = origin.leaf, origin.label
+        leaf = origin.leaf
         equation = leaf.residual if isinstance(leaf, Implicit) else leaf
         root = f"root {leaf.gives.text} of 0 = " if isinstance(leaf, Implicit) else ""
         formula = equation.formula() if not root else linear(equation.expression, lambda n: equation.takes[n].text)
-        said = f", {label}" if label else ""
+        said = f", {origin.remark}" if origin.remark else ""
         chosen = f"; law {origin.choices[row]}" if origin.choices else ""
         yield f"{head}   {root}{formula}   [{equation.title}{said}; {equation.source.key}{chosen}]"
         yield from self._inputs([origin.inputs[name].spot(row) for name in takes(leaf)], depth)

@@ -19,6 +19,7 @@ PIPES = (
     "head_loss",
     "closing_error",
     "one_in",
+    "equivalent_f",
     "fitting_share",
 )
 JUNCTIONS = ("head", "elevation", "pressure_head", "pressure", "velocity_head", "withdrawal", "imbalance")

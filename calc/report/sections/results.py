@@ -9,9 +9,10 @@ import numpy as np
 from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
-from calc.report.derivation import COLUMNS, line, lines
+from calc.report.derivation import COLUMNS, lines
 from calc.report.document import Heading, Own, Paragraph, Parts, Row, Soft, Strong, TableColumn
 from calc.report.numbers import Format
+from calc.report.sections.empirical import add_empirical
 from calc.report.selection import shown_junctions, shown_pipes
 from calc.report.tables import junctions_file, pipes_file
 
@@ -26,6 +27,7 @@ CHAIN = (
     "closing_error",
     "velocity_head",
     "one_in",
+    "equivalent_f",
     "fitting_share",
 )
 """Quantities of a pipe in the order of the chain of laws."""
@@ -68,7 +70,7 @@ def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
     for quantity in NODE_CHAIN:
         spot = _here(ledger, f"junctions.{quantity}", case.id, junctions[0]) if junctions else None
         if spot is not None:
-            rows.append(line(sheet, spot, name(junctions[0]), ": "))
+            rows += lines(sheet, spot, name(junctions[0]), ": ")
     sheet.table(f"derivation-{case.id}", COLUMNS, rows)
     sheet.add(Paragraph(("Every other pipe and node repeats these lines; their results follow.",), "small"))
 
@@ -86,9 +88,9 @@ def _worked_fittings(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
     if not spots:
         return []
     worst = max(spots, key=lambda s: abs(s.value)).column
-    row = worst.rows[max(spots, key=lambda s: abs(s.value)).row]
-    held = [_here(ledger, f"fittings.{quantity}", case.id, row) for quantity in FITTING_CHAIN]
-    return [line(sheet, spot, name(row), ": ") for spot in held if spot is not None]
+    fitting = worst.rows[max(spots, key=lambda s: abs(s.value)).row]
+    held = [_here(ledger, f"fittings.{quantity}", case.id, fitting) for quantity in FITTING_CHAIN]
+    return [row for spot in held if spot is not None for row in lines(sheet, spot, name(fitting), ": ")]
 
 
 def _other_laws(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
@@ -107,6 +109,7 @@ def _other_laws(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
 def add_tables(sheet: Sheet, case: CaseAccount) -> None:
     """Add the tables of pipes, fittings and nodes."""
     _pipes(sheet, case)
+    add_empirical(sheet, case)
     _fittings(sheet, case)
     _nodes(sheet, case)
 
