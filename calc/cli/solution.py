@@ -11,18 +11,17 @@ from typing import Any
 
 from calc import pipeline
 from calc.account import Account, CaseAccount, results
-from calc.cli.amounts import NONE, amount, flow_text, flow_unit
+from calc.cli.amounts import NONE, amount, display_of, flow_text
 from calc.cli.call import WrongCall
 from calc.cli.judgement import verdict_lines
 from calc.cli.layout import columns
 from calc.cli.outcome import Outcome, Status
 from calc.cli.progress import Progress
-from calc.kinds import FLOW, HEAD, VELOCITY
+from calc.kinds import HEAD, VELOCITY
+from calc.ledger import Spot
 from calc.problems import nearest
+from calc.report.display import FINE, FULL, Display
 from calc.report.numbers import Format, written
-
-AGREED = {"flow": Format("L/s", significant=2, bound=1e-6), "head": Format("m", significant=2, bound=1e-6)}
-"""Formats of the largest differences from the second opinion."""
 
 
 def run(asked: argparse.Namespace) -> Outcome:
@@ -74,11 +73,11 @@ def doubts(account: Account) -> Iterator[str]:
 def _lines(account: Account, found: dict[str, Any]) -> Iterator[str]:
     header = account.project.header
     yield f"{header.text('title')} ({header.text('number')}, revision {header.text('revision')})"
-    unit = flow_unit(account.project)
+    display = display_of(account.project)
     for case in account.cases.values():
         yield ""
         yield f"Case {case.id}: {case.title}"
-        yield from _case_lines(case, found["cases"][case.id], unit)
+        yield from _case_lines(case, found["cases"][case.id], display)
     yield ""
     yield "Head loss and velocity are positive from 'from' to 'to'."
     yield from verdict_lines(account)
@@ -88,72 +87,79 @@ def _lines(account: Account, found: dict[str, Any]) -> Iterator[str]:
         yield f"{count} finding{'s' * (count != 1)}; 'headtrace inspect' lists those of the inputs"
 
 
-def _case_lines(case: CaseAccount, found: dict[str, Any], unit: str) -> Iterator[str]:
+def _case_lines(case: CaseAccount, found: dict[str, Any], display: Display) -> Iterator[str]:
     solution = case.solution
     work = {"bracketing": "trial"}.get(solution.method, "iteration")
     counted = f"{solution.iterations} {work}{'s' * (solution.iterations != 1)}"
     if not solution.converged:
         yield f"  no solution by {solution.method} after {counted}: {solution.reason}"
         return
-    yield f"  {solution.method}, {counted}; {_opinion(case)}"
+    yield f"  {solution.method}, {counted}; {_opinion(case, display)}"
     yield ""
-    yield from columns(_node_rows(found["nodes"], unit), "<<>><")
+    yield from columns(_node_rows(found["nodes"], display), "<<>><")
     yield ""
-    yield from columns(_branch_rows(found["branches"], unit), "<<<>><")
+    yield from columns(_branch_rows(found["branches"], display), "<<<>><")
 
 
-def _opinion(case: CaseAccount) -> str:
+def _opinion(case: CaseAccount, display: Display) -> str:
     agreement = case.agreement
     if agreement is None:
         return "no second opinion"
     if agreement.flow_difference is None or agreement.head_difference is None:
         return f"the second opinion DISAGREES: {agreement.reason}"
-    flow = written(abs(agreement.flow_difference.value), FLOW, AGREED["flow"])
-    head = written(abs(agreement.head_difference.value), HEAD, AGREED["head"])
+    flow = _difference(agreement.flow_difference, display.form("flow", FULL, residual=True))
+    head = _difference(agreement.head_difference, display.form("head", FINE, residual=True))
     said = "agrees" if agreement.agrees else "DISAGREES"
     what = "errors found" if agreement.evaluated else "differences"
-    return f"the second opinion ({agreement.method}) {said}: largest {what} {flow} L/s and {head} m"
+    return f"the second opinion ({agreement.method}) {said}: largest {what} {flow} and {head}"
 
 
-def _node_rows(nodes: dict[str, Any], unit: str) -> list[list[str]]:
-    rows = [["node", "", "head", "pressure head", ""], ["", "", "m", "m", ""]]
+def _difference(spot: Spot, form: Format) -> str:
+    """Return the size of a difference with its unit, of two figures, or less than its bound."""
+    return f"{written(abs(spot.value), spot.column.kind, replace(form, decimals=None, significant=2))} {form.unit}"
+
+
+def _node_rows(nodes: dict[str, Any], display: Display) -> list[list[str]]:
+    unit = display.unit("head")
+    rows = [["node", "", "head", "pressure head", ""], ["", "", unit, unit, ""]]
     for name, node in nodes.items():
         given = node["outflow"] if node["kind"] == "reservoir" else node["withdrawal"]
         rows.append(
             [
                 name,
                 node["kind"],
-                amount(node["head"], HEAD),
-                amount(node.get("pressure_head"), HEAD),
-                _exchange(node["kind"], given, unit),
+                amount(node["head"], HEAD, display),
+                amount(node.get("pressure_head"), HEAD, display),
+                _exchange(node["kind"], given, display),
             ]
         )
     return rows
 
 
-def _exchange(kind: str, given: float, unit: str) -> str:
+def _exchange(kind: str, given: float, display: Display) -> str:
     """Return in words what a reservoir gives to the pipes, or what a junction gives to users."""
-    size = flow_text(given, unit)
+    size = flow_text(given, display)
     if kind == "reservoir":
         return "at rest" if given == 0 else f"{'gives' if given > 0 else 'takes'} {size}"
     return "" if given == 0 else f"{size} {'withdrawn' if given > 0 else 'brought in'}"
 
 
-def _branch_rows(branches: dict[str, Any], unit: str) -> list[list[str]]:
-    rows = [["branch", "from", "to", "head loss", "velocity", "flow"], ["", "", "", "m", "m/s", ""]]
+def _branch_rows(branches: dict[str, Any], display: Display) -> list[list[str]]:
+    units = ["", "", "", display.unit("head"), display.unit("velocity"), ""]
+    rows = [["branch", "from", "to", "head loss", "velocity", "flow"], units]
     for name, branch in branches.items():
         shut = branch["state"] != "open"
-        velocity = NONE if shut else amount(branch["velocity"], VELOCITY, plus=True)
-        loss = amount(branch["head_loss"], HEAD, plus=True)
-        rows.append([name, branch["from"], branch["to"], loss, velocity, _direction(branch, unit)])
+        velocity = NONE if shut else amount(branch["velocity"], VELOCITY, display, plus=True)
+        loss = amount(branch["head_loss"], HEAD, display, plus=True)
+        rows.append([name, branch["from"], branch["to"], loss, velocity, _direction(branch, display)])
     return rows
 
 
-def _direction(branch: dict[str, Any], unit: str) -> str:
+def _direction(branch: dict[str, Any], display: Display) -> str:
     flow = branch["flow"]
     if branch["state"] != "open":
         return "shut"
     if flow == 0:
         return "at rest"
     giver, taker = (branch["from"], branch["to"]) if flow > 0 else (branch["to"], branch["from"])
-    return f"{giver} gives {flow_text(flow, unit)} to {taker}"
+    return f"{giver} gives {flow_text(flow, display)} to {taker}"

@@ -50,11 +50,11 @@ class Composer:
         self.checks = checks
         asked = account.project.sections["display"]
         self.display = Display.of(asked)
-        self.beside = Display.usual_of(asked.text("beside")) if "beside" in asked.stated else None
         self.paper = asked.text("paper", "A4")
         self.addresses: dict[str, str] = {}
         self.sections: list[Section] = []
         self.files: dict[str, bytes] = {}
+        self.converted: set[tuple[str, str]] = set()
         self.figures = 0
 
     @property

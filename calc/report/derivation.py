@@ -2,18 +2,21 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
 
-from calc.equation import Leaf
+from calc.equation import Expression, Implicit, Leaf, Literal, Operation
 from calc.equation.evaluation import evaluate_leaf
 from calc.equation.law import takes
 from calc.ledger import Combined, Derived, Spot
 from calc.report.composer import FROM, INTO, Sheet, cited, inputs_of
-from calc.report.document import Cite, Formula, Letter, Number, Part, Parts, Row, TableColumn
+from calc.report.conversion import enter_worths, law_into, worth_id
+from calc.report.display import FIELD_OF, SI, Display
+from calc.report.document import Cite, Formula, Letter, Number, Own, Part, Parts, Row, TableColumn
 from calc.report.formats import shortest
-from calc.report.numbers import Format, last_place, read_back, written
+from calc.report.numbers import Format, last_place, read_back, shown, written
 
 RESULT_FIGURES = 6
 MOST_FIGURES = 16
@@ -39,50 +42,68 @@ class Worked:
     unit: str
 
 
-def worked(spot: Spot) -> Worked:
-    """Return the worked line of a number in coherent SI units.
+def worked(spot: Spot, display: Display) -> Worked:
+    """Return the worked line of a number in the coherent units of a display; an empirical law is worked in SI.
 
     Operands carry as many figures as it takes for the printed formula on the printed operands to give the printed
     result within one unit of its last figure.
     """
-    origin, unit = spot.column.origin, spot.column.kind.unit
-    result = _result(spot)
+    origin = spot.column.origin
+    if isinstance(origin, Derived) and empirical(origin.leaf):
+        display = SI
+    unit = display.coherent(spot.column.kind)
+    result = _result(spot, unit)
     if isinstance(origin, Derived):
         leaf = origin.leaf
-        operands = _operands(origin, leaf, spot.row, result)
-        title = leaf.title
-        label = origin.label
-        said: tuple[Part, ...] = (title, f" ({label})" if label and label not in title else "")
+        operands = _operands(origin, spot.row, result, display)
+        said: tuple[Part, ...] = (leaf.title, f" ({origin.remark})" if origin.remark else "")
         return Worked((*said, Formula(leaf, operands, result)), result, unit)
     if isinstance(origin, Combined):
-        return Worked(_sum(origin, spot.row), result, unit)
+        return Worked(_sum(origin, spot.row, display), result, unit)
     return Worked((spot.column.quantity.replace("_", " "),), result, unit)
 
 
-def _result(spot: Spot) -> Number:
-    unit = spot.column.kind.unit
-    form = shortest(spot.value, unit, RESULT_FIGURES)
-    if spot.column.quantity.endswith(("closing_error", "imbalance")) and abs(spot.value) < SMALLEST:
+def empirical(leaf: Leaf) -> bool:
+    """Return whether the numbers of a law hold in SI alone: it divides by units, or adds amounts of them."""
+    equation = leaf.residual if isinstance(leaf, Implicit) else leaf
+    return _holds_units(equation.expression)
+
+
+def _holds_units(node: Expression) -> bool:
+    if isinstance(node, Operation):
+        return any(_holds_units(part) for part in node.args)
+    return isinstance(node, Literal) and bool(node.unit)
+
+
+def _result(spot: Spot, unit: str) -> Number:
+    kind = spot.column.kind
+    value = shown(spot.value, kind, unit)
+    form = shortest(value, unit, RESULT_FIGURES)
+    if spot.column.quantity.endswith(("closing_error", "imbalance")) and abs(value) < SMALLEST:
         form = Format(unit, decimals=9, bound=SMALLEST)
-    return Number(spot.id, form, written(spot.value, spot.column.kind, form))
+    return Number(spot.id, form, written(spot.value, kind, form))
 
 
-def _operands(origin: Derived, leaf: Leaf, row: int, result: Number) -> dict[str, Number]:
+def _operands(origin: Derived, row: int, result: Number, display: Display) -> dict[str, Number]:
+    found = {name: origin.inputs[name].spot(row) for name in takes(origin.leaf)}
+    spots = {name: Spot(*one) for name, one in found.items() if one is not None}
+    return repeating(origin.leaf, spots, result, display)
+
+
+def repeating(leaf: Leaf, spots: Mapping[str, Spot], result: Number, display: Display) -> dict[str, Number]:
+    """Return the operands of a formula in coherent units, with the figures it takes to give the printed result."""
     operands: dict[str, Number] = {}
     for figures in range(RESULT_FIGURES, MOST_FIGURES + 1):
-        operands = {}
-        for name in takes(leaf):
-            found = origin.inputs[name].spot(row)
-            if found is not None:
-                operands[name] = _operand(Spot(*found), figures)
+        operands = {name: operand(spot, display.coherent(spot.column.kind), figures) for name, spot in spots.items()}
         if _repeats(leaf, operands, result):
             return operands
     return operands
 
 
-def _operand(spot: Spot, figures: int) -> Number:
+def operand(spot: Spot, unit: str, figures: int) -> Number:
+    """Return a number as put into a formula, with the figures it has, at most so many."""
     kind = spot.column.kind
-    form = shortest(spot.value, kind.unit, figures)
+    form = shortest(shown(spot.value, kind, unit), unit, figures)
     return Number(spot.id, form, written(spot.value, kind, form), with_unit=True)
 
 
@@ -95,7 +116,7 @@ def _repeats(leaf: Leaf, operands: dict[str, Number], result: Number) -> bool:
     return abs(again - read_back(result.text)) <= 1.01 * last_place(result.text)
 
 
-def _sum(origin: Combined, row: int) -> Parts:
+def _sum(origin: Combined, row: int, display: Display) -> Parts:
     terms = [k for k, into in enumerate(origin.into.tolist()) if into == row]
     if not terms:
         return (f"{origin.operation.capitalize()}: {origin.words}. There are none.",)
@@ -105,8 +126,7 @@ def _sum(origin: Combined, row: int) -> Parts:
         if found is None:
             continue
         spot = Spot(*found)
-        unit = spot.column.kind.unit
-        form = Format(unit, significant=RESULT_FIGURES)
+        form = Format(display.coherent(spot.column.kind), significant=RESULT_FIGURES)
         number = Number(spot.id, form, written(spot.value, spot.column.kind, form), with_unit=True)
         if origin.operation == "sum":
             parts.append(("− (" if origin.signs[k] < 0 else "+ (" if spot.value < 0 else "+ ") if position else "")
@@ -129,13 +149,25 @@ def lines(sheet: Sheet, spot: Spot, *before: Part) -> list[Row]:
         needed = ledger.spot(ref)
         derived = isinstance(needed.column.origin, Derived) and needed.column.quantity in UNTABLED
         if derived and ref not in sheet.composer.addresses:
-            rows.append(line(sheet, needed, *before))
-    return [*rows, line(sheet, spot, *before)]
+            rows += _worked_with_conversions(sheet, needed, *before)
+    return [*rows, *_worked_with_conversions(sheet, spot, *before)]
+
+
+def _worked_with_conversions(sheet: Sheet, spot: Spot, *before: Part) -> list[Row]:
+    """Return a worked line; of an empirical law, its operands put into SI before it and its result back after it."""
+    display, origin = sheet.composer.display, spot.column.origin
+    if display.system == SI.system or not isinstance(origin, Derived) or not empirical(origin.leaf):
+        return [line(sheet, spot, *before)]
+    taken = [origin.inputs[name].spot(spot.row) for name in takes(origin.leaf)]
+    rows = [row for one in taken if one for row in converted(sheet, Spot(*one), SI.coherent(one[0].kind), *before)]
+    rows.append(line(sheet, spot, *before))
+    kind = spot.column.kind
+    return [*rows, *converted(sheet, spot, display.coherent(kind), *before, source=kind.unit)]
 
 
 def line(sheet: Sheet, spot: Spot, *before: Part) -> Row:
     """Return a worked number as the next line of a section."""
-    held = worked(spot)
+    held = worked(spot, sheet.composer.display)
     return sheet.row(
         (*before, *held.statement),
         (held.value,),
@@ -146,7 +178,63 @@ def line(sheet: Sheet, spot: Spot, *before: Part) -> Row:
     )
 
 
-def symbols_of(leaf: Leaf) -> list[tuple[Letter, str, str]]:
-    """Return the symbols of a law with their words and units, the result first."""
+def converted(sheet: Sheet, spot: Spot, unit: str, *before: Part, source: str = "") -> list[Row]:
+    """Return the conversion of a number into a unit as the next line, unless it stands already or none is needed.
+
+    It is converted from ``source``, or else from the coherent unit of the display.
+    """
+    composer, kind = sheet.composer, spot.column.kind
+    source = source or composer.display.coherent(kind)
+    if unit == source or (spot.id, unit) in composer.converted:
+        return []
+    composer.converted.add((spot.id, unit))
+    enter_worths(composer.ledger, [unit])
+    law, form = law_into(unit, kind), _form_into(composer.display, spot, unit)
+    result = Number(spot.id, form, written(spot.value, kind, form))
+    spots = {"amount": spot}
+    if "worth" in law.takes:
+        spots["worth"] = composer.ledger.spot(worth_id(unit))
+    operands: dict[str, Number] = {}
+    for figures in range(RESULT_FIGURES, MOST_FIGURES + 1):
+        operands = {name: operand(one, source, figures) for name, one in spots.items()}
+        if _repeats(law, operands, result):
+            break
+    words = (spot.column.quantity.replace("_", " ").capitalize(), " in ", named_unit(unit))
+    stands = tuple(one.id for one in spots.values())
+    cells = ((*before, *words, Formula(law, operands, result)), (result,), (named_unit(unit),))
+    return [sheet.row(*cells, (Cite(stands),), ("",))]
+
+
+def _form_into(display: Display, spot: Spot, unit: str) -> Format:
+    """Return the format of a converted number: as in the tables where they are in this unit."""
+    for one in (display, *display.beside):
+        form = one.usual(spot.column)
+        if form.unit == unit:
+            return form
+    return shortest(shown(spot.value, spot.column.kind, unit), unit, RESULT_FIGURES)
+
+
+def named_unit(unit: str) -> Part:
+    """Return a unit as text; one with a figure in it is a name."""
+    return Own(unit, "name") if any(character.isdecimal() for character in unit) else unit
+
+
+def displayed(sheet: Sheet, spots: Iterable[Spot], *before: Part) -> list[Row]:
+    """Return the first of each kind of number put into the units of the tables, where these are others."""
+    rows: list[Row] = []
+    seen: set[str] = set()
+    for spot in spots:
+        field = FIELD_OF.get(spot.column.kind)
+        if field is None or field in seen:
+            continue
+        seen.add(field)
+        for display in (sheet.composer.display, *sheet.composer.display.beside):
+            rows += converted(sheet, spot, display.unit(field), *before)
+    return rows
+
+
+def symbols_of(leaf: Leaf, display: Display) -> list[tuple[Letter, str, str]]:
+    """Return the symbols of a law with their words and the units in which it is worked, the result first."""
+    display = SI if empirical(leaf) else display
     every = [leaf.gives, *takes(leaf).values()]
-    return [(Letter(symbol.text), symbol.words, symbol.kind.unit) for symbol in every]
+    return [(Letter(symbol.text), symbol.words, display.coherent(symbol.kind)) for symbol in every]

@@ -14,6 +14,7 @@ from calc import kinds
 from calc.components import Record
 from calc.kinds import Kind
 from calc.ledger import Column
+from calc.report.formats import BY_QUANTITY
 from calc.report.numbers import Format, shown
 from calc.report.shown import SHOWN, SYSTEMS
 
@@ -52,23 +53,6 @@ OTHER: dict[Kind, Format] = {
 """Figures of kinds whose unit is not chosen: they are written in the coherent unit."""
 USUAL_FIGURES = Format(significant=6)
 
-BY_QUANTITY = {
-    "reynolds": Format(decimals=0),
-    "darcy_f": Format(decimals=5),
-    "equivalent_f": Format(decimals=5),
-    "one_in": Format(decimals=0),
-    "fitting_share": Format("%", decimals=1),
-    "parallel": Format(decimals=0),
-    "count": Format(decimals=0),
-    "iterations": Format(decimals=0),
-    "findings": Format(decimals=0),
-    "unsourced": Format(decimals=0),
-    "open_assumptions": Format(decimals=0),
-    "laminar_below": Format(decimals=0),
-    "turbulent_above": Format(decimals=0),
-}
-"""Pure numbers written otherwise than their kind."""
-
 MORE = {"vapour_pressure": 2}
 """Quantities written with more decimals than their kind."""
 
@@ -85,22 +69,22 @@ class Display:
         SI or US.
     units : mapping of str to str
         By field of ``display``, the unit as printed.
+    beside : tuple of Display
+        What tables of results show in columns beside, if anything.
     """
 
     system: str
     units: Mapping[str, str]
+    beside: tuple[Display, ...] = ()
 
     @classmethod
     def of(cls, section: Record) -> Display:
         """Return the display that a project asks for, in the usual units of its system where it chooses none."""
         system = section.text("units", SYSTEMS[0])
         chosen = {one.field: section.text(one.field) for one in SHOWN}
-        return cls(system, {one.field: one.spellings.get(chosen[one.field], one.usual[system]) for one in SHOWN})
-
-    @classmethod
-    def usual_of(cls, system: str) -> Display:
-        """Return the usual units of a system."""
-        return cls(system, {one.field: one.usual[system] for one in SHOWN})
+        units = {one.field: one.spellings.get(chosen[one.field], one.usual[system]) for one in SHOWN}
+        beside = (usual_of(section.text("beside")),) if "beside" in section.stated else ()
+        return cls(system, units, beside)
 
     def unit(self, field: str) -> str:
         """Return the unit chosen for a field, as printed: ``display.unit("flow")``."""
@@ -136,7 +120,10 @@ class Display:
         """Return an SI value as a number in the unit of a field, for scales and marks of drawings."""
         return shown(value, BY_FIELD[field].kind, self.units[field])
 
-    @property
-    def other(self) -> str:
-        """The other system."""
-        return SYSTEMS[1 - SYSTEMS.index(self.system)]
+
+def usual_of(system: str) -> Display:
+    """Return the usual units of a system."""
+    return Display(system, {one.field: one.usual[system] for one in SHOWN})
+
+
+SI = usual_of(SYSTEMS[0])

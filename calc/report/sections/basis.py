@@ -8,7 +8,7 @@ from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report import figures
 from calc.report.composer import Composer, Sheet, column
-from calc.report.derivation import COLUMNS, line
+from calc.report.derivation import COLUMNS, lines
 from calc.report.document import Figure, Heading, Paragraph, Parts, Quoted, Strong
 
 CONVENTIONS = (
@@ -65,7 +65,7 @@ def _liquid(sheet: Sheet) -> None:
         spots = [s for s in derived_of(sheet.composer.ledger, ("fluid", "site"), case) if s.column.of == ""]
         if spots:
             sheet.add(Heading(("Liquid and air", *(() if case == "base" else (", case ", Quoted(case))))))
-            sheet.table("liquid", COLUMNS, [line(sheet, spot) for spot in spots])
+            sheet.table("liquid", COLUMNS, [row for spot in spots for row in lines(sheet, spot)])
 
 
 def _schematic(sheet: Sheet) -> None:

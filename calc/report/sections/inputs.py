@@ -6,10 +6,10 @@ from calc.account import WITHOUT_SOURCE
 from calc.ledger import Column, Converted, Derived, Given, Library, Spot
 from calc.report.composer import INTO, Composer, Sheet, column, place
 from calc.report.derivation import COLUMNS as WORKED
-from calc.report.derivation import line
+from calc.report.derivation import lines
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
 from calc.report.formats import shortest
-from calc.report.numbers import written
+from calc.report.numbers import shown, written
 from calc.report.sections.results import kind_of_fitting
 from calc.report.selection import shown_inputs
 
@@ -32,7 +32,11 @@ def compose_inputs(composer: Composer) -> None:
         if rows:
             sheet.add(Heading(("As stated",) if case == "base" else ("Changed by case ", Quoted(case))))
             sheet.table("inputs", COLUMNS, rows)
-        followed = [line(sheet, spot, Quoted(spot.column.rows[spot.row]), ": ") for spot in _followed(sheet, case)]
+        followed = [
+            row
+            for spot in _followed(sheet, case)
+            for row in lines(sheet, spot, Quoted(spot.column.rows[spot.row]), ": ")
+        ]
         sheet.table(f"followed-{case}", WORKED, followed)
     shipped = [c for c in given if isinstance(c.origin, Library)]
     rows = _rows(sheet, shipped)
@@ -114,7 +118,8 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
     if not isinstance(origin, Given | Converted | Library):
         raise TypeError(f"{spot.id} is no input")
     kind = spot.column.kind
-    form = shortest(spot.value, kind.unit, FIGURES)
+    unit = sheet.composer.display.coherent(kind)
+    form = shortest(shown(spot.value, kind, unit), unit, FIGURES)
     number = Number(spot.id, form, written(spot.value, kind, form))
     basis = origin.bases[spot.row]
     said: Parts = (Quoted(basis),) if basis else (Strong(("no source",), bar=True),)
@@ -126,7 +131,7 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
         (*_named(sheet, spot, named=named), spot.column.quantity.replace("_", " ")),
         (Quoted(origin.written[spot.row]),),
         (number,),
-        (kind.unit,),
+        (unit,),
         said,
         (place(origin.marks[spot.row].place.removeprefix("calc/")),),
         (Cite((spot.id,), into=True),),

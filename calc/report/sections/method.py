@@ -7,7 +7,8 @@ import re
 from calc.equation import Equation, Implicit, Leaf
 from calc.ledger import Derived
 from calc.report.composer import Composer, Sheet, column
-from calc.report.derivation import symbols_of
+from calc.report.derivation import empirical, symbols_of
+from calc.report.display import SI, Display
 from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Parts, Row, Soft
 from calc.solve.rules import RULES
 
@@ -52,7 +53,7 @@ def compose_method(composer: Composer) -> None:
     columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
     sheet.table("equations", columns, [_equation(sheet, leaf, estimates) for leaf in leaves.values()])
     sheet.add(Heading(("Symbols",)))
-    _symbols(sheet, _gathered(laws_in_use(composer)))
+    _symbols(sheet, _gathered(laws_in_use(composer), composer.display))
     sheet.add(
         Paragraph(
             ("Empirical equations are worked in SI; their inputs are divided by the units shown first.",),
@@ -78,14 +79,22 @@ def _rules(sheet: Sheet) -> None:
         sheet.table("rules", columns, rows)
 
 
-def _gathered(leaves: list[Leaf]) -> list[tuple[Letter, str, str]]:
-    """Return each symbol once; one that serves several kinds of quantity has the unit of the line it is used on."""
+def _gathered(leaves: list[Leaf], display: Display) -> list[tuple[Letter, str, str]]:
+    """Return each symbol once; one that serves several kinds of quantity has the unit of the line it is used on.
+
+    One that empirical laws share with others, and which they take in SI, has the unit of the others.
+    """
     found: dict[tuple[str, str], list[str]] = {}
     for leaf in leaves:
-        for letter, words, unit in symbols_of(leaf):
+        for letter, words, unit in symbols_of(leaf, display):
             units = found.setdefault((letter.text, words), [])
             if unit not in units:
                 units.append(unit)
+    for leaf in leaves if display.system != SI.system else ():
+        for letter, words, unit in symbols_of(leaf, SI) if empirical(leaf) else ():
+            units = found[letter.text, words]
+            if len(units) > 1 and unit in units:
+                units.remove(unit)
     return [(Letter(text), words, units[0] if len(units) == 1 else "as used") for (text, words), units in found.items()]
 
 
