@@ -7,9 +7,10 @@ here too. The chain is the solver's own, run by the ledger's accountant, so that
 Knows project, criteria, solutions and ledger; knows nothing of how they are said or printed.
 """
 
-from calc.account.accounting import Account, CaseAccount, keep_account
+from calc.account.accounting import Account, keep_account
 from calc.account.books import liquid_terms, open_books
-from calc.account.findings import TITLES, WITHOUT_SOURCE, Finding, input_findings
+from calc.account.case import CaseAccount
+from calc.account.findings import CHECKS, TITLES, WITHOUT_SOURCE, CheckOutcome, Finding, gathered, input_findings
 from calc.account.opinion import Agreement
 from calc.account.outcome import results
 from calc.account.paths import Path
@@ -17,16 +18,19 @@ from calc.account.trials import MOST_BRANCHES
 from calc.account.verdicts import CriterionVerdict, Verdict
 
 __all__ = [
+    "CHECKS",
     "MOST_BRANCHES",
     "TITLES",
     "WITHOUT_SOURCE",
     "Account",
     "Agreement",
     "CaseAccount",
+    "CheckOutcome",
     "CriterionVerdict",
     "Finding",
     "Path",
     "Verdict",
+    "gathered",
     "input_findings",
     "keep_account",
     "liquid_terms",

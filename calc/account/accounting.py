@@ -5,14 +5,14 @@ from __future__ import annotations
 import hashlib
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any
 
 import numpy as np
 
-from calc.account.findings import Finding, all_findings
+from calc.account.case import CaseAccount
+from calc.account.findings import CheckOutcome, Finding, Solved, all_findings
 from calc.account.flows import CaseColumns, enter_flows
 from calc.account.history import enter_history, history_rows
-from calc.account.opinion import Agreement, enter_opinion
+from calc.account.opinion import enter_opinion
 from calc.account.paths import Path, enter_paths
 from calc.account.verdicts import CriterionVerdict, enter_verdicts
 from calc.components import Network
@@ -20,20 +20,6 @@ from calc.kinds import FLOW, HEAD, NUMBER
 from calc.ledger import Accountant, Ledger, Program, View
 from calc.project import Project, changes_in
 from calc.solve import Solution
-
-
-@dataclass(frozen=True)
-class CaseAccount:
-    """One case accounted for; ``columns`` and ``agreement`` are None when it has no solution."""
-
-    id: str
-    title: str
-    network: Network
-    solution: Solution
-    columns: CaseColumns | None
-    paths: tuple[Path, ...]
-    agreement: Agreement | None
-    history: list[dict[str, Any]]
 
 
 @dataclass(frozen=True)
@@ -45,6 +31,7 @@ class Account:
     cases: Mapping[str, CaseAccount]
     verdicts: tuple[CriterionVerdict, ...]
     findings: tuple[Finding, ...]
+    checks: tuple[CheckOutcome, ...]
     digest: str
 
     @property
@@ -93,9 +80,9 @@ def keep_account(project: Project, ledger: Ledger, solved: Mapping[str, tuple[Ne
         cases[name] = CaseAccount(name, title, network, solution, columns, paths, agreement, history)
     held = {name: case.columns for name, case in cases.items() if case.columns is not None}
     verdicts = enter_verdicts(ledger, project, held)
-    findings = all_findings(project, {name: case.agreement for name, case in cases.items()})
-    _enter_counts(ledger, project, findings)
-    return Account(project, ledger, cases, verdicts, findings, _digest(project, cases))
+    findings, checks = all_findings(Solved(project, ledger, cases, verdicts))
+    _enter_counts(ledger, project, findings, checks)
+    return Account(project, ledger, cases, verdicts, findings, checks, _digest(project, cases))
 
 
 def _enter_shut(ledger: Ledger, project: Project, network: Network, case: str) -> None:
@@ -131,7 +118,9 @@ def _enter_tests(ledger: Ledger, solution: Solution, case: str) -> None:
     ledger.enter("solver.iterations", NUMBER, [""], [solution.iterations], said, case=case)
 
 
-def _enter_counts(ledger: Ledger, project: Project, findings: tuple[Finding, ...]) -> None:
+def _enter_counts(
+    ledger: Ledger, project: Project, findings: tuple[Finding, ...], checks: tuple[CheckOutcome, ...]
+) -> None:
     counts = {
         "open_assumptions": sum(a.text("state") == "open" for a in project.assumptions.values()),
         "unsourced": sum(finding.id == "D03" for finding in findings),
@@ -140,6 +129,8 @@ def _enter_counts(ledger: Ledger, project: Project, findings: tuple[Finding, ...
     for name, count in counts.items():
         said = Program(f"counted by the program: {name.replace('_', ' ')}")
         ledger.enter(f"record.{name}", NUMBER, [""], [count], said)
+    said = Program("counted by the program: findings of each check")
+    ledger.enter("checks.found", NUMBER, [one.check.id for one in checks], [one.found for one in checks], said)
 
 
 def _digest(project: Project, cases: Mapping[str, CaseAccount]) -> str:

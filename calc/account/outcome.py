@@ -9,7 +9,8 @@ import numpy as np
 from calc.ledger import Ledger
 
 if TYPE_CHECKING:
-    from calc.account.accounting import Account, CaseAccount
+    from calc.account.accounting import Account
+    from calc.account.case import CaseAccount
 
 FORMAT = "headtrace-results/1"
 

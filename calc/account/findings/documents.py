@@ -1,0 +1,123 @@
+"""Sources and defaults: what the values rest on."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from fnmatch import fnmatchcase
+
+import numpy as np
+
+from calc.account.findings.finding import Check, Remark, Solved
+from calc.components import Record
+from calc.components.pipe import LAW_INPUT
+from calc.project import Project
+
+WITHOUT_SOURCE = {
+    "from",
+    "to",
+    "law",
+    "open",
+    "parallel",
+    "count",
+    "applies_to",
+    "cases",
+    "kind",
+    "viscosity_kind",
+    "title",
+}
+"""Fields that describe the arrangement and need no source of their own."""
+
+
+def unsourced(project: Project) -> Iterator[Remark]:
+    """Yield every component with values of the user's that name no source."""
+    groups = {
+        "reservoirs": project.reservoirs,
+        "junctions": project.junctions,
+        "pipes": project.pipes,
+        "criteria": project.criteria,
+        "fluid": {"": project.fluid},
+        "site": {"": project.site},
+        "constants": project.constants,
+    }
+    for group, records in groups.items():
+        for record in records.values():
+            bare = sorted(_unsourced(record), key=lambda pair: pair[1])
+            if bare:
+                names = ", ".join(name for name, _ in bare)
+                subject = f"{group}.{record.id}" if record.id and group not in ("fluid", "site") else group
+                verb = "has" if len(bare) == 1 else "have"
+                yield Remark(subject, bare[0][1], f"{names} {verb} no source")
+    for case in project.cases.values():
+        bare_lines = [line for line in case.lines if not line.stated.basis.source and line.field not in WITHOUT_SOURCE]
+        if bare_lines:
+            names = ", ".join(dict.fromkeys(line.path for line in bare_lines))
+            place = bare_lines[0].mark.place
+            yield Remark(f"cases.{case.id}", place, f"values of this case have no source: {names}")
+
+
+def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
+    for name, stated in record.stated.items():
+        if not stated.shipped and name not in WITHOUT_SOURCE and not stated.basis.source:
+            yield name, stated.mark.place
+    for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
+        for name, stated in part.stated.items():
+            if name == "K_reverse" and stated is part.stated.get("K"):
+                continue  # stated once, it holds both ways
+            if name in ("K", "K_reverse") and not stated.shipped and not stated.basis.source:
+                place = part.id.rpartition("/")[2]
+                where = f"of fitting {place}" if place.isdigit() else f"at '{place}'"
+                yield f"{name} {where}", stated.mark.place
+
+
+BY_DEFAULT = (
+    "taken by default: the inputs neither state nor confirm it. State it with its source, or name it under 'affects' "
+    "of an assumption"
+)
+_WEIGHTY = ("friction", "site.gravity", "constants.hazen_williams.*", "constants.manning.*", "ends.*.exit")
+"""Defaults that move the answer. The temperature is another check's; the rest say how an input file is read."""
+
+
+def silent_defaults(project: Project) -> Iterator[Remark]:
+    """Yield the defaults in use that move the answer and that no assumption confirms."""
+    for subject, place in _defaults(project, _WEIGHTY).items():
+        yield Remark(subject, place, BY_DEFAULT)
+
+
+def silent_transition(solved: Solved) -> Iterator[Remark]:
+    """Yield the limits of the transition by default, where some pipe's law has one and runs below its end."""
+    places = _defaults(solved.project, ("constants.transition.*",))
+    if places and any(_in_transition(solved)):
+        for subject, place in places.items():
+            yield Remark(subject, place, BY_DEFAULT)
+
+
+def _in_transition(solved: Solved) -> Iterator[bool]:
+    for _, case, columns in solved.running:
+        pipes, law = case.network.pipes, columns.terms.law
+        smooth = np.array([LAW_INPUT[word] == "roughness" for word in law.words])
+        low = columns.results.reynolds.values < pipes.turbulent_above[0]
+        yield bool(np.any(low & (columns.results.flow_each.values != 0.0) & smooth[law.codes]))
+
+
+def _defaults(project: Project, wanted: tuple[str, ...]) -> dict[str, str]:
+    """Return the places of unconfirmed defaults by subject; the constants of one law are one subject."""
+    confirmed = [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
+    found: dict[str, str] = {}
+    for path, stated in project.defaults:
+        if any(fnmatchcase(path, pattern) for pattern in wanted) and path not in confirmed:
+            subject = path.rpartition(".")[0] if path.startswith("constants.") else path
+            found.setdefault(subject, stated.mark.place)
+    return found
+
+
+CHECKS = (
+    Check("D03", "Inputs without a source", "values of the project that name no reference", inputs=unsourced),
+    Check(
+        "D05",
+        "Defaults used silently",
+        "defaults that move the answer (gravity, friction law, constants of an empirical law, exit loss, and the "
+        "limits of the transition where a pipe comes near them) and that no assumption names",
+        inputs=silent_defaults,
+        results=silent_transition,
+    ),
+)

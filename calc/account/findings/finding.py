@@ -1,0 +1,116 @@
+"""What a finding is, what a check is, and what checks are given to look at."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Mapping
+from dataclasses import dataclass
+from typing import NamedTuple
+
+from calc.account.case import CaseAccount
+from calc.account.flows import CaseColumns
+from calc.account.verdicts import CriterionVerdict
+from calc.ledger import Ledger
+from calc.project import Project
+
+
+@dataclass(frozen=True, slots=True, order=True)
+class Finding:
+    """One remark: the comment's id, the subject as a path, ``file:line``, and the text."""
+
+    id: str
+    subject: str
+    place: str
+    text: str
+
+
+class Remark(NamedTuple):
+    """What a check yields: a finding without its id.
+
+    The text is the same for every subject of which the same is to be said, so that these can be told together.
+    It holds no number that was computed: such a number stands in the ledger, and the page shows it from there.
+    """
+
+    subject: str
+    place: str
+    text: str
+
+
+@dataclass(frozen=True)
+class Solved:
+    """A project with its solutions: what the checks of results are given."""
+
+    project: Project
+    ledger: Ledger
+    cases: Mapping[str, CaseAccount]
+    verdicts: tuple[CriterionVerdict, ...]
+
+    @property
+    def running(self) -> Iterator[tuple[str, CaseAccount, CaseColumns]]:
+        """The cases that have a solution, with their columns."""
+        for name, case in self.cases.items():
+            if case.columns is not None:
+                yield name, case, case.columns
+
+    def place(self, path: str) -> str:
+        """Return where the component of a path such as ``pipes.upper-main`` is stated."""
+        group, _, row = path.partition(".")
+        return self.project.group(group)[row].mark.place
+
+
+def _unsolved(solved: Solved) -> str:
+    return "" if any(True for _ in solved.running) else "no case has a solution"
+
+
+@dataclass(frozen=True)
+class Check:
+    """A comment that reviewers make, as a check.
+
+    Attributes
+    ----------
+    id, title : str
+        Its number and name.
+    looks_for : str
+        What is looked for, with its limits in words, as printed.
+    inputs : callable or None
+        What it finds in the inputs alone.
+    results : callable or None
+        What it finds in the solutions.
+    refuses : str
+        What of it is a problem, so that inputs which have it are not read; as printed.
+    unmade : callable
+        Why its search in the results was not made, empty when it was.
+    """
+
+    id: str
+    title: str
+    looks_for: str
+    inputs: Callable[[Project], Iterator[Remark]] | None = None
+    results: Callable[[Solved], Iterator[Remark]] | None = None
+    refuses: str = ""
+    unmade: Callable[[Solved], str] = _unsolved
+
+
+@dataclass(frozen=True)
+class CheckOutcome:
+    """What came of a check: how many remarks, or why it was not made."""
+
+    check: Check
+    found: int
+    unmade: str
+
+
+def among(cases: list[str], every: int) -> str:
+    """Return cases in words: "in every case", or "in case low", "in cases low and peak"."""
+    if len(cases) == every:
+        return "in every case"
+    if len(cases) == 1:
+        return f"in case {cases[0]}"
+    return f"in cases {', '.join(cases[:-1])} and {cases[-1]}"
+
+
+def by_case(solved: Solved, group: str, found: Mapping[str, list[str]], text: str) -> Iterator[Remark]:
+    """Yield a remark for each row with the cases in which it holds, put into the text for ``{cases}``."""
+    every = sum(1 for _ in solved.running)
+    for row, cases in found.items():
+        path = f"{group}.{row}"
+        yield Remark(path, solved.place(path), text.format(cases=among(cases, every)))
