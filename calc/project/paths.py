@@ -74,6 +74,10 @@ def follow(
             return _field(reader, written, path, SINGLE[group], Target(group, ("",), None))
         case ["constants", name, _] if name in CONSTANTS:
             return _field(reader, written, path, CONSTANTS[name], Target("constants", (name,), None))
+        case ["constants", name, _]:
+            found = f"there are no constants {quoted(name)}"
+            known = tuple(CONSTANTS)
+            reader.note(written.mark, "unknown-path", path, found, f"one of {listed(known)}", reader.near(name, known))
         case [group, pattern] if whole and group in GROUPS and _WORD.fullmatch(pattern):
             return _rows(reader, written, path, works, group)
         case [group, pattern, _] if group in GROUPS and _WORD.fullmatch(pattern):
