@@ -8,7 +8,7 @@ nothing; the accountant runs it on ledger columns. `Network` holds one case as a
 """
 
 from calc.components import junction, pipe, reservoir
-from calc.components.fields import Count, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Text, Word
+from calc.components.fields import Count, Date, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Text, Word
 from calc.components.network import Network
 from calc.components.stated import NO_BASIS, Basis, Record, Stated
 
@@ -20,6 +20,7 @@ __all__ = [
     "SCHEMAS",
     "Basis",
     "Count",
+    "Date",
     "Ends",
     "Field",
     "Fittings",

@@ -38,6 +38,11 @@ class Text:
 
 
 @dataclass(frozen=True, slots=True)
+class Date:
+    """A date of the calendar, year first: ``2026-11-02``."""
+
+
+@dataclass(frozen=True, slots=True)
 class Flag:
     """``true`` or ``false``; ``yes`` and ``no`` are read as the words they are."""
 
@@ -57,7 +62,7 @@ class Fittings:
     """A list of fittings, each by its kind in the shipped table or by its own coefficients."""
 
 
-Form = Quantity | Count | Word | Text | Flag | Node | Ends | Fittings
+Form = Quantity | Count | Word | Text | Date | Flag | Node | Ends | Fittings
 
 
 @dataclass(frozen=True, slots=True)

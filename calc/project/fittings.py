@@ -10,6 +10,7 @@ from calc.components.pipe import FITTING_SCHEMA
 from calc.kinds import NUMBER
 from calc.marks import Mark
 from calc.project import shipped
+from calc.project.notes import empty
 from calc.project.reader import BASIS_KEYS, Reader
 from calc.project.records import Fields, read_fields
 from calc.yamlfile import Mapping, Node, Scalar
@@ -46,7 +47,7 @@ def read_fittings(reader: Reader, node: Node, pipe: str, bore: Stated | None) ->
         at = f"{path}[{number}]"
         member = reader.mapping(item, at, "a mapping: {kind: …} or {K: …}")
         if member is None:
-            if isinstance(item, Scalar) and not item.text:
+            if empty(item):
                 reader.note(item.mark, "wrong-shape", at, "nothing is written here", "{kind: …} or {K: …}")
             continue
         stated, _ = read_fields(reader, schema, member, at, item.mark, extra=BASIS_KEYS)

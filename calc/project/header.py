@@ -2,11 +2,9 @@
 
 from __future__ import annotations
 
-import datetime as dt
-import re
 from pathlib import Path
 
-from calc.components import Field, Record, Schema, Stated, Text, Word
+from calc.components import Date, Field, Record, Schema, Stated, Text, Word
 from calc.marks import Mark
 from calc.project import shipped
 from calc.project.notes import empty
@@ -18,33 +16,76 @@ from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Sequence as ListNode
 
 ROLES = ("originator", "checker", "approver")
-_DATE = re.compile(r"[0-9]{4}-[0-9]{2}-[0-9]{2}", re.ASCII)
 
 
-def _texts(*names: str, required: tuple[str, ...] = ()) -> tuple[Field, ...]:
-    return tuple(Field(name, Text(), required=name in required) for name in names)
+def _texts(required: tuple[str, ...] = (), **words: str) -> tuple[Field, ...]:
+    return tuple(Field(name, Text(), name in required, *said.split(" | ")) for name, said in words.items())
 
 
-HEADER = Schema("project", "project", _texts("number", "title", "revision", "client", "site", "datum"))
+HEADER = Schema(
+    "project",
+    "project",
+    _texts(
+        number="number of the calculation | OTM-HY-014",
+        title="title of the calculation | Ostrel transfer main",
+        revision="revision, which stands under 'revisions' too | P01",
+        client="whom the calculation is for | Ostrel Valley Water Undertaking",
+        site="where the works are | Marl Cross, Ostrel valley",
+        datum="what levels are measured from | Ostrel Local Datum, survey of 2025",
+    ),
+)
 PERSON = Schema(
     "people",
     "person",
-    _texts("name", "organisation", "position", "qualification", "registration", "date", required=("name",)),
+    (
+        *_texts(
+            ("name",),
+            name="name | M. Arden",
+            organisation="employer | Ostrel Valley Water Undertaking",
+            position="position | Senior engineer",
+            qualification="qualification | BEng",
+            registration="registration as an engineer | 204817",
+        ),
+        Field("date", Date(), words="when this person signed", example="2026-11-02"),
+    ),
 )
 REFERENCE = Schema(
     "references",
     "reference",
-    _texts("title", "edition", "kind", "date", "author", "publisher", "number", "note", required=("title",)),
+    _texts(
+        ("title",),
+        title="title | Topographic and tank survey",
+        edition="edition or revision | Rev 2",
+        kind="what it is: survey, drawing, standard … | survey",
+        date="its date | 2025-09-18",
+        author="author | T. Halloway",
+        publisher="publisher | Ostrel Valley Water Undertaking",
+        number="number under which it is filed | OTM-SV-003",
+        note="note | Sheets 1 to 14",
+    ),
 )
 ASSUMPTION = Schema(
     "assumptions",
     "assumption",
-    (Field("text", Text(), required=True), Field("state", Word(("open", "verified")))),
+    (
+        Field("text", Text(), required=True, words="what is assumed", example="The mains are clean"),
+        Field("state", Word(("open", "verified")), words="whether it has been verified", example="open"),
+    ),
+)
+_REVISION = _texts(
+    ("revision", "change"),
+    revision="revision | P01",
+    change="what changed | First issue for checking",
+    by="who made it | M. Arden",
 )
 REVISION = Schema(
     "revisions",
     "revision",
-    _texts("revision", "date", "change", "by", required=("revision", "date", "change")),
+    (
+        _REVISION[0],
+        Field("date", Date(), required=True, words="date, printed on every page", example="2026-11-02"),
+        *_REVISION[1:],
+    ),
 )
 
 
@@ -90,8 +131,6 @@ def read_people(reader: Reader, entry: Entry | None) -> dict[str, Record]:
             reader.unknown(key, path, ROLES)
             continue
         stated, _ = read_fields(reader, PERSON, member, path, key.mark)
-        if "date" in stated:
-            check_date(reader, stated["date"], f"{path}.date")
         found[key.text] = Record(key.text, key.mark, stated)
     return found
 
@@ -152,8 +191,6 @@ def read_revisions(reader: Reader, entry: Entry | None) -> tuple[Record, ...]:
             reader.wrong_shape(item, path, "a mapping: {revision: …, date: …, change: …}")
             continue
         stated, _ = read_fields(reader, REVISION, item, path, item.mark)
-        if "date" in stated:
-            check_date(reader, stated["date"], f"{path}.date")
         name = stated["revision"].text if "revision" in stated else f"[{at}]"
         if name in found:
             mark = stated["revision"].mark
@@ -163,14 +200,3 @@ def read_revisions(reader: Reader, entry: Entry | None) -> tuple[Record, ...]:
             continue
         found[name] = Record(name, item.mark, stated)
     return tuple(found.values())
-
-
-def check_date(reader: Reader, date: Stated, path: str) -> None:
-    """Note a date that is not one of the calendar, year first."""
-    try:
-        sound = _DATE.fullmatch(date.text) and dt.date.fromisoformat(date.text)
-    except ValueError:
-        sound = None
-    if not sound:
-        found = f"{quoted(date.text)} is not a date"
-        reader.note(date.mark, "bad-date", path, found, "year, month and day, such as '2026-11-02'")

@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
+import datetime as dt
 import re
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
 
-from calc.components import Basis, Count, Flag, Quantity, Record, Stated, Text, Word
+from calc.components import Basis, Count, Date, Flag, Quantity, Record, Stated, Text, Word
 from calc.components.fields import Form
 from calc.kinds import Kind
 from calc.project import later
-from calc.project.notes import Notes
+from calc.project.notes import Notes, empty
 from calc.project.spread import KEYS as SPREAD_KEYS
 from calc.project.spread import read_spread
 from calc.project.wording import listed, quoted
@@ -24,6 +25,7 @@ _VALUE_KEYS = ("value", *BASIS_KEYS, *SPREAD_KEYS)
 LONGEST_ID = 64
 _ID = re.compile(rf"[A-Za-z0-9_-]{{1,{LONGEST_ID}}}", re.ASCII)
 _WHOLE = re.compile(r"[0-9]{1,9}", re.ASCII)
+_DATE = re.compile(r"[0-9]{4}-[0-9]{2}-[0-9]{2}", re.ASCII)
 
 
 @dataclass
@@ -80,10 +82,25 @@ class Reader(Notes):
         scalar = self.scalar(node, path, "a text")
         if scalar is None:
             return None
-        if not scalar.text.strip():
+        if empty(scalar) or not scalar.text.strip():
             self.note(scalar.mark, "bad-text", path, "nothing is written here", "a text")
             return None
         return Stated(scalar.text, scalar.text, scalar.mark)
+
+    def date(self, node: Node, path: str) -> Stated | None:
+        """Return a date of the calendar."""
+        stated = self.text(node, path)
+        if stated is None:
+            return None
+        try:
+            sound = _DATE.fullmatch(stated.text) and dt.date.fromisoformat(stated.text)
+        except ValueError:
+            sound = None
+        if not sound:
+            found = f"{quoted(stated.text)} is not a date"
+            self.note(stated.mark, "bad-date", path, found, "year, month and day, such as '2026-11-02'")
+            return None
+        return stated
 
     def basis(self, node: Mapping, path: str) -> Basis:
         """Return what a value rests on, from the keys beside it."""
@@ -119,6 +136,8 @@ class Reader(Notes):
         """Return the value of a field of any scalar form, alone or as ``{value, source, …}``."""
         if isinstance(form, Text):
             return self.text(node, path)
+        if isinstance(form, Date):
+            return self.date(node, path)
         if isinstance(node, Scalar):
             return self.plain(form, node, path, code)
         kind = form.kind if isinstance(form, Quantity) else None

@@ -7,6 +7,7 @@ from collections.abc import Iterable, Mapping
 from calc.components import Ends, Field, Fittings, Node, Schema, Stated
 from calc.marks import Mark
 from calc.project import later
+from calc.project.notes import empty
 from calc.project.reader import LONGEST_ID, Reader
 from calc.project.wording import quoted
 from calc.yamlfile import Mapping as MappingNode
@@ -145,7 +146,7 @@ def read_group(
         if ids and not reader.id(key, at, what):
             continue
         member = reader.mapping(value, at, f"a mapping: the fields of {what}")
-        if member is None and isinstance(value, Scalar) and not value.text:
+        if member is None and empty(value):
             member = MappingNode((), key.mark)
         if member is not None:
             found.append((key, member))
