@@ -19,6 +19,7 @@ BY_QUANTITY = {
     "count": Format(decimals=0),
     "iterations": Format(decimals=0),
     "findings": Format(decimals=0),
+    "found": Format(decimals=0),
     "unsourced": Format(decimals=0),
     "open_assumptions": Format(decimals=0),
     "laminar_below": Format(decimals=0),

@@ -7,7 +7,7 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved, by_case
+from calc.account.findings.finding import Check, Remark, Solved, by_case, place_in_folder
 from calc.components.pipe import LAW_INPUT
 from calc.project import Effective, Project
 
@@ -119,7 +119,7 @@ def groundless_viscosity(project: Project) -> Iterator[Remark]:
             continue
         if stated.shipped:
             text = "the temperature is taken by default, and the viscosity follows from it. State that of the liquid"
-            yield Remark(path, stated.mark.place, text)
+            yield Remark(path, place_in_folder(project, path), text)
         elif not stated.basis.source and not stated.basis.grade:
             text = f"the {field} has neither source nor grade, and friction rests on it. Say where it comes from"
             yield Remark(path, stated.mark.place, text)

@@ -7,7 +7,7 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved
+from calc.account.findings.finding import Check, Remark, Solved, place_in_folder
 from calc.components import Record
 from calc.components.pipe import LAW_INPUT
 from calc.project import Project
@@ -103,10 +103,10 @@ def _defaults(project: Project, wanted: tuple[str, ...]) -> dict[str, str]:
     """Return the places of unconfirmed defaults by subject; the constants of one law are one subject."""
     confirmed = [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
     found: dict[str, str] = {}
-    for path, stated in project.defaults:
+    for path, _ in project.defaults:
         if any(fnmatchcase(path, pattern) for pattern in wanted) and path not in confirmed:
             subject = path.rpartition(".")[0] if path.startswith("constants.") else path
-            found.setdefault(subject, stated.mark.place)
+            found.setdefault(subject, place_in_folder(project, path))
     return found
 
 

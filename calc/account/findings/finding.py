@@ -99,6 +99,16 @@ class CheckOutcome:
     unmade: str
 
 
+def place_in_folder(project: Project, path: str) -> str:
+    """Return where in the project's own files a value by default would stand: its group, or the first reservoir."""
+    group, _, rest = path.partition(".")
+    home = {"site": project.site, "fluid": project.fluid, "constants": project.constants.get(rest.partition(".")[0])}
+    record = home.get(group)
+    if record is None or record.mark.file not in project.texts:
+        record = next(iter(project.reservoirs.values()))
+    return record.mark.place
+
+
 def among(cases: list[str], every: int) -> str:
     """Return cases in words: "in every case", or "in case low", "in cases low and peak"."""
     if len(cases) == every:

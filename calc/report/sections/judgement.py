@@ -4,16 +4,14 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from calc.account import TITLES, CriterionVerdict, Verdict
-from calc.report.composer import FROM, Composer, Sheet, column, figure_column, inputs_of, name, place
-from calc.report.derivation import COLUMNS, lines
-from calc.report.document import Cite, Heading, Own, Paragraph, Parts, Quoted, Row, Soft, Strong
+from calc.account import CriterionVerdict, Verdict
+from calc.report.composer import FROM, Composer, Sheet, column, figure_column, inputs_of, name
+from calc.report.derivation import COLUMNS, displayed, lines
+from calc.report.document import Cite, Heading, Paragraph, Parts, Soft, Strong
+from calc.report.sections.findings import compose_findings
 
 MOST_VERDICTS = 40
 """Verdicts of one criterion that are printed, those with the least margin first."""
-
-
-MOST_FINDINGS = 100
 
 
 def compose_judgement(composer: Composer) -> None:
@@ -25,7 +23,7 @@ def compose_judgement(composer: Composer) -> None:
         sheet.add(Paragraph((Strong(("No criteria are set.",), bar=True), " State them in the inputs.")))
     for judged in verdicts:
         _criterion(sheet, judged)
-    _findings(sheet)
+    compose_findings(sheet)
     sheet.close()
 
 
@@ -39,7 +37,8 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
         return
     governing = judged.governing
     said = (name(governing.subject), Soft((", ", name(governing.case))), ": ")
-    sheet.table(f"worked-{judged.id}", COLUMNS, lines(sheet, governing.margin, *said))
+    derived = [*lines(sheet, governing.margin, *said), *displayed(sheet, [governing.margin], *said)]
+    sheet.table(f"worked-{judged.id}", COLUMNS, derived)
     columns = (
         column("subject", role="statement"),
         column("case", 24, edge=True),
@@ -79,35 +78,3 @@ def _rests_on(sheet: Sheet, verdict: Verdict) -> Cite:
     here = value.id not in sheet.composer.addresses
     refs = inputs_of(sheet.composer.ledger, value) if here else [value.id]
     return Cite((*refs, verdict.limit.id))
-
-
-def _findings(sheet: Sheet) -> None:
-    findings = sheet.composer.account.findings
-    sheet.add(Heading(("Findings",)))
-    for number, title in TITLES.items():
-        held = [finding for finding in findings if finding.id == number]
-        if not held:
-            said = ("No defect found by check ", Own(number, "id"), " (", title.lower(), ").")
-            sheet.add(Paragraph(said, "small"))
-    rows: list[Row] = [
-        sheet.row(
-            (Own(finding.id, "id"),),
-            (Soft((TITLES[finding.id],)),),
-            (Quoted(finding.subject),),
-            (Quoted(finding.text),),
-            (place(finding.place) if finding.place else "–",),
-        )
-        for finding in findings[:MOST_FINDINGS]
-    ]
-    columns = (
-        column("check", 14),
-        column("remark", 30),
-        column("subject", 32, edge=True),
-        column("found", role="statement"),
-        column("file and line", 27, edge=True),
-    )
-    sheet.table("findings", columns, rows)
-    if len(findings) > MOST_FINDINGS:
-        sheet.add(
-            Paragraph(("Many findings: the first are printed, the results file of this package holds all.",), "small")
-        )
