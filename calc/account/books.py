@@ -11,7 +11,7 @@ import numpy as np
 
 from calc.components import SCHEMAS, Count, Quantity, Record, Schema, Stated
 from calc.components.liquid import LiquidTerms, liquid
-from calc.components.pipe import FITTING_SCHEMA
+from calc.components.fitting import SCHEMA as FITTING_SCHEMA
 from calc.equation import Equation, Reference, Symbol, equation
 from calc.kinds import (
     ACCELERATION,

@@ -10,7 +10,7 @@ from typing import Any
 from calc.cli import forms
 from calc.cli.outcome import Outcome
 from calc.components import SCHEMAS, Field, Quantity, Schema
-from calc.components.pipe import FITTING_SCHEMA
+from calc.components.fitting import SCHEMA as FITTING_SCHEMA
 from calc.criteria import ALL, Criterion
 from calc.kinds import NUMBER
 from calc.physics.friction import LAW_NAMES

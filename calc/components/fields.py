@@ -9,12 +9,22 @@ from calc.kinds import NUMBER, Kind
 
 @dataclass(frozen=True, slots=True)
 class Quantity:
-    """A number with a unit of a kind, within bounds in SI."""
+    """A number with a unit of a kind, within bounds in SI.
+
+    Attributes
+    ----------
+    bare : str
+        The unit of a number without one, where the name of the field fixes it; empty where a unit must stand.
+    table : str
+        The shipped table of materials from which ``{material: …}`` may take it; empty where there is none.
+    """
 
     kind: Kind = NUMBER
     above: float | None = None
     at_least: float | None = None
     at_most: float | None = None
+    bare: str = ""
+    table: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -81,6 +91,8 @@ class Field:
         What it is, for schemas and input tables.
     example : str
         A value as a user would write it, where that of its kind would not fit.
+    fixed : str
+        What to do instead where a case may not change it; empty where it may.
     """
 
     name: str
@@ -88,19 +100,22 @@ class Field:
     required: bool = False
     words: str = ""
     example: str = ""
+    fixed: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class Schema:
     """The fields of a group of components.
 
-    ``excludes`` are pairs of fields that say the same thing, of which at most one may stand.
+    ``excludes`` are pairs of fields that say the same thing, of which at most one may stand; of each group in
+    ``either`` one must.
     """
 
     group: str
     singular: str
     fields: tuple[Field, ...]
     excludes: tuple[tuple[str, str], ...] = ()
+    either: tuple[tuple[str, ...], ...] = ()
 
     def field(self, name: str) -> Field | None:
         """Return the field of that name, or None."""

@@ -5,11 +5,13 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Generic, TypeVar
 
-from calc.components.fields import Count, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Word
+from calc.components.fields import Count, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Text, Word
 from calc.equation import Evaluator, Labels
 from calc.equation.evaluation import Rows
 from calc.kinds import BORE, HEAD, LENGTH, NUMBER, PRESSURE, ROUGHNESS
 from calc.physics import energy, fitting, friction, velocity
+
+SET_BORE = "set 'bore' in the case"
 
 SCHEMA = Schema(
     "pipes",
@@ -18,16 +20,27 @@ SCHEMA = Schema(
         Field("from", Node(), required=True, words="node at which the pipe begins"),
         Field("to", Node(), required=True, words="node at which the pipe ends"),
         Field("length", Quantity(LENGTH, above=0.0), required=True, words="length along the pipe"),
-        Field("bore", Quantity(BORE, above=0.0), required=True, words="bore"),
-        Field("roughness", Quantity(ROUGHNESS, at_least=0.0), words="roughness height"),
+        Field("bore", Quantity(BORE, above=0.0), words="bore"),
+        Field("size", Text(), words="nominal size in the standard's table", example="DN400", fixed=SET_BORE),
+        Field("standard", Text(), words="standard of the pipe", example="EN 545", fixed=SET_BORE),
+        Field("class", Text(), words="class of the pipe in the standard's table", example="C40", fixed=SET_BORE),
+        Field("outside_diameter", Quantity(BORE, above=0.0), words="outside diameter", fixed=SET_BORE),
+        Field("wall", Quantity(BORE, above=0.0), words="wall thickness", example="6 mm", fixed=SET_BORE),
+        Field("lining", Quantity(BORE, at_least=0.0), words="thickness of the lining", example="5 mm", fixed=SET_BORE),
+        Field("roughness", Quantity(ROUGHNESS, at_least=0.0, table="roughness"), words="roughness height"),
         Field("friction_factor", Quantity(NUMBER, above=0.0), words="Darcy f, fixed", example="0.02"),
         Field(
             "hazen_williams_c",
-            Quantity(NUMBER, at_least=10.0, at_most=200.0),
+            Quantity(NUMBER, at_least=10.0, at_most=200.0, table="hazen-williams"),
             words="Hazen–Williams C",
             example="130",
         ),
-        Field("manning_n", Quantity(NUMBER, at_least=0.005, at_most=0.1), words="Manning n", example="0.011"),
+        Field(
+            "manning_n",
+            Quantity(NUMBER, at_least=0.005, at_most=0.1, table="manning"),
+            words="Manning n",
+            example="0.011",
+        ),
         Field("law", Word(friction.LAW_NAMES), words="friction law"),
         Field("ends", Ends(), words="losses at reservoir ends"),
         Field("fittings", Fittings(), words="fittings"),
@@ -35,21 +48,15 @@ SCHEMA = Schema(
         Field("open", Flag(), words="whether it is open"),
         Field("pressure_rating", Quantity(PRESSURE, above=0.0), words="pressure rating"),
     ),
-)
-
-FITTING_SCHEMA = Schema(
-    "fittings",
-    "fitting",
-    (
-        Field("kind", Word(()), words="kind in the shipped table"),
-        Field("K", Quantity(NUMBER, at_least=0.0), words="loss coefficient, flow forward"),
-        Field("K_reverse", Quantity(NUMBER, at_least=0.0), words="loss coefficient, flow in reverse"),
-        Field("count", Count(), words="number of like fittings"),
-        Field("bore", Quantity(BORE, above=0.0), words="bore on which the coefficient stands"),
+    excludes=(
+        ("bore", "size"),
+        ("bore", "outside_diameter"),
+        ("bore", "wall"),
+        ("bore", "lining"),
+        ("size", "outside_diameter"),
     ),
-    excludes=(("kind", "K"),),
+    either=(("bore", "size", "outside_diameter"),),
 )
-"""The options of ``kind`` are the entries of the shipped table, which the reader supplies."""
 
 LAW_INPUT = {
     **dict.fromkeys(friction.ROUGH_PIPE_LAWS, "roughness"),
@@ -146,8 +153,11 @@ class PipeResults(Generic[T]):
 
 def transition_limits(on: Evaluator[T], pipe: PipeTerms[T]) -> TransitionLimits[T]:
     """Return Darcy f at the ends of the transition, for pipes whose law has one."""
+    laminar = pipe.laminar_below  # read by no law unless some pipe has a transition
+    if any(pipe.law.words[code] in friction.ROUGH_PIPE_LAWS for code in set(pipe.law.codes.tolist())):
+        laminar = on.apply("constants.factor_laminar", friction.factor_at_laminar_limit, laminar_below=laminar)
     return TransitionLimits(
-        on.apply("constants.factor_laminar", friction.factor_at_laminar_limit, laminar_below=pipe.laminar_below),
+        laminar,
         on.apply(
             "pipes.factor_turbulent",
             friction.AT_TURBULENT_LIMIT,

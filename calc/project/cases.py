@@ -95,6 +95,10 @@ def _read_line(
     target = follow(reader, where, at, works)
     if target is None or target.field is None:
         return None
+    if target.field.fixed:
+        found = f"'{target.field.name}' is the same in every case"
+        reader.note(where.mark, "fixed-field", at, found, "a field that a case may change", target.field.fixed)
+        return None
     if how == "times":
         stated = _read_factor(reader, target, where, what, at)
         return None if stated is None else _line(where, target, "times", stated)

@@ -6,7 +6,7 @@ from dataclasses import replace
 
 from calc.components import Quantity, Record, Schema, Stated, Text, Word
 from calc.components.fields import Field
-from calc.components.pipe import FITTING_SCHEMA
+from calc.components.fitting import SCHEMA as FITTING_SCHEMA
 from calc.kinds import NUMBER
 from calc.marks import Mark
 from calc.project import shipped

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Collection, Sequence
 from dataclasses import dataclass, field
 from functools import lru_cache
@@ -20,6 +21,9 @@ _LONGEST_PATH = 160
 _MOST_HINTS = 100
 MOST_TO_COMPARE = 2000
 """Above so many words, none is sought that comes near."""
+
+_BARE = re.compile(r"[-+0-9.eE ]{1,60}", re.ASCII)
+"""What may be a number without a unit."""
 
 _KINDS = {kind.name: kind for kind in KINDS}
 
@@ -124,7 +128,8 @@ class Notes:
         expected = []
         for form in forms:
             name = form.kind.name
-            got = _kept(scalar.text, name) if name in _KINDS else _quantity(scalar.text, form.kind)
+            text = f"{scalar.text} {form.bare}" if form.bare and _BARE.fullmatch(scalar.text) else scalar.text
+            got = _kept(text, name) if name in _KINDS else _quantity(text, form.kind)
             if not isinstance(got, units.UnitTrouble):
                 if wanted := outside(form, got.value):
                     found = f"{quoted(scalar.text)} is out of range"

@@ -103,9 +103,13 @@ def _require(reader: Reader, schema: Schema, node: MappingNode, path: str, mark:
     later_here = later.FIELDS.get(schema.group, {})
     for field in schema.fields:
         if field.required and field.name not in present:
-            if "segments" in later_here and "segments" in present:
+            if later_for_all(later_here, present):
                 continue
             missing(reader, schema.singular, field, f"{path}.{field.name}", mark)
+    for names in schema.either:
+        first = schema.field(names[0])
+        if first is not None and not set(names) & set(present) and not later_for_all(later_here, present):
+            missing(reader, schema.singular, first, f"{path}.{first.name}", mark, names[1:])
     noted: set[str] = set()
     for one, other in schema.excludes:
         if one in present and other in present and one not in noted:
@@ -115,12 +119,21 @@ def _require(reader: Reader, schema: Schema, node: MappingNode, path: str, mark:
             reader.note(at, "excluded-pair", f"{path}.{other}", found, "one of the two")
 
 
-def missing(reader: Reader, what: str, field: Field, path: str, mark: Mark) -> None:
-    """Note a required field that is not there."""
+def later_for_all(later_here: Mapping[str, str], present: Iterable[str]) -> bool:
+    """Return whether a word that is for later stands here in place of required fields."""
+    return "segments" in later_here and "segments" in present
+
+
+def missing(  # noqa: PLR0917 - as a problem is told
+    reader: Reader, what: str, field: Field, path: str, mark: Mark, others: Iterable[str] = ()
+) -> None:
+    """Note a required field that is not there, nor any of the others that would do."""
     kind = getattr(field.form, "kind", None)
     wanted = f"'{field.name}: {kind.example}'" if kind is not None else f"'{field.name}'"
     article = "an" if what[0] in "aeiou" else "a"
-    reader.note(mark, "missing-key", path, f"'{field.name}' is missing", f"{article} {what} with {wanted}")
+    instead = "".join(f", or '{other}'" for other in others)
+    expected = f"{article} {what} with {wanted}{instead}"
+    reader.note(mark, "missing-key", path, f"'{field.name}' is missing", expected)
 
 
 def read_group(

@@ -7,10 +7,9 @@ from collections.abc import Mapping
 import numpy as np
 import pytest
 
-from calc.components import SCHEMAS, Count, Field, Network, Quantity
+from calc.components import SCHEMAS, Count, Field, Network, Quantity, fitting
 from calc.components.liquid import LiquidTerms, liquid
 from calc.components.pipe import (
-    FITTING_SCHEMA,
     LAW_INPUT,
     EmpiricalConstants,
     FittingTerms,
@@ -114,7 +113,7 @@ def test_pipes_without_fittings_lose_to_friction_alone() -> None:
 
 def test_every_law_has_its_input_and_every_field_its_words() -> None:
     assert set(LAW_INPUT) == set(LAW_NAMES)
-    for schema in (*SCHEMAS, FITTING_SCHEMA):
+    for schema in (*SCHEMAS, fitting.SCHEMA):
         assert len({field.name for field in schema.fields}) == len(schema.fields)
         for field in schema.fields:
             assert field.words
