@@ -9,17 +9,16 @@ import numpy as np
 
 from calc import second
 from calc.components import Network
-from calc.equation import Reference, Symbol, Unit, equation
+from calc.equation import Reference, Symbol, equation
 from calc.kinds import FLOW, HEAD, Kind
 from calc.ledger import Accountant, Column, Ledger, Program, Spot, View
+from calc.physics import symbols as s
 from calc.solve import Solution
 
 LARGEST_RESOLVED = 5000
 """Pipes above which the laws and continuity are evaluated at the answer instead of solving again."""
 
 CONVENTION = Reference("convention", "Agreement as this program defines it, stated in every package")
-CUBIC_METRE_PER_SECOND = Unit("m³/s", FLOW.dimension)
-METRE = Unit("m", HEAD.dimension)
 
 
 @equation(
@@ -30,7 +29,7 @@ METRE = Unit("m", HEAD.dimension)
 )
 def allowed_flow_difference(*, largest_flow: Any) -> Any:  # noqa: ANN401
     """Difference of flow allowed between the two solutions."""
-    return 1e-6 * largest_flow + 1e-9 * CUBIC_METRE_PER_SECOND
+    return 1e-6 * largest_flow + 1e-9 * s.CUBIC_METRE_PER_SECOND
 
 
 @equation(
@@ -42,7 +41,7 @@ def allowed_flow_difference(*, largest_flow: Any) -> Any:  # noqa: ANN401
 )
 def allowed_head_difference(*, highest: Any, lowest: Any) -> Any:  # noqa: ANN401
     """Difference of head allowed between the two solutions."""
-    return 1e-6 * (highest - lowest) + 1e-6 * METRE
+    return 1e-6 * (highest - lowest) + 1e-6 * s.METRE
 
 
 def _difference(kind: Kind) -> Any:  # noqa: ANN401
