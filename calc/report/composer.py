@@ -4,12 +4,14 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import replace
+from functools import cached_property
 
 import numpy as np
 
 from calc.account import Account
 from calc.equation.law import takes
 from calc.ledger import Combined, Derived, Judged, Ledger, Solved, Spot, proofs
+from calc.report.conversion import empirical, enter_worths, units_needed
 from calc.report.display import Display
 from calc.report.document import (
     Block,
@@ -54,8 +56,18 @@ class Composer:
         self.addresses: dict[str, str] = {}
         self.sections: list[Section] = []
         self.files: dict[str, bytes] = {}
-        self.converted: set[tuple[str, str]] = set()
+        self.worked_in: dict[str, list[str]] = {}
+        enter_worths(self.ledger, units_needed(self.ledger, self.display))
         self.figures = 0
+
+    @cached_property
+    def taken_by_laws(self) -> set[int]:
+        """Columns, by identity, that laws in coherent units take; what an empirical law gives may be among them."""
+        origins = [column.origin for column in self.ledger.columns]
+        laws = [origin for origin in origins if isinstance(origin, Derived) and not empirical(origin.leaf)]
+        views = [view for law in laws for view in law.inputs.values()]
+        views += [origin.terms for origin in origins if isinstance(origin, Combined)]
+        return {id(source) for view in views for source in view.sources}
 
     @property
     def flow_unit(self) -> str:

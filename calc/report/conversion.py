@@ -15,13 +15,18 @@ from typing import Any
 from calc import kinds
 from calc.account.books import enter_stated
 from calc.components import Stated
-from calc.equation import Equation, Reference, Symbol, equation
+from calc.equation import Equation, Expression, Implicit, Leaf, Literal, Operation, Reference, Symbol, equation
+from calc.equation.law import gives, takes
 from calc.kinds import Kind
-from calc.ledger import Ledger
-from calc.physics.symbols import KELVIN
+from calc.ledger import Derived, Ledger
+from calc.physics.symbols import KELVIN, TEMPERATURE
 from calc.problems import ProblemsFound
+from calc.report.display import BY_FIELD, SI, Display
 from calc.verification.reading import quantity
 from calc.yamlfile import Mapping, Scalar, read_text
+
+CONVERTED = ("flow", "head", "velocity", "pressure", "gradient", "density", "viscosity")
+"""Fields of ``display`` whose numbers are worked out in a package, and so converted; the rest are inputs."""
 
 PLACE = "calc/data/units.yaml"
 WORTH = "units.worth"
@@ -39,7 +44,6 @@ KINDS: dict[str, Kind] = {
 """Kinds of the units of the shipped table, by its groups."""
 
 DEFINITION = Reference("definition", "Definition")
-IN_KELVIN = Symbol("T", kinds.TEMPERATURE, "absolute temperature")
 
 
 @lru_cache(maxsize=1)
@@ -67,6 +71,37 @@ def worths() -> dict[str, tuple[Kind, Stated]]:
     return found
 
 
+def empirical(leaf: Leaf) -> bool:
+    """Return whether the numbers of a law hold in SI alone: it divides by units, or adds amounts of them."""
+    equation = leaf.residual if isinstance(leaf, Implicit) else leaf
+    return _holds_units(equation.expression)
+
+
+def _holds_units(node: Expression) -> bool:
+    if isinstance(node, Operation):
+        return any(_holds_units(part) for part in node.args)
+    return isinstance(node, Literal) and bool(node.unit)
+
+
+def units_needed(ledger: Ledger, display: Display) -> list[str]:
+    """Return the units that a package may convert into: those displayed, and those that empirical laws ask for."""
+    needed = [one.unit(field) for one in (display, *display.beside) for field in CONVERTED]
+    needed = [unit for unit in needed if unit not in {display.coherent(kind) for kind, _ in worths().values()}]
+    if display.system == SI.system:
+        return needed
+    for leaf in _worked(ledger):
+        if empirical(leaf):
+            needed += [SI.coherent(symbol.kind) for symbol in takes(leaf).values()]
+            needed.append(display.coherent(gives(leaf).kind))
+    return needed
+
+
+def _worked(ledger: Ledger) -> Iterable[Leaf]:
+    """Return each law whose lines are worked on the pages; those of the second opinion are only compared."""
+    origins = [column.origin for column in ledger.columns if column.group not in ("second", "verification")]
+    return {origin.leaf.name: origin.leaf for origin in origins if isinstance(origin, Derived)}.values()
+
+
 def enter_worths(ledger: Ledger, units: Iterable[str]) -> None:
     """Enter what one of each of some units is worth; those that stand already are left."""
     standing = {row for column in ledger.find(WORTH) for row in column.rows}
@@ -88,7 +123,7 @@ def conversion(kind: Kind) -> Equation:
     """Return the law by which a quantity of a kind becomes a number in a unit."""
 
     @equation(
-        gives=Symbol("N", kinds.NUMBER, "number in the unit"),
+        gives=Symbol("N_U", kinds.NUMBER, "number in the unit U"),
         source=DEFINITION,
         valid="any unit without a zero of its own",
         amount=Symbol("X", kind, "quantity"),
@@ -105,7 +140,7 @@ def conversion(kind: Kind) -> Equation:
     gives=Symbol("t", kinds.NUMBER, "temperature in degrees Celsius"),
     source=DEFINITION,
     valid="any temperature",
-    amount=IN_KELVIN,
+    amount=TEMPERATURE,
 )
 def degrees_celsius(*, amount: Any) -> Any:  # noqa: ANN401
     """Temperature in degrees Celsius."""
@@ -116,7 +151,7 @@ def degrees_celsius(*, amount: Any) -> Any:  # noqa: ANN401
     gives=Symbol("t", kinds.NUMBER, "temperature in degrees Fahrenheit"),
     source=DEFINITION,
     valid="any temperature",
-    amount=IN_KELVIN,
+    amount=TEMPERATURE,
 )
 def degrees_fahrenheit(*, amount: Any) -> Any:  # noqa: ANN401
     """Temperature in degrees Fahrenheit."""
@@ -125,6 +160,13 @@ def degrees_fahrenheit(*, amount: Any) -> Any:  # noqa: ANN401
 
 SCALES: dict[str, Equation] = {"°C": degrees_celsius, "°F": degrees_fahrenheit}
 """Scales of temperature, which have a zero of their own."""
+
+
+def laws_of(display: Display) -> list[Equation]:
+    """Return the laws by which a package converts: one for each kind of quantity, and one for each scale."""
+    shown = {one.unit("temperature") for one in (display, *display.beside)}
+    scales = [law for unit, law in SCALES.items() if unit in shown]
+    return [*(conversion(BY_FIELD[field].kind) for field in CONVERTED), *scales]
 
 
 def law_into(unit: str, kind: Kind) -> Equation:

@@ -7,12 +7,12 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from calc.equation import Expression, Implicit, Leaf, Literal, Operation
+from calc.equation import Leaf
 from calc.equation.evaluation import evaluate_leaf
 from calc.equation.law import takes
 from calc.ledger import Combined, Derived, Spot
 from calc.report.composer import FROM, INTO, Sheet, cited, inputs_of
-from calc.report.conversion import enter_worths, law_into, worth_id
+from calc.report.conversion import empirical, law_into, worth_id
 from calc.report.display import FIELD_OF, SI, Display
 from calc.report.document import Cite, Formula, Letter, Number, Own, Part, Parts, Row, TableColumn
 from calc.report.formats import shortest
@@ -61,18 +61,6 @@ def worked(spot: Spot, display: Display) -> Worked:
     if isinstance(origin, Combined):
         return Worked(_sum(origin, spot.row, display), result, unit)
     return Worked((spot.column.quantity.replace("_", " "),), result, unit)
-
-
-def empirical(leaf: Leaf) -> bool:
-    """Return whether the numbers of a law hold in SI alone: it divides by units, or adds amounts of them."""
-    equation = leaf.residual if isinstance(leaf, Implicit) else leaf
-    return _holds_units(equation.expression)
-
-
-def _holds_units(node: Expression) -> bool:
-    if isinstance(node, Operation):
-        return any(_holds_units(part) for part in node.args)
-    return isinstance(node, Literal) and bool(node.unit)
 
 
 def _result(spot: Spot, unit: str) -> Number:
@@ -155,14 +143,15 @@ def lines(sheet: Sheet, spot: Spot, *before: Part) -> list[Row]:
 
 def _worked_with_conversions(sheet: Sheet, spot: Spot, *before: Part) -> list[Row]:
     """Return a worked line; of an empirical law, its operands put into SI before it and its result back after it."""
-    display, origin = sheet.composer.display, spot.column.origin
-    if display.system == SI.system or not isinstance(origin, Derived) or not empirical(origin.leaf):
+    composer, origin = sheet.composer, spot.column.origin
+    if composer.display.system == SI.system or not isinstance(origin, Derived) or not empirical(origin.leaf):
         return [line(sheet, spot, *before)]
     taken = [origin.inputs[name].spot(spot.row) for name in takes(origin.leaf)]
     rows = [row for one in taken if one for row in converted(sheet, Spot(*one), SI.coherent(one[0].kind), *before)]
     rows.append(line(sheet, spot, *before))
-    kind = spot.column.kind
-    return [*rows, *converted(sheet, spot, display.coherent(kind), *before, source=kind.unit)]
+    if id(spot.column) in composer.taken_by_laws:
+        rows += converted(sheet, spot, composer.display.coherent(spot.column.kind), *before)
+    return rows
 
 
 def line(sheet: Sheet, spot: Spot, *before: Part) -> Row:
@@ -178,17 +167,21 @@ def line(sheet: Sheet, spot: Spot, *before: Part) -> Row:
     )
 
 
-def converted(sheet: Sheet, spot: Spot, unit: str, *before: Part, source: str = "") -> list[Row]:
-    """Return the conversion of a number into a unit as the next line, unless it stands already or none is needed.
+def converted(sheet: Sheet, spot: Spot, unit: str, *before: Part) -> list[Row]:
+    """Return the conversion of a number into a unit as the next line, unless it stands in that unit already.
 
-    It is converted from ``source``, or else from the coherent unit of the display.
+    It is converted from the coherent unit of the display, or from SI where an empirical law gave it.
     """
-    composer, kind = sheet.composer, spot.column.kind
-    source = source or composer.display.coherent(kind)
-    if unit == source or (spot.id, unit) in composer.converted:
+    composer, kind, origin = sheet.composer, spot.column.kind, spot.column.origin
+    units = composer.worked_in.setdefault(spot.id, [])
+    if not units:
+        in_si = isinstance(origin, Derived) and empirical(origin.leaf)
+        units.append((SI if in_si else composer.display).coherent(kind))
+    if unit in units:
         return []
-    composer.converted.add((spot.id, unit))
-    enter_worths(composer.ledger, [unit])
+    coherent = composer.display.coherent(kind)
+    source = coherent if coherent in units else units[0]
+    units.append(unit)
     law, form = law_into(unit, kind), _form_into(composer.display, spot, unit)
     result = Number(spot.id, form, written(spot.value, kind, form))
     spots = {"amount": spot}

@@ -14,7 +14,19 @@ from calc.account import Account
 from calc.ledger import Combined, Converted, Derived, Given, Judged, Library, Program, Solved, Spot, proofs
 from calc.ledger.origin import Combined as Total
 from calc.report.composer import inputs_of
-from calc.report.document import Bullets, Cite, Document, Figure, Heading, Index, Listing, Paragraph, SignOff, Table
+from calc.report.document import (
+    Bullets,
+    Cite,
+    Document,
+    Figure,
+    Formula,
+    Heading,
+    Index,
+    Listing,
+    Paragraph,
+    SignOff,
+    Table,
+)
 from calc.report.figures import Balance, Convergence, Schematic
 from calc.report.numbers import written
 
@@ -147,7 +159,11 @@ def test_worked_lines_cite_the_lines_of_their_operands(name: str) -> None:
     for held in tables(document, "derivation-"):
         for row in held.rows:
             cite = next(part for part in parts_within(row.cells[3]) if isinstance(part, Cite))
-            assert set(cite.refs) == own_inputs(account, row.refs[0])
+            if row.refs:
+                assert set(cite.refs) == own_inputs(account, row.refs[0])
+            else:  # a conversion: of a number, by the worth of a unit
+                formula = next(part for part in row.cells[0] if isinstance(part, Formula))
+                assert set(cite.refs) == {number.ref for number in (formula.operands or {}).values()}
 
 
 @EVERY

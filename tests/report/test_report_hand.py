@@ -23,6 +23,7 @@ from calc.report.document import Document, Formula, Number, Part, Row, Table
 from calc.report.numbers import written
 from calc.solve.rules import RULES
 
+CONVERSIONS = ("number_in_unit", "degrees_celsius", "degrees_fahrenheit")
 EVERY = pytest.mark.parametrize("name", NAMES)
 
 
@@ -72,6 +73,8 @@ def test_a_worked_line_with_one_wrong_figure_is_not_repeated() -> None:
 @EVERY
 def test_operands_are_in_coherent_units(name: str) -> None:
     for row, part in formulas(work(name).document):
+        if part.law.name in CONVERSIONS:
+            continue
         law: Equation = part.law.residual if isinstance(part.law, Implicit) else part.law
         for operand, number in (part.operands or {}).items():
             assert number.form.unit == law.takes[operand].kind.unit, row.address

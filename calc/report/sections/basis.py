@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 
 from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report import figures
-from calc.report.composer import Composer, Sheet, column
-from calc.report.derivation import COLUMNS, lines
-from calc.report.document import Figure, Heading, Paragraph, Parts, Quoted, Strong
+from calc.report.composer import Composer, Sheet, column, figure_column
+from calc.report.derivation import COLUMNS, displayed, lines
+from calc.report.document import Cite, Figure, Heading, Paragraph, Parts, Quoted, Strong, TableColumn
 
 CONVENTIONS = (
     "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
@@ -65,7 +65,44 @@ def _liquid(sheet: Sheet) -> None:
         spots = [s for s in derived_of(sheet.composer.ledger, ("fluid", "site"), case) if s.column.of == ""]
         if spots:
             sheet.add(Heading(("Liquid and air", *(() if case == "base" else (", case ", Quoted(case))))))
-            sheet.table("liquid", COLUMNS, [row for spot in spots for row in lines(sheet, spot)])
+            in_use = list(_in_use(sheet.composer.ledger, case))
+            rows = [row for spot in spots for row in lines(sheet, spot)]
+            rows += [row for spot in in_use for row in displayed(sheet, [spot])]
+            sheet.table("liquid", COLUMNS, rows)
+            _properties(sheet, in_use)
+
+
+PROPERTIES = (
+    ("fluid.temperature", "temperature"),
+    ("fluid.density", "density"),
+    ("fluid.viscosity", "kinematic viscosity"),
+    ("fluid.vapour_pressure", "vapour pressure, absolute"),
+    ("site.atmospheric_pressure", "atmospheric pressure, absolute"),
+    ("site.gravity", "acceleration of gravity"),
+)
+"""Properties in use, by their columns."""
+
+
+def _in_use(ledger: Ledger, case: str) -> Iterator[Spot]:
+    """Yield the properties of liquid and air in a case, as stated or worked out."""
+    for wanted, _ in PROPERTIES:
+        yield from (Spot(one, 0) for one in ledger.find(wanted, case)[:1])
+
+
+def _properties(sheet: Sheet, in_use: list[Spot]) -> None:
+    """Add the properties in use, in the units of the tables."""
+    words = dict(PROPERTIES)
+    columns = (
+        column("in use", role="statement"),
+        figure_column("value", width=34, edge=True),
+        column("", 18, role="unit"),
+        TableColumn(("from",), width=30, edge=True, role="from"),
+    )
+    rows = []
+    for spot in in_use:
+        number = sheet.composer.number(spot)
+        rows.append(sheet.row((words[spot.column.name],), (number,), (number.form.unit,), (Cite((spot.id,)),)))
+    sheet.table("properties", columns, rows)
 
 
 def _schematic(sheet: Sheet) -> None:

@@ -5,22 +5,25 @@ from __future__ import annotations
 from calc.account import WITHOUT_SOURCE
 from calc.ledger import Column, Converted, Derived, Given, Library, Spot
 from calc.report.composer import INTO, Composer, Sheet, column, place
+from calc.report.conversion import WORTH
 from calc.report.derivation import COLUMNS as WORKED
 from calc.report.derivation import lines
-from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong
+from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong, TableColumn
 from calc.report.formats import shortest
 from calc.report.numbers import shown, written
 from calc.report.sections.results import kind_of_fitting
 from calc.report.selection import shown_inputs
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
-FIGURES = 10
+FIGURES, CONVERTED_FIGURES = 10, 8
 
 
 def compose_inputs(composer: Composer) -> None:
     """Compose the list of inputs."""
-    lead = "Each given number as written and in SI: who gave it, how far it is trusted, and where it stands."
+    units = UNITS[composer.display.system]
+    lead = f"Each given number as written and {units}: who gave it, how far it is trusted, and where it stands."
     sheet = composer.begin("inputs", "Inputs", lead)
+    columns = _columns(units)
     given = [
         c
         for c in composer.ledger.columns
@@ -31,7 +34,7 @@ def compose_inputs(composer: Composer) -> None:
         rows = _rows(sheet, [c for c in users if c.case == case or (case == "base" and not c.case)])
         if rows:
             sheet.add(Heading(("As stated",) if case == "base" else ("Changed by case ", Quoted(case))))
-            sheet.table("inputs", COLUMNS, rows)
+            sheet.table("inputs", columns, rows)
         followed = [
             row
             for spot in _followed(sheet, case)
@@ -42,7 +45,7 @@ def compose_inputs(composer: Composer) -> None:
     rows = _rows(sheet, shipped)
     if rows:
         sheet.add(Heading(("Defaults and shipped tables in use",)))
-        sheet.table("inputs-shipped", COLUMNS, rows)
+        sheet.table("inputs-shipped", columns, rows)
     if shown_inputs(composer.account) is not None:
         said = "Of pipes and junctions, those are listed whose results are printed; the rest stand in the input files "
         sheet.add(Paragraph((said + "with their lines, and in the ledger file of this package.",), "small"))
@@ -55,15 +58,20 @@ def compose_inputs(composer: Composer) -> None:
     sheet.close()
 
 
-COLUMNS = (
-    column("given", role="statement"),
-    column("as written", 22, edge=True, align="right"),
-    column("in SI", 18, align="right", role="value"),
-    column("", 10, role="unit"),
-    column("source, page, grade, note", 34, edge=True),
-    column("file and line", 30),
-    INTO,
-)
+UNITS = {"SI": "in SI", "US": "in US units"}
+"""What the coherent units of a system are called."""
+
+
+def _columns(units: str) -> tuple[TableColumn, ...]:
+    return (
+        column("given", role="statement"),
+        column("as written", 22, edge=True, align="right"),
+        column(units, 18, align="right", role="value"),
+        column("", 10, role="unit"),
+        column("source, page, grade, note", 34, edge=True),
+        column("file and line", 30),
+        INTO,
+    )
 
 
 def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
@@ -107,10 +115,10 @@ def _followed(sheet: Sheet, case: str) -> list[Spot]:
 LARGE = ("pipes", "junctions", "fittings")
 """Groups of which only a part is printed where they are large."""
 
-GATHERED = ("fittings", "criteria")
+GATHERED = ("fittings", "criteria", "units")
 """Groups whose components are small, listed under one heading."""
 
-ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria")
+ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria", "units")
 
 
 def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
@@ -119,7 +127,10 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
         raise TypeError(f"{spot.id} is no input")
     kind = spot.column.kind
     unit = sheet.composer.display.coherent(kind)
-    form = shortest(shown(spot.value, kind, unit), unit, FIGURES)
+    if spot.column.name == WORTH and spot.column.rows[spot.row] == unit:
+        unit = kind.unit
+    figures = FIGURES if isinstance(origin, Given) and unit == kind.unit else CONVERTED_FIGURES
+    form = shortest(shown(spot.value, kind, unit), unit, figures)
     number = Number(spot.id, form, written(spot.value, kind, form))
     basis = origin.bases[spot.row]
     said: Parts = (Quoted(basis),) if basis else (Strong(("no source",), bar=True),)

@@ -7,7 +7,8 @@ import re
 from calc.equation import Equation, Implicit, Leaf
 from calc.ledger import Derived
 from calc.report.composer import Composer, Sheet, column
-from calc.report.derivation import empirical, symbols_of
+from calc.report.conversion import empirical, laws_of
+from calc.report.derivation import symbols_of
 from calc.report.display import SI, Display
 from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Parts, Row, Soft
 from calc.solve.rules import RULES
@@ -51,9 +52,11 @@ def compose_method(composer: Composer) -> None:
     estimates = {leaf.start.name for leaf in leaves.values() if isinstance(leaf, Implicit)} - _applied(composer)
     sheet.add(Heading(("Equations in use",)))
     columns = (column("equation", role="statement"), column("source", 34, edge=True), column("range", 44))
+    conversions: list[Leaf] = [*laws_of(composer.display)]
+    leaves |= {law.name: law for law in conversions}
     sheet.table("equations", columns, [_equation(sheet, leaf, estimates) for leaf in leaves.values()])
     sheet.add(Heading(("Symbols",)))
-    _symbols(sheet, _gathered(laws_in_use(composer), composer.display))
+    _symbols(sheet, _gathered([*laws_in_use(composer), *conversions], composer.display))
     sheet.add(
         Paragraph(
             ("Empirical equations are worked in SI; their inputs are divided by the units shown first.",),

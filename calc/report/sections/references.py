@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from calc.equation import Implicit
 from calc.report.composer import Composer, column
+from calc.report.conversion import laws_of
 from calc.report.document import Heading, Own, Paragraph, Quoted
 from calc.report.sections.method import laws_in_use
 
@@ -35,7 +36,7 @@ def compose_references(composer: Composer) -> None:
         sheet.add(Paragraph(("The project names no references.",)))
     sheet.add(Heading(("Of the equations",)))
     sources: dict[str, str] = {}
-    for leaf in laws_in_use(composer):
+    for leaf in (*laws_in_use(composer), *laws_of(composer.display)):
         equation = leaf.residual if isinstance(leaf, Implicit) else leaf
         sources.setdefault(equation.source.key, equation.source.text)
     keyed = (column("key", 34), column("source", role="statement"))

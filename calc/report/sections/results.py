@@ -9,7 +9,7 @@ import numpy as np
 from calc.account import CaseAccount
 from calc.ledger import Derived, Ledger, Spot
 from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
-from calc.report.derivation import COLUMNS, lines
+from calc.report.derivation import COLUMNS, displayed, lines
 from calc.report.document import Heading, Own, Paragraph, Parts, Row, Soft, Strong, TableColumn
 from calc.report.numbers import Format
 from calc.report.sections.empirical import add_empirical
@@ -66,11 +66,14 @@ def add_derivation(sheet: Sheet, case: CaseAccount) -> None:
         if spot is not None:
             rows += lines(sheet, spot)
     rows += _other_laws(sheet, case, pipe)
+    shown = [_here(ledger, f"pipes.{quantity}", case.id, pipe) for quantity in ("flow", *CHAIN)]
+    rows += displayed(sheet, [spot for spot in shown if spot is not None])
     junctions = case.columns.pressure_head.rows if case.columns else ()
     for quantity in NODE_CHAIN:
         spot = _here(ledger, f"junctions.{quantity}", case.id, junctions[0]) if junctions else None
         if spot is not None:
             rows += lines(sheet, spot, name(junctions[0]), ": ")
+            rows += displayed(sheet, [spot], name(junctions[0]), ": ") if quantity == "pressure" else []
     sheet.table(f"derivation-{case.id}", COLUMNS, rows)
     sheet.add(Paragraph(("Every other pipe and node repeats these lines; their results follow.",), "small"))
 
