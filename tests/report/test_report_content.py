@@ -13,6 +13,7 @@ from calc import pipeline
 from calc.account import Account
 from calc.ledger import Combined, Converted, Derived, Given, Judged, Library, Program, Solved, Spot, proofs
 from calc.ledger.origin import Combined as Total
+from calc.physics.empirical import EMPIRICAL_LAWS
 from calc.report.composer import inputs_of
 from calc.report.document import (
     Bullets,
@@ -208,6 +209,9 @@ def test_each_case_is_told_in_order(name: str) -> None:
         expected = ["changes"] if account.project.cases[case.id].lines else []
         expected += ["trials" if trials else "steps", "stopping", "Convergence", *(["Balance"] if trials else [])]
         expected += ["derivation", "pipes", "losses"]
+        laws = case.columns.terms.law if case.columns else None
+        empirical = laws is not None and any(laws.word(k) in EMPIRICAL_LAWS for k in range(len(laws.codes)))
+        expected += ["empirical"] if empirical else []
         expected += ["fittings"] if case.columns and case.columns.terms.fittings.rows else []
         expected += ["junctions", "continuity"] if account.project.junctions else []
         expected += ["energy", "second", "opinions"]

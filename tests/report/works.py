@@ -47,6 +47,22 @@ pipes:
                  fittings: [{K: 0.8, K_reverse: 1.7, bore: 350 mm, count: 2}, {kind: bend-90}], ends: {from: rounded}}
 """
 
+EMPIRICAL = """\
+friction: hazen-williams
+constants: {hazen_williams: {coefficient: 10.674}}
+reservoirs: {scar: {level: 180 m}, holm: {level: 171.5 m}, garth: {level: 149 m}}
+junctions: {gate: {elevation: 131 m, withdrawal: 25 L/s}, stub: {elevation: 128 m, withdrawal: 2 L/s}}
+pipes:
+  scar-main: {from: scar, to: gate, length: 2400 m, bore: 375 mm, hazen_williams_c: 128, ends: {from: square}}
+  holm-main: {from: gate, to: holm, length: 1150 m, bore: 300 mm, law: manning, manning_n: 0.0125, parallel: 2}
+  garth-main: {from: gate, to: garth, length: 1900 m, bore: 350 mm, law: colebrook-white, roughness: 0.3 mm}
+  stub-main: {from: gate, to: stub, length: 90 m, bore: 150 mm, hazen_williams_c: 95}
+cases:
+  aged: {title: Old bores, times: {"pipes.*.hazen_williams_c": 0.75, "pipes.*.manning_n": 1.25}}
+  rough: {title: By roughness, with: {"pipes.*.law": haaland, "pipes.*.roughness": 1 mm}}
+criteria: {velocity-max: {limit: 2 m/s}, gradient-max: {limit: 9 m/km}}
+"""
+
 LOOP = """\
 reservoirs: {north: {level: 80 m}, south: {level: 62 m}}
 junctions:
@@ -108,6 +124,7 @@ TEXTS = {
     "transition-swamee-jain": TRANSITION.replace("LAW", "swamee-jain"),
     "laws": LAWS,
     "laws-colebrook": LAWS.replace("friction: swamee-jain", "friction: colebrook-white"),
+    "empirical": EMPIRICAL,
     "loop": LOOP,
     "plain": PLAIN,
     "dry": DRY,
