@@ -90,6 +90,8 @@ class Works:
                 assert entry["n"] == a
                 sized = f"length: {entry['r'] * C**a * BORE**b / k!r} m, bore: {BORE} m"
                 law = f"law: hazen-williams, hazen_williams_c: {C}"
+            case other:
+                raise ValueError(other)
         self.pipes[name] = f"from: {start}, to: {end}, {sized}, {law}{more}"
 
     def text(self) -> str:
