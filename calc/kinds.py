@@ -86,6 +86,7 @@ TIME = Kind("time", "s", _dimension(0, 0, 1), "6 h")
 GRADIENT = Kind("gradient", "", _dimension(), "0.005")
 ANGLE = Kind("angle", "rad", _dimension(), "45 deg")
 RESISTANCE = Kind("resistance", "s²/m⁵", _dimension(-5, 0, 2), "850 s²/m⁵")
+LOSS_RATE = Kind("rise of head lost with flow", "s/m²", _dimension(-2, 0, 1), "120 s/m²")
 
 KINDS: tuple[Kind, ...] = (
     NUMBER,
@@ -107,5 +108,6 @@ KINDS: tuple[Kind, ...] = (
     GRADIENT,
     ANGLE,
     RESISTANCE,
+    LOSS_RATE,
 )
 """Every kind; one line here is all that a new kind needs."""

@@ -23,7 +23,7 @@ from calc.project import Project, network, read_project
 from calc.report.composition import compose
 from calc.report.document import Document
 from calc.report.section import DISPLAY
-from calc.solve import Solution, solve
+from calc.solve import MOST_LOOPS, MOST_PIPES, Solution, solve
 from calc.solve.section import SOLVER, settings_of
 from calc.verification import enter_checks, in_use
 from calc.verification import run as verify
@@ -54,9 +54,18 @@ def read(folder: Path) -> Project:
 def _check_method(project: Project) -> None:
     """Refuse a method that cannot serve this project, at the place where it is asked for."""
     method = project.sections["solver"].stated.get("method")
-    unknown = len(project.junctions)
-    if method is not None and method.text == "bracketing" and unknown != 1:
+    unknown, pipes = len(project.junctions), len(project.pipes)
+    found = ""
+    if method is None:
+        return
+    if method.text == "bracketing" and unknown != 1:
         found = f"'bracketing' seeks the head of one junction, and this project has {unknown}"
+    elif method.text == "loop-correction" and (pipes > MOST_PIPES or pipes - unknown > MOST_LOOPS):
+        found = (
+            f"'loop-correction' is for works of at most {MOST_PIPES} pipes and {MOST_LOOPS} loops, and this project "
+            f"has {pipes} and {pipes - unknown}"
+        )
+    if found:
         problem = Problem(method.mark, "unsuited-method", "solver.method", found, "'newton'", "")
         raise ProblemsFound([problem], project.texts)
 

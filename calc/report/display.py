@@ -38,6 +38,7 @@ COHERENT_US = {
     "K": "K",
     "s": "s",
     "s²/m⁵": "s²/ft⁵",
+    "s/m²": "s/ft²",
     "rad": "rad",
 }
 """The coherent US unit (foot, slug, second, pound-force) for each SI unit; temperatures are absolute in both."""
@@ -49,6 +50,7 @@ OTHER: dict[Kind, Format] = {
     kinds.DYNAMIC_VISCOSITY: Format(significant=6),
     kinds.TIME: Format(decimals=0),
     kinds.RESISTANCE: Format(significant=5),
+    kinds.LOSS_RATE: Format(significant=5),
 }
 """Figures of kinds whose unit is not chosen: they are written in the coherent unit."""
 USUAL_FIGURES = Format(significant=6)

@@ -20,6 +20,9 @@ by false position mean 8.6 and 9.1, median 9, largest 20 and 15; opened by halvi
 
 *Any number of heads: Newton's method*, the gradient method of Todini & Pilati (1988), in `calc.solve.newton`.
 
+*Small networks by hand: loop correction*, after Hardy Cross (1936), in `calc.solve.loop_correction`: flows that satisfy
+continuity are corrected loop by loop, by equations in `calc.solve.loop_rules`, for a pocket calculator.
+
 *Branches.* The flow for a head difference is found in `calc.solve.branch` to the last bits. Pipes between two
 reservoirs need nothing more. A junction that no open path joins to a reservoir has no answer, and is named.
 """
@@ -33,14 +36,31 @@ from calc.problems import CalcError
 from calc.solve.bracketing import solve_by_bracketing
 from calc.solve.branch import Branches
 from calc.solve.connection import sentence, unreached
+from calc.solve.loop_correction import MOST_LOOPS, MOST_PIPES, solve_by_loop_correction
+from calc.solve.loop_rules import LOOP_RULES
 from calc.solve.newton import solve_by_newton
 from calc.solve.rules import RULES, Rule, inputs_of
-from calc.solve.solution import METHODS, NARROWINGS, Settings, Solution, Steps, StopTest, Trials
+from calc.solve.solution import (
+    METHODS,
+    NARROWINGS,
+    Corrections,
+    Loop,
+    Settings,
+    Solution,
+    Steps,
+    StopTest,
+    Trials,
+)
 
 __all__ = [
+    "LOOP_RULES",
     "METHODS",
+    "MOST_LOOPS",
+    "MOST_PIPES",
     "NARROWINGS",
     "RULES",
+    "Corrections",
+    "Loop",
     "Rule",
     "Settings",
     "Solution",
@@ -72,25 +92,36 @@ def solve(network: Network, settings: Settings = DEFAULTS) -> Solution:
     Raises
     ------
     CalcError
-        If the settings name no method, or bracketing where not exactly one head is unknown; the caller
-        checks first.
+        If the settings name no method, bracketing where not exactly one head is unknown, or loop correction
+        of more than a hand takes on; the caller checks first.
     """
-    unknown = len(network.unknown)
-    method = settings.method or ("bracketing" if unknown == 1 else "newton")
-    _check(method, unknown, settings)
+    method = settings.method or ("bracketing" if len(network.unknown) == 1 else "newton")
+    _check(method, network, settings)
     if reason := sentence(network, unreached(network)):
         heads, flows = np.full(len(network.nodes), np.nan), np.full(len(network.open), np.nan)
         return Solution(False, method, reason, 0, heads, flows)  # noqa: FBT003 - the first field of a result
-    by = solve_by_bracketing if method == "bracketing" else solve_by_newton
-    return by(network, settings, Branches(network))
+    return BY[method](network, settings, Branches(network))
 
 
-def _check(method: str, unknown: int, settings: Settings) -> None:
+BY = {
+    "bracketing": solve_by_bracketing,
+    "newton": solve_by_newton,
+    "loop-correction": solve_by_loop_correction,
+}
+
+
+def _check(method: str, network: Network, settings: Settings) -> None:
+    unknown, pipes = len(network.unknown), len(network.open)
     if method not in METHODS:
         raise CalcError(f"no method '{method}'; expected one of {', '.join(METHODS)}")
     if settings.narrowing not in NARROWINGS:
         raise CalcError(f"no narrowing '{settings.narrowing}'; expected one of {', '.join(NARROWINGS)}")
     if method == "bracketing" and unknown != 1:
         raise CalcError(f"bracketing finds exactly one unknown head; this case has {unknown}")
+    if method == "loop-correction" and (pipes > MOST_PIPES or pipes - unknown > MOST_LOOPS):
+        raise CalcError(
+            f"loop correction takes on {MOST_PIPES} pipes and {MOST_LOOPS} loops; this case has {pipes} and "
+            f"{pipes - unknown}"
+        )
     if not (settings.tolerance > 0 and settings.limit >= 1):
         raise CalcError("the tolerance must be above zero and the limit at least 1")

@@ -5,18 +5,24 @@ from __future__ import annotations
 from calc.components import Field, Quantity, Word
 from calc.kinds import ELEVATION, FLOW
 from calc.project import Project
-from calc.project.section import Later, SectionSchema
+from calc.project.section import SectionSchema
 from calc.solve.solution import METHODS, NARROWINGS, Settings
 
 SOLVER = SectionSchema(
     "solver",
     (
-        Field("method", Word(METHODS), words="way to solve"),
-        Field("narrowing", Word(NARROWINGS), words="way to narrow a bracket"),
-        Field("tolerance", Quantity(FLOW, above=0.0), words="largest imbalance accepted at a junction"),
+        Field("method", Word(METHODS), words="way to solve; bracketing for one junction and newton else if not said"),
+        Field("narrowing", Word(NARROWINGS), words="way to narrow a bracket", default=Settings().narrowing),
+        Field(
+            "tolerance",
+            Quantity(FLOW, above=0.0),
+            words="largest imbalance accepted at a junction",
+            example="1e-6 L/s",
+            default="1e-6 L/s",
+        ),
     ),
     by_node=(Field("start", Quantity(ELEVATION), words="head to begin from"),),
-    later=(Later("method", "loop-correction", "use bracketing or newton"),),
+    words="how the cases are solved; all of it may be left out",
 )
 
 

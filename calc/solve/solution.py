@@ -11,7 +11,7 @@ import numpy.typing as npt
 Array = npt.NDArray[np.float64]
 Rows = npt.NDArray[np.int64]
 
-METHODS = ("bracketing", "newton")
+METHODS = ("bracketing", "newton", "loop-correction")
 """Ways to solve a case; an empty word lets `solve` choose."""
 
 NARROWINGS = ("chandrupatla", "bisection")
@@ -144,6 +144,72 @@ class Steps:
 
 
 @dataclass(frozen=True)
+class Loop:
+    """A way round along open pipes, or a path from one reservoir to another, closed by their levels.
+
+    Attributes
+    ----------
+    closing : int
+        The pipe outside the forest of pipes that closes it; of the loops, it alone has it.
+    pipes, signs : tuple of int
+        The pipes in the order of the walk; +1 where one is walked from its ``from`` to its ``to``, else -1.
+    nodes : tuple of int
+        Where the walk begins, passes and ends: the same node twice for a loop, two reservoirs for a path.
+    """
+
+    closing: int
+    pipes: tuple[int, ...]
+    signs: tuple[int, ...]
+    nodes: tuple[int, ...]
+
+    @property
+    def path(self) -> bool:
+        """Whether this is a path between two reservoirs."""
+        return self.nodes[0] != self.nodes[-1]
+
+
+@dataclass(frozen=True)
+class Corrections:
+    """The table of loop correction: one row for each correction of a loop, in order, all of them.
+
+    Attributes
+    ----------
+    loops : tuple of Loop
+        As many as there are open pipes beyond the junctions. They are corrected in this order, sweep after sweep.
+    trails : tuple of tuple
+        For each node the steps (pipe, sign) along the forest from its reservoir; empty for a reservoir.
+    start : ndarray
+        Flow of each pipe from which the corrections begin, m³/s; satisfies continuity. Shape (m,).
+    sweep, loop : ndarray of int
+        Sweep (1, 2 …) and loop corrected. Shape (c,), as all below unless stated.
+    flow : ndarray
+        Flows that the correction found, m³/s. Shape (c, m).
+    loss : ndarray
+        Head lost round the loop in its sense, m.
+    excess : ndarray
+        The same, of a path less the fall of level along it, m.
+    rate : ndarray
+        Sum of n h/Q of its pipes in motion, s/m².
+    change : ndarray
+        The correction, m³/s; 0 where all pipes of the loop are at rest.
+    error : ndarray
+        Largest excess of any loop after each sweep, m, without sign. Shape (sweeps,).
+    """
+
+    loops: tuple[Loop, ...]
+    trails: tuple[tuple[tuple[int, int], ...], ...]
+    start: Array
+    sweep: Rows
+    loop: Rows
+    flow: Array
+    loss: Array
+    excess: Array
+    rate: Array
+    change: Array
+    error: Array
+
+
+@dataclass(frozen=True)
 class Solution:
     """Heads and flows of a case, and how they were found.
 
@@ -156,7 +222,7 @@ class Solution:
     reason : str
         Why there is no answer; empty when there is.
     iterations : int
-        Trials of bracketing (rows of the table); steps of Newton's method.
+        Trials of bracketing (rows of the table); steps of Newton's method; sweeps of loop correction.
     head : ndarray
         Total head at each node, m, shape (n,).
     flow : ndarray
@@ -165,6 +231,8 @@ class Solution:
         The table of bracketing.
     steps : Steps or None
         The iterations of Newton's method.
+    corrections : Corrections or None
+        The table of loop correction.
     tests : tuple of StopTest
         The tests by which the search ended; all are met when converged.
     """
@@ -178,6 +246,7 @@ class Solution:
     trials: Trials | None = None
     steps: Steps | None = None
     tests: tuple[StopTest, ...] = ()
+    corrections: Corrections | None = None
 
 
 def unmet(tests: Iterable[StopTest]) -> str:

@@ -31,6 +31,7 @@ _NAMES: dict[tuple[int | Fraction, ...], str] = {
     (2, 1, -2, 0): "energy",
     (2, 1, -3, 0): "power",
     (-5, 0, 2, 0): "resistance",
+    (-2, 0, 1, 0): "rise of head lost with flow",
 }
 
 
