@@ -29,7 +29,7 @@ def add_empirical(sheet: Sheet, case: CaseAccount) -> None:
         figure_column("Darcy f, same loss", width=26, edge=True),
     )
     sheet.add(Heading(("Empirical laws beside Darcy–Weisbach",)))
-    sheet.table(f"empirical-{case.id}", columns, rows)
+    sheet.results(f"empirical-{case.id}", columns, rows)
     said = (
         "These laws know neither viscosity nor Darcy f, and are applied at every Reynolds number. The last column is "
         "the factor by which Darcy–Weisbach would give the same loss."
@@ -45,10 +45,11 @@ def _row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row | None:
     law = terms.law.word(at)
     if law not in LAW_CONSTANTS:
         return None
-    field = PIPE.field(LAW_INPUT[law])
-    held = getattr(terms, LAW_INPUT[law]).spot(at)
+    needed = LAW_INPUT[law]
+    words = next(field.words for field in PIPE.fields if field.name == needed)
+    held = getattr(terms, needed).spot(at)
     results = (_here(sheet, case, pipe, quantity) for quantity in QUANTITIES)
-    cells: list[Parts] = [(name(pipe),), (field.words if field else law,)]
+    cells: list[Parts] = [(name(pipe),), (words,)]
     refs = []
     for spot in (Spot(*held), *results):
         cells.append((sheet.composer.number(spot) if spot else NOTHING,))
