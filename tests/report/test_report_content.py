@@ -10,7 +10,7 @@ from pages import every_part, figure_of, numbers, parts_within, plain, row_of, s
 from works import NAMES, work
 
 from calc import pipeline
-from calc.account import Account
+from calc.account import CHECKS, Account, gathered
 from calc.ledger import Combined, Converted, Derived, Given, Judged, Library, Program, Solved, Spot, proofs
 from calc.ledger.origin import Combined as Total
 from calc.physics.empirical import EMPIRICAL_LAWS
@@ -30,6 +30,7 @@ from calc.report.document import (
 )
 from calc.report.figures import Balance, Convergence, Schematic
 from calc.report.numbers import written
+from calc.report.sections.findings import MOST_SUBJECTS
 
 EVERY = pytest.mark.parametrize("name", NAMES)
 ADDRESS = re.compile(r"\d+\.\d+")
@@ -444,15 +445,30 @@ def test_purpose_of_issue_is_told_and_leaves_room_for_a_seal_only_for_record() -
 
 
 @EVERY
-def test_findings_are_told_and_checks_without_one_are_named(name: str) -> None:
+def test_findings_are_told_together_where_they_say_the_same(name: str) -> None:
     account, document = work(name).account, work(name).document
-    page = section(document, "judgement")
-    said = " ".join(plain(parts) for parts in texts_of(page))
-    rows = [row for block in page.blocks if isinstance(block, Table) and block.key == "findings" for row in block.rows]
-    assert [plain(row.cells[3]) for row in rows] == [finding.text for finding in account.findings]
-    for number in ("D03", "D35", "D36", "D46"):
-        found = any(finding.id == number for finding in account.findings)
-        assert (f"No defect found by check {number}" in said) != found
+    rows = table(document, "findings").rows if account.findings else ()
+    assert [(plain(row.cells[0]), plain(row.cells[3])) for row in rows] == [
+        (alike[0].id, alike[0].text) for alike in gathered(account.findings)
+    ]
+    told = [plain(row.cells[2]) for row in rows]
+    for alike, subject in zip(gathered(account.findings), told, strict=True):
+        assert all(finding.subject.partition(".")[2] in subject for finding in alike[:MOST_SUBJECTS])
+
+
+@EVERY
+def test_every_check_is_listed_with_what_came_of_it(name: str) -> None:
+    account, document = work(name).account, work(name).document
+    rows = {plain(row.cells[0]): plain(row.cells[2]) for row in table(document, "checks").rows}
+    assert list(rows) == [check.id for check in CHECKS]
+    for check in CHECKS:
+        count = sum(finding.id == check.id for finding in account.findings)
+        if count:
+            assert rows[check.id].startswith(f"{count} found")
+        elif check.inputs or check.results:
+            assert f"no defect found by check {check.id}" in rows[check.id] or "not made" in rows[check.id]
+        else:
+            assert "refused when the inputs are read" in rows[check.id]
 
 
 def test_heads_below_ground_are_marked() -> None:
