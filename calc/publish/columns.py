@@ -178,7 +178,8 @@ def _head(column: TableColumn) -> float:
 
 def _cell(column: TableColumn, parts: Parts, document: Document) -> float:
     if column.role == "unit":  # a unit is never broken
-        return max((TEXT * width(part) for part in parts if isinstance(part, str)), default=0.0) - PADDING / 2
+        texts = [part if isinstance(part, str) else part.text for part in parts if isinstance(part, str | Own)]
+        return max((TEXT * width(text) for text in texts), default=0.0) - PADDING / 2
     return max(_pieces(parts, document), default=0.0)
 
 

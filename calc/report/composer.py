@@ -27,6 +27,7 @@ from calc.report.document import (
     TableColumn,
 )
 from calc.report.numbers import Format, written
+from calc.report.parallel import Parallel
 from calc.verification import Check
 
 NOTHING = "–"
@@ -56,7 +57,6 @@ class Composer:
         self.addresses: dict[str, str] = {}
         self.sections: list[Section] = []
         self.files: dict[str, bytes] = {}
-        self.worked_in: dict[str, list[str]] = {}
         enter_worths(self.ledger, units_needed(self.ledger, self.display))
         self.figures = 0
 
@@ -111,6 +111,7 @@ class Sheet:
         self.key, self.number, self.title, self.lead = key, number, title, lead
         self.blocks: list[Block] = []
         self.lines = 0
+        self.worked_in: dict[str, list[str]] = {}
 
     def add(self, *blocks: Block) -> None:
         """Add blocks."""
@@ -138,6 +139,16 @@ class Sheet:
         held = tuple(rows)
         if any(row.tone != "group" for row in held):
             self.add(Table(key, tuple(columns), held, **how))
+
+    def results(
+        self, key: str, columns: Iterable[TableColumn], rows: Iterable[Row], *, without: Iterable[str] = (), **how: bool
+    ) -> None:
+        """Add a table of results: with parallel columns where the project asks for them."""
+        heads, held = tuple(columns), tuple(rows)
+        display = self.composer.display
+        for other in display.beside:
+            heads, held = Parallel(self.composer.ledger, display, other).widened(heads, held, without)
+        self.table(key, heads, held, **how)
 
     def close(self) -> None:
         """End the section."""

@@ -14,7 +14,7 @@ from calc.ledger import Combined, Derived, Spot
 from calc.report.composer import FROM, INTO, Sheet, cited, inputs_of
 from calc.report.conversion import empirical, law_into, worth_id
 from calc.report.display import FIELD_OF, SI, Display
-from calc.report.document import Cite, Formula, Letter, Number, Own, Part, Parts, Row, TableColumn
+from calc.report.document import Cite, Formula, Letter, Number, Part, Parts, Row, TableColumn, named_unit
 from calc.report.formats import shortest
 from calc.report.numbers import Format, last_place, read_back, shown, written
 
@@ -173,7 +173,7 @@ def converted(sheet: Sheet, spot: Spot, unit: str, *before: Part) -> list[Row]:
     It is converted from the coherent unit of the display, or from SI where an empirical law gave it.
     """
     composer, kind, origin = sheet.composer, spot.column.kind, spot.column.origin
-    units = composer.worked_in.setdefault(spot.id, [])
+    units = sheet.worked_in.setdefault(spot.id, [])
     if not units:
         in_si = isinstance(origin, Derived) and empirical(origin.leaf)
         units.append((SI if in_si else composer.display).coherent(kind))
@@ -205,11 +205,6 @@ def _form_into(display: Display, spot: Spot, unit: str) -> Format:
         if form.unit == unit:
             return form
     return shortest(shown(spot.value, spot.column.kind, unit), unit, RESULT_FIGURES)
-
-
-def named_unit(unit: str) -> Part:
-    """Return a unit as text; one with a figure in it is a name."""
-    return Own(unit, "name") if any(character.isdecimal() for character in unit) else unit
 
 
 def displayed(sheet: Sheet, spots: Iterable[Spot], *before: Part) -> list[Row]:

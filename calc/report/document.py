@@ -92,6 +92,11 @@ class Cite:
 Part = str | Number | Own | Quoted | Strong | Soft | Letter | Formula | Cite
 Parts = tuple[Part, ...]
 
+
+def named_unit(unit: str) -> Part:
+    """Return a unit as text; one with a figure in it, such as ``ft/1000 ft``, is a name."""
+    return Own(unit, "name") if any(character.isdecimal() for character in unit) else unit
+
 # --- blocks -----------------------------------------------------------------------------------------------------
 
 

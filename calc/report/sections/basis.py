@@ -102,7 +102,7 @@ def _properties(sheet: Sheet, in_use: list[Spot]) -> None:
     for spot in in_use:
         number = sheet.composer.number(spot)
         rows.append(sheet.row((words[spot.column.name],), (number,), (number.form.unit,), (Cite((spot.id,)),)))
-    sheet.table("properties", columns, rows)
+    sheet.results("properties", columns, rows)
 
 
 def _schematic(sheet: Sheet) -> None:

@@ -21,8 +21,8 @@ from calc.report.document import (
     SignOff,
     Soft,
     Strong,
-    Table,
     TableColumn,
+    named_unit,
 )
 
 STATUS = {
@@ -30,7 +30,8 @@ STATUS = {
     "approval": "Issued for approval – preliminary, not for construction",
     "record": "Issued for record",
 }
-MOST_CASES = 4
+MOST_CASES, MOST_BESIDE = 4, 3
+"""Cases whose flows stand on the first page; with parallel columns."""
 MOST_PIPES = 8
 COUNT_WORDS = ("none", "one", "two", "three", "four", "five", "six", "seven", "eight", "nine")
 
@@ -119,7 +120,7 @@ def _criteria(sheet: Sheet) -> None:
         TableColumn(("from",), width=12.5, edge=True, role="from"),
     )
     judged = sorted(sheet.composer.account.verdicts, key=lambda j: (j.met, j.governing is not None))
-    sheet.table("criteria", columns, [_criterion(sheet, one) for one in judged])
+    sheet.results("criteria", columns, [_criterion(sheet, one) for one in judged], without=("margin",))
 
 
 def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
@@ -151,7 +152,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
         told(value),
         (sense, limit),
         told(margin),
-        (value.form.unit,),
+        (named_unit(value.form.unit),),
         (verdict,),
         (Cite((governing.margin.id,)),),
         refs=(judged.least_margin.id,),
@@ -163,10 +164,10 @@ def _flows(sheet: Sheet) -> None:
     """Directions and flows of the mains, or of the reservoirs where the mains are many."""
     composer = sheet.composer
     solved = [case for case in composer.account.cases.values() if case.columns is not None]
-    cases = solved[:MOST_CASES]
+    cases = solved[: MOST_BESIDE if composer.display.beside else MOST_CASES]
     if not cases:
         return
-    columns: list[TableColumn] = [TableColumn(("flow, ", composer.flow_unit), role="statement")]
+    columns: list[TableColumn] = [TableColumn(("flow, ", _units(composer, "flow")), role="statement")]
     for case in cases:
         columns.append(TableColumn((name(case.id),), width=20.5, edge=True))
         columns.append(TableColumn(("",), align="right", width=12, role="value"))
@@ -175,9 +176,14 @@ def _flows(sheet: Sheet) -> None:
     rows = [_reservoir(sheet, cases, one) for one in project.reservoirs] if many else []
     rows = rows or [_pipe(sheet, cases, one) for one in project.pipes]
     rows += [_head(sheet, cases, one) for one in list(project.junctions)[:2]]
-    sheet.add(Table("flows", tuple(columns), tuple(rows)))
+    sheet.results("flows", columns, rows)
     if len(solved) > len(cases):
         sheet.add(Paragraph(("Further cases stand in their own sections.",), "small"))
+
+
+def _units(composer: Composer, field: str) -> str:
+    """Return the unit of the numbers of a row, and that of the parallel columns where it is another."""
+    return " and ".join(dict.fromkeys(one.unit(field) for one in (composer.display, *composer.display.beside)))
 
 
 def _pipe(sheet: Sheet, cases: list[CaseAccount], pipe: str) -> Row:
@@ -206,7 +212,7 @@ def _reservoir(sheet: Sheet, cases: list[CaseAccount], reservoir: str) -> Row:
 
 
 def _head(sheet: Sheet, cases: list[CaseAccount], junction: str) -> Row:
-    cells: list[Parts] = [("Head at ", name(junction), f", {sheet.composer.unit('head')}")]
+    cells: list[Parts] = [("Head at ", name(junction), f", {_units(sheet.composer, 'head')}")]
     for case in cases:
         spot = sheet.composer.ledger.spot(f"junctions.{junction}.head@{case.id}")
         cells += [("",), (sheet.composer.number(spot, sheet.composer.form("head", BRIEF)),)]

@@ -7,7 +7,7 @@ from dataclasses import replace
 from calc.account import CriterionVerdict, Verdict
 from calc.report.composer import FROM, Composer, Sheet, column, figure_column, inputs_of, name
 from calc.report.derivation import COLUMNS, displayed, lines
-from calc.report.document import Cite, Heading, Paragraph, Parts, Soft, Strong
+from calc.report.document import Cite, Heading, Paragraph, Parts, Soft, Strong, named_unit
 from calc.report.sections.findings import compose_findings
 
 MOST_VERDICTS = 40
@@ -61,7 +61,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
                 (name(one.case),),
                 (value,),
                 (limit,),
-                (value.form.unit,),
+                (named_unit(value.form.unit),),
                 (margin,),
                 told,
                 (_rests_on(sheet, one),),
@@ -69,7 +69,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
                 tone="" if one.met else "flag",
             )
         )
-    sheet.table(f"verdicts-{judged.id}", columns, rows)
+    sheet.results(f"verdicts-{judged.id}", columns, rows)
 
 
 def _rests_on(sheet: Sheet, verdict: Verdict) -> Cite:

@@ -131,7 +131,7 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
         TableColumn(("gradient, one in",), align="right", width=19, role="value"),
         figure_column("flow", flow, 16.5, edge=True),
     )
-    sheet.table(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
+    sheet.results(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
     sheet.add(Heading(("Pipes: velocities and losses",)))
     columns = (
         column("pipe", role="statement"),
@@ -143,7 +143,7 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
         figure_column("share of fittings", "%", 19.5),
         figure_column("loss", head, 16),
     )
-    sheet.table(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
+    sheet.results(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
     said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
     if len(names) < len(case.network.pipes.rows):
         said += " The pipes that lose most head are printed."
@@ -227,7 +227,7 @@ def _fittings(sheet: Sheet, case: CaseAccount) -> None:
         rows.append(sheet.row(*cells, refs=[spot.id for spot in held]))
     if rows:
         sheet.add(Heading(("Fittings and reservoir ends",)))
-        sheet.table(f"fittings-{case.id}", columns, rows)
+        sheet.results(f"fittings-{case.id}", columns, rows)
 
 
 def kind_of_fitting(composer: Composer, fitting: str) -> str:
@@ -274,7 +274,7 @@ def _nodes(sheet: Sheet, case: CaseAccount) -> None:
         negative = negative or below
     if rows:
         sheet.add(Heading(("Junctions",)))
-        sheet.table(f"junctions-{case.id}", columns, rows)
+        sheet.results(f"junctions-{case.id}", columns, rows)
     if len(rows) < len(composer.account.project.junctions):
         content = junctions_file(composer.ledger, case)
         _cite_file(sheet, "All junctions", f"results/{case.id}-junctions.csv", content)
