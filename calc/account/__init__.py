@@ -11,6 +11,7 @@ from calc.account.accounting import Account, keep_account
 from calc.account.books import liquid_terms, open_books
 from calc.account.case import CaseAccount
 from calc.account.findings import CHECKS, TITLES, WITHOUT_SOURCE, CheckOutcome, Finding, gathered, input_findings
+from calc.account.following import following
 from calc.account.opinion import Agreement
 from calc.account.outcome import results
 from calc.account.paths import Path
@@ -30,6 +31,7 @@ __all__ = [
     "Finding",
     "Path",
     "Verdict",
+    "following",
     "gathered",
     "input_findings",
     "keep_account",

@@ -9,10 +9,11 @@ from typing import Any
 
 import numpy as np
 
+from calc.account.following import PROJECT, enter_bores, enter_coefficients, enter_withdrawals
 from calc.components import SCHEMAS, Count, Quantity, Record, Schema, Stated
-from calc.components.liquid import LiquidTerms, liquid
 from calc.components.fitting import SCHEMA as FITTING_SCHEMA
-from calc.equation import Equation, Reference, Symbol, equation
+from calc.components.liquid import LiquidTerms, liquid
+from calc.equation import Equation, Symbol, equation
 from calc.kinds import (
     ACCELERATION,
     DENSITY,
@@ -28,10 +29,8 @@ from calc.kinds import (
 )
 from calc.ledger import Accountant, Column, Converted, Derived, Given, Ledger, Library, View
 from calc.ledger.column import ABSENT
-from calc.physics import symbols as s
+from calc.physics.dimensions import bore_within
 from calc.project import BASE, Line, Project, in_order, stands_on_pipe
-
-PROJECT = Reference("project input", "Project input")
 
 SINGLE: dict[str, dict[str, Kind]] = {
     "fluid": {
@@ -50,17 +49,6 @@ SINGLE: dict[str, dict[str, Kind]] = {
     },
 }
 """Kinds of the fields of sections that stand once; under ``constants`` those of all its groups."""
-
-
-@equation(
-    gives=s.WITHDRAWAL,
-    source=PROJECT,
-    valid="an inflow is a negative withdrawal",
-    inflow=Symbol("I", FLOW, "inflow"),
-)
-def withdrawal_of_inflow(*, inflow: Any) -> Any:  # noqa: ANN401
-    """Withdrawal that stands for an inflow."""
-    return -inflow
 
 
 @cache
@@ -151,8 +139,7 @@ def open_books(project: Project) -> Ledger:
     for case in project.cases.values():
         if case.id != BASE:
             _enter_changes(ledger, project, case.id, case.lines)
-            if any(line.group in ("fluid", "site") or line.field == "inflow" for line in case.lines):
-                _enter_derived(ledger, project, case.id)
+            _enter_derived(ledger, project, case.id)
     return ledger
 
 
@@ -183,7 +170,7 @@ def _enter_solver(ledger: Ledger, project: Project) -> None:
 def _enter_group(ledger: Ledger, schema: Schema, records: Iterable[Record]) -> None:
     held = list(records)
     for field, kind in numeric_fields(schema).items():
-        having = [record for record in held if field in record.stated]
+        having = [record for record in held if field in record.stated and not record.stated[field].follows]
         if having:
             rows = [record.id for record in having]
             values = [record.stated[field] for record in having]
@@ -267,13 +254,11 @@ def _field_kind(project: Project, group: str, field: str) -> Kind:
 
 
 def _enter_derived(ledger: Ledger, project: Project, case: str) -> None:
-    """Enter what follows from the inputs before anything is solved: withdrawals from inflows, the liquid."""
-    rows = sorted({row for column in ledger.find("junctions.inflow", case) for row in column.rows})
-    stated_here = [c for c in ledger.columns if c.name == "junctions.inflow" and c.case == case]
-    if rows and stated_here:
-        here = [row for row in project.junctions if any(row in column.index for column in stated_here)]
-        view = ledger.view("junctions.inflow", case, here)
-        Accountant(ledger, case).apply("junctions.withdrawal", withdrawal_of_inflow, inflow=view)
+    """Enter what follows from the inputs before anything is solved: withdrawals, bores, coefficients, the liquid."""
+    enter_withdrawals(ledger, project, case)
+    if case == BASE:
+        enter_bores(ledger, project)
+    enter_coefficients(ledger, project, case)
     if case == BASE or any(line.group in ("fluid", "site") for line in project.cases[case].lines):
         liquid(Accountant(ledger, case), liquid_terms(ledger, case))
 
@@ -296,8 +281,8 @@ def liquid_terms(ledger: Ledger, case: str) -> LiquidTerms[View]:
 
 
 def is_stated(column: Column) -> bool:
-    """Return whether a column holds what the inputs state, be it by way of a factor of a case."""
+    """Return whether a column holds what the inputs state, be it by a factor of a case or by outside dimensions."""
     origin = column.origin
     if isinstance(origin, Derived):
-        return origin.law is scaled(column.kind)
+        return origin.law is scaled(column.kind) or origin.law is bore_within
     return isinstance(origin, Given | Converted | Library)

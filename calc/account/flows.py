@@ -131,7 +131,7 @@ def _fitting_terms(ledger: Ledger, network: Network, case: str, chosen: Rows, bo
         count=fittings("count"),
         coefficient_forward=forward,
         coefficient_reverse=filled(fittings("K_reverse"), forward),
-        bore=filled(fittings("bore"), bore.take(pipe, rows)),
+        bore=filled(fittings("smaller_bore"), filled(fittings("bore"), bore.take(pipe, rows))),
     )
 
 

@@ -93,6 +93,8 @@ class Field:
         A value as a user would write it, where that of its kind would not fit.
     fixed : str
         What to do instead where a case may not change it; empty where it may.
+    default : str
+        What holds where it is not stated and no shipped default says so.
     """
 
     name: str
@@ -101,6 +103,7 @@ class Field:
     words: str = ""
     example: str = ""
     fixed: str = ""
+    default: str = ""
 
 
 @dataclass(frozen=True, slots=True)

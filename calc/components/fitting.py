@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Generic, TypeVar
 
 from calc.components.fields import Count, Field, Quantity, Schema, Word
+from calc.components.stated import Stated
 from calc.equation import Evaluator, Labels
 from calc.kinds import ANGLE, BORE, FLOW, NUMBER
 from calc.physics import coefficient
@@ -52,6 +54,17 @@ NEEDS = {
 
 FORM_FIELDS = ("angle", "radius_ratio", "onward_bore")
 """Fields of which only a computed kind makes anything."""
+
+
+
+def computed_kind(stated: Mapping[str, Stated]) -> str:
+    """Return the computed kind of a fitting, by what is stated of it; empty where its coefficients are stated."""
+    for name in ("Kv", "Cv"):
+        if name in stated:
+            return name
+    kind = stated["kind"].text if "kind" in stated else ""
+    return kind if kind in NEEDS else ""
+
 
 T = TypeVar("T")
 

@@ -40,6 +40,8 @@ class Stated:
         Source, page, grade, note.
     shipped : bool
         Whether it comes from a table or default that ships with the program.
+    follows : bool
+        Whether it follows by a law from other values of its record; the books apply that law again.
     """
 
     value: float | str | bool
@@ -51,6 +53,7 @@ class Stated:
     offset: float = 0.0
     basis: Basis = NO_BASIS
     shipped: bool = False
+    follows: bool = False
 
     @property
     def si(self) -> float:

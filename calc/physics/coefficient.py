@@ -151,7 +151,7 @@ WIDENING = Regimes(
     by="angle",
     bounds=(STEEP,),
     laws=(gradual_widening, sudden_widening),
-    labels=("up to 45°", "above 45°, as if sudden"),
+    labels=("gradual", "steep, as if sudden"),
 )
 NARROWING = Regimes(
     name="narrowing",
@@ -159,7 +159,7 @@ NARROWING = Regimes(
     by="angle",
     bounds=(STEEP,),
     laws=(gradual_narrowing, steep_narrowing),
-    labels=("up to 45°", "above 45°"),
+    labels=("gradual", "steep"),
 )
 
 

@@ -19,7 +19,7 @@ Why this way
 
 from __future__ import annotations
 
-from calc.project.arrays import Effective, in_order, network, stands_on_pipe
+from calc.project.arrays import Effective, form_labels, in_order, network, stands_on_pipe
 from calc.project.cases import chain, changes_in, follows_friction
 from calc.project.codes import CODES
 from calc.project.folder import digest, read_project
@@ -42,6 +42,7 @@ __all__ = [
     "changes_in",
     "digest",
     "follows_friction",
+    "form_labels",
     "in_order",
     "network",
     "read_project",

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
-from dataclasses import dataclass
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass, replace
 from functools import cached_property
 from weakref import WeakKeyDictionary
 
@@ -11,8 +11,10 @@ import numpy as np
 import numpy.typing as npt
 
 from calc.components import Network, Record
+from calc.components.fitting import FormTerms, coefficients, computed_kind
 from calc.components.pipe import LAW_INPUT, EmpiricalConstants, FittingTerms, PipeTerms
-from calc.equation import Labels
+from calc.equation import ARRAYS, Labels, Value, value_of
+from calc.physics.coefficient import KINDS
 from calc.physics.friction import LAW_NAMES
 from calc.project.cases import follows_friction, lines_in
 from calc.project.model import Line, Project
@@ -33,6 +35,28 @@ class _Fittings:
     forward: Array
     reverse: Array
     own_bore: Array
+    computed: Rows
+    form: FormTerms[Value]
+
+    def terms(self, bore: Array) -> FittingTerms[Array]:
+        """Return the inputs of the chain where the pipes have these bores."""
+        own = np.where(np.isnan(self.own_bore), bore[self.pipe], self.own_bore)
+        forward, reverse = self.forward.copy(), self.reverse.copy()
+        at = self.computed
+        if len(at):
+            form: FormTerms[Value] = replace(self.form, bore=own[at])
+            got = coefficients(ARRAYS, form)
+            found, back, smaller = (value_of(one) for one in (got.forward, got.reverse, got.smaller_bore))
+            forward[at], reverse[at] = found, np.where(np.isnan(back), found, back)
+            own[at] = np.where(np.isnan(smaller), own[at], smaller)
+        return FittingTerms(
+            rows=self.rows,
+            pipe=self.pipe.copy(),
+            count=self.count.copy(),
+            coefficient_forward=forward,
+            coefficient_reverse=reverse,
+            bore=own,
+        )
 
 
 class _Inputs:
@@ -86,6 +110,7 @@ class _Inputs:
             found += parts
             pipe += [at] * len(parts)
             own += [np.nan if stands_on_pipe(record, part) else part.number("bore") for part in parts]
+        computed = [at for at, part in enumerate(found) if computed_kind(part.stated)]
         return _Fittings(
             rows=tuple(part.id for part in found),
             pipe=np.array(pipe, dtype=np.int64),
@@ -93,7 +118,24 @@ class _Inputs:
             forward=_numbers(found, "K"),
             reverse=_numbers(found, "K_reverse"),
             own_bore=np.array(own, dtype=np.float64),
+            computed=np.array(computed, dtype=np.int64),
+            form=_form([found[at] for at in computed]),
         )
+
+
+def _form(computed: Sequence[Record]) -> FormTerms[Value]:
+    return FormTerms(
+        form_labels(computed),
+        *(_numbers(computed, field) for field in ("bore", "onward_bore", "angle", "radius_ratio", "Kv", "Cv")),
+    )
+
+
+def form_labels(computed: Sequence[Record]) -> Labels:
+    """Return the computed kind of each of some fittings, with the place where it is stated."""
+    kinds = [computed_kind(part.stated) for part in computed]
+    fields = ["kind" if kind in ("bend", "step", "taper") else kind for kind in kinds]
+    places = tuple(str(part.stated[field].mark) for part, field in zip(computed, fields, strict=True))
+    return Labels(KINDS, np.array([KINDS.index(kind) for kind in kinds], dtype=np.int64), places)
 
 
 def _numbers(records: Iterable[Record], field: str) -> Array:
@@ -205,7 +247,6 @@ def network(project: Project, case: str, viscosity: float) -> Network:
 
 
 def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
-    part = now.inputs.fittings
     bore = now.numbers("pipes", "bore")
     law = now.law()
     return PipeTerms(
@@ -218,14 +259,7 @@ def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
         manning_n=_where_used(now, "manning_n", law),
         parallel=now.numbers("pipes", "parallel"),
         law=law,
-        fittings=FittingTerms(
-            rows=part.rows,
-            pipe=part.pipe.copy(),
-            count=part.count.copy(),
-            coefficient_forward=part.forward.copy(),
-            coefficient_reverse=part.reverse.copy(),
-            bore=np.where(np.isnan(part.own_bore), bore[part.pipe], part.own_bore),
-        ),
+        fittings=now.inputs.fittings.terms(bore),
         viscosity=np.array([viscosity]),
         gravity=now.numbers("site", "gravity"),
         laminar_below=now.constant("transition", "laminar_below"),

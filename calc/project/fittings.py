@@ -6,6 +6,7 @@ from dataclasses import replace
 
 from calc.components import Quantity, Record, Schema, Stated, Text, Word
 from calc.components.fields import Field
+from calc.components.fitting import FORM_FIELDS, NEEDS, computed_kind
 from calc.components.fitting import SCHEMA as FITTING_SCHEMA
 from calc.kinds import NUMBER
 from calc.marks import Mark
@@ -18,9 +19,9 @@ from calc.yamlfile import Mapping, Node, Scalar
 COEFFICIENT = Quantity(NUMBER, at_least=0.0)
 
 
-def _schema() -> Schema:
+def schema() -> Schema:
     """Return the schema of a fitting with the kinds of the shipped table."""
-    kinds = Word(tuple(shipped.fittings()))
+    kinds = Word((*shipped.fittings(), *shipped.computed_fittings()))
     own = tuple(Field("kind", kinds) if f.name == "kind" else f for f in FITTING_SCHEMA.fields)
     place = Field("at", Word(("from", "to", "along")), words="where it stands in the pipe")
     return Schema("fittings", "fitting", (*own, place), FITTING_SCHEMA.excludes)
@@ -40,19 +41,19 @@ def read_fittings(reader: Reader, node: Node, pipe: str, bore: Stated | None) ->
     bore : Stated or None
         Bore of the pipe, on which a fitting stands unless it says otherwise.
     """
-    schema = _schema()
+    fields = schema()
     found = []
     path = f"pipes.{pipe}.fittings"
     for number, item in enumerate(reader.items(node, path, "a list of fittings: [{kind: bend-90}, …]"), 1):
         at = f"{path}[{number}]"
-        member = reader.mapping(item, at, "a mapping: {kind: …} or {K: …}")
+        member = reader.mapping(item, at, "a mapping: {kind: …}, {K: …}, {Kv: …} or {Cv: …}")
         if member is None:
             if empty(item):
                 reader.note(item.mark, "wrong-shape", at, "nothing is written here", "{kind: …} or {K: …}")
             continue
-        stated, _ = read_fields(reader, schema, member, at, item.mark, extra=BASIS_KEYS)
+        stated, _ = read_fields(reader, fields, member, at, item.mark, extra=BASIS_KEYS)
         _complete(reader, stated, member, at, bore)
-        if "K" in stated and "K_reverse" in stated:
+        if ("K" in stated and "K_reverse" in stated) or _computable(stated):
             found.append(Record(f"{pipe}/{number}", item.mark, stated))
     return tuple(found)
 
@@ -63,19 +64,49 @@ def _complete(reader: Reader, stated: Fields, member: Mapping, at: str, bore: St
     note = member.get("note")
     if note is not None and basis.note:
         stated["note"] = Stated(basis.note, basis.note, note.mark)
-    for name in ("K", "K_reverse", "kind", "bore"):
+    _check_form(reader, stated, member, at)
+    for name in ("K", "K_reverse", "kind", "bore", "Kv", "Cv", *FORM_FIELDS):
         if name in stated and any((basis.source, basis.page, basis.grade, basis.note)):
             stated[name] = replace(stated[name], basis=basis)
-    if "kind" in stated:
+    if computed_kind(stated):
+        if "kind" in stated:
+            stated["title"] = shipped.computed_fittings()[stated["kind"].text].title
+    elif "kind" in stated:
         row = shipped.fittings()[stated["kind"].text]
         stated.setdefault("K", row.forward)
         stated.setdefault("K_reverse", row.reverse)
         stated["title"] = row.title
     elif "K" in stated:
         stated.setdefault("K_reverse", stated["K"])
-    elif member.get("kind") is None and member.get("K") is None:
-        reader.note(member.mark, "missing-key", at, "no coefficient is stated", "'kind: …' or 'K: …'")
+    elif not {"kind", "K", "Kv", "Cv"} & set(member.keys()):
+        expected = "'kind: …', 'K: …', 'Kv: …' or 'Cv: …'"
+        reader.note(member.mark, "missing-key", at, "no coefficient is stated", expected)
     _count_and_bore(reader, stated, bore)
+
+
+def _computable(stated: Fields) -> bool:
+    kind = computed_kind(stated)
+    return bool(kind) and all(name in stated for name in NEEDS[kind])
+
+
+def _check_form(reader: Reader, stated: Fields, member: Mapping, at: str) -> None:
+    """Note what a computed kind lacks, and what stands beside a kind that makes nothing of it."""
+    kind = computed_kind(stated)
+    wanted = NEEDS.get(kind, ())
+    present = member.keys()
+    what = f"'{kind}'" if kind in ("Kv", "Cv") else f"the kind '{kind}'" if kind else ""
+    for name in wanted:
+        field = FITTING_SCHEMA.field(name)
+        if name not in present and field is not None and isinstance(field.form, Quantity):
+            example = field.example or field.form.kind.example
+            reader.note(member.mark, "missing-key", f"{at}.{name}", f"'{name}' is missing", f"'{name}: {example}'")
+    for key, _ in member.entries:
+        idle = key.text in FORM_FIELDS and key.text not in wanted
+        if idle or (kind and key.text == "K_reverse"):
+            found = f"'{key.text}' stands beside {what or 'a stated coefficient'}, which does not take it"
+            takers = [name for name, needs in NEEDS.items() if key.text in needs]
+            expected = f"{key.text} with kind {' or '.join(takers)}" if takers else "'K_reverse' beside 'K'"
+            reader.note(key.mark, "excluded-pair", f"{at}.{key.text}", found, expected, "leave it out")
 
 
 def _count_and_bore(reader: Reader, stated: Fields, bore: Stated | None) -> None:
@@ -131,7 +162,7 @@ def _end(reader: Reader, name: str, key: Scalar, stated: Fields, bore: Stated | 
     return Record(name, key.mark, stated)
 
 
-_OWN = Schema(
+OWN_END = Schema(
     "ends",
     "reservoir end",
     (
@@ -155,7 +186,7 @@ def _read_end(reader: Reader, node: Node, path: str) -> Fields | None:
 
 
 def _read_own_end(reader: Reader, node: Mapping, path: str, mark: Mark) -> Fields | None:
-    stated, _ = read_fields(reader, _OWN, node, path, mark, extra=("source", "page", "grade"))
+    stated, _ = read_fields(reader, OWN_END, node, path, mark, extra=("source", "page", "grade"))
     basis = reader.basis(node, path)
     for name in ("entry", "exit"):
         if name in stated and any((basis.source, basis.page, basis.grade, basis.note)):

@@ -43,6 +43,16 @@ class Row:
     reverse: Stated
 
 
+@dataclass(frozen=True, slots=True)
+class Computed:
+    """A kind of fitting whose coefficient follows by a law; each text with its place and source."""
+
+    name: str
+    title: Stated
+    takes: Stated
+    law: Stated
+
+
 @lru_cache(maxsize=1)
 def defaults() -> dict[str, Stated]:
     """Return every default by path, such as ``site.gravity``."""
@@ -57,6 +67,22 @@ def defaults() -> dict[str, Stated]:
 def fittings() -> dict[str, Row]:
     """Return the shipped kinds of fitting."""
     return _rows("fittings", "K", "K_reverse")
+
+
+@lru_cache(maxsize=1)
+def computed_fittings() -> dict[str, Computed]:
+    """Return the kinds of fitting whose coefficient follows by a law from what is stated of them."""
+    reader = Reader()
+    found: dict[str, Computed] = {}
+    node = _read("fittings.yaml").get("computed")
+    for key, value in node.entries if isinstance(node, Mapping) else ():
+        if isinstance(value, Mapping):
+            texts = {name: _scalar(value.get(name)) for name in ("title", "takes", "law", "source")}
+            source = texts["source"].text
+            title, takes, law = (_stated(reader, texts[name], None, source) for name in ("title", "takes", "law"))
+            found[key.text] = Computed(key.text, title, takes, law)
+    _sound(reader)
+    return found
 
 
 @lru_cache(maxsize=1)

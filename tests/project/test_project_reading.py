@@ -206,13 +206,6 @@ def test_shipped_kinds_lie_within_the_ranges_of_common_tables(tmp_path: Path) ->
         assert part.stated["K"].basis.source
 
 
-def test_a_sudden_step_widens_as_borda_and_carnot_have_it(tmp_path: Path) -> None:
-    """To twice the bore: (1 − (1/2)²)² = 0.5625 on the smaller bore (Borda–Carnot)."""
-    text = with_line("    bore: 250 mm", "    fittings: [{kind: step}]\n    bore: 250 mm")
-    (part,) = read(tmp_path, text).pipes["sedge-link"].parts["fittings"]
-    assert part.number("K_reverse") == (1 - 0.5**2) ** 2
-
-
 def test_a_liquid_of_its_own(tmp_path: Path) -> None:
     dynamic = read(tmp_path / "a", SOUND + "fluid: {kind: brine, density: 1100 kg/m³, viscosity: 1.5 mPa·s}\n").fluid
     assert (dynamic.number("viscosity"), dynamic.text("viscosity_kind")) == (0.0015, "dynamic viscosity")

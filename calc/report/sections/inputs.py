@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from calc.account import WITHOUT_SOURCE
-from calc.ledger import Column, Converted, Derived, Given, Library, Spot
+from calc.account import WITHOUT_SOURCE, following
+from calc.ledger import Column, Converted, Given, Library, Spot
 from calc.report.composer import INTO, Composer, Sheet, column, place
 from calc.report.conversion import WORTH
 from calc.report.derivation import COLUMNS as WORKED
@@ -95,18 +95,12 @@ def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
     return rows
 
 
-FOLLOWED = ("scaled_value", "withdrawal_of_inflow")
-"""Laws by which the inputs of a component follow from what is stated."""
-
-
 def _followed(sheet: Sheet, case: str) -> list[Spot]:
-    """Return what a case makes of the inputs of components: factors applied, inflows turned into withdrawals."""
+    """Return what follows from the inputs of components in a case: factors, withdrawals, bores, coefficients."""
     shown = shown_inputs(sheet.composer.account)
     return [
         Spot(one, row)
-        for one in sheet.composer.ledger.columns
-        if one.case == case and not one.of and isinstance(one.origin, Derived)
-        if one.origin.leaf.name in FOLLOWED
+        for one in following(sheet.composer.ledger.columns, case)
         for row, name in enumerate(one.rows)
         if (shown is None or name.partition("/")[0] in shown)
     ]
