@@ -27,6 +27,12 @@ _SLACK = 1e-12
 """Relative; a bound in °C is not exact in kelvin."""
 
 
+def limits(form: Quantity) -> tuple[float, float]:
+    """Return the least and the greatest value of a form, in SI; ``above`` comes on top."""
+    low, high = COMPUTABLE.get(form.kind.name, (-1e30, 1e30))
+    return low if form.at_least is None else form.at_least, high if form.at_most is None else form.at_most
+
+
 def outside(form: Quantity, si: float) -> str:
     """Return what is expected where a value lies outside its bounds, or an empty text where it lies within.
 
@@ -38,20 +44,19 @@ def outside(form: Quantity, si: float) -> str:
         The value, in SI.
     """
     kind = form.kind
-    low, high = COMPUTABLE.get(kind.name, (-1e30, 1e30))
+    least, most = limits(form)
     slack = _SLACK * abs(si)
-    least = low if form.at_least is None else form.at_least
-    most = high if form.at_most is None else form.at_most
     if form.above is not None and si <= form.above:
-        return f"{kind.phrase} above {_show(form.above, kind)}"
+        return f"{kind.phrase} above {show(form.above, kind)}"
     if least - slack <= si <= most + slack:
         return ""
     if form.at_least is not None and form.at_most is not None:
-        return f"{kind.phrase} from {_show(least, kind).partition(' ')[0]} to {_show(most, kind)}"
-    return f"{kind.phrase} of " + (f"at least {_show(least, kind)}" if si < least else f"at most {_show(most, kind)}")
+        return f"{kind.phrase} from {show(least, kind).partition(' ')[0]} to {show(most, kind)}"
+    return f"{kind.phrase} of " + (f"at least {show(least, kind)}" if si < least else f"at most {show(most, kind)}")
 
 
-def _show(si: float, kind: Kind) -> str:
+def show(si: float, kind: Kind) -> str:
+    """Return a bound with its unit."""
     if kind is TEMPERATURE:
         return f"{round(si - 273.15, 9):.12g} °C"
     return f"{si:.12g} {kind.unit}".rstrip()

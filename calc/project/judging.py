@@ -83,9 +83,14 @@ def _read(
     return Record(criterion.id, key.mark, stated)
 
 
+def limit_forms(criterion: Criterion) -> tuple[Quantity, ...]:
+    """Return the forms in which the limit of a criterion may be given."""
+    return tuple(Quantity(kind, at_least=0.0 if kind in WITHOUT_SIGN else None) for kind in criterion.kinds)
+
+
 def _read_limit(reader: Reader, criterion: Criterion, node: Node, path: str, stated: dict[str, Stated]) -> None:
     """Read a limit in any of the kinds a criterion takes, and say which."""
-    forms = tuple(Quantity(kind, at_least=0.0 if kind in WITHOUT_SIGN else None) for kind in criterion.kinds)
+    forms = limit_forms(criterion)
     used: list[Kind] = []
 
     def read(scalar: Scalar, at: str) -> Stated | None:

@@ -22,7 +22,9 @@ SINGLE: dict[str, Schema] = {"fluid": FLUID, "site": SITE}
 """Groups with one record: their paths have two parts."""
 
 FRICTION = Schema("friction", "friction", (Field("law", Word(LAW_NAMES)),))
-_WORD = re.compile(r"[A-Za-z0-9_*-]{1,200}", re.ASCII)
+PATTERN = "[A-Za-z0-9_*-]{1,200}"
+"""An id, in which ``*`` stands for any part."""
+_WORD = re.compile(PATTERN, re.ASCII)
 
 
 @dataclass(frozen=True, slots=True)

@@ -23,7 +23,8 @@ GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assume
 BASIS_KEYS = ("source", "page", "grade", "note")
 _VALUE_KEYS = ("value", *BASIS_KEYS, *SPREAD_KEYS)
 LONGEST_ID = 64
-_ID = re.compile(rf"[A-Za-z0-9_-]{{1,{LONGEST_ID}}}", re.ASCII)
+ID = f"[A-Za-z0-9_-]{{1,{LONGEST_ID}}}"
+_ID = re.compile(ID, re.ASCII)
 _WHOLE = re.compile(r"[0-9]{1,9}", re.ASCII)
 _DATE = re.compile(r"[0-9]{4}-[0-9]{2}-[0-9]{2}", re.ASCII)
 

@@ -34,6 +34,8 @@ class SectionSchema:
     ----------
     name : str
         The key, such as ``solver``.
+    words : str
+        What it is for.
     fields : tuple of Field
         Of forms `Quantity`, `Count`, `Word`, `Text` and `Flag`.
     by_node : tuple of Field
@@ -47,3 +49,4 @@ class SectionSchema:
     fields: tuple[Field, ...]
     by_node: tuple[Field, ...] = ()
     later: tuple[Later, ...] = ()
+    words: str = ""

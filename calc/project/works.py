@@ -90,6 +90,9 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
     return works
 
 
+NEEDED = ("reservoirs", "pipes")
+"""Groups of which a project has at least one."""
+
 _HARMLESS = frozenset(
     {
         *("ambiguous-unit", "bare-number", "not-a-quantity", "not-finite", "unknown-unit", "wrong-dimension"),
@@ -199,7 +202,7 @@ def note_missing_input(reader: Reader, mark: Mark, path: str, needed: str, law: 
 
 def _expect_some(reader: Reader, works: Works, top: Mapping[str, Entry]) -> None:
     """Note that there are no reservoirs or no pipes at all."""
-    for name, records in (("reservoirs", works.reservoirs), ("pipes", works.pipes)):
+    for name, records in zip(NEEDED, (works.reservoirs, works.pipes), strict=True):
         entry = top.get(name)
         if records or (entry is not None and not empty(entry.value) and not _hollow(entry)):
             continue

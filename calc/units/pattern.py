@@ -13,16 +13,18 @@ from collections.abc import Iterable
 from fractions import Fraction
 from functools import lru_cache
 
-from calc.kinds import Dimension, Kind
+from calc.kinds import ANGLE, Dimension, Kind
 from calc.units.registry import worth
 from calc.units.words import WORDS
 
 _DIGITS = r"(?:[0-9]+\.?[0-9]*|\.[0-9]+)"
 _EXPONENT = "(?:[eE][+-]?[0-9]+)?"
-ANY = f"[+-]?{_DIGITS}{_EXPONENT}"
-"""A number."""
-NOT_BELOW_ZERO = rf"(?:\+?{_DIGITS}|-(?:0+\.?0*|\.0+)){_EXPONENT}"
-ABOVE_ZERO = rf"\+?(?=[0.]*[1-9]){_DIGITS}{_EXPONENT}"
+_NUMBER = f"[+-]?{_DIGITS}{_EXPONENT}"
+NUMBER = f"^ *{_NUMBER} *$"
+"""A number without a unit."""
+NOT_BELOW_ZERO = "^ *(?!-[0.]*[1-9])"
+ABOVE_ZERO = r"^ *\+?[0.]*[1-9]"
+"""What the sign and figures of a quantity must be; each says nothing of the rest."""
 
 _PRODUCT, _QUOTIENT = "(?: *[·*⋅] *| +)", " */ *"
 _RAISED = str.maketrans("0123456789", "⁰¹²³⁴⁵⁶⁷⁸⁹")
@@ -31,39 +33,46 @@ _TOP = 9
 _USUAL = 3
 """Powers up to this one are added up."""
 _POWERS = [n for n in range(-_USUAL, _USUAL + 1) if n]
+_ANY_POWER = r"(?:(?:\^|\*\*)?[+-]?[1-9]|[⁻⁺]?[¹²³⁴-⁹])?"
 _EVERY_POWER = [n for n in range(-_TOP, _TOP + 1) if n]
 
 
-def pattern(kind: Kind, number: str = ANY, *, differences: bool = False) -> str:
+def quantity(kind: Kind, *, differences: bool = False) -> str:
     """Return the pattern of a quantity of a kind.
 
     Parameters
     ----------
     kind : Kind
         What it measures; a pure number may stand without a unit.
-    number : str
-        `ANY`, `NOT_BELOW_ZERO` or `ABOVE_ZERO`.
     differences : bool
         Whether scales with a zero of their own are left out.
     """
-    unit = _units(kind.dimension, scales=not differences)
-    return f"^ *{number}{f' *(?:{unit})' if kind.unit else f'(?: *(?:{unit}))?'} *$"
+    unit = _angles() if kind is ANGLE else _units(kind.dimension, scales=not differences)
+    return f"^ *{_NUMBER}{f' *(?:{unit})' if kind.unit else f'(?: *(?:{unit}))?'} *$"
 
 
 def never_negative(kind: Kind, least: float) -> bool:
     """Return whether no negative number, in whatever unit of a kind, reaches a least value in SI."""
-    scales = [worth(name) for name, word in WORDS.items() if word.offset]
-    return least >= max((0.0, *(float(one.offset) for one in scales if one.dimension == kind.dimension)))
+    return least >= max((0.0, *(float(worth(name).offset) for name in _scales(kind.dimension))))
+
+
+def has_scales(kind: Kind) -> bool:
+    """Return whether a kind has units with a zero of their own."""
+    return bool(_scales(kind.dimension))
+
+
+def _scales(dimension: Dimension) -> list[str]:
+    return [name for name, word in WORDS.items() if word.offset and worth(name).dimension == dimension]
 
 
 def _spelt(name: str, *, first: bool) -> str:
     """Return the pattern of a name in every spelling that is read."""
     if name == "thousand_ft":
-        return name if first else f"{name}|1000 ?(?:ft|feet)"  # at the front, 1000 is the number
+        return name if first else f"{name}|1000 ?(?:ft|feet)(?![0-9])"  # at the front, 1000 is the number
     nation, _, rest = name.partition("_")
     if rest:
         anyhow = ("".join(f"[{letter.upper()}{letter}]" for letter in part) for part in (nation, rest))
-        return "[ _]+".join(anyhow)
+        return f"{name}|{'[ _]+'.join(anyhow)}(?![0-9])"
     return name.replace("µ", "[µμ]")
 
 
@@ -72,7 +81,7 @@ def _classes() -> dict[Dimension, tuple[str, ...]]:
     """Return the names that may be multiplied, by what they measure."""
     found: dict[Dimension, tuple[str, ...]] = {}
     for name, word in WORDS.items():
-        if not word.offset:
+        if not (word.offset or word.angle):
             found[worth(name).dimension] = (*found.get(worth(name).dimension, ()), name)
     return found
 
@@ -108,9 +117,8 @@ def _units(wanted: Dimension, *, scales: bool) -> str:
         for of, names in classes.items()
         if (powers := _solving(wanted, of, _EVERY_POWER))
     ]
-    alone = [name for name, word in WORDS.items() if word.offset and worth(name).dimension == wanted]
-    if scales and alone:
-        ways.append(_names(alone, first=True) + _power([1]))
+    if scales and _scales(wanted):
+        ways.append(_names(_scales(wanted), first=True) + _power([1]))
     for of, names in classes.items():
         pairs = [(n, _second(wanted.times(of.power(Fraction(-n))))) for n in _POWERS]
         if whole := "|".join(f"{_power([n])}{behind}" for n, behind in pairs if behind):
@@ -129,13 +137,17 @@ def _second(rest: Dimension) -> str:
     return f"(?:{'|'.join(behind)})" if behind else ""
 
 
+def _angles() -> str:
+    """Return the pattern of units of angle, which stand alone."""
+    return _names((name for name, word in WORDS.items() if word.angle), first=True) + _power([1])
+
+
 @lru_cache(maxsize=1)
 def _unusual() -> str:
     """Return the pattern of units of three names and more, or of two of which one has a high power."""
     known = [name for names in _classes().values() for name in names]
-    power, high = _power(_EVERY_POWER), _power([n for n in _EVERY_POWER if abs(n) > _USUAL])
-    first, later = _names(known, first=True), _names(known, first=False)
+    first = _names(known, first=True) + _ANY_POWER
+    later = _names(known, first=False) + _ANY_POWER
     join = f"(?:{_PRODUCT}|{_QUOTIENT})"
-    two = f"{first}(?:{high}{join}{later}{power}|{power}{join}{later}{high})"
-    more = f"{first}{power}(?:{_PRODUCT}{later}{power})*(?:{_QUOTIENT}{later}{power})*"
-    return f"{two}|(?={first}{power}(?:{join}{later}{power}){{2}}){more}"
+    two = f"(?=.*[{_USUAL + 1}-9⁴-⁹]){first}{join}{later}"
+    return f"{two}|(?={first}(?:{join}{later}){{2}}){first}(?:{_PRODUCT}{later})*(?:{_QUOTIENT}{later})*"

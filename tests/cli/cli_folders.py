@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 SMALLEST = """\
 reservoirs:
   upper: {level: 214.60 m}
@@ -32,3 +34,9 @@ pipes:
   link: {from: low, to: high, length: 1000 m, bore: 300 mm, friction_factor: 0.02}
 """
 """One pipe with a fixed Darcy f and no other loss: its flow has a closed form."""
+
+
+def samples_and_projects() -> list[Path]:
+    """Return the YAML files of every sample and demonstration project."""
+    root = Path(__file__).resolve().parents[2]
+    return sorted([*root.glob("calc/data/samples/*/*.yaml"), *root.glob("projects/*/*.yaml")])
