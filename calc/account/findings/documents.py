@@ -9,6 +9,7 @@ import numpy as np
 
 from calc.account.findings.finding import Check, Remark, Solved, place_in_folder
 from calc.components import Record
+from calc.components.fitting import FORM_FIELDS
 from calc.components.pipe import LAW_INPUT
 from calc.project import Project
 
@@ -55,6 +56,9 @@ def unsourced(project: Project) -> Iterator[Remark]:
             yield Remark(f"cases.{case.id}", place, f"values of this case have no source: {names}")
 
 
+_COEFFICIENTS = ("K", "K_reverse", "Kv", "Cv", *FORM_FIELDS)
+
+
 def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
     for name, stated in record.stated.items():
         if not stated.shipped and name not in WITHOUT_SOURCE and not stated.basis.source:
@@ -63,7 +67,7 @@ def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
         for name, stated in part.stated.items():
             if name == "K_reverse" and stated is part.stated.get("K"):
                 continue  # stated once, it holds both ways
-            if name in ("K", "K_reverse") and not stated.shipped and not stated.basis.source:
+            if name in _COEFFICIENTS and not stated.shipped and not stated.basis.source:
                 place = part.id.rpartition("/")[2]
                 where = f"of fitting {place}" if place.isdigit() else f"at '{place}'"
                 yield f"{name} {where}", stated.mark.place

@@ -16,6 +16,12 @@ FARTHEST_BORE = 1.3
 """Bore of a fitting over that of its pipe, or the other way round, from which it is worth a look; common practice."""
 LARGEST_COEFFICIENT = 200.0
 """Loss coefficient above which it looks like a flow coefficient; common practice."""
+OPENEST, TIGHTEST = 0.05, 1000.0
+"""Loss coefficients of a wide open and of a nearly shut valve; common practice."""
+DROPS = {"Kv": 1e5, "Cv": 6894.757}
+"""Pressure, Pa, that drives a flow coefficient through: 1 bar, 1 psi (0.45359237 kg · 9.80665 m/s² on 0.0254² m²)."""
+COLD_WATER = 1000.0
+"""Density, kg/m³, at which flow coefficients are measured."""
 LEAST_HEAD, LEAST_SHARE = 0.1, 0.05
 """Velocity head, m, and its share of the pressure head, above both of which it is not small; common practice."""
 
@@ -52,8 +58,9 @@ def unlike_bores(project: Project) -> Iterator[Remark]:
         own = part.stated.get("bore")
         if own is None or stands_on_pipe(pipe, part):
             continue
-        ratio = own.si / pipe.number("bore")
-        if not 1.0 / FARTHEST_BORE <= ratio <= FARTHEST_BORE:
+        bores = [own.si, *(stated.si for stated in [part.stated.get("onward_bore")] if stated)]  # a step has two
+        ratios = [bore / pipe.number("bore") for bore in bores]
+        if not any(1.0 / FARTHEST_BORE <= ratio <= FARTHEST_BORE for ratio in ratios):
             text = (
                 f"the coefficient of {_named(part)} stands on a bore far from that of the pipe: a loss goes with the "
                 "fourth power of it. See on which bore the source gives it; a change of bore has a loss of its own"
@@ -74,6 +81,28 @@ def large_coefficients(project: Project) -> Iterator[Remark]:
                     "See which of them the source gives"
                 )
                 yield Remark(f"pipes.{pipe.id}", stated.mark.place, text)
+
+
+def odd_flow_coefficients(project: Project) -> Iterator[Remark]:
+    """Yield flow coefficients that no valve of the bore has: K = 2 Δp A² / (ρ Kv²) is out of all practice."""
+    for pipe, part in _parts(project):
+        for name, drop in DROPS.items():
+            stated, bore = part.stated.get(name), part.stated.get("bore")
+            if stated is None or bore is None:
+                continue
+            area = np.pi / 4 * bore.si**2
+            coefficient = 2 * drop / COLD_WATER * (area / stated.si) ** 2
+            if coefficient < OPENEST:
+                size = "a valve that loses less than one wide open"
+            elif coefficient > TIGHTEST:
+                size = "a valve that is all but shut"
+            else:
+                continue
+            text = (
+                f"{name} of {_named(part)} is that of {size}, for its bore. See that it is no loss coefficient and "
+                "goes with this bore, and whether the source gives Kv or Cv"
+            )
+            yield Remark(f"pipes.{pipe.id}", stated.mark.place, text)
 
 
 def _parts(project: Project) -> Iterator[tuple[Record, Record]]:
@@ -158,7 +187,10 @@ CHECKS = (
     Check(
         "D39",
         "Loss and flow coefficients confused",
-        "loss coefficients above two hundred",
-        inputs=large_coefficients,
+        "loss coefficients above two hundred, and a Kv or Cv that for its bore is that of no valve, or of one all but "
+        "shut",
+        inputs=lambda project: (
+            remark for check in (large_coefficients, odd_flow_coefficients) for remark in check(project)
+        ),
     ),
 )

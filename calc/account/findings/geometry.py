@@ -20,9 +20,12 @@ NOMINAL_MILLIMETRES = (
 )
 """Nominal diameters of ISO 6708 (from memory)."""
 MOST_INCHES = 120
-_NOMINAL = np.array([*(dn / 1000 for dn in NOMINAL_MILLIMETRES), *(n * 0.0254 for n in range(1, MOST_INCHES + 1))])
 EXACTLY = 1e-9
 """Metres within which a bore is one of them."""
+_NOMINAL = frozenset(
+    round(size / EXACTLY)
+    for size in (*(dn / 1000 for dn in NOMINAL_MILLIMETRES), *(n * 0.0254 for n in range(1, MOST_INCHES + 1)))
+)
 _KNOWN_GRADES = ("manufacturer", "measured", "surveyed", "standard")
 SHORTEST = 10.0
 """Length over bore below which a pipe is hardly a pipe; common practice for flow to be fully developed."""
@@ -43,7 +46,7 @@ def nominal_bores(project: Project) -> Iterator[Remark]:
         bore = pipe.stated.get("bore")
         if bore is None or bore.shipped or not bore.unit or bore.basis.grade in _KNOWN_GRADES:
             continue
-        if np.any(np.abs(_NOMINAL - bore.si) < EXACTLY):
+        if round(bore.si / EXACTLY) in _NOMINAL:
             yield Remark(f"pipes.{pipe.id}", bore.mark.place, text)
 
 

@@ -35,13 +35,13 @@ def test_values_without_a_source_are_gathered_by_component(tmp_path: Path) -> No
 
 def test_coefficients_cases_limits_and_constants_need_sources_too(tmp_path: Path) -> None:
     text = spoiled(
-        ("[{kind: bend-90}]", "[{K: 2.5}, {K: 1, source: S1}]"),
+        ("[{kind: bend-90}]", "[{K: 2.5}, {K: 1, source: S1}, {Kv: 900}]"),
         added="criteria: {velocity-max: {limit: 2 m/s}}\n"
         "constants: {transition: {laminar_below: 2100}}\n"
         "cases: {low: {with: {reservoirs.mere.level: 39 m}}}\n",
     )
     assert {(one.subject, one.text) for one in findings(tmp_path, text)} == {
-        ("pipes.upper", "K of fitting 1 has no source"),
+        ("pipes.upper", "K of fitting 1, Kv of fitting 3 have no source"),
         ("criteria.velocity-max", "limit has no source"),
         ("constants.transition", "laminar_below has no source"),
         ("cases.low", "values of this case have no source: reservoirs.mere.level"),

@@ -290,9 +290,22 @@ CASES = [
         ("pipes.upper",),
         "fitting 1",
     ),
+    Spoilt(
+        "a step down from the pipe's bore",
+        "D38",
+        ((BEND, "fittings: [{kind: step, bore: 100 mm, onward_bore: 204.6 mm, source: S1}]"),),
+        (),
+    ),
     Spoilt("a meter of a size less", "D38", ((BEND, "fittings: [{K: 2, bore: 160 mm, source: S1}]"),), ()),
     # D39: Kv of a 200 mm control valve is some hundreds of m³/h
     Spoilt("a Kv for a K", "D39", ((BEND, "fittings: [{K: 630, source: S1}]"),), ("pipes.upper",), "Kv or Cv"),
+    # K = 2 · 1 bar · A² / (ρ Kv²): for 204.6 mm, Kv 2.5 m³/h is K 448,000, Kv 600 is 7.8, Kv 9000 is 0.035 (by hand)
+    Spoilt("a K for a Kv", "D39", ((BEND, "fittings: [{Kv: 2.5, source: S1}]"),), ("pipes.upper",), "all but shut"),
+    Spoilt(
+        "a Kv beyond its bore", "D39", ((BEND, "fittings: [{Kv: 9000, source: S1}]"),), ("pipes.upper",), "wide open"
+    ),
+    Spoilt("a Kv of its bore", "D39", ((BEND, "fittings: [{Kv: 600, source: S1}]"),), ()),
+    Spoilt("a Cv of its bore", "D39", ((BEND, "fittings: [{Cv: 700, source: S1}]"),), ()),
     Spoilt("a K of a throttled valve", "D39", ((BEND, "fittings: [{K: 120, source: S1}]"),), ()),
 ]
 
