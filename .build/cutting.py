@@ -24,6 +24,8 @@ from fontTools.varLib.instancer import instantiateVariableFont
 from hatchling.builders.hooks.plugin.interface import BuildHookInterface
 
 FOLDER = "calc/publish/fonts"
+PROJECTS, INPUTS = "calc/data/projects", (".yaml", ".csv")
+"""Where a wheel carries the demonstration projects, and which of their files."""
 RECORD = "cut.sha256"
 """Digest of the recipe on the first line, then one line a file in the form that ``sha256sum -c`` reads."""
 
@@ -173,7 +175,7 @@ def cut_all(folder: Path) -> bool:
 
 
 class Cutting(BuildHookInterface[Any]):
-    """The build's hook: fonts into ``calc/publish/fonts``; templates into the wheel beside them."""
+    """The build's hook: fonts into ``calc/publish/fonts``; templates and projects into the wheel."""
 
     PLUGIN_NAME = "custom"
 
@@ -182,5 +184,9 @@ class Cutting(BuildHookInterface[Any]):
         if self.target_name != "wheel":
             return
         cut_all(Path(self.root) / FOLDER)
-        if version != "editable":  # an editable install reads the repository's own templates
-            build_data["force_include"][str(Path(self.root) / "templates")] = "calc/publish/templates"
+        if version != "editable":  # an editable install reads the repository's own templates and projects
+            brought: dict[str, str] = build_data["force_include"]
+            brought[str(Path(self.root) / "templates")] = "calc/publish/templates"
+            for file in sorted(Path(self.root).glob("projects/*/*")):
+                if file.suffix in INPUTS:
+                    brought[str(file)] = f"{PROJECTS}/{file.parent.name}/{file.name}"

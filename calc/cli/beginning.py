@@ -8,16 +8,22 @@ import os
 import shutil
 import tempfile
 from collections.abc import Generator
-from importlib import resources
-from importlib.resources.abc import Traversable
 from pathlib import Path
 
 from calc.cli.call import NAME, WrongCall
 from calc.cli.outcome import Outcome
+from calc.cli.samples import inputs, samples
+from calc.cli.schema import written
 from calc.problems import nearest
 
 USUAL = "two-reservoirs"
 """The sample that is copied when none is named."""
+
+
+SCHEMA = "inputs.schema.json"
+"""The schema for editors, beside the inputs and none of them."""
+EDITORS = f"# yaml-language-server: $schema={SCHEMA}\n"
+"""First line of each YAML file, by which editors find the schema."""
 
 
 def run(asked: argparse.Namespace) -> Outcome:
@@ -25,32 +31,30 @@ def run(asked: argparse.Namespace) -> Outcome:
     sample = _sample(USUAL if asked.like is None else asked.like)
     folder = Path(asked.folder)
     _refuse_what_is_held(folder)
-    contents = {file.name: file.read_bytes() for file in _files(sample)}
+    contents = {file.name: _content(file) for file in inputs(sample)}
+    names = ", ".join(sorted(contents))
+    contents[SCHEMA] = written().encode()
     if folder.is_dir():
         _fill(folder, contents)
     else:
         _make(folder, contents)
-    names = ", ".join(sorted(contents))
     lines = [
         f"{folder}: begun from {sample.name} ({names})",
-        "Its places and figures are invented: put yours in their stead. Then:",
+        "Its places and figures are invented: put yours in their stead. An editor that reads YAML schemas",
+        f"completes, explains and checks what you type, by {SCHEMA}. Then:",
         f"  {NAME} inspect {folder}",
         f"  {NAME} issue {folder}",
     ]
     return Outcome(said="\n".join(lines))
 
 
-def samples() -> dict[str, Traversable]:
-    """Return the shipped samples by name."""
-    shelf = resources.files("calc").joinpath("data", "samples")
-    return {one.name: one for one in sorted(shelf.iterdir(), key=lambda one: one.name) if _files(one)}
+def _content(file: Path) -> bytes:
+    """Return what is written of an input file: its bytes, with the line for editors before them."""
+    head = EDITORS.encode() if file.suffix == ".yaml" else b""
+    return head + file.read_bytes()
 
 
-def _files(sample: Traversable) -> list[Traversable]:
-    return [file for file in sample.iterdir() if file.name.endswith(".yaml")] if sample.is_dir() else []
-
-
-def _sample(name: str) -> Traversable:
+def _sample(name: str) -> Path:
     known = samples()
     if name not in known:
         listed = ", ".join(known)

@@ -85,7 +85,7 @@ COMMANDS: tuple[Command, ...] = (
         "beginning",
         "starts a project folder that issues at once",
         (Place("DIR", "folder", "the folder to make; it must not hold anything yet"),),
-        (Option("--like", "the sample to begin from, two-reservoirs if not said", "NAME"),),
+        (Option("--like", "the sample or project to begin from, two-reservoirs if not said", "NAME"),),
     ),
     Command("inspect", "inspection", "lists every problem and finding in the inputs", (FOLDER,)),
     Command(

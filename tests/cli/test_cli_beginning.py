@@ -2,34 +2,62 @@
 
 from __future__ import annotations
 
+import json
 import os
 import shutil
 from collections.abc import Callable
 from pathlib import Path
 
 import pytest
+from jsonschema import Draft202012Validator
 
-from calc.cli import beginning
+from calc import pipeline
+from calc.cli.beginning import EDITORS, SCHEMA
+from calc.cli.samples import SHELVES, samples
 
 Inside = Callable[..., tuple[int, str, str]]
 
 
-@pytest.mark.parametrize("name", list(beginning.samples()))
-def test_a_sample_is_clean(inside: Inside, tmp_path: Path, name: str) -> None:
+SMALL = [name for name, folder in samples().items() if folder.parent == SHELVES[0]]
+
+
+@pytest.mark.parametrize("name", list(samples()))
+def test_a_folder_is_begun_from_every_sample_and_project(inside: Inside, tmp_path: Path, name: str) -> None:
     folder = tmp_path / "works"
     status, said, remarks = inside("new", folder, "--like", name)
     assert (status, remarks) == (0, "")
     assert str(folder) in said
+    origin = {file.name: file.read_bytes() for file in samples()[name].iterdir() if file.suffix in {".yaml", ".csv"}}
+    begun = {file.name: file.read_bytes() for file in folder.iterdir()}
+    assert begun.keys() == {*origin, SCHEMA}
+    for file, content in origin.items():
+        assert begun[file] == (EDITORS.encode() if file.endswith(".yaml") else b"") + content
+    Draft202012Validator.check_schema(json.loads(begun[SCHEMA]))
+    assert inside("inspect", folder)[0] == 0
+    assert inside("solve", folder)[0] <= 1
+
+
+def test_the_schema_beside_the_inputs_is_none_of_them(inside: Inside, tmp_path: Path) -> None:
+    inside("new", tmp_path / "works")
+    before = pipeline.read(tmp_path / "works")
+    assert SCHEMA not in {file.name for file in before.files}
+    (tmp_path / "works" / SCHEMA).unlink()
+    assert pipeline.read(tmp_path / "works").digest == before.digest
+
+
+@pytest.mark.parametrize("name", SMALL)
+def test_a_sample_is_clean(inside: Inside, tmp_path: Path, name: str) -> None:
+    folder = tmp_path / "works"
+    assert inside("new", folder, "--like", name)[0] == 0
     assert inside("inspect", folder) == (0, "no problems; 0 findings\n", "")
     status, said, remarks = inside("solve", folder)
     assert (status, remarks) == (0, "")
     assert "NOT MET" not in said
     assert "no solution" not in said
-    assert {path.suffix for path in folder.iterdir()} == {".yaml"}
 
 
 def test_there_are_samples_to_choose_from(inside: Inside, tmp_path: Path) -> None:
-    assert {"two-reservoirs", "three-reservoirs"} <= set(beginning.samples())
+    assert {"two-reservoirs", "three-reservoirs", "ostrel-transfer-main"} <= set(samples())
     inside("new", tmp_path / "plain")
     inside("new", tmp_path / "named", "--like", "two-reservoirs")
     contents = [{p.name: p.read_bytes() for p in (tmp_path / name).iterdir()} for name in ("plain", "named")]
@@ -109,8 +137,8 @@ def test_a_disk_that_fails_leaves_nothing(
 
 
 def test_samples_are_read_as_they_are_shipped() -> None:
-    for name, sample in beginning.samples().items():
-        for file in sample.iterdir():
+    for name in SMALL:
+        for file in samples()[name].iterdir():
             text = file.read_text(encoding="utf-8")
             assert text.endswith("\n"), name
             assert "\t" not in text, name

@@ -45,6 +45,12 @@ def test_the_wheel_carries_templates_fonts_and_tables(repository: Path, wheel: P
     }
     assert wanted
     wanted |= {
+        f"calc/data/{path.relative_to(repository).as_posix()}": path
+        for path in (repository / "projects").glob("*/*")
+        if path.suffix in {".yaml", ".csv"}
+    }
+    assert "calc/data/projects/ostrel-transfer-main/network.yaml" in wanted
+    wanted |= {
         path.relative_to(repository).as_posix(): path
         for path in (repository / "calc").rglob("*")
         if path.is_file() and "__pycache__" not in path.parts
@@ -108,3 +114,12 @@ def test_a_new_environment_issues_from_an_empty_folder(
     (pdf,) = (folder / "issued").glob("*/package.pdf")
     assert pdf.read_bytes().startswith(b"%PDF-")
     assert list(empty.iterdir()) == []
+
+    # every sample and demonstration project travels
+    begun = tmp_path / "begun"
+    for words in (["new", begun, "--like", "ostrel-transfer-main"], ["inspect", begun]):
+        done = subprocess.run(
+            [place / "bin" / "headtrace", *words], cwd=empty, check=False, capture_output=True, text=True
+        )
+        assert done.returncode == 0, done.stdout + done.stderr
+    assert {path.name for path in begun.iterdir()} >= {"network.yaml", "project.yaml", "inputs.schema.json"}
