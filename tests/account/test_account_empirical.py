@@ -9,7 +9,9 @@ import pytest
 from accounts import accounted
 
 from calc.account import Account, results
+from calc.equation import Equation
 from calc.ledger import Library, Solved, replay
+from calc.physics import empirical
 from calc.problems import Unresolved
 
 MIXED = """
@@ -192,3 +194,15 @@ def test_the_trials_rest_on_what_each_law_needs(tmp_path: Path) -> None:
         *("link/1 count", "link/1 K forward", "link/1 K in reverse", "link/1 bore"),
     }
     assert resting["tail"] == always | {"roughness", "viscosity"}
+
+
+@pytest.mark.parametrize("one", [empirical.hazen_williams, empirical.manning], ids=lambda one: one.name)
+def test_a_slip_in_a_law_is_seen_by_the_second_opinion(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, one: Equation
+) -> None:
+    body = one.body
+    monkeypatch.setattr(type(one), "__setattr__", object.__setattr__)
+    monkeypatch.setattr(one, "body", lambda **given: 1.001 * body(**given))
+    account = accounted(tmp_path, MIXED)
+    assert account.solved
+    assert not account.confirmed
