@@ -18,6 +18,7 @@ PLACE = "calc/data/verification.yaml"
 
 KINDS: dict[str, Kind] = {
     "friction_factor": NUMBER,
+    "coefficient": NUMBER,
     "density": DENSITY,
     "viscosity": KINEMATIC_VISCOSITY,
     "vapour_pressure": PRESSURE,

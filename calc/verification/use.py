@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from calc.account import Account
+from calc.components.fitting import computed_kind
 from calc.physics.friction import ROUGH_PIPE_LAWS
 
 TITLES: dict[str, str] = {
@@ -14,8 +15,15 @@ TITLES: dict[str, str] = {
     "manning": "Manning",
     "laminar": "laminar flow",
     "water": "properties of water",
+    "fittings": "loss coefficients",
+    "bend": "bends by angle and radius",
+    "step": "sudden changes of bore",
+    "taper": "gradual changes of bore",
+    "Kv": "Kv",
+    "Cv": "Cv",
     "bracketing": "bracketing",
     "newton": "Newton",
+    "loop-correction": "loop correction",
 }
 """What a case may concern, as printed; a case that concerns none of these is run for every issue."""
 
@@ -35,6 +43,9 @@ def in_use(account: Account) -> tuple[str, ...]:
         used.add(case.solution.method)
     if used & set(ROUGH_PIPE_LAWS):
         used.add("laminar")
+    fitted = [part for pipe in account.project.pipes.values() for parts in pipe.parts.values() for part in parts]
+    if fitted:
+        used |= {"fittings", *(computed_kind(part.stated) for part in fitted)}
     if "temperature" in account.project.fluid.stated:
         used.add("water")
     return tuple(word for word in TITLES if word in used)
