@@ -82,7 +82,7 @@ def test_each_command_tells_all_that_it_takes(inside: Inside, command: object) -
             ["tables", "ftings"],
             "there is no table 'ftings'; expected one of fittings, ends, defaults\n  hint: did you mean",
         ),
-        (["new", "a", "--like", "two"], "there is no sample 'two'; expected one of three-reservoirs, two-reservoirs"),
+        (["new", "a", "--like", "two"], "there is no sample 'two'; expected one of three-reservoirs, two-reservoirs, ostrel-transfer-main"),
     ],
 )
 def test_a_wrong_call_says_what_was_expected(inside: Inside, words: list[str], shown: str) -> None:
