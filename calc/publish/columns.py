@@ -14,6 +14,7 @@ from calc.problems import Unresolved
 from calc.publish.faces import small_capitals, width
 from calc.publish.markup import is_quantity
 from calc.report.document import Cite, Document, Formula, Number, Own, Parts, Quoted, Soft, Strong, Table, TableColumn
+from calc.report.numbers import THIN
 
 GUTTER, TICK = 12.0, 6.5  # mm
 MEASURE = {"A4": 176.0, "Letter": 182.0}
@@ -185,11 +186,12 @@ def _cell(column: TableColumn, parts: Parts, document: Document) -> float:
 
 def _pieces(parts: Parts, document: Document) -> Iterator[float]:
     """Yield the width of all that is not to be broken, mm."""
-    for part in parts:
+    for before, part in zip((None, *parts), parts, strict=False):
         match part:
             case Number():
+                head = before if isinstance(before, str) and before.endswith(THIN) else ""
                 tail = f" {part.form.unit}" if part.with_unit else ""
-                yield TEXT * width(part.text + tail) * SLACK
+                yield TEXT * width(head + part.text + tail) * SLACK
             case Strong(parts=inner, bar=bar):
                 yield from (BAR * bar + BOLD * wide for wide in _pieces(inner, document))
             case Soft(parts=inner):

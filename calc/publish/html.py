@@ -26,6 +26,8 @@ RUNNING = 80
 """Most characters of a section's title in the head of its pages."""
 MANY = 12
 """Rows on the first page above which they are set closer."""
+WIDE = 9
+"""Columns above which the words of a row on the first page take a second line."""
 FILTERS = ("e", "escape", "join", "lower", "trim")
 """Filters that stay; none of the rest makes or formats a number without the ledger."""
 
@@ -160,7 +162,8 @@ def _is_first(section: Section) -> bool:
 
 def tight(section: Section) -> bool:
     """Return whether the first page holds so many rows that they must be set closer."""
-    rows = sum(len(block.rows) for block in section.blocks if isinstance(block, Table))
+    tables = [block for block in section.blocks if isinstance(block, Table)]
+    rows = sum(len(table.rows) * (2 if len(table.columns) > WIDE else 1) for table in tables)
     return _is_first(section) and rows > MANY
 
 

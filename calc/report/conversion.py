@@ -130,7 +130,7 @@ def conversion(kind: Kind) -> Equation:
         worth=Symbol("U", kind, "worth of one unit"),
     )
     def number_in_unit(*, amount: Any, worth: Any) -> Any:  # noqa: ANN401
-        """Divide by the worth of one unit."""
+        """Quantity as a number in a unit."""
         return amount / worth
 
     return number_in_unit

@@ -24,13 +24,14 @@ from calc.report.document import (
     TableColumn,
     named_unit,
 )
+from calc.report.numbers import THIN
 
 STATUS = {
     "checking": "Issued for checking – preliminary, not for construction",
     "approval": "Issued for approval – preliminary, not for construction",
     "record": "Issued for record",
 }
-MOST_CASES, MOST_BESIDE = 4, 3
+MOST_CASES, MOST_BESIDE = 4, 2
 """Cases whose flows stand on the first page; with parallel columns."""
 MOST_PIPES = 8
 COUNT_WORDS = ("none", "one", "two", "three", "four", "five", "six", "seven", "eight", "nine")
@@ -140,7 +141,7 @@ def _criterion(sheet: Sheet, judged: CriterionVerdict) -> Row:
     value = composer.number(governing.value)
     limit = composer.number(governing.limit, value.form)
     margin = composer.number(judged.least_margin, replace(value.form, sign="+"))
-    sense = "≤ " if judged.criterion.sense == "at most" else "≥ "
+    sense = f"{'≤' if judged.criterion.sense == 'at most' else '≥'}{THIN}"
     verdict: Part = "met" if judged.met else Strong(("not met",), bar=True)
 
     def told(number: Number) -> Parts:
