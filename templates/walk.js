@@ -10,10 +10,11 @@
   const THIN = "\u202f", MINUS = "\u2212";
   let returnTo = null, keyed = false;
 
-  const idOf = (k, r) => {  // a section that stands once has no row
-    const column = books[k], [group, ...rest] = column.name.split(".");
-    const words = [group, column.of || column.rows[r], rest.join(".")].filter(Boolean).join(".");
-    return words + (column.case ? "@" + column.case : "") + (column.of ? "#" + column.rows[r] : "");
+  const idOf = (k, r) => {  // a section that stands once has no row; a column of "#n" belongs to that trial
+    const column = books[k], [group, ...rest] = column.name.split("."), of = column.of || "";
+    const [subject, trial] = !of ? [column.rows[r], ""] : of.startsWith("#") ? [column.rows[r], of] : [of, "#" + column.rows[r]];
+    const words = [group, subject, rest.join(".")].filter(Boolean).join(".");
+    return words + (column.case ? "@" + column.case : "") + trial;
   };
   const at = new Map();
   books.forEach((column, k) => column.rows.forEach((_, r) => {

@@ -6,6 +6,7 @@ from typing import Any
 
 import numpy as np
 
+from calc.account.corrections import correction_rows, enter_corrections
 from calc.account.trials import enter_trials
 from calc.components import Network
 from calc.kinds import FLOW, HEAD, NUMBER
@@ -19,6 +20,8 @@ def enter_history(ledger: Ledger, network: Network, solution: Solution, case: st
         enter_trials(ledger, network, solution.trials, case)
     if solution.steps is not None:
         _enter_steps(ledger, network, solution.steps, case)
+    if solution.corrections is not None:
+        enter_corrections(ledger, network, solution.corrections, case)
 
 
 def _enter_steps(ledger: Ledger, network: Network, steps: Steps, case: str) -> None:
@@ -50,6 +53,8 @@ def history_rows(network: Network, solution: Solution) -> list[dict[str, Any]]:
     """Return the history as plain data, one mapping an evaluation; in SI, null where not known."""
     if solution.trials is not None:
         return _trial_rows(network, solution.trials)
+    if solution.corrections is not None:
+        return correction_rows(network, solution.corrections)
     return [] if solution.steps is None else _step_rows(network, solution.steps)
 
 

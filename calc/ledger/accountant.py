@@ -28,7 +28,7 @@ class Accountant:
     case : str
         Id of the case; empty for numbers that belong to none.
     of : str
-        The component whose history is being entered, empty otherwise.
+        The component whose history is being entered, or the trial, as ``#3``; empty otherwise.
     """
 
     def __init__(self, ledger: Ledger, case: str, of: str = "") -> None:

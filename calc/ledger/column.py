@@ -33,7 +33,8 @@ class Column:
     case : str
         Id of the case; empty where the number belongs to none.
     of : str
-        The component whose history this is, its rows being the trials; empty otherwise.
+        The component whose history this is, its rows being the trials; or a trial, as ``#3``, its rows being the
+        components; empty otherwise.
     kind : Kind
         What it measures; values are in its SI unit.
     rows : tuple of str
@@ -76,6 +77,8 @@ class Column:
         A section that stands once has no row: ``site.gravity@base``.
         """
         subject, trial = (self.of, f"#{self.rows[row]}") if self.of else (self.rows[row], "")
+        if self.of.startswith("#"):
+            subject, trial = self.rows[row], self.of
         words = ".".join(word for word in (self.group, subject, self.quantity) if word)
         return words + (f"@{self.case}" if self.case else "") + trial
 
@@ -128,6 +131,15 @@ class View:
                     which[k], at[k] = c, found
                     break
         return cls(tuple(columns), which, at, tuple(rows))
+
+    @classmethod
+    def gathered(cls, spots: Sequence[tuple[Column, int]]) -> View:
+        """Return single numbers one after the other, each under the row that it has in its column."""
+        sources = {id(column): column for column, _ in spots}
+        place = {key: k for k, key in enumerate(sources)}
+        which = np.array([place[id(column)] for column, _ in spots], dtype=np.int64)
+        at = np.array([row for _, row in spots], dtype=np.int64)
+        return cls(tuple(sources.values()), which, at, tuple(column.rows[row] for column, row in spots))
 
     def take(self, index: Rows, rows: Sequence[str] | None = None) -> View:
         """Return some rows, under new ids if given; a shared view serves as it is."""

@@ -124,10 +124,11 @@ class Ledger:
         name, case, trial = f"{match['group']}.{quantity}", match["case"] or "", match["trial"]
         if trial is None and not case and not self.find(name):
             case = "base"
-        row = subject if trial is None else trial
-        for column in self.find(name, case, "" if trial is None else subject):
-            if row in column.index:
-                yield Spot(column, column.index[row])
+        places = [("", subject)] if trial is None else [(subject, trial), (f"#{trial}", subject)]
+        for of, row in places:
+            for column in self.find(name, case, of):
+                if row in column.index:
+                    yield Spot(column, column.index[row])
 
     def _hint(self, id_: str) -> str:
         known = [column.id(row) for column in self.columns for row in range(min(len(column.rows), 200))]
