@@ -147,7 +147,7 @@ def test_inspect_lists_findings_by_place(inside: Inside, demo: Path, write: Writ
     status, said, remarks = inside("inspect", demo)
     assert (status, remarks) == (0, "")
     assert said.splitlines()[-1] == "no problems; 1 finding"
-    assert said.startswith("network.yaml:45: D03 Inputs without a source: pipes.sedge-link: roughness has no source\n")
+    assert said.startswith("network.yaml:45: D03 Inputs without a source: pipes.sedge-link: roughness has no source: ")
     said = inside("inspect", write(SMALLEST))[1]
     assert all(re.match(r"network\.yaml:\d+: D\d\d ", line) for line in said.splitlines()[:-1])
     assert re.fullmatch(r"no problems; \d+ findings", said.splitlines()[-1])

@@ -47,15 +47,17 @@ def unsourced(project: Project) -> Iterator[Remark]:
                 names = ", ".join(name for name, _ in bare)
                 subject = f"{group}.{record.id}" if record.id and group not in ("fluid", "site") else group
                 verb = "has" if len(bare) == 1 else "have"
-                yield Remark(subject, bare[0][1], f"{names} {verb} no source")
+                yield Remark(subject, bare[0][1], f"{names} {verb} no source: {_WAY_OUT}")
     for case in project.cases.values():
         bare_lines = [line for line in case.lines if not line.stated.basis.source and line.field not in WITHOUT_SOURCE]
         if bare_lines:
             names = ", ".join(dict.fromkeys(line.path for line in bare_lines))
             place = bare_lines[0].mark.place
-            yield Remark(f"cases.{case.id}", place, f"values of this case have no source: {names}")
+            verb = "has" if "," not in names else "have"
+            yield Remark(f"cases.{case.id}", place, f"{names} {verb} no source: {_WAY_OUT}")
 
 
+_WAY_OUT = "nobody can follow it back. Name a reference under 'source'"
 _COEFFICIENTS = ("K", "K_reverse", "Kv", "Cv", *FORM_FIELDS)
 
 

@@ -34,7 +34,8 @@ def loose_tolerance(solved: Solved) -> Iterator[Remark]:
             text = "the tolerance is more than a millionth of the largest flow of the case. State a smaller one"
             yield Remark(f"cases.{name}", mark.place, text)
         if len(case.network.unknown) and not case.history:
-            yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, "the search has left no history")
+            text = "the search has left no history, by which its answer could be retraced. Do not rely on this case"
+            yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, text)
 
 
 def broken_continuity(solved: Solved) -> Iterator[Remark]:
