@@ -44,6 +44,7 @@ def compose(account: Account, purpose: str, checks: tuple[Check, ...] = ()) -> D
         addresses=composer.addresses,
         used_by=_users(composer, behind),
         behind=behind,
+        coherent=composer.display.coherent_units(),
         files=composer.files,
     )
 

@@ -22,7 +22,7 @@ BRIEF, FULL, FINE = -1, 4, 3
 """Decimals more than in tables: on the first page; of flows in full, to be added up; of residuals of head."""
 
 BY_FIELD = {one.field: one for one in SHOWN}
-FIELD_OF: dict[Kind, str] = {one.kind: one.field for one in SHOWN}
+FIELD_OF: dict[Kind, str] = {one.kind: one.field for one in SHOWN} | {kinds.THICKNESS: "bore"}
 
 COHERENT_US = {
     "": "",
@@ -117,6 +117,11 @@ class Display:
     def coherent(self, kind: Kind) -> str:
         """Return the coherent unit of a kind, in which worked lines are written."""
         return kind.unit if self.system == "SI" else COHERENT_US[kind.unit]
+
+    def coherent_units(self) -> dict[str, tuple[str, float]]:
+        """Return for each SI unit the coherent unit of this system and the factor to it, where they differ."""
+        units = {kind.unit: (self.coherent(kind), shown(1.0, kind, self.coherent(kind))) for kind in kinds.KINDS}
+        return {si: told for si, told in units.items() if si != told[0]}
 
     def shown(self, value: float, field: str) -> float:
         """Return an SI value as a number in the unit of a field, for scales and marks of drawings."""

@@ -97,6 +97,7 @@ def named_unit(unit: str) -> Part:
     """Return a unit as text; one with a figure in it, such as ``ft/1000 ft``, is a name."""
     return Own(unit, "name") if any(character.isdecimal() for character in unit) else unit
 
+
 # --- blocks -----------------------------------------------------------------------------------------------------
 
 
@@ -261,6 +262,9 @@ class Document:
         Ledger id to the ids that cite it and are printed.
     behind : mapping of str to tuple of str
         For a cited ledger id that stands on no line, the ids with lines on which it rests.
+    coherent : mapping of str to (str, float)
+        For each SI unit of the ledger the coherent unit of worked lines, and what an SI number is multiplied by; empty
+        where the worked lines are in SI.
     files : mapping of str to bytes
         Tables that the pages cite by their digests, by path inside the package.
     """
@@ -276,6 +280,7 @@ class Document:
     addresses: Mapping[str, str] = field(default_factory=dict)
     used_by: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
     behind: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    coherent: Mapping[str, tuple[str, float]] = field(default_factory=dict)
     files: Mapping[str, bytes] = field(default_factory=dict)
 
     def cited(self, cite: Cite) -> str:

@@ -8,7 +8,11 @@ DISPLAY = SectionSchema(
     "display",
     (
         Field("units", Word(SYSTEMS), words="system of units; each quantity may have a unit of its own", default="SI"),
-        Field("beside", Word(SYSTEMS), words="the other system of units, in columns beside those of the results"),
+        Field(
+            "beside",
+            Word(SYSTEMS),
+            words="system of units of parallel columns beside results",
+        ),
         *(Field(one.field, Word(tuple(one.spellings)), words=one.words) for one in SHOWN),
         Field("paper", Word(("A4", "Letter")), words="paper", default="A4"),
     ),

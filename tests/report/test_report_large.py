@@ -96,7 +96,7 @@ def test_every_pipe_stands_in_a_file_that_the_page_cites_by_its_digest(large: Wo
         path = f"results/{case}-pipes.csv"
         content = large.document.files[path]
         said = " ".join(plain(parts) for parts in texts_of(section(large.document, f"case-{case}")))
-        assert f"All pipes stand in {path} of this package, digest {hashlib.sha256(content).hexdigest()}." in said
+        assert f"All pipes stand in SI in {path} of this package, digest {hashlib.sha256(content).hexdigest()}." in said
         rows = list(csv.DictReader(io.StringIO(content.decode())))
         branches = results["cases"][case]["branches"]
         assert [row["id"] for row in rows] == list(branches)

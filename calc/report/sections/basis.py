@@ -9,7 +9,19 @@ from calc.ledger import Derived, Ledger, Spot
 from calc.report import figures
 from calc.report.composer import Composer, Sheet, column, figure_column
 from calc.report.derivation import COLUMNS, displayed, lines
-from calc.report.document import Cite, Figure, Heading, Paragraph, Parts, Quoted, Strong, TableColumn
+from calc.report.display import SI, Display
+from calc.report.document import (
+    Cite,
+    Figure,
+    Heading,
+    Paragraph,
+    Part,
+    Parts,
+    Quoted,
+    Strong,
+    TableColumn,
+    named_unit,
+)
 
 CONVENTIONS = (
     "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
@@ -43,11 +55,46 @@ def compose_basis(composer: Composer) -> None:
     else:
         statements.append((Strong(("The datum of levels and elevations is not stated.",), bar=True),))
     statements += [(text,) for text in CONVENTIONS]
+    statements += _units(composer.display)
     columns = (column("statement", role="statement"),)
     sheet.table("conventions", columns, [sheet.row(parts) for parts in statements])
     _liquid(sheet)
     _schematic(sheet)
     sheet.close()
+
+
+COHERENT = {
+    "SI": "metre, kilogram, second and pascal",
+    "US": "foot, slug, second and pound-force; temperatures are absolute, in kelvin",
+}
+"""The units of worked lines, in words."""
+
+
+def _units(display: Display) -> list[Parts]:
+    """Say in which units the package is written."""
+    tables: list[Part] = ["Tables and drawings: "]
+    for field in TOLD:
+        tables += [", " if len(tables) > 1 else "", f"{field} in ", named_unit(display.unit(field))]
+    tables.append(".")
+    if display.beside:
+        tables.append(" Results are repeated in parallel columns in the usual units of the other system.")
+    worked = (
+        f"Worked lines are in the coherent units {COHERENT[display.system]}, in which formulas hold without factors. "
+        "What stands in another unit is converted on a line of its own: the quantity divided by the worth of one unit."
+    )
+    if display.system != SI.system:
+        worked += (
+            " Empirical laws are worked in SI, what they take converted before them, what they give after."
+        )
+    data = (
+        "The data files of this package (results, ledger, tables) are in SI, and so are the published cases in the "
+        "software record."
+    )
+    return [tuple(tables), (worked,), (data,)]
+
+
+TOLD = ("flow", "head", "elevation", "length", "bore", "velocity", "pressure", "gradient", "temperature")
+"""Fields of ``display`` whose units are told among the conventions."""
 
 
 def derived_of(ledger: Ledger, groups: tuple[str, ...], case: str) -> list[Spot]:

@@ -156,7 +156,8 @@ def _cite_file(sheet: Sheet, what: str, path: str, content: bytes) -> None:
     """Put a table in the package, and cite it by its digest."""
     sheet.composer.files[path] = content
     digest = hashlib.sha256(content).hexdigest()
-    parts: Parts = (f"{what} stand in ", Own(path, "file"), " of this package, digest ", Own(digest, "document"), ".")
+    cited: Parts = (Own(path, "file"), " of this package, digest ", Own(digest, "document"))
+    parts: Parts = (f"{what} stand in SI in ", *cited, ".")
     sheet.add(Paragraph(parts, "small"))
 
 
