@@ -70,6 +70,7 @@ class Kind:
 NUMBER = Kind("pure number", "", _dimension(), "2.5")
 LENGTH = Kind("length", "m", _dimension(1), "1850 m")
 BORE = Kind("bore", "m", _dimension(1), "384.4 mm")
+THICKNESS = Kind("thickness", "m", _dimension(1), "6 mm")
 ROUGHNESS = Kind("roughness", "m", _dimension(1), "0.15 mm")
 ELEVATION = Kind("elevation", "m", _dimension(1), "171.0 m")
 HEAD = Kind("head", "m", _dimension(1), "10 m")
@@ -92,6 +93,7 @@ KINDS: tuple[Kind, ...] = (
     NUMBER,
     LENGTH,
     BORE,
+    THICKNESS,
     ROUGHNESS,
     ELEVATION,
     HEAD,

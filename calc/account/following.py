@@ -89,5 +89,3 @@ def following(columns: Iterable[Column], case: str) -> list[Column]:
         if column.case == case and not column.of and isinstance(column.origin, Derived)
         if column.origin.leaf.name == "scaled_value" or column.name.removesuffix("_reverse") in FOLLOWING
     ]
-
-

@@ -8,7 +8,7 @@ nothing; the accountant runs it on ledger columns. `Network` holds one case as a
 """
 
 from calc.components import junction, pipe, reservoir
-from calc.components.fields import Count, Date, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Text, Word
+from calc.components.fields import Count, Date, Ends, Field, Fittings, Flag, Name, Node, Quantity, Schema, Text, Word
 from calc.components.network import Network
 from calc.components.stated import NO_BASIS, Basis, Record, Stated
 
@@ -25,6 +25,7 @@ __all__ = [
     "Field",
     "Fittings",
     "Flag",
+    "Name",
     "Network",
     "Node",
     "Quantity",

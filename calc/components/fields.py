@@ -43,6 +43,11 @@ class Word:
 
 
 @dataclass(frozen=True, slots=True)
+class Name:
+    """A name in a shipped table, which the reader of the component looks up."""
+
+
+@dataclass(frozen=True, slots=True)
 class Text:
     """Free text."""
 
@@ -72,7 +77,7 @@ class Fittings:
     """A list of fittings, each by its kind in the shipped table or by its own coefficients."""
 
 
-Form = Quantity | Count | Word | Text | Date | Flag | Node | Ends | Fittings
+Form = Quantity | Count | Word | Name | Text | Date | Flag | Node | Ends | Fittings
 
 
 @dataclass(frozen=True, slots=True)

@@ -56,7 +56,6 @@ FORM_FIELDS = ("angle", "radius_ratio", "onward_bore")
 """Fields of which only a computed kind makes anything."""
 
 
-
 def computed_kind(stated: Mapping[str, Stated]) -> str:
     """Return the computed kind of a fitting, by what is stated of it; empty where its coefficients are stated."""
     for name in ("Kv", "Cv"):

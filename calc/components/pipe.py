@@ -5,10 +5,10 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Generic, TypeVar
 
-from calc.components.fields import Count, Ends, Field, Fittings, Flag, Node, Quantity, Schema, Text, Word
+from calc.components.fields import Count, Ends, Field, Fittings, Flag, Name, Node, Quantity, Schema, Word
 from calc.equation import Evaluator, Labels
 from calc.equation.evaluation import Rows
-from calc.kinds import BORE, HEAD, LENGTH, NUMBER, PRESSURE, ROUGHNESS
+from calc.kinds import BORE, HEAD, LENGTH, NUMBER, PRESSURE, ROUGHNESS, THICKNESS
 from calc.physics import energy, fitting, friction, velocity
 
 SET_BORE = "set 'bore' in the case"
@@ -21,12 +21,12 @@ SCHEMA = Schema(
         Field("to", Node(), required=True, words="node at which the pipe ends"),
         Field("length", Quantity(LENGTH, above=0.0), required=True, words="length along the pipe"),
         Field("bore", Quantity(BORE, above=0.0), words="bore"),
-        Field("size", Text(), words="nominal size in the standard's table", example="DN400", fixed=SET_BORE),
-        Field("standard", Text(), words="standard of the pipe", example="EN 545", fixed=SET_BORE),
-        Field("class", Text(), words="class of the pipe in the standard's table", example="C40", fixed=SET_BORE),
+        Field("size", Name(), words="nominal size in the standard's table", example="DN400", fixed=SET_BORE),
+        Field("standard", Name(), words="standard of the pipe", example="EN 545", fixed=SET_BORE),
+        Field("class", Name(), words="class of the pipe in the standard's table", example="C40", fixed=SET_BORE),
         Field("outside_diameter", Quantity(BORE, above=0.0), words="outside diameter", fixed=SET_BORE),
-        Field("wall", Quantity(BORE, above=0.0), words="wall thickness", example="6 mm", fixed=SET_BORE),
-        Field("lining", Quantity(BORE, at_least=0.0), words="thickness of the lining", example="5 mm", fixed=SET_BORE),
+        Field("wall", Quantity(THICKNESS, above=0.0), words="wall thickness", example="6 mm", fixed=SET_BORE),
+        Field("lining", Quantity(THICKNESS, at_least=0.0), words="lining thickness", example="5 mm", fixed=SET_BORE),
         Field("roughness", Quantity(ROUGHNESS, at_least=0.0, table="roughness"), words="roughness height"),
         Field("friction_factor", Quantity(NUMBER, above=0.0), words="Darcy f, fixed", example="0.02"),
         Field(

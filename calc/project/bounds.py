@@ -9,6 +9,7 @@ COMPUTABLE: dict[str, tuple[float, float]] = {
     "pure number": (-1e9, 1e9),
     "length": (1e-3, 1e8),
     "bore": (1e-3, 100.0),
+    "thickness": (0.0, 10.0),
     "roughness": (0.0, 100.0),
     "elevation": (-12_000.0, 12_000.0),
     "head": (-1e5, 1e5),

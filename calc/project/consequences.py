@@ -69,6 +69,8 @@ def _check_excluded(reader: Reader, project: Project, case: Case, line: Line) ->
         if line.field not in pair:
             continue
         other = pair[0] if line.field == pair[1] else pair[1]
+        if schema is not None and (field := schema.field(other)) is not None and field.fixed:
+            continue  # a bore that a case sets takes the place of that which follows from a size
         standing = _standing(project, case, line.group, other)
         row = next((row for row in line.rows if row in standing), None)
         if row is not None:

@@ -8,7 +8,7 @@ from pathlib import Path
 
 from calc.components import Record, Stated
 from calc.problems import ProblemsFound
-from calc.project import header, later, sections, settings
+from calc.project import header, later, materials, sections, settings
 from calc.project.cases import read_cases
 from calc.project.connection import check_connection
 from calc.project.consequences import check_cases
@@ -70,7 +70,8 @@ def read_project(folder: Path, schemas: Sequence[SectionSchema]) -> Project:
     sources = read_folder(folder)
     if any(problem.code not in _PARTIAL for problem in sources.problems):
         raise ProblemsFound(sources.problems, sources.texts)
-    reader = Reader(doubtful={problem.path.partition(".")[0] for problem in sources.problems})
+    doubtful = {problem.path.partition(".")[0] for problem in sources.problems}
+    reader = Reader(doubtful=doubtful, materials=materials.values)
     with without_collector():
         project, works = _read(reader, folder, sources, schemas)
         if project is not None:

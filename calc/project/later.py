@@ -5,7 +5,6 @@ from __future__ import annotations
 from calc.project.section import Later
 
 _PIPE_SERIES = "write one pipe for each length, joined by junctions"
-_SIZE = "state the bore itself, such as '384.4 mm'"
 
 TOP: dict[str, str] = {
     "outlets": "an outlet to a known level can stand as a reservoir of that level",
@@ -25,7 +24,6 @@ FIELDS: dict[str, dict[str, str]] = {
         "segments": _PIPE_SERIES,
         "profile": "leave it out",
     },
-    "bore": {"size": _SIZE, "standard": _SIZE, "class": _SIZE},
 }
 """By group, fields of components."""
 

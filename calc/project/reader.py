@@ -5,12 +5,12 @@ from __future__ import annotations
 import datetime as dt
 import re
 from collections.abc import Callable, Sequence
+from collections.abc import Mapping as Table
 from dataclasses import dataclass, field, replace
 
-from calc.components import Basis, Count, Date, Flag, Quantity, Record, Stated, Text, Word
+from calc.components import Basis, Count, Date, Flag, Name, Quantity, Record, Stated, Text, Word
 from calc.components.fields import Form
 from calc.kinds import Kind
-from calc.project import later
 from calc.project.notes import Notes, empty
 from calc.project.spread import KEYS as SPREAD_KEYS
 from calc.project.spread import read_spread
@@ -45,6 +45,8 @@ class Reader(Notes):
         Ranges and deviations by path.
     defaults : dict
         Defaults in use by path.
+    materials : callable
+        Gives the typical values of a shipped table by material.
     reached : dict
         The ids that each pattern of each group reaches, so that many lines share one tuple.
     """
@@ -54,6 +56,7 @@ class Reader(Notes):
     nodes: set[str] | None = None
     spreads: dict[str, Record] = field(default_factory=dict)
     defaults: dict[str, Stated] = field(default_factory=dict)
+    materials: Callable[[str], Table[str, Stated]] = field(default=lambda _: {})
     reached: dict[tuple[str, str], tuple[str, ...]] = field(default_factory=dict)
 
     def id(self, key: Scalar, path: str, what: str) -> bool:
@@ -137,6 +140,8 @@ class Reader(Notes):
         """Return the value of a field of any scalar form, alone or as ``{value, source, …}``."""
         if isinstance(form, Text):
             return self.text(node, path)
+        if isinstance(form, Quantity) and form.table and isinstance(node, Mapping) and node.get("material"):
+            return self.material(form.table, node, path)
         if isinstance(form, Date):
             return self.date(node, path)
         if isinstance(node, Scalar):
@@ -156,7 +161,27 @@ class Reader(Notes):
             return stated and Stated(stated.text == "true", stated.written, stated.mark)
         if isinstance(form, Count):
             return self.count(form, scalar, path)
+        if isinstance(form, Name):
+            return self.text(scalar, path)
         raise TypeError(f"a {type(form).__name__} is not a scalar")
+
+    def material(self, table: str, node: Mapping, path: str) -> Stated | None:
+        """Return the typical value that a shipped table has for a material: ``{material: …, source, …}``."""
+        rows = self.materials(table)
+        named: Stated | None = None
+        for key, value in node.entries:
+            at = f"{path}.{key.text}"
+            if key.text == "material":
+                named = self.word(value, at, tuple(rows), "unknown-material", "material")
+            elif key.text == "value":
+                found = "'material' and 'value' both stand here"
+                self.note(key.mark, "excluded-pair", at, found, "one of the two")
+            elif key.text not in BASIS_KEYS:
+                self.unknown(key, at, ("material", *BASIS_KEYS))
+        basis = self.basis(node, path)
+        if named is None:
+            return None
+        return taken(rows[named.text], f"{named.text} at {named.mark}", basis)
 
     def count(self, form: Count, scalar: Scalar, path: str) -> Stated | None:
         """Return a whole number."""
@@ -181,11 +206,7 @@ class Reader(Notes):
             self.wrong_shape(node, path, "a value, or {value: …, source: …}")
             return None
         at = {entry.key.text: entry.value for entry in node.entries}
-        field_name = path.rpartition(".")[2]
         for key, _ in node.entries:
-            if key.text in later.FIELDS.get(field_name, {}):
-                self.not_yet(key.mark, f"{path}.{key.text}", key.text, later.FIELDS[field_name][key.text])
-                return None
             if key.text not in _VALUE_KEYS:
                 self.unknown(key, f"{path}.{key.text}", _VALUE_KEYS)
         if "value" not in at:
@@ -200,6 +221,12 @@ class Reader(Notes):
         if spread is not None:
             self.spreads[path] = spread
         return replace(stated, basis=basis)
+
+
+def taken(value: Stated, said: str, basis: Basis) -> Stated:
+    """Return a shipped value that a project took by a name: its own source, the name and place, the table's source."""
+    told = ": ".join(part for part in (basis.source, said) if part)
+    return replace(value, basis=replace(basis, source=f"{told}; {value.basis.source}"))
 
 
 _NAMES = {"unknown-law": "friction law", "unknown-kind": "kind"}

@@ -7,7 +7,7 @@ from functools import lru_cache
 from importlib import resources
 
 from calc.components import Basis, Quantity, Stated
-from calc.kinds import ACCELERATION, ELEVATION, FLOW, NUMBER, TEMPERATURE, Kind
+from calc.kinds import ACCELERATION, ELEVATION, FLOW, NUMBER, TEMPERATURE, THICKNESS, Kind
 from calc.problems import ProblemsFound
 from calc.project.reader import Reader
 from calc.yamlfile import Mapping, Node, Scalar, read_text
@@ -27,6 +27,7 @@ _KINDS: dict[str, Kind] = {
     "constants.manning.bore_exponent": NUMBER,
     "junctions.withdrawal": FLOW,
     "pipes.parallel": NUMBER,
+    "pipes.lining": THICKNESS,
     "fittings.count": NUMBER,
     "ends.exit": NUMBER,
 }
@@ -58,8 +59,8 @@ def defaults() -> dict[str, Stated]:
     """Return every default by path, such as ``site.gravity``."""
     found: dict[str, Stated] = {}
     reader = Reader()
-    _walk(reader, _read("defaults.yaml"), "", found)
-    _sound(reader)
+    _walk(reader, read("defaults.yaml"), "", found)
+    sound(reader)
     return found
 
 
@@ -74,14 +75,14 @@ def computed_fittings() -> dict[str, Computed]:
     """Return the kinds of fitting whose coefficient follows by a law from what is stated of them."""
     reader = Reader()
     found: dict[str, Computed] = {}
-    node = _read("fittings.yaml").get("computed")
+    node = read("fittings.yaml").get("computed")
     for key, value in node.entries if isinstance(node, Mapping) else ():
         if isinstance(value, Mapping):
-            texts = {name: _scalar(value.get(name)) for name in ("title", "takes", "law", "source")}
+            texts = {name: scalar(value.get(name)) for name in ("title", "takes", "law", "source")}
             source = texts["source"].text
-            title, takes, law = (_stated(reader, texts[name], None, source) for name in ("title", "takes", "law"))
+            title, takes, law = (stated(reader, texts[name], None, source) for name in ("title", "takes", "law"))
             found[key.text] = Computed(key.text, title, takes, law)
-    _sound(reader)
+    sound(reader)
     return found
 
 
@@ -91,7 +92,8 @@ def ends() -> dict[str, Row]:
     return _rows("ends", "entry", "exit")
 
 
-def _read(name: str) -> Mapping:
+def read(name: str) -> Mapping:
+    """Return a shipped file."""
     content = resources.files("calc").joinpath("data", name).read_bytes()
     mapping, problems = read_text(f"{FOLDER}/{name}", content)
     if mapping is None or problems:
@@ -99,7 +101,8 @@ def _read(name: str) -> Mapping:
     return mapping
 
 
-def _sound(reader: Reader) -> None:
+def sound(reader: Reader) -> None:
+    """Raise what is wrong with a shipped file."""
     if reader.problems:
         raise ProblemsFound(reader.problems)
 
@@ -110,16 +113,17 @@ def _walk(reader: Reader, node: Mapping, path: str, found: dict[str, Stated]) ->
         if isinstance(value, Mapping) and value.get("value") is None:
             _walk(reader, value, at, found)
         elif isinstance(value, Mapping):
-            scalar, source = value.get("value"), value.get("source")
-            if isinstance(scalar, Scalar) and isinstance(source, Scalar):
-                found[at] = _stated(reader, scalar, _KINDS.get(at), source.text)
+            written, source = value.get("value"), value.get("source")
+            if isinstance(written, Scalar) and isinstance(source, Scalar):
+                found[at] = stated(reader, written, _KINDS.get(at), source.text)
 
 
-def _stated(reader: Reader, scalar: Scalar, kind: Kind | None, source: str) -> Stated:
+def stated(reader: Reader, written: Scalar, kind: Kind | None, source: str) -> Stated:
+    """Return a value of a shipped file, of a kind or a word."""
     if kind is None:
-        flag = {"true": True, "false": False}.get(scalar.text, scalar.text)
-        return Stated(flag, scalar.text, scalar.mark, basis=Basis(source), shipped=True)
-    got = reader.quantity(scalar, "", (Quantity(kind),))
+        flag = {"true": True, "false": False}.get(written.text, written.text)
+        return Stated(flag, written.text, written.mark, basis=Basis(source), shipped=True)
+    got = reader.quantity(written, "", (Quantity(kind),))
     if got is None:
         raise ProblemsFound(reader.problems)
     return replace(got[0], basis=Basis(source), shipped=True)
@@ -128,21 +132,22 @@ def _stated(reader: Reader, scalar: Scalar, kind: Kind | None, source: str) -> S
 def _rows(table: str, forward: str, reverse: str) -> dict[str, Row]:
     reader = Reader()
     found: dict[str, Row] = {}
-    node = _read("fittings.yaml").get(table)
+    node = read("fittings.yaml").get(table)
     for key, value in node.entries if isinstance(node, Mapping) else ():
         if not isinstance(value, Mapping):
             continue
-        source = _scalar(value.get("source")).text
-        one = _stated(reader, _scalar(value.get(forward)), NUMBER, source)
+        source = scalar(value.get("source")).text
+        one = stated(reader, scalar(value.get(forward)), NUMBER, source)
         back = value.get(reverse)
-        other = one if back is None else _stated(reader, _scalar(back), NUMBER, source)
-        title = _stated(reader, _scalar(value.get("title")), None, source)
+        other = one if back is None else stated(reader, scalar(back), NUMBER, source)
+        title = stated(reader, scalar(value.get("title")), None, source)
         found[key.text] = Row(key.text, title, one, other)
-    _sound(reader)
+    sound(reader)
     return found
 
 
-def _scalar(node: Node | None) -> Scalar:
+def scalar(node: Node | None) -> Scalar:
+    """Return a text that a shipped file has."""
     if isinstance(node, Scalar):
         return node
     raise TypeError("a shipped table lacks a text")

@@ -14,6 +14,7 @@ from calc.project.fittings import read_ends, read_fittings
 from calc.project.notes import empty
 from calc.project.reader import Reader
 from calc.project.records import Fields, Parts, read_fields, read_group
+from calc.project.sizes import read_dimensions, unfolded
 from calc.project.wording import quoted
 from calc.yamlfile import Entry, Scalar, SourceFile, read_table
 from calc.yamlfile import Mapping as MappingNode
@@ -151,6 +152,7 @@ def _complete_node(reader: Reader, group: str, stated: Fields, member: MappingNo
 
 def _read_pipe(reader: Reader, key: Scalar, member: MappingNode, works: Works, friction: Stated | None) -> Record:
     path = f"pipes.{key.text}"
+    member = unfolded(reader, member, path)
     stated, parts = read_fields(reader, pipe.SCHEMA, member, path, key.mark)
     for name in ("parallel", "open"):
         if name not in stated:
@@ -158,6 +160,7 @@ def _read_pipe(reader: Reader, key: Scalar, member: MappingNode, works: Works, f
     present = member.keys()
     if "law" not in present and friction is not None:
         stated["law"] = friction
+    read_dimensions(reader, stated, present, path, key.mark)
     _check_pipe(reader, stated, present, path, key.mark)
     return Record(key.text, key.mark, stated, _read_parts(reader, key.text, stated, parts, works))
 

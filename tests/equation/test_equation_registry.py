@@ -33,6 +33,7 @@ PLAUSIBLE = {
     "temperature": (275.0, 370.0),
     "gradient": (1e-3, 1e-2),
     "angle": (0.1, 0.7),
+    "thickness": (0.004, 0.009),
     "rise of head lost with flow": (50.0, 5000.0),
 }
 BY_LETTER = {

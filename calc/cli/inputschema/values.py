@@ -6,7 +6,7 @@ from typing import Any
 from urllib.parse import quote
 
 from calc import units
-from calc.components import Count, Date, Flag, Node, Quantity, Text, Word
+from calc.components import Count, Date, Flag, Name, Node, Quantity, Text, Word
 from calc.components.fields import Form
 from calc.kinds import NUMBER, Kind
 from calc.project import bounds
@@ -75,6 +75,8 @@ class Values:
                 return self.word({"enum": list(form.options)})
             case Flag():
                 return self.word({"enum": [True, False, "true", "false"]})
+            case Name():
+                return self.word(self.refer("text"))
             case Node() | Text() | Date():
                 return self.refer({Node: "id", Text: "text", Date: "date"}[type(form)])
             case _:
