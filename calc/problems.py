@@ -18,9 +18,11 @@ from __future__ import annotations
 import difflib
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from itertools import takewhile
 
 from calc.marks import Mark
 
+_MOST_NEAR = 8
 WIDEST = 240
 """Characters of a line that are shown with a problem."""
 
@@ -112,19 +114,28 @@ def show(problem: Problem, texts: Mapping[str, str]) -> str:
 
 
 def _shown(problem: Problem, lines: Sequence[str]) -> str:
-    mark = problem.mark
-    shown = [f"{mark}: {problem.sentence()}"]
-    if 0 < mark.line <= len(lines):
-        source, column = _part(lines[mark.line - 1], mark.column)
-        gutter = f"{mark.line:>3}"
-        length = max(1, min(mark.length, len(source) - column + 1))
-        shown += [
-            f"{gutter} | {source}",
-            f"{' ' * len(gutter)} | {' ' * (column - 1)}{'^' * length}",
-        ]
+    shown = [f"{problem.mark}: {problem.sentence()}", *underlined(problem.mark, lines)]
     if problem.hint:
         shown.append(f"  hint: {problem.hint}")
     return "\n".join(shown)
+
+
+def underlined(mark: Mark, lines: Sequence[str]) -> list[str]:
+    """Return the line in which a place stands, with its number, and one that underlines the place.
+
+    Parameters
+    ----------
+    mark : Mark
+        The place; nothing is returned of a line that is not there.
+    lines : sequence of str
+        Of its file.
+    """
+    if not 0 < mark.line <= len(lines):
+        return []
+    source, column = _part(lines[mark.line - 1], mark.column)
+    gutter = f"{mark.line:>3}"
+    length = max(1, min(mark.length, len(source) - column + 1))
+    return [f"{gutter} | {source}", f"{' ' * len(gutter)} | {' ' * (column - 1)}{'^' * length}"]
 
 
 def _part(line: str, column: int) -> tuple[str, int]:
@@ -137,6 +148,18 @@ def _part(line: str, column: int) -> tuple[str, int]:
 
 
 def nearest(word: str, known: Sequence[str]) -> str:
-    """Return "did you mean 'x'?" for the known word nearest to ``word``, or an empty string."""
-    near = difflib.get_close_matches(word, known, 1)
-    return f"did you mean '{near[0]}'?" if near else ""
+    """Return "did you mean 'x'?" for the known word nearest to ``word``, or an empty string.
+
+    Of words equally near, that which begins alike for longest.
+    """
+    near = difflib.get_close_matches(word, known, _MOST_NEAR)
+    if not near:
+        return ""
+    likeness = [difflib.SequenceMatcher(None, one, word).ratio() for one in near]
+    alike = [one for one, ratio in zip(near, likeness, strict=True) if ratio == likeness[0]]
+    return f"did you mean '{max(alike, key=lambda one: _begins_alike(one, word))}'?"
+
+
+def _begins_alike(one: str, other: str) -> int:
+    """Return how many letters two words have in common before they part."""
+    return sum(1 for _ in takewhile(lambda pair: pair[0] == pair[1], zip(one, other, strict=False)))

@@ -25,6 +25,8 @@ WITHOUT_SOURCE = {
     "kind",
     "viscosity_kind",
     "title",
+    "standard",
+    "class",
 }
 """Fields that describe the arrangement and need no source of their own."""
 
@@ -63,7 +65,9 @@ _COEFFICIENTS = ("K", "K_reverse", "Kv", "Cv", *FORM_FIELDS)
 
 def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
     for name, stated in record.stated.items():
-        if not stated.shipped and name not in WITHOUT_SOURCE and not stated.basis.source:
+        if stated.shipped or stated.follows or name in WITHOUT_SOURCE:
+            continue
+        if not stated.basis.source:
             yield name, stated.mark.place
     for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
         for name, stated in part.stated.items():
@@ -79,7 +83,14 @@ BY_DEFAULT = (
     "taken by default: the inputs neither state nor confirm it. State it with its source, or name it under 'affects' "
     "of an assumption"
 )
-_WEIGHTY = ("friction", "site.gravity", "constants.hazen_williams.*", "constants.manning.*", "ends.*.exit")
+_WEIGHTY = (
+    "friction",
+    "site.gravity",
+    "constants.hazen_williams.*",
+    "constants.manning.*",
+    "ends.*.exit",
+    "pipes.*.lining",
+)
 """Defaults that move the answer. The temperature is another check's; the rest say how an input file is read."""
 
 
@@ -121,8 +132,8 @@ CHECKS = (
     Check(
         "D05",
         "Defaults used silently",
-        "defaults that move the answer (gravity, friction law, constants of an empirical law, exit loss, and the "
-        "limits of the transition where a pipe comes near them) and that no assumption names",
+        "defaults that move the answer (gravity, friction law, constants of an empirical law, exit loss, a lining, and "
+        "the limits of the transition where a pipe comes near them) and that no assumption names",
         inputs=silent_defaults,
         results=silent_transition,
     ),
