@@ -26,6 +26,7 @@ from calc.report.document import (
     TableColumn,
 )
 from calc.report.numbers import Format, raised
+from calc.report.sections.correction import add_corrections, correction_figure
 from calc.solve import Steps, Trials
 from calc.solve.branch import Branches
 
@@ -37,7 +38,7 @@ SAMPLES = 121
 
 def add_convergence(sheet: Sheet, case: CaseAccount) -> None:
     """Add the history of a case, converged or not."""
-    trials, steps = case.solution.trials, case.solution.steps
+    trials, steps, corrections = case.solution.trials, case.solution.steps, case.solution.corrections
     if trials is not None:
         sheet.add(Heading(("Trials for the head at ", name(case.network.nodes[trials.junction]))))
         _trial_table(sheet, case, trials)
@@ -48,6 +49,11 @@ def add_convergence(sheet: Sheet, case: CaseAccount) -> None:
         _step_table(sheet, case, steps)
         _stopping(sheet, case)
         _step_figure(sheet, case, steps)
+    if corrections is not None:
+        add_corrections(sheet, case, corrections)
+        _stopping(sheet, case)
+        limit = _limit_text(sheet.composer, case, Format(sheet.composer.flow_unit, significant=1))
+        correction_figure(sheet, case, corrections, limit)
 
 
 def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:

@@ -31,6 +31,13 @@ STATEMENTS = (
         "iteration is a row."
     ),
     (
+        "Loop correction, for small networks: the hand method of Hardy Cross. Flows that satisfy continuity are "
+        "assumed, and each loop or path between reservoirs is corrected in turn, with the flows just corrected, by "
+        "what its losses fail to close over the sum of their rises with the flow. The power to which a loss rises is "
+        "taken as two where flow is turbulent and Darcy f is found from it; no correction is shortened. The sweeps "
+        "end when neither corrections nor closing errors are left beyond their limits."
+    ),
+    (
         "Second opinion: each case is solved again from the same inputs by separate code in another formulation, flows "
         "around loops that satisfy continuity from the first trial. The two must agree within the differences printed."
     ),
