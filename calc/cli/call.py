@@ -87,7 +87,13 @@ COMMANDS: tuple[Command, ...] = (
         (Place("DIR", "folder", "the folder to make; it must not hold anything yet"),),
         (Option("--like", "the sample or project to begin from, two-reservoirs if not said", "NAME"),),
     ),
-    Command("inspect", "inspection", "lists every problem and finding in the inputs", (FOLDER,)),
+    Command(
+        "inspect",
+        "inspection",
+        "lists every problem and finding in the inputs",
+        (FOLDER,),
+        (Option("--json", "print problems and findings as data"),),
+    ),
     Command(
         "solve",
         "solution",
@@ -113,6 +119,7 @@ COMMANDS: tuple[Command, ...] = (
         "derivation",
         "prints one number's whole derivation, down to file, line and column",
         (FOLDER, Place("ID", "id", "group.row.quantity@case, or group.quantity@case for a whole column")),
+        (Option("--json", "print the derivation as data, in SI"),),
     ),
     Command(
         "tables",

@@ -4,17 +4,20 @@ from __future__ import annotations
 
 import argparse
 import contextlib
+import json
 import re
 import sys
 from collections.abc import Generator, Iterator
 from pathlib import Path
+from typing import Any
 
 from calc import pipeline
 from calc.account import Account
 from calc.cli.call import WrongCall
 from calc.cli.outcome import Outcome
 from calc.cli.progress import Progress
-from calc.ledger import Ledger, Spot, trace
+from calc.ledger import Ledger, Spot, number_of, stated_as, trace, traced
+from calc.ledger.trace import FORMAT as TRACE_FORMAT
 from calc.problems import NotConverged, Unresolved, nearest
 from calc.project import BASE
 
@@ -33,7 +36,12 @@ def run(asked: argparse.Namespace) -> Outcome:
     finally:
         progress.wipe()
     with room_for(account.ledger):
-        return Outcome(said="\n".join(derivation(account, asked.id)))
+        found = wanted(account, asked.id)
+        if asked.json:
+            return Outcome(said=json.dumps(as_data(account.ledger, asked.id, found), indent=1, allow_nan=False))
+        if isinstance(found, Spot):
+            return Outcome(said="\n".join(trace(account.ledger, found)))
+        return Outcome(said="\n".join(stated_as(spot) for spot in found))
 
 
 @contextlib.contextmanager
@@ -47,8 +55,8 @@ def room_for(ledger: Ledger) -> Generator[None, None, None]:
         sys.setrecursionlimit(before)
 
 
-def derivation(account: Account, wanted: str) -> Iterator[str]:
-    """Yield the lines that answer an id; without ``@case`` it is of the base case.
+def wanted(account: Account, id_: str) -> Spot | list[Spot]:
+    """Return the number of an id, or the numbers of a column; without ``@case`` it is of the base case.
 
     Raises
     ------
@@ -57,20 +65,20 @@ def derivation(account: Account, wanted: str) -> Iterator[str]:
     NotConverged
         If its case has no solution.
     """
-    ledger = account.ledger
     try:
-        spot = ledger.spot(wanted)
+        return account.ledger.spot(id_)
     except Unresolved:
-        rows = column_spots(ledger, wanted)
+        rows = column_spots(account.ledger, id_)
         if not rows:
-            raise _unknown(account, wanted) from None
-        return (line_of(spot) for spot in rows)
-    return trace(ledger, spot)
+            raise _unknown(account, id_) from None
+        return rows
 
 
-def line_of(spot: Spot) -> str:
-    """Return ``id = value unit``."""
-    return f"{spot.id} = {spot.value:.9g} {spot.column.kind.unit}".rstrip()
+def as_data(ledger: Ledger, id_: str, found: Spot | list[Spot]) -> dict[str, Any]:
+    """Return a derivation as `calc.ledger.traced` documents it; of a column, ``numbers`` without derivations."""
+    if isinstance(found, Spot):
+        return traced(ledger, found)
+    return {"format": TRACE_FORMAT, "id": id_, "numbers": [number_of(spot) for spot in found]}
 
 
 def column_spots(ledger: Ledger, wanted: str) -> list[Spot]:

@@ -1,22 +1,96 @@
-"""``headtrace inspect``: every problem in the inputs, or every finding."""
+"""``headtrace inspect``: every problem in the inputs, or every finding; in words or as data."""
 
 from __future__ import annotations
 
 import argparse
+import json
+import re
+from collections.abc import Iterable, Iterator
 from pathlib import Path
+from typing import Any
 
 from calc import pipeline
-from calc.account import TITLES, input_findings
-from calc.cli.outcome import Outcome
+from calc.account import TITLES, Finding, input_findings
+from calc.cli.outcome import Outcome, Status
+from calc.marks import Mark
+from calc.problems import Problem, ProblemsFound, underlined
+from calc.project import Project
+
+FORMAT = "headtrace-inspection/1"
+_PLACE = re.compile(r"(?P<file>.+?):(?P<line>[0-9]+)(?::(?P<column>[0-9]+))?")
 
 
 def run(asked: argparse.Namespace) -> Outcome:
-    """Read a folder and say what a reviewer would remark on; problems are raised."""
-    project = pipeline.read(Path(asked.folder))
-    findings = input_findings(project)
-    lines = [
-        f"{finding.place or finding.subject}: {finding.id} {TITLES[finding.id]}: {finding.subject}: {finding.text}"
-        for finding in findings
-    ]
+    """Read a folder and say what is wrong in it, or what a reviewer would remark on."""
+    folder = Path(asked.folder)
+    try:
+        project = pipeline.read(folder)
+    except ProblemsFound as found:
+        if not asked.json:
+            raise
+        return Outcome(Status.WRONG_CALL, as_data(found.problems, ()))
+    findings = [(finding, _mark(finding, project)) for finding in input_findings(project)]
+    if asked.json:
+        return Outcome(said=as_data((), findings))
     count = len(findings)
+    lines = [line for finding, mark in findings for line in _lines(finding, mark, project)]
     return Outcome(said="\n".join([*lines, f"no problems; {count} finding{'s' * (count != 1)}"]))
+
+
+def _mark(finding: Finding, project: Project) -> Mark | None:
+    """Return where a finding stands; of a whole line, all that is written there."""
+    match = _PLACE.fullmatch(finding.place)
+    if match is None:
+        return None
+    file, line = match["file"], int(match["line"])
+    lines = project.texts.get(file, "").splitlines()
+    written = lines[line - 1].rstrip() if line <= len(lines) else ""
+    begin = len(written) - len(written.lstrip())
+    if match["column"]:
+        return Mark(file, line, int(match["column"]))
+    return Mark(file, line, begin + 1, max(1, len(written) - begin))
+
+
+def _lines(finding: Finding, mark: Mark | None, project: Project) -> Iterator[str]:
+    place = finding.place or finding.subject
+    yield f"{place}: {finding.id} {TITLES[finding.id]}: {finding.subject}: {finding.text}"
+    if mark is not None:
+        yield from underlined(mark, project.texts.get(mark.file, "").splitlines())
+
+
+def as_data(problems: Iterable[Problem], findings: Iterable[tuple[Finding, Mark | None]]) -> str:
+    """Return an inspection as JSON.
+
+    ``{"format": "headtrace-inspection/1", "problems": […], "findings": […], "counts": {"problems": n, …}}``.
+    Findings are looked for only where there is no problem. Each is at ``file``, ``line``, ``column`` (from 1) and
+    ``length``; a finding of no file has null there, and a problem of the folder itself has its path as ``file``. A
+    problem has ``code``, ``path``, ``found``, ``expected`` and ``hint``, the last two perhaps empty; a finding has
+    ``id``, ``title``, ``subject`` and ``text``.
+    """
+    wrong = [
+        {
+            "code": problem.code,
+            **_place(problem.mark),
+            "path": problem.path,
+            "found": problem.found,
+            "expected": problem.expected,
+            "hint": problem.hint,
+        }
+        for problem in problems
+    ]
+    doubtful = [
+        {
+            "id": finding.id,
+            "title": TITLES[finding.id],
+            **_place(mark),
+            "subject": finding.subject,
+            "text": finding.text,
+        }
+        for finding, mark in findings
+    ]
+    counts = {"problems": len(wrong), "findings": len(doubtful)}
+    return json.dumps({"format": FORMAT, "problems": wrong, "findings": doubtful, "counts": counts}, indent=1)
+
+
+def _place(mark: Mark | None) -> dict[str, Any]:
+    return dict.fromkeys(Mark._fields) if mark is None else mark._asdict()

@@ -8,6 +8,7 @@ import re
 import sys
 from typing import TextIO
 
+from calc.cli import colour
 from calc.cli.outcome import Outcome, Status
 
 _CONTROL = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u202a-\u202e\u2066-\u2069]")
@@ -54,7 +55,8 @@ def deliver(outcome: Outcome) -> int:
 
 def _write(stream: TextIO | None, text: str) -> None:
     if stream is not None and text:
-        stream.write(printable(text) + "\n")
+        shown = printable(text)
+        stream.write((colour.painted(shown) if colour.wanted(stream) else shown) + "\n")
         stream.flush()
 
 

@@ -24,7 +24,7 @@ from calc.ledger.origin import (
     Solved,
 )
 from calc.ledger.replay import Disagreement, replay
-from calc.ledger.trace import proofs, trace
+from calc.ledger.trace import number_of, proofs, stated_as, trace, traced
 
 __all__ = [
     "Accountant",
@@ -43,7 +43,10 @@ __all__ = [
     "Spot",
     "View",
     "exported",
+    "number_of",
     "proofs",
     "replay",
+    "stated_as",
     "trace",
+    "traced",
 ]

@@ -76,13 +76,16 @@ def test_each_command_tells_all_that_it_takes(inside: Inside, command: object) -
             ["issue", "a", "--for", "fun"],
             "'fun' cannot stand behind '--for'; expected one of checking, approval, record",
         ),
-        (["trace", "a"], "headtrace trace: ID is missing; expected 'headtrace trace DIR ID'\n"),
-        (["inspect", "a", "-x"], "headtrace inspect: there is no option '-x'; expected no option\n"),
+        (["trace", "a"], "headtrace trace: ID is missing; expected 'headtrace trace DIR ID [--json]'\n"),
+        (["ready", "-x"], "headtrace ready: there is no option '-x'; expected no option\n"),
         (
             ["tables", "ftings"],
             "there is no table 'ftings'; expected one of fittings, ends, defaults\n  hint: did you mean",
         ),
-        (["new", "a", "--like", "two"], "there is no sample 'two'; expected one of three-reservoirs, two-reservoirs, ostrel-transfer-main"),
+        (
+            ["new", "a", "--like", "two"],
+            "there is no sample 'two'; expected one of three-reservoirs, two-reservoirs, ostrel-transfer-main",
+        ),
     ],
 )
 def test_a_wrong_call_says_what_was_expected(inside: Inside, words: list[str], shown: str) -> None:

@@ -2,16 +2,18 @@
 
 from __future__ import annotations
 
+import json
 import re
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from pathlib import Path
+from typing import Any
 
 import pytest
 from cli_folders import JOINED
 
 from calc import pipeline
 from calc.account import open_books
-from calc.cli.derivation import derivation, room_for
+from calc.cli.derivation import room_for
 from calc.ledger import Program, Solved, trace
 
 Inside = Callable[..., tuple[int, str, str]]
@@ -25,7 +27,7 @@ def test_every_number_traces_to_what_it_rests_on(demo: Path) -> None:
             wanted = column.id(row)
             assert wanted not in seen
             seen.add(wanted)
-            lines = list(derivation(account, wanted))
+            lines = list(trace(account.ledger, account.ledger.spot(wanted)))
             assert lines[0].startswith(f"{wanted} = ")
             # what the program found or counted itself rests on no input line; a trial's flow was solved for
             own = isinstance(column.origin, Program) or (isinstance(column.origin, Solved) and column.of)
@@ -100,3 +102,52 @@ def test_a_long_chain_of_cases_traces(write: Callable[[str], Path]) -> None:
         "junctions.cross.withdrawal@base = 0.012 m³/s   given as '12 L/s' at network.yaml:5:"
     )
     assert float(first.split()[2]) == pytest.approx(0.012 * 1.001**count, rel=1e-8)
+
+
+def leaves(number: dict[str, Any]) -> Iterator[dict[str, Any]]:
+    if number.get("seen") or not number["inputs"]:
+        yield number
+    for one in number.get("inputs", ()):
+        yield from leaves(one)
+
+
+def test_a_derivation_as_data_is_the_one_in_words(inside: Inside, demo: Path) -> None:
+    wanted = "pipes.sedge-link.head_loss@peak"
+    status, said, remarks = inside("trace", demo, wanted, "--json")
+    assert (status, remarks) == (0, "")
+    told = json.loads(said)
+    assert (told["format"], told["id"]) == ("headtrace-trace/1", wanted)
+    words = inside("trace", demo, wanted)[1].splitlines()
+    numbers = [told["number"], *(one for proof in told["proofs"] for one in proof["numbers"])]
+    assert len([line for line in words if " = " in line]) == sum(1 for one in numbers for _ in every(one))
+    ends = [one for one in leaves(told["number"]) if not one.get("seen")]
+    files = {one["origin"]["file"] for one in ends if "file" in one["origin"]}
+    assert files == {"network.yaml", "calc/data/defaults.yaml", "calc/data/fittings.yaml"}
+    bore = next(one for one in every(told["number"]) if one["id"] == "pipes.sedge-link.bore@base")
+    # the line and column of the text, counted in the file
+    text = (demo / "network.yaml").read_text("utf-8").splitlines()
+    origin = bore["origin"]
+    assert text[origin["line"] - 1][origin["column"] - 1 :].startswith("254.6 mm")
+    assert (origin["kind"], origin["written"], origin["number"], origin["factor"]) == (
+        "converted",
+        "254.6 mm",
+        254.6,
+        0.001,
+    )
+    assert bore["value"] == pytest.approx(0.2546, rel=1e-15)
+    assert [proof["of"] for proof in told["proofs"]] == ["pipes.sedge-link.flow@peak"]
+
+
+def every(number: dict[str, Any]) -> Iterator[dict[str, Any]]:
+    yield number
+    for one in number.get("inputs", ()):
+        yield from every(one)
+
+
+def test_a_column_as_data(inside: Inside, demo: Path) -> None:
+    told = json.loads(inside("trace", demo, "pipes.flow@peak", "--json")[1])
+    assert told["format"] == "headtrace-trace/1"
+    assert [one["id"] for one in told["numbers"]] == [
+        f"pipes.{name}.flow@peak" for name in ("upper-main", "sedge-link", "vell-main")
+    ]
+    assert {one["unit"] for one in told["numbers"]} == {"m³/s"}
