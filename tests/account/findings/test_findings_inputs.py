@@ -78,6 +78,26 @@ CASES = [
     Spoilt("a bore of eight inches", "D18", ((BORE, "bore: {value: 203.2 mm, source: S1}"),), ("pipes.upper",)),
     Spoilt("a bore of a data sheet", "D18", ((BORE, "bore: {value: 200 mm, source: S1, grade: manufacturer}"),), ()),
     Spoilt("a bore beside DN 200", "D18", ((BORE, "bore: {value: 200.1 mm, source: S1}"),), ()),
+    Spoilt(
+        "a size of a standard", "D18", ((BORE, "bore: {size: DN200, standard: EN 545, class: C40, source: S1}"),), ()
+    ),
+    Spoilt(
+        "a size of a standard", "D03", ((BORE, "bore: {size: DN200, standard: EN 545, class: C40, source: S1}"),), ()
+    ),
+    Spoilt(
+        "a size from nowhere",
+        "D03",
+        ((BORE, "bore: {size: DN200, standard: EN 545, class: C40}"),),
+        ("pipes.upper",),
+        "size has no source",
+    ),
+    Spoilt(
+        "a lining that nobody states",
+        "D05",
+        ((BORE, "outside_diameter: {value: 222 mm, source: S1}\n    wall: {value: 5 mm, source: S1}"),),
+        ("pipes.*.lining",),
+        "by default",
+    ),
     # D22
     Spoilt(
         "a level above the highest",
