@@ -135,7 +135,7 @@ def test_a_derivation_as_data_is_the_one_in_words(inside: Inside, demo: Path) ->
         0.001,
     )
     assert bore["value"] == pytest.approx(0.2546, rel=1e-15)
-    assert [proof["of"] for proof in told["proofs"]] == ["pipes.sedge-link.flow@peak"]
+    assert told["proofs"][0]["of"] == "pipes.sedge-link.flow@peak"
 
 
 def every(number: dict[str, Any]) -> Iterator[dict[str, Any]]:
