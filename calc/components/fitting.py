@@ -40,6 +40,7 @@ SCHEMA = Schema(
         Field("bore", Quantity(BORE, above=0.0), words="bore on which K stands, or before a change of bore"),
     ),
     excludes=(("kind", "K"), ("kind", "Kv"), ("kind", "Cv"), ("K", "Kv"), ("K", "Cv"), ("Kv", "Cv")),
+    either=(("kind", "K", "Kv", "Cv"),),
 )
 """The options of ``kind`` are the entries of the shipped table, which the reader supplies, and the computed kinds."""
 

@@ -24,7 +24,7 @@ def schema() -> Schema:
     kinds = Word((*shipped.fittings(), *shipped.computed_fittings()))
     own = tuple(Field("kind", kinds) if f.name == "kind" else f for f in FITTING_SCHEMA.fields)
     place = Field("at", Word(("from", "to", "along")), words="where it stands in the pipe")
-    return Schema("fittings", "fitting", (*own, place), FITTING_SCHEMA.excludes)
+    return Schema("fittings", "fitting", (*own, place), FITTING_SCHEMA.excludes, FITTING_SCHEMA.either)
 
 
 def read_fittings(reader: Reader, node: Node, pipe: str, bore: Stated | None) -> tuple[Record, ...]:
@@ -78,9 +78,6 @@ def _complete(reader: Reader, stated: Fields, member: Mapping, at: str, bore: St
         stated["title"] = row.title
     elif "K" in stated:
         stated.setdefault("K_reverse", stated["K"])
-    elif not {"kind", "K", "Kv", "Cv"} & set(member.keys()):
-        expected = "'kind: …', 'K: …', 'Kv: …' or 'Cv: …'"
-        reader.note(member.mark, "missing-key", at, "no coefficient is stated", expected)
     _count_and_bore(reader, stated, bore)
 
 

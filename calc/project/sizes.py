@@ -15,7 +15,8 @@ from calc.project.wording import listed, quoted
 from calc.yamlfile import Entry, Mapping, Scalar
 
 NAMES = ("size", "standard", "class")
-_WITHIN = (*NAMES, "wall", "lining")
+WITHIN = (*NAMES, "wall", "lining")
+"""What may stand in a mapping under ``bore``."""
 
 
 def unfolded(reader: Reader, pipe: Mapping, path: str) -> Mapping:
@@ -39,8 +40,8 @@ def _from_bore(reader: Reader, pipe: Mapping, bore: Mapping, path: str) -> list[
         at = f"{path}.bore.{key.text}"
         if key.text in BASIS_KEYS:
             continue
-        if key.text not in _WITHIN:
-            reader.unknown(key, at, (*_WITHIN, *BASIS_KEYS))
+        if key.text not in WITHIN:
+            reader.unknown(key, at, (*WITHIN, *BASIS_KEYS))
         elif pipe.get(key.text) is not None:
             said = f"'{key.text}' stands here and with the pipe"
             reader.note(key.mark, "excluded-pair", at, said, "one of the two")

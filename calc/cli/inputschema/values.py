@@ -9,7 +9,7 @@ from calc import units
 from calc.components import Count, Date, Flag, Name, Node, Quantity, Text, Word
 from calc.components.fields import Form
 from calc.kinds import NUMBER, Kind
-from calc.project import bounds
+from calc.project import bounds, materials
 from calc.project.reader import GRADES, ID
 from calc.units import pattern
 from calc.units.names import measured
@@ -106,10 +106,22 @@ class Values:
             name = f"{_name(kind)} {'above' if 'exclusiveMinimum' in limits else 'from'} {low:.12g} to {high:.12g}"
             types = ["number", "string"]
         text = self.text(kind, sign, bare=bool(form.bare))
+        name += f" or material of the table {form.table}" if form.table else ""
         if name not in self.shared:
             one = {"type": types, **limits, **text}
-            self.shared[name] = {**limits, **text, **self._supported(one, self._deviation(kind))}
+            supported = self._supported(one, self._deviation(kind))
+            self.shared[name] = {**limits, **text, **self._material(form.table, supported)}
         return {"type": [*types, "object"], **self.refer(name)}
+
+    def _material(self, table: str, supported: Json) -> Json:
+        """Return what must hold of a mapping that may name a material in place of a value."""
+        if not table:
+            return supported
+        rows = materials.tables()[table]
+        words = {"oneOf": [{"const": name, "description": row.title.text} for name, row in rows.items()]}
+        named = {"description": f"material in the shipped table: {', '.join(rows)}", **words}
+        other = closed({"material": named, **self.basis()}, ["material"])
+        return {"if": {"type": "object", "required": ["material"]}, "then": other, "else": supported}
 
     def text(self, kind: Kind, sign: str = "", *, bare: bool = False) -> Json:
         """Return the schema of a quantity as text, by reference; it says nothing of what is no text."""

@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from calc.cli.inputschema.records import as_json, describe, example_of, mapping, record
-from calc.cli.inputschema.values import IDENTIFIER, SCALAR, Json, Values
+from calc.cli.inputschema.records import as_json, describe, example_of, mapping, record, told
+from calc.cli.inputschema.values import IDENTIFIER, SCALAR, Json, Values, closed
 from calc.components import SCHEMAS, Ends, Fittings, Schema
 from calc.components.pipe import LAW_INPUT
 from calc.physics.friction import LAW_NAMES
-from calc.project import fittings, settings, shipped
+from calc.project import fittings, settings, shipped, sizes
 from calc.project.works import NEEDED
 
 GROUP_WORDS = {
@@ -33,10 +33,33 @@ def component(values: Values, one: Schema) -> Json:
         elif isinstance(field.form, Fittings):
             words = f"{field.words[:1].upper()}{field.words[1:]}, each by kind or by coefficient."
             own[field.name] = {"description": words, "type": ["array", "null"], "items": _fitting(values)}
+    if one.group == "pipes":
+        own["bore"] = _bore(values, one)
     found = record(values, one, one.group, own)
     if one.group == "pipes":
-        found["allOf"] = [*found.get("allOf", []), *map(_law_input, LAW_INPUT)]
+        found["allOf"] = [*found.get("allOf", []), *map(_law_input, LAW_INPUT), *_sizes()]
     return {**found, "description": f"A {one.singular}."}
+
+
+def _bore(values: Values, pipe: Schema) -> Json:
+    """Return a bore: a quantity, or a size in the shipped tables."""
+    within = {field.name: told(values, field, "") for field in pipe.fields if field.name in sizes.WITHIN}
+    plain = next(told(values, field, "") for field in pipe.fields if field.name == "bore")
+    size = {"type": "object", **closed({**within, **values.basis()}, list(sizes.NAMES))}
+    named = {"type": "object", "anyOf": [{"required": [name]} for name in sizes.NAMES]}
+    kept: Json = {name: plain.pop(name) for name in ("description", "examples", "default") if name in plain}
+    return {**kept, "if": named, "then": size, "else": plain}
+
+
+def _sizes() -> list[Json]:
+    """Return what size, standard and class hold one another to, and an outside diameter."""
+    others = [name for name in sizes.NAMES if name != "size"]
+    named = {"anyOf": [{"required": [name]} for name in others]}
+    return [
+        {"if": {"required": ["size"]}, "then": {"required": others}},
+        {"if": named, "then": {"required": ["size"]}},
+        {"if": {"required": ["outside_diameter"]}, "then": {"required": ["wall"]}},
+    ]
 
 
 def _group(one: Schema, member: Json) -> Json:
@@ -94,13 +117,11 @@ def _fitting(values: Values) -> Json:
     words = {"oneOf": [{"const": name, "description": _what(name)} for name in listed]}
     kind = {"description": f"Kind in the shipped table: {', '.join(listed)}.", **values.word(words)}
     found = record(values, schema, "fittings", {"kind": kind, **values.basis()})
-    if not schema.either:
-        found["allOf"] = [*found.get("allOf", []), {"anyOf": [{"required": ["kind"]}, {"required": ["K"]}]}]
     return {**found, "type": "object", "description": "A fitting."}
 
 
 def _what(kind: str) -> str:
-    row = shipped.fittings().get(kind)
+    row = shipped.fittings().get(kind) or shipped.computed_fittings().get(kind)
     return kind if row is None else row.title.text
 
 
