@@ -47,8 +47,8 @@ UNITS: tuple[dict[str, Fraction], ...] = (
     {"Pa·s": F(1), "mPa·s": F("0.001"), "cP": F("0.001"), "P": F("0.1"), "lb/ft/s": POUND / FOOT, "kg/m/s": F(1)},
     {"kg/m³": F(1), "g/L": F(1), "kg/L": F(1000), "t/m³": F(1000), "lb/ft³": POUND / FOOT**3, "g/mL": F(1000)},
     {"s": F(1), "min": F(60), "h": F(3600), "d": F(86400), "s²/s": F(1), "h²/h": F(3600)},
-    {"°": PI / 180, "deg": PI / 180, "rad": F(1)},
-    {"": F(1), "%": F("0.01"), "m/km": F("0.001"), "mm/m": F("0.001"), "in/ft": F(1, 12), "ft/mi": F(1, 5280)},
+    {"°": PI / 180, "rad": F(1)},
+    {"": F(1), "%": F("0.01"), "m/km": F("0.001"), "ft/1000 ft": F("0.001"), "mm/m": F("0.001"), "in/ft": F(1, 12)},
 )
 """Exact factors to SI, a row for each dimension; only temperatures have a zero of their own."""
 
