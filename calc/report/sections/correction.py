@@ -156,10 +156,10 @@ class _Page:
         columns = (
             column("pipe", role="statement"),
             column("walked", 18),
-            figure_column("flow", coherent(FLOW), 27, edge=True),
-            figure_column("head lost", coherent(HEAD), 25),
-            figure_column("exponent", "", 18),
-            figure_column("rise of loss", coherent(LOSS_RATE), 25, edge=True),
+            _lettered("flow ", "Q", coherent(FLOW), 28, edge=True),
+            _lettered("loss ", "h", coherent(HEAD), 28),
+            _lettered("exponent ", "n_h", "", 26),
+            _lettered("rise ", "r_h", coherent(LOSS_RATE), 26, edge=True),
         )
         rows: list[Row] = []
         for c, (one, k) in enumerate(zip(self.corrections.sweep.tolist(), self.corrections.loop.tolist(), strict=True)):
@@ -215,7 +215,7 @@ class _Page:
             )
             for node in (loop.nodes[0], loop.nodes[-1])
         )
-        said: Parts = ("Less the fall of level, ", higher, " − ", lower)
+        said: Parts = ("Less the fall, ", higher, " − ", lower)
         return self.sheet.row(
             said, ("",), ("",), (self._number(excess, "+", residual=True),), ("",), ("",), refs=[excess.id]
         )
@@ -240,7 +240,8 @@ class _Page:
             self._found(f"loops.{quantity}", loop_id(k), trial) for quantity in ("loss", "excess", "rate", "correction")
         ]
         rows: list[Row] = []
-        for spots, said in ((of_pipe, (name(pipe), ": ")), (of_loop, ("loop ", Own(loop_id(k), "id"), ": "))):
+        word = "path " if loop.path else "loop "
+        for spots, said in ((of_pipe, (name(pipe), ": ")), (of_loop, (word, Own(loop_id(k), "id"), ": "))):
             for spot in spots:
                 if spot is not None and not isinstance(spot.column.origin, Program):
                     rows += derivation.lines(self.sheet, spot, *said)
@@ -307,6 +308,11 @@ def correction_figure(sheet: Sheet, case: CaseAccount, corrections: Corrections,
     )
     caption: Parts = ("Largest correction and largest excess in each sweep of case ", name(case.id), ".")
     sheet.add(Figure(composer.figure_number(), caption, drawing))
+
+
+def _lettered(words: str, letter: str, unit: str, width: float, *, edge: bool = False) -> TableColumn:
+    """Return a column of figures, headed by words and the letter that its formulas have for it."""
+    return TableColumn((words, Letter(letter)), unit=unit, align="right", width=width, edge=edge, role="value")
 
 
 def _way(sign: int) -> str:
