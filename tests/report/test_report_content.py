@@ -32,6 +32,8 @@ from calc.report.figures import Balance, Convergence, Schematic
 from calc.report.numbers import written
 from calc.report.sections.findings import MOST_SUBJECTS
 
+FLOWS = {"L/s": (1000, 1), "m³/s": (1, 4), "gpm": (60 / (231 * 0.0254**3), 0), "ft³/s": (0.3048**-3, 3)}
+"""How many of a unit of flow make one cubic metre a second, by its definition; and its places on the first page."""
 EVERY = pytest.mark.parametrize("name", NAMES)
 ADDRESS = re.compile(r"\d+\.\d+")
 
@@ -365,9 +367,8 @@ def test_the_first_page_tells_where_the_water_goes(name: str) -> None:
                 assert (words, size) == ("shut", "–")
                 continue
             assert words == f"to {record.text('to') if flow > 0 else record.text('from')}"
-            # tenths of a litre a second
-            in_litres = plain(held.columns[0].head).endswith("L/s")
-            assert size == (f"{abs(flow) * 1000:.1f}" if in_litres else f"{abs(flow):.4f}")
+            factor, places = FLOWS[plain(held.columns[0].head).removeprefix("flow, ")]
+            assert size == f"{abs(flow) * factor:.{places}f}"
 
 
 @EVERY

@@ -109,6 +109,9 @@ criteria: {pressure-max: {limit: 25 bar}, gradient-max: {limit: 12 m/km}}
 """
 
 
+US = "display: {units: US}\n"
+
+
 class Work(NamedTuple):
     """A folder of text, accounted for and composed."""
 
@@ -129,6 +132,10 @@ TEXTS = {
     "plain": PLAIN,
     "dry": DRY,
     "great": GREAT,
+    "transition-us": US + TRANSITION.replace("LAW", "colebrook-white"),
+    "laws-us": US + LAWS,
+    "empirical-us": US + EMPIRICAL,
+    "loop-us": US.replace("}", ", flow: cfs, length: mi}") + LOOP,
 }
 NAMES = ("demo", *TEXTS)
 

@@ -87,8 +87,8 @@ def _units(display: Display) -> list[Parts]:
             " Empirical laws are worked in SI, what they take converted before them, what they give after."
         )
     data = (
-        "The data files of this package (results, ledger, tables) are in SI, and so are the published cases in the "
-        "software record."
+        "The data files of this package (results, ledger, tables) are in SI. Published cases in the software record "
+        "are in the units in which they were published."
     )
     return [tuple(tables), (worked,), (data,)]
 
