@@ -27,7 +27,7 @@ ALL_IN_FULL = 60
 METHOD = "loop-correction"
 ASSUMED = (
     "assumed at the start: what the pipe passes between rough heads, those of pipes whose loss is linear in flow; "
-    "rounded to two figures"
+    "rounded to two figures in SI"
 )
 SQUARE = "the loss goes with the square of the flow: turbulent flow with Darcy f as found, Manning, fittings"
 RECORDED = {

@@ -11,7 +11,7 @@ from __future__ import annotations
 import numpy as np
 
 from calc.components.network import Network
-from calc.solve.branch import ROUNDING, Array, Branches, closing_limit
+from calc.solve.branch import Array, Branches, closing_limit
 from calc.solve.grid import SingularGrid
 from calc.solve.loop_method import LoopMethod
 from calc.solve.loop_rules import loop_correction
@@ -22,9 +22,7 @@ MOST_LOOPS = 12
 MOST_PIPES = 40
 """Pipes up to which it would."""
 SHARE = 1e-9
-"""Corrections are brought below this share of the largest flow, or the tolerance where it is less,"""
-CLOSING = 1e-10
-"""and closing errors below this share of the range of heads."""
+"""Corrections are brought below this share of the largest flow, or the tolerance where it is less."""
 
 
 class Table:
@@ -52,16 +50,20 @@ class Table:
             self.largest_change = max(self.largest_change, abs(change))
         self.error.append(method.largest_excess(method.evaluate(self.flow)[0]))
 
-    def settled(self, tolerance: float) -> bool:
-        """Return whether the last sweep corrected no flow and left no loop open by more than the shares stated."""
-        method = self.method
+    def tests(self, tolerance: float) -> tuple[StopTest, ...]:
+        """Return the tests by which the sweeps end."""
+        method, grid = self.method, self.method.iteration.grid
         lost, _ = method.evaluate(self.flow)
-        largest = max(np.max(np.abs(self.flow), initial=0.0), np.max(np.abs(method.network.withdrawal), initial=0.0))
-        size = np.where(method.network.open, np.abs(lost), 0.0)
-        noise = 8 * ROUNDING * float(np.max(np.abs(method.around) @ size, initial=0.0))
-        limit = CLOSING * float(np.ptp(method.heads(lost))) + noise
-        still = float(np.max(method.iteration.trickle))
-        return bool(self.largest_change <= min(tolerance, SHARE * largest + still) and self.error[-1] <= limit)
+        running = np.where(method.network.open, self.flow, 0.0)
+        largest = max(float(np.max(np.abs(q), initial=0.0)) for q in (running, method.network.withdrawal))
+        least = min(tolerance, SHARE * largest + float(np.max(method.iteration.trickle)))
+        left = float(np.max(np.abs(grid.imbalance(running)), initial=0.0))
+        closing = closing_limit(method.heads(lost))
+        return (
+            StopTest("largest correction in the last sweep", self.largest_change, least, "m³/s"),
+            StopTest("largest closing error of energy round a loop or path", method.largest_excess(lost), closing, "m"),
+            StopTest("largest imbalance at a junction", left, tolerance, "m³/s"),
+        )
 
     def corrections(self) -> Corrections:
         """Return the table as columns."""
@@ -103,10 +105,10 @@ def solve_by_loop_correction(network: Network, settings: Settings, branches: Bra
             reason = f"the rough heads to begin from have no single answer ({error})"
             return Solution(False, "loop-correction", reason, 0, heads, flows)  # noqa: FBT003 - the first field of a result
         reason = _sweep(table, settings)
-        lost, _ = method.evaluate(table.flow)
-        tests = _tests(table, lost, settings.tolerance)
+        tests = table.tests(settings.tolerance)
         reason = "; ".join(part for part in (reason, unmet(tests)) if part)
         if not reason:
+            lost, _ = method.evaluate(table.flow)
             heads, flows = method.heads(lost), np.where(network.open, table.flow, 0.0) + 0.0  # no negative zeros
     kept = table.corrections()
     return Solution(
@@ -122,17 +124,6 @@ def _sweep(table: Table, settings: Settings) -> str:
         table.sweep()
         if not np.all(np.isfinite(table.flow)):
             return "the flows are no longer finite numbers"
-        if table.settled(settings.tolerance):
+        if not unmet(table.tests(settings.tolerance)):
             return ""
     return f"not settled in {settings.limit} sweep{'s' * (settings.limit != 1)}"
-
-
-def _tests(table: Table, lost: Array, tolerance: float) -> tuple[StopTest, ...]:
-    method = table.method
-    left = np.max(np.abs(method.iteration.grid.imbalance(np.where(method.network.open, table.flow, 0.0))), initial=0.0)
-    limit = closing_limit(method.heads(lost))
-    return (
-        StopTest("largest correction in the last sweep", table.largest_change, tolerance, "m³/s"),
-        StopTest("largest closing error of energy round a loop or path", method.largest_excess(lost), limit, "m"),
-        StopTest("largest imbalance at a junction", float(left), tolerance, "m³/s"),
-    )

@@ -145,8 +145,8 @@ class _Page:
         self.sheet.table(f"start-{self.case.id}", columns, rows)
         said = (
             "The flow of each closing pipe is assumed: what it passes by its own law between rough heads, those of "
-            "pipes whose loss is linear in flow, rounded to two figures. The other flows follow from continuity, which "
-            "no correction disturbs."
+            "pipes whose loss is linear in flow, rounded to two figures in SI. The other flows follow from continuity, "
+            "which no correction disturbs."
         )
         self.sheet.add(Paragraph((said,), "small"))
 
