@@ -22,7 +22,7 @@ def compose_listing(composer: Composer) -> None:
     sheet.close()
 
 
-MOST_ENTRIES = 1000
+MOST_ENTRIES = 4000
 MOST_LINES = 5000
 
 
