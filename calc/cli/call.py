@@ -17,6 +17,10 @@ PURPOSES = ("checking", "approval", "record")
 """What a package may be issued for."""
 
 
+SHELLS = ("bash", "zsh", "fish")
+"""Shells for which there is a completion."""
+
+
 class WrongCall(CalcError):
     """The call is wrong: what was found, what was expected, and perhaps a way out."""
 
@@ -32,22 +36,28 @@ class WrongCall(CalcError):
 
 
 class Place(NamedTuple):
-    """A word that stands by its place; ``many`` takes all that follow."""
+    """A word that stands by its place; ``many`` takes all that follow.
+
+    ``holds`` says what belongs there, for completion: a folder, a sample, a table.
+    """
 
     name: str
     field: str
     words: str
     many: bool = False
     needed: bool = True
+    among: tuple[str, ...] = ()
+    holds: str = ""
 
 
 class Option(NamedTuple):
-    """An option; without ``value`` it is a switch."""
+    """An option; without ``value`` it is a switch. ``holds`` as of a `Place`."""
 
     name: str
     words: str
     value: str = ""
     among: tuple[str, ...] = ()
+    holds: str = ""
 
     @property
     def field(self) -> str:
@@ -77,15 +87,15 @@ class Command(NamedTuple):
         return " ".join(words)
 
 
-FOLDER = Place("DIR", "folder", "the project folder")
+FOLDER = Place("DIR", "folder", "the project folder", holds="folder")
 
 COMMANDS: tuple[Command, ...] = (
     Command(
         "new",
         "beginning",
         "starts a project folder that issues at once",
-        (Place("DIR", "folder", "the folder to make; it must not hold anything yet"),),
-        (Option("--like", "the sample or project to begin from, two-reservoirs if not said", "NAME"),),
+        (Place("DIR", "folder", "the folder to make; it must not hold anything yet", holds="folder"),),
+        (Option("--like", "the sample or project to begin from, two-reservoirs if not said", "NAME", holds="sample"),),
     ),
     Command(
         "inspect",
@@ -108,10 +118,10 @@ COMMANDS: tuple[Command, ...] = (
         "issue",
         "issue",
         "writes the calculation package",
-        (Place("DIR", "folders", "project folders, issued side by side", many=True),),
+        (Place("DIR", "folders", "project folders, issued side by side", many=True, holds="folder"),),
         (
             Option("--for", "the purpose of issue, checking if not said", "PURPOSE", PURPOSES),
-            Option("--out", "the folder to write into, DIR/issued if not said", "DIR"),
+            Option("--out", "the folder to write into, DIR/issued if not said", "DIR", holds="folder"),
         ),
     ),
     Command(
@@ -125,10 +135,16 @@ COMMANDS: tuple[Command, ...] = (
         "tables",
         "tables",
         "prints the shipped tables with their sources",
-        (Place("NAME", "name", "the table; without it, their names", needed=False),),
+        (Place("NAME", "name", "the table; without it, their names", needed=False, holds="table"),),
     ),
     Command("schema", "schema", "prints a JSON Schema of the input files, for editors"),
-    Command("ready", "readiness", "tells whether this machine is ready"),
+    Command("ready", "readiness", "tells whether this machine is ready, and what mends it"),
+    Command(
+        "completion",
+        "completion",
+        "prints a script by which a shell completes what you type",
+        (Place("SHELL", "shell", "the shell", among=SHELLS),),
+    ),
 )
 """Every command, in the order of ``--help``."""
 
@@ -207,7 +223,11 @@ def _take_places(command: Command, asked: argparse.Namespace, words: Sequence[st
             setattr(asked, place.field, left)
             left = []
         else:
-            setattr(asked, place.field, left.pop(0) if left else None)
+            word = left.pop(0) if left else None
+            if word is not None and place.among and word not in place.among:
+                found = f"'{word}' cannot stand for {place.name}"
+                raise WrongCall(found, f"one of {', '.join(place.among)}", nearest(word[:WIDTH], place.among))
+            setattr(asked, place.field, word)
     if left:
         raise WrongCall(f"'{left[0]}' is one word too many", f"'{NAME} {command.usage}'")
 
@@ -240,7 +260,7 @@ def help_of_all() -> str:
 
 def help_of(command: Command) -> str:
     """Return the help of one command."""
-    rows = [(place.name, place.words) for place in command.places]
+    rows = [(place.name, _option_words(place)) for place in command.places]
     rows += [(f"{option.name} {option.value}".strip(), _option_words(option)) for option in command.options]
     column = max((len(name) for name, _ in rows), default=0) + 4
     lines = [f"{NAME} {command.usage}", "", f"{command.does[0].upper()}{command.does[1:]}."]
@@ -250,5 +270,5 @@ def help_of(command: Command) -> str:
     return "\n".join(lines)
 
 
-def _option_words(option: Option) -> str:
+def _option_words(option: Option | Place) -> str:
     return f"{option.words} ({', '.join(option.among)})" if option.among else option.words
