@@ -57,7 +57,7 @@ def test_each_command_tells_all_that_it_takes(inside: Inside, command: object) -
     [
         (
             [],
-            "headtrace: no command is given; expected one of new, inspect, solve, issue, trace, tables, schema, ready, ",
+            "headtrace: no command is given; expected one of new, inspect, solve, issue, trace, tables, schema, ",
         ),
         (["slove"], "headtrace: there is no command 'slove'; expected one of new, "),
         (["slove"], "\n  hint: did you mean 'solve'?\n"),
