@@ -9,7 +9,7 @@ from importlib import resources
 
 from calc import units
 from calc.components import Basis, Stated
-from calc.kinds import DENSITY, FLOW, HEAD, KINEMATIC_VISCOSITY, NUMBER, PRESSURE, VELOCITY, Kind
+from calc.kinds import BORE, DENSITY, FLOW, HEAD, KINEMATIC_VISCOSITY, NUMBER, PRESSURE, VELOCITY, Kind
 from calc.problems import ProblemsFound
 from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Node, Scalar, Sequence, read_text
@@ -19,6 +19,7 @@ PLACE = "calc/data/verification.yaml"
 KINDS: dict[str, Kind] = {
     "friction_factor": NUMBER,
     "coefficient": NUMBER,
+    "bore": BORE,
     "density": DENSITY,
     "viscosity": KINEMATIC_VISCOSITY,
     "vapour_pressure": PRESSURE,

@@ -112,6 +112,7 @@ def solve_folder(folder: Path) -> dict[str, float]:
         name, head = works.nodes[k], float(solution.head[k])
         found[f"junctions.{name}.head"] = head
         found[f"junctions.{name}.pressure_head"] = head - project.junctions[name].number("elevation")
+    found |= {f"pipes.{pipe}.bore": float(works.pipes.bore[k]) for k, pipe in enumerate(works.pipes.rows)}
     used = value_of(results.fitting_coefficient)
     found |= {f"fittings.{row}.coefficient": float(used[k]) for k, row in enumerate(works.pipes.fittings.rows)}
     for quantity in ("velocity", "friction_loss", "fitting_loss", "head_loss"):

@@ -15,6 +15,7 @@ TITLES: dict[str, str] = {
     "manning": "Manning",
     "laminar": "laminar flow",
     "water": "properties of water",
+    "size": "bores by size",
     "fittings": "loss coefficients",
     "bend": "bends by angle and radius",
     "step": "sudden changes of bore",
@@ -46,6 +47,8 @@ def in_use(account: Account) -> tuple[str, ...]:
     fitted = [part for pipe in account.project.pipes.values() for parts in pipe.parts.values() for part in parts]
     if fitted:
         used |= {"fittings", *(computed_kind(part.stated) for part in fitted)}
+    if any("size" in pipe.stated for pipe in account.project.pipes.values()):
+        used.add("size")
     if "temperature" in account.project.fluid.stated:
         used.add("water")
     return tuple(word for word in TITLES if word in used)

@@ -11,6 +11,7 @@ import mpmath  # type: ignore[import-untyped]
 import pytest
 import yaml
 from fluids.fittings import contraction_conical, diffuser_conical
+from fluids.piping import nearest_pipe
 
 from calc import verification
 from calc.components import Record
@@ -230,6 +231,14 @@ def test_tapers_are_those_of_the_library_and_bends_those_of_the_table(checks: di
 def bends() -> list[Record]:
     pipes = read_project(DATA / "fittings", ()).pipes
     return [pipes[name] for name in ("right-angle", "tight-bend")]
+
+
+def test_bores_are_those_of_the_dimensions(checks: dict[str, Check]) -> None:
+    # EN 545:2010 and ISO 4427-2 as on open pages: D = 429 - 2 (6.0 + 5) mm, D = 315 - 2 x 28.6 mm
+    assert checks["size-published/pipes-ductile-bore"].expected == pytest.approx((429 - 2 * (6.0 + 5.0)) / 1000)
+    assert checks["size-published/pipes-plastic-bore"].expected == pytest.approx((315 - 2 * 28.6) / 1000)
+    _, inside, _, _ = nearest_pipe(NPS=12, schedule="40")
+    assert checks["size-library/pipes-steel-bore"].expected == pytest.approx(inside, rel=1e-12)
 
 
 def test_the_fitted_link_is_the_closed_form(checks: dict[str, Check]) -> None:
