@@ -117,8 +117,9 @@ def _sum(origin: Combined, row: int, display: Display) -> Parts:
         form = Format(display.coherent(spot.column.kind), significant=RESULT_FIGURES)
         number = Number(spot.id, form, written(spot.value, spot.column.kind, form), with_unit=True)
         if origin.operation == "sum":
-            parts.append(("− (" if origin.signs[k] < 0 else "+ (" if spot.value < 0 else "+ ") if position else "")
-            parts += [number, ") " if position and (spot.value < 0 or origin.signs[k] < 0) else " "]
+            taken = origin.signs[k] < 0
+            parts.append("− (" if taken else ("+ (" if spot.value < 0 else "+ ") if position else "")
+            parts += [number, ") " if taken or (position and spot.value < 0) else " "]
         else:
             parts += [", " if position else "", number]
     if len(terms) > MOST_TERMS:

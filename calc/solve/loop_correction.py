@@ -22,7 +22,9 @@ MOST_LOOPS = 12
 MOST_PIPES = 40
 """Pipes up to which it would."""
 SHARE = 1e-9
-"""Corrections are brought below this share of the largest flow, or the tolerance where it is less."""
+"""Corrections are brought below this share of the largest flow, or the tolerance where it is less,"""
+CLOSING = 0.1
+"""and closing errors below this share of what is accepted of any method, for they pass to the heads whole."""
 
 
 class Table:
@@ -58,7 +60,7 @@ class Table:
         largest = max(float(np.max(np.abs(q), initial=0.0)) for q in (running, method.network.withdrawal))
         least = min(tolerance, SHARE * largest + float(np.max(method.iteration.trickle)))
         left = float(np.max(np.abs(grid.imbalance(running)), initial=0.0))
-        closing = closing_limit(method.heads(lost))
+        closing = CLOSING * closing_limit(method.heads(lost))
         return (
             StopTest("largest correction in the last sweep", self.largest_change, least, "m³/s"),
             StopTest("largest closing error of energy round a loop or path", method.largest_excess(lost), closing, "m"),

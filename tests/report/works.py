@@ -109,6 +109,29 @@ criteria: {pressure-max: {limit: 25 bar}, gradient-max: {limit: 12 m/km}}
 """
 
 
+RING = """\
+fluid: {temperature: 10 degC}
+solver: {method: loop-correction}
+reservoirs: {upper-pool: {level: 214.6 m}, lower-pool: {level: 198.2 m}}
+junctions:
+  cross: {elevation: 171 m, withdrawal: 12 L/s}
+  gate: {elevation: 165 m, withdrawal: 18 L/s}
+  fold: {elevation: 160 m, withdrawal: 25 L/s}
+  yard: {elevation: 162 m, withdrawal: 8 L/s}
+  hut: {elevation: 161 m}
+pipes:
+  upper-main: {from: upper-pool, to: cross, length: 1850 m, bore: 254.6 mm, roughness: 0.15 mm, ends: {from: square}}
+  north-ring: {from: cross, to: gate, length: 900 m, bore: 200 mm, law: fixed, friction_factor: 0.021}
+  east-ring: {from: gate, to: fold, length: 700 m, bore: 150 mm, roughness: 0.15 mm, fittings: [{K: 2.5, K_reverse: 4}]}
+  south-ring: {from: yard, to: fold, length: 800 m, bore: 150 mm, law: hazen-williams, hazen_williams_c: 130}
+  west-ring: {from: cross, to: yard, length: 1000 m, bore: 200 mm, law: manning, manning_n: 0.011}
+  middle: {from: gate, to: yard, length: 600 m, bore: 100 mm, roughness: 0.15 mm, law: haaland}
+  lower-main: {from: fold, to: lower-pool, length: 1500 m, bore: 200 mm, roughness: 0.15 mm, ends: {to: square}}
+  hut-lane: {from: yard, to: hut, length: 60 m, bore: 25 mm, roughness: 0.01 mm}
+cases:
+  low: {title: Low upper pool with the middle shut, with: {reservoirs.upper-pool.level: 205 m, pipes.middle.open: false}}
+"""
+
 US = "display: {units: US}\n"
 
 
@@ -132,9 +155,11 @@ TEXTS = {
     "plain": PLAIN,
     "dry": DRY,
     "great": GREAT,
+    "ring": RING,
     "transition-us": US + TRANSITION.replace("LAW", "colebrook-white"),
     "laws-us": US + LAWS,
     "empirical-us": US + EMPIRICAL,
+    "ring-us": US + RING,
     "loop-us": US.replace("}", ", flow: cfs, length: mi}") + LOOP,
 }
 NAMES = ("demo", *TEXTS)
