@@ -51,7 +51,10 @@ NEEDS = {
     "Kv": ("Kv",),
     "Cv": ("Cv",),
 }
-"""What each computed kind takes; `Kv` and `Cv` are no words of ``kind``, for the field says it."""
+"""What each computed kind takes."""
+
+FLOW_COEFFICIENTS = ("Kv", "Cv")
+"""Computed kinds that are no words of ``kind``: their field says it."""
 
 FORM_FIELDS = ("angle", "radius_ratio", "onward_bore")
 """Fields of which only a computed kind makes anything."""
@@ -59,7 +62,7 @@ FORM_FIELDS = ("angle", "radius_ratio", "onward_bore")
 
 def computed_kind(stated: Mapping[str, Stated]) -> str:
     """Return the computed kind of a fitting, by what is stated of it; empty where its coefficients are stated."""
-    for name in ("Kv", "Cv"):
+    for name in FLOW_COEFFICIENTS:
         if name in stated:
             return name
     kind = stated["kind"].text if "kind" in stated else ""

@@ -6,7 +6,7 @@ from dataclasses import replace
 
 from calc.components import Quantity, Record, Schema, Stated, Text, Word
 from calc.components.fields import Field
-from calc.components.fitting import FORM_FIELDS, NEEDS, computed_kind
+from calc.components.fitting import FLOW_COEFFICIENTS, FORM_FIELDS, NEEDS, computed_kind
 from calc.components.fitting import SCHEMA as FITTING_SCHEMA
 from calc.kinds import NUMBER
 from calc.marks import Mark
@@ -21,7 +21,7 @@ COEFFICIENT = Quantity(NUMBER, at_least=0.0)
 
 def schema() -> Schema:
     """Return the schema of a fitting with the kinds of the shipped table."""
-    kinds = Word((*shipped.fittings(), *shipped.computed_fittings()))
+    kinds = Word((*shipped.fittings(), *(name for name in NEEDS if name not in FLOW_COEFFICIENTS)))
     own = tuple(Field("kind", kinds) if f.name == "kind" else f for f in FITTING_SCHEMA.fields)
     place = Field("at", Word(("from", "to", "along")), words="where it stands in the pipe")
     return Schema("fittings", "fitting", (*own, place), FITTING_SCHEMA.excludes, FITTING_SCHEMA.either)
@@ -91,7 +91,7 @@ def _check_form(reader: Reader, stated: Fields, member: Mapping, at: str) -> Non
     kind = computed_kind(stated)
     wanted = NEEDS.get(kind, ())
     present = member.keys()
-    what = f"'{kind}'" if kind in ("Kv", "Cv") else f"the kind '{kind}'" if kind else ""
+    what = f"'{kind}'" if kind in FLOW_COEFFICIENTS else f"the kind '{kind}'" if kind else ""
     for name in wanted:
         field = FITTING_SCHEMA.field(name)
         if name not in present and field is not None and isinstance(field.form, Quantity):

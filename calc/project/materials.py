@@ -18,13 +18,15 @@ KINDS: dict[str, Kind] = {"roughness": ROUGHNESS, "hazen-williams": NUMBER, "man
 
 @dataclass(frozen=True, slots=True)
 class Material:
-    """A row: what it is, its typical value with its source, and the range."""
+    """A row: what it is, its typical value with its source, the range and its words, and the key of the source."""
 
     name: str
     title: Stated
     value: Stated
     low: Stated
     high: Stated
+    span: str
+    key: str
 
 
 @lru_cache(maxsize=1)
@@ -49,11 +51,18 @@ def _row(reader: Reader, name: str, node: MappingNode, kind: Kind, sources: Mapp
     texts = {field: shipped.scalar(node.get(field)) for field in ("title", "value", "low", "high", "source")}
     source = shipped.scalar(sources.get(texts["source"].text)).text
     low, high = texts["low"].text, texts["high"].text
-    span = f"range {low} to {high}" if low != high else "a single value"
+    span = f"{low.removesuffix(kind.example.lstrip('0123456789.'))} to {high}" if low != high else ""
     title = shipped.stated(reader, texts["title"], None, source)
-    value = shipped.stated(reader, texts["value"], kind, f"{source}; {span}")
-    ends = [shipped.stated(reader, texts[field], kind, source) for field in ("low", "high")]
-    return Material(name, title, value, *ends)
+    value = shipped.stated(reader, texts["value"], kind, f"{source}; range {span}" if span else source)
+    least, most = (shipped.stated(reader, texts[field], kind, source) for field in ("low", "high"))
+    return Material(name, title, value, least, most, span or low, texts["source"].text)
+
+
+def sources() -> dict[str, str]:
+    """Return the sources by the key that rows name."""
+    node = shipped.read("materials.yaml").get("sources")
+    entries = node.entries if isinstance(node, MappingNode) else ()
+    return {key.text: shipped.scalar(value).text for key, value in entries}
 
 
 def values(table: str) -> Mapping[str, Stated]:

@@ -36,12 +36,17 @@ _KINDS: dict[str, Kind] = {
 
 @dataclass(frozen=True, slots=True)
 class Row:
-    """An entry of a shipped table; for an end, ``forward`` is its entry and ``reverse`` its exit."""
+    """An entry of a shipped table; for an end, ``forward`` is its entry and ``reverse`` its exit.
+
+    ``span`` is the range of ``forward``, empty where none is known; ``key`` names its source.
+    """
 
     name: str
     title: Stated
     forward: Stated
     reverse: Stated
+    span: str
+    key: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -132,18 +137,33 @@ def stated(reader: Reader, written: Scalar, kind: Kind | None, source: str) -> S
 def _rows(table: str, forward: str, reverse: str) -> dict[str, Row]:
     reader = Reader()
     found: dict[str, Row] = {}
-    node = read("fittings.yaml").get(table)
-    for key, value in node.entries if isinstance(node, Mapping) else ():
-        if not isinstance(value, Mapping):
-            continue
-        source = scalar(value.get("source")).text
-        one = stated(reader, scalar(value.get(forward)), NUMBER, source)
-        back = value.get(reverse)
-        other = one if back is None else stated(reader, scalar(back), NUMBER, source)
-        title = stated(reader, scalar(value.get("title")), None, source)
-        found[key.text] = Row(key.text, title, one, other)
+    held = read("fittings.yaml")
+    node, sources = held.get(table), held.get("sources")
+    for key, value in node.entries if isinstance(node, Mapping) and isinstance(sources, Mapping) else ():
+        if isinstance(value, Mapping) and isinstance(sources, Mapping):
+            found[key.text] = _row(reader, key.text, value, sources, (forward, reverse))
     sound(reader)
     return found
+
+
+def _row(reader: Reader, name: str, node: Mapping, sources: Mapping, fields: tuple[str, str]) -> Row:
+    forward, reverse = fields
+    named = scalar(node.get("source"))
+    low, high = node.get("low"), node.get("high")
+    span = f"{scalar(low).text} to {scalar(high).text}" if low is not None and high is not None else ""
+    source = scalar(sources.get(named.text)).text
+    one = stated(reader, scalar(node.get(forward)), NUMBER, f"{source}{f'; range {span}' if span else ''}")
+    back = node.get(reverse)
+    other = one if back is None else stated(reader, scalar(back), NUMBER, scalar(sources.get("exit")).text)
+    title = stated(reader, scalar(node.get("title")), None, source)
+    return Row(name, title, one, other, span, named.text)
+
+
+@lru_cache(maxsize=1)
+def sources() -> dict[str, str]:
+    """Return the sources of fittings and ends by the key that their rows name."""
+    node = read("fittings.yaml").get("sources")
+    return {key.text: scalar(value).text for key, value in (node.entries if isinstance(node, Mapping) else ())}
 
 
 def scalar(node: Node | None) -> Scalar:

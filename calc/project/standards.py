@@ -14,6 +14,8 @@ from calc.yamlfile import Mapping as MappingNode
 from calc.yamlfile import Node, Scalar, Sequence
 
 MEMORY = "from memory"
+MARK = f"; this value {MEMORY}"
+"""Ends the source of a value that was recalled where others of its table were read."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -24,6 +26,8 @@ class PipeClass:
     also: tuple[str, ...]
     wall: str
     pressure_rating: Stated | None
+    source: str
+    line: int
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,7 +96,8 @@ def _class(reader: Reader, name: str, node: MappingNode, source: str) -> PipeCla
     wall, rated = node.get("wall"), node.get("pressure_rating")
     said = _said(source, node, "pressure_rating")
     found = None if rated is None else shipped.stated(reader, shipped.scalar(rated), PRESSURE, said)
-    return PipeClass(name, _texts(node.get("also")), name if wall is None else shipped.scalar(wall).text, found)
+    walls = name if wall is None else shipped.scalar(wall).text
+    return PipeClass(name, _texts(node.get("also")), walls, found, source, node.mark.line)
 
 
 def _size(reader: Reader, name: str, node: MappingNode, source: str, own: Mapping[str, str]) -> Size:
@@ -115,7 +120,7 @@ def _size(reader: Reader, name: str, node: MappingNode, source: str, own: Mappin
 
 def _said(source: str, row: MappingNode, field: str) -> str:
     """Return the source of a value, with what its row says of it."""
-    return f"{source}; this value {MEMORY}" if field in _texts(row.get("memory")) else source
+    return f"{source}{MARK}" if field in _texts(row.get("memory")) else source
 
 
 def _texts(node: Node | None) -> tuple[str, ...]:

@@ -28,23 +28,61 @@ DATA = Path(package).parent / "data"
 def test_tables_are_named(inside: Inside) -> None:
     status, said, remarks = inside("tables")
     assert (status, remarks) == (0, "")
-    assert [line.split()[0] for line in said.splitlines()] == ["fittings", "ends", "defaults"]
+    named = [line.split()[0] for line in said.splitlines()]
+    assert named[:7] == ["fittings", "ends", "defaults", "roughness", "hazen-williams", "manning", "pipes"]
+    sizes = yaml.safe_load((DATA / "sizes.yaml").read_text(encoding="utf-8"))["standards"]
+    assert named[7:] == [name.lower().replace(" ", "-") for name in sizes]
 
 
-@pytest.mark.parametrize(("name", "forward"), [("fittings", "K"), ("ends", "entry")])
-def test_a_table_says_every_value_with_source_and_place(inside: Inside, name: str, forward: str) -> None:
+TABLES = [
+    ("fittings", "fittings.yaml", "fittings", "K"),
+    ("ends", "fittings.yaml", "ends", "entry"),
+    ("roughness", "materials.yaml", "roughness", "value"),
+    ("hazen-williams", "materials.yaml", "hazen-williams", "value"),
+    ("manning", "materials.yaml", "manning", "value"),
+]
+
+
+@pytest.mark.parametrize(("name", "file", "key", "forward"), TABLES)
+def test_a_table_says_every_value_with_source_and_place(
+    inside: Inside, name: str, file: str, key: str, forward: str
+) -> None:
     status, said, _ = inside("tables", name)
     assert status == 0
-    text = (DATA / "fittings.yaml").read_text(encoding="utf-8")
-    rows = {line.split()[0]: line for line in said.splitlines()[3:]}
-    table = yaml.safe_load(text)[name]
-    assert list(rows) == list(table)
-    for kind, entry in table.items():
-        assert float(rows[kind].split()[1]) == entry[forward]
-        assert entry["source"] in rows[kind]
-        place, line, column = rows[kind].split()[-1].split(":")
-        assert place == "calc/data/fittings.yaml"
-        assert text.splitlines()[int(line) - 1][int(column) - 1 :].startswith(rows[kind].split()[1])
+    assert all(len(line) <= 120 for line in said.splitlines())
+    text = (DATA / file).read_text(encoding="utf-8")
+    assert f"calc/data/{file}" in said
+    told = yaml.safe_load(text)
+    rows = {line.split()[0]: line for line in said.splitlines()[3:] if line.strip()}
+    lines = text.splitlines()
+    for kind, entry in told[key].items():
+        assert float(rows[kind].split()[1]) == float(str(entry[forward]).split()[0])
+        place_line, place_column = rows[kind].split()[-1].split(":")
+        assert lines[int(place_line) - 1][int(place_column) - 1 :].startswith(rows[kind].split()[1])
+        source = rows[kind].split()[-2]
+        assert source == entry["source"]
+        assert " ".join(told["sources"][source].split()[:4]) in said
+
+
+@pytest.mark.parametrize("name", ["pipes", "en-545", "ISO 4427", "iso-1452", "asme-b36.10m", "awwa-c151", "AWWA C900"])
+def test_a_standard_says_every_row_with_its_line(inside: Inside, name: str) -> None:
+    status, said, _ = inside("tables", name)
+    assert status == 0
+    assert all(len(line) <= 120 for line in said.splitlines())
+    if name == "pipes":
+        return
+    text = (DATA / "sizes.yaml").read_text(encoding="utf-8")
+    told = {key.lower().replace(" ", "-"): one for key, one in yaml.safe_load(text)["standards"].items()}
+    standard = told[name.lower().replace(" ", "-")]
+    lines = text.splitlines()
+    for size, row in standard["sizes"].items():
+        shown = next(line for line in said.splitlines() if re.match(rf"{re.escape(size)}(,| {{2,}})", line))
+        for written in (row["outside_diameter"], row["lining"], *row["wall"].values()):
+            assert written in shown
+        assert lines[int(shown.split()[-1]) - 1].startswith(f"      {size}:")
+    for key, entry in standard["classes"].items():
+        shown = next(line for line in said.splitlines() if line.startswith(f"{key}  "))
+        assert entry.get("pressure_rating", "") in shown
 
 
 def test_defaults_are_said(inside: Inside) -> None:
