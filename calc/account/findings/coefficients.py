@@ -7,7 +7,7 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved, by_case, place_in_folder
+from calc.account.findings.finding import Check, Remark, Solved, by_case, mark_in_folder
 from calc.components.pipe import LAW_INPUT
 from calc.project import Effective, Project
 
@@ -29,19 +29,19 @@ def odd_coefficients(project: Project) -> Iterator[Remark]:
             stated = pipe.stated.get(field)
             if stated is not None and not low <= stated.si <= high:
                 text = f"{_NAMES[field]} is outside the usual range of pipes: see that it is no other coefficient"
-                yield Remark(path, stated.mark.place, text)
+                yield Remark(path, stated.mark, text)
         roughness = pipe.stated.get("roughness")
         if roughness is not None and roughness.si > ROUGHEST:
             text = (
                 "the roughness is larger than five millimetres: it is the height of the wall's grain, neither a "
                 "coefficient nor a loss of bore. Check its unit and its source"
             )
-            yield Remark(path, roughness.mark.place, text)
+            yield Remark(path, roughness.mark, text)
         for field in dict.fromkeys(LAW_INPUT.values()):
             stated = pipe.stated.get(field)
             if stated is not None and not used[field][k]:
                 text = f"{_NAMES.get(field, field)} is stated, and the pipe's friction law uses it in no case"
-                yield Remark(path, stated.mark.place, f"{text}. Leave it out, or mend the law")
+                yield Remark(path, stated.mark, f"{text}. Leave it out, or mend the law")
 
 
 def _laws_used(project: Project) -> dict[str, list[bool]]:
@@ -68,7 +68,7 @@ def no_sensitivity(project: Project) -> Iterator[Remark]:
         "no case changes a roughness or coefficient, and none has a range or a deviation: nothing shows how far the "
         "answer rests on it. State a low and a high value, as cases or as a range"
     )
-    yield Remark("pipes", stated.mark.place if stated else first.mark.place, text)
+    yield Remark("pipes", stated.mark if stated else first.mark, text)
 
 
 def fanning_factors(project: Project) -> Iterator[Remark]:
@@ -81,7 +81,7 @@ def fanning_factors(project: Project) -> Iterator[Remark]:
     for pipe in project.pipes.values():
         stated = pipe.stated.get("friction_factor")
         if stated is not None and low <= stated.si <= high:
-            yield Remark(f"pipes.{pipe.id}", stated.mark.place, text)
+            yield Remark(f"pipes.{pipe.id}", stated.mark, text)
 
 
 def not_turbulent(solved: Solved) -> Iterator[Remark]:
@@ -119,10 +119,10 @@ def groundless_viscosity(project: Project) -> Iterator[Remark]:
             continue
         if stated.shipped:
             text = "the temperature is taken by default, and the viscosity follows from it. State that of the liquid"
-            yield Remark(path, place_in_folder(project, path), text)
+            yield Remark(path, mark_in_folder(project, path), text)
         elif not stated.basis.source and not stated.basis.grade:
             text = f"the {field} has neither source nor grade, and friction rests on it. Say where it comes from"
-            yield Remark(path, stated.mark.place, text)
+            yield Remark(path, stated.mark, text)
 
 
 CHECKS = (

@@ -7,10 +7,11 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved, place_in_folder
+from calc.account.findings.finding import Check, Remark, Solved, mark_in_folder
 from calc.components import Record
 from calc.components.fitting import FORM_FIELDS
 from calc.components.pipe import LAW_INPUT
+from calc.marks import Mark
 from calc.project import Project
 
 WITHOUT_SOURCE = {
@@ -54,21 +55,21 @@ def unsourced(project: Project) -> Iterator[Remark]:
         bare_lines = [line for line in case.lines if not line.stated.basis.source and line.field not in WITHOUT_SOURCE]
         if bare_lines:
             names = ", ".join(dict.fromkeys(line.path for line in bare_lines))
-            place = bare_lines[0].mark.place
+            mark = bare_lines[0].mark
             verb = "has" if "," not in names else "have"
-            yield Remark(f"cases.{case.id}", place, f"{names} {verb} no source: {_WAY_OUT}")
+            yield Remark(f"cases.{case.id}", mark, f"{names} {verb} no source: {_WAY_OUT}")
 
 
 _WAY_OUT = "nobody can follow it back. Name a reference under 'source'"
 _COEFFICIENTS = ("K", "K_reverse", "Kv", "Cv", *FORM_FIELDS)
 
 
-def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
+def _unsourced(record: Record) -> Iterator[tuple[str, Mark]]:
     for name, stated in record.stated.items():
         if stated.shipped or stated.follows or name in WITHOUT_SOURCE:
             continue
         if not stated.basis.source:
-            yield name, stated.mark.place
+            yield name, stated.mark
     for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
         for name, stated in part.stated.items():
             if name == "K_reverse" and stated is part.stated.get("K"):
@@ -76,7 +77,7 @@ def _unsourced(record: Record) -> Iterator[tuple[str, str]]:
             if name in _COEFFICIENTS and not stated.shipped and not stated.basis.source:
                 place = part.id.rpartition("/")[2]
                 where = f"of fitting {place}" if place.isdigit() else f"at '{place}'"
-                yield f"{name} {where}", stated.mark.place
+                yield f"{name} {where}", stated.mark
 
 
 BY_DEFAULT = (
@@ -96,16 +97,16 @@ _WEIGHTY = (
 
 def silent_defaults(project: Project) -> Iterator[Remark]:
     """Yield the defaults in use that move the answer and that no assumption confirms."""
-    for subject, place in _defaults(project, _WEIGHTY).items():
-        yield Remark(subject, place, BY_DEFAULT)
+    for subject, mark in _defaults(project, _WEIGHTY).items():
+        yield Remark(subject, mark, BY_DEFAULT)
 
 
 def silent_transition(solved: Solved) -> Iterator[Remark]:
     """Yield the limits of the transition by default, where some pipe's law has one and runs below its end."""
-    places = _defaults(solved.project, ("constants.transition.*",))
-    if places and any(_in_transition(solved)):
-        for subject, place in places.items():
-            yield Remark(subject, place, BY_DEFAULT)
+    marks = _defaults(solved.project, ("constants.transition.*",))
+    if marks and any(_in_transition(solved)):
+        for subject, mark in marks.items():
+            yield Remark(subject, mark, BY_DEFAULT)
 
 
 def _in_transition(solved: Solved) -> Iterator[bool]:
@@ -116,14 +117,14 @@ def _in_transition(solved: Solved) -> Iterator[bool]:
         yield bool(np.any(low & (columns.results.flow_each.values != 0.0) & smooth[law.codes]))
 
 
-def _defaults(project: Project, wanted: tuple[str, ...]) -> dict[str, str]:
-    """Return the places of unconfirmed defaults by subject; the constants of one law are one subject."""
+def _defaults(project: Project, wanted: tuple[str, ...]) -> dict[str, Mark]:
+    """Return the marks of unconfirmed defaults by subject; the constants of one law are one subject."""
     confirmed = [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
-    found: dict[str, str] = {}
+    found: dict[str, Mark] = {}
     for path, _ in project.defaults:
         if any(fnmatchcase(path, pattern) for pattern in wanted) and path not in confirmed:
             subject = path.rpartition(".")[0] if path.startswith("constants.") else path
-            found.setdefault(subject, place_in_folder(project, path))
+            found.setdefault(subject, mark_in_folder(project, path))
     return found
 
 

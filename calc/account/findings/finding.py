@@ -3,24 +3,29 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import NamedTuple
 
 from calc.account.case import CaseAccount
 from calc.account.flows import CaseColumns
 from calc.account.verdicts import CriterionVerdict
 from calc.ledger import Ledger
+from calc.marks import Mark
 from calc.project import Project
 
 
 @dataclass(frozen=True, slots=True, order=True)
 class Finding:
-    """One remark: the comment's id, the subject as a path, ``file:line``, and the text."""
+    """One remark: the comment's id, the subject as a path, ``file:line``, and the text.
+
+    ``mark`` is its place to the letter, where the program has found it.
+    """
 
     id: str
     subject: str
     place: str
     text: str
+    mark: Mark | None = field(default=None, compare=False)
 
 
 class Remark(NamedTuple):
@@ -31,7 +36,7 @@ class Remark(NamedTuple):
     """
 
     subject: str
-    place: str
+    mark: Mark
     text: str
 
 
@@ -51,10 +56,10 @@ class Solved:
             if case.columns is not None:
                 yield name, case, case.columns
 
-    def place(self, path: str) -> str:
+    def mark(self, path: str) -> Mark:
         """Return where the component of a path such as ``pipes.upper-main`` is stated."""
         group, _, row = path.partition(".")
-        return self.project.group(group)[row].mark.place
+        return self.project.group(group)[row].mark
 
 
 def _unsolved(solved: Solved) -> str:
@@ -99,14 +104,14 @@ class CheckOutcome:
     unmade: str
 
 
-def place_in_folder(project: Project, path: str) -> str:
+def mark_in_folder(project: Project, path: str) -> Mark:
     """Return where in the project's own files a value by default would stand: its group, or the first reservoir."""
     group, _, rest = path.partition(".")
     home = {"site": project.site, "fluid": project.fluid, "constants": project.constants.get(rest.partition(".")[0])}
     record = home.get(group)
     if record is None or record.mark.file not in project.texts:
         record = next(iter(project.reservoirs.values()))
-    return record.mark.place
+    return record.mark
 
 
 def among(cases: list[str], every: int) -> str:
@@ -123,4 +128,4 @@ def by_case(solved: Solved, group: str, found: Mapping[str, list[str]], text: st
     every = sum(1 for _ in solved.running)
     for row, cases in found.items():
         path = f"{group}.{row}"
-        yield Remark(path, solved.place(path), text.format(cases=among(cases, every)))
+        yield Remark(path, solved.mark(path), text.format(cases=among(cases, every)))

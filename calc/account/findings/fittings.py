@@ -36,7 +36,7 @@ def without_fittings(project: Project) -> Iterator[Remark]:
     for pipe in project.pipes.values():
         path = f"pipes.{pipe.id}"
         if not pipe.parts.get("fittings") and not any(fnmatchcase(f"{path}.fittings", one) for one in reasoned):
-            yield Remark(path, pipe.mark.place, text)
+            yield Remark(path, pipe.mark, text)
 
 
 def bare_ends(project: Project) -> Iterator[Remark]:
@@ -49,7 +49,7 @@ def bare_ends(project: Project) -> Iterator[Remark]:
                     f"no entrance or exit loss at '{end}', where a reservoir is: water enters and leaves there without "
                     f"loss. State 'ends: {{{end}: square}}' or its coefficients"
                 )
-                yield Remark(f"pipes.{pipe.id}", pipe.mark.place, text)
+                yield Remark(f"pipes.{pipe.id}", pipe.mark, text)
 
 
 def unlike_bores(project: Project) -> Iterator[Remark]:
@@ -65,7 +65,7 @@ def unlike_bores(project: Project) -> Iterator[Remark]:
                 f"the coefficient of {_named(part)} stands on a bore far from that of the pipe: a loss goes with the "
                 "fourth power of it. See on which bore the source gives it; a change of bore has a loss of its own"
             )
-            yield Remark(f"pipes.{pipe.id}", own.mark.place, text)
+            yield Remark(f"pipes.{pipe.id}", own.mark, text)
 
 
 def large_coefficients(project: Project) -> Iterator[Remark]:
@@ -80,7 +80,7 @@ def large_coefficients(project: Project) -> Iterator[Remark]:
                     f"{name} of {_named(part)} is above two hundred: that is the size of a flow coefficient Kv or Cv. "
                     "See which of them the source gives"
                 )
-                yield Remark(f"pipes.{pipe.id}", stated.mark.place, text)
+                yield Remark(f"pipes.{pipe.id}", stated.mark, text)
 
 
 def odd_flow_coefficients(project: Project) -> Iterator[Remark]:
@@ -102,7 +102,7 @@ def odd_flow_coefficients(project: Project) -> Iterator[Remark]:
                 f"{name} of {_named(part)} is that of {size}, for its bore. See that it is no loss coefficient and "
                 "goes with this bore, and whether the source gives Kv or Cv"
             )
-            yield Remark(f"pipes.{pipe.id}", stated.mark.place, text)
+            yield Remark(f"pipes.{pipe.id}", stated.mark, text)
 
 
 def _parts(project: Project) -> Iterator[tuple[Record, Record]]:

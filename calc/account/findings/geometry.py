@@ -47,7 +47,7 @@ def nominal_bores(project: Project) -> Iterator[Remark]:
         if bore is None or bore.shipped or not bore.unit or bore.basis.grade in _KNOWN_GRADES:
             continue
         if round(bore.si / EXACTLY) in _NOMINAL:
-            yield Remark(f"pipes.{pipe.id}", bore.mark.place, text)
+            yield Remark(f"pipes.{pipe.id}", bore.mark, text)
 
 
 def levels_out_of_order(project: Project) -> Iterator[Remark]:
@@ -58,7 +58,7 @@ def levels_out_of_order(project: Project) -> Iterator[Remark]:
             mark = project.reservoirs[name].stated["level"].mark
             where = among(held, len(project.cases))
             text = f"the level stands {side} operating level {where}. Mend the level, or the range"
-            yield Remark(f"reservoirs.{name}", mark.place, text)
+            yield Remark(f"reservoirs.{name}", mark, text)
 
 
 def _cases_outside(project: Project) -> tuple[dict[str, list[str]], dict[str, list[str]]]:
@@ -88,7 +88,7 @@ def doubles(project: Project) -> Iterator[Remark]:
                 f"joins the same nodes as {first}, with the same length and bore: see that it is not the same pipe "
                 "entered twice. Like pipes side by side may be stated as one, with 'parallel'"
             )
-            yield Remark(f"pipes.{pipe.id}", pipe.mark.place, text)
+            yield Remark(f"pipes.{pipe.id}", pipe.mark, text)
 
 
 def stubs(project: Project) -> Iterator[Remark]:
@@ -99,7 +99,7 @@ def stubs(project: Project) -> Iterator[Remark]:
     )
     for pipe in project.pipes.values():
         if pipe.number("length") < SHORTEST * pipe.number("bore"):
-            yield Remark(f"pipes.{pipe.id}", pipe.stated["length"].mark.place, text)
+            yield Remark(f"pipes.{pipe.id}", pipe.stated["length"].mark, text)
 
 
 class Screen(NamedTuple):
@@ -156,7 +156,7 @@ def _slips(records: list[Record], group: str, field: str, found: npt.NDArray[np.
         stated = records[k].stated[field]
         if not stated.shipped:
             text = f"{said}: it looks like a slip of the unit or of the decimal point. Check it against its source"
-            yield Remark(f"{group}.{records[k].id}", stated.mark.place, text)
+            yield Remark(f"{group}.{records[k].id}", stated.mark, text)
 
 
 def _far(size: Array, apart: float) -> npt.NDArray[np.bool_]:
@@ -186,7 +186,7 @@ def _lonely_levels(project: Project) -> Iterator[Remark]:
                 f"{field} lies more than five hundred metres from that of every other node: it looks like a slip of "
                 "the unit. Check it against its source"
             )
-            yield Remark(path, stated.mark.place, text)
+            yield Remark(path, stated.mark, text)
 
 
 def rushing(solved: Solved) -> Iterator[Remark]:

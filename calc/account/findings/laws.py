@@ -50,7 +50,7 @@ def liquid_and_bore(project: Project) -> Iterator[Remark]:
                     held.append(reason)
     for name, words in found.items():
         text = f"Hazen–Williams is outside its range: {' and '.join(words)}. Use a law with roughness"
-        yield Remark(f"pipes.{name}", project.pipes[name].mark.place, text)
+        yield Remark(f"pipes.{name}", project.pipes[name].mark, text)
 
 
 class Compared(NamedTuple):

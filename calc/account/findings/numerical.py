@@ -32,10 +32,10 @@ def loose_tolerance(solved: Solved) -> Iterator[Remark]:
         largest = float(np.max(np.abs(columns.flow.values), initial=0.0))
         if len(case.network.unknown) and tolerance > LOOSEST * largest > 0.0:
             text = "the tolerance is more than a millionth of the largest flow of the case. State a smaller one"
-            yield Remark(f"cases.{name}", mark.place, text)
+            yield Remark(f"cases.{name}", mark, text)
         if len(case.network.unknown) and not case.history:
             text = "the search has left no history, by which its answer could be retraced. Do not rely on this case"
-            yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, text)
+            yield Remark(f"cases.{name}", solved.project.cases[name].mark, text)
 
 
 def broken_continuity(solved: Solved) -> Iterator[Remark]:
@@ -45,7 +45,7 @@ def broken_continuity(solved: Solved) -> Iterator[Remark]:
     for name, _, _ in solved.running:
         largest = solved.ledger.find("balance.largest_imbalance", name)
         if largest and largest[0].case == name and float(largest[0].values[0]) > tolerance:
-            yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, text)
+            yield Remark(f"cases.{name}", solved.project.cases[name].mark, text)
 
 
 def open_paths(solved: Solved) -> Iterator[Remark]:
@@ -57,7 +57,7 @@ def open_paths(solved: Solved) -> Iterator[Remark]:
         rows = tuple(path.id for path in case.paths)
         error = solved.ledger.view("paths.closing_error", name, rows).values if rows else np.zeros(0)
         if np.any(np.abs(error) > allowed):
-            yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, text)
+            yield Remark(f"cases.{name}", solved.project.cases[name].mark, text)
 
 
 def unconfirmed(solved: Solved) -> Iterator[Remark]:
@@ -72,7 +72,7 @@ def unconfirmed(solved: Solved) -> Iterator[Remark]:
             text = "the second opinion evaluated the laws at the answer and did not solve the large network again"
         else:
             continue
-        yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, text)
+        yield Remark(f"cases.{name}", solved.project.cases[name].mark, text)
 
 
 def restarted(solved: Solved) -> Iterator[Remark]:
@@ -84,7 +84,7 @@ def restarted(solved: Solved) -> Iterator[Remark]:
     )
     for name, case, columns in solved.running:
         if not all(_agrees(case, columns, start, tolerance) for start in _starts(case.network)):
-            yield Remark(f"cases.{name}", solved.project.cases[name].mark.place, text)
+            yield Remark(f"cases.{name}", solved.project.cases[name].mark, text)
 
 
 def _starts(network: Network) -> Iterator[dict[str, float]]:

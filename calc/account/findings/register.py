@@ -51,7 +51,7 @@ def all_findings(solved: Solved) -> tuple[tuple[Finding, ...], tuple[CheckOutcom
 
 
 def _named(check: Check, remarks: Iterator[Remark]) -> Iterator[Finding]:
-    return (Finding(check.id, *remark) for remark in remarks)
+    return (Finding(check.id, one.subject, one.mark.place, one.text, one.mark) for one in remarks)
 
 
 def gathered(findings: tuple[Finding, ...]) -> tuple[tuple[Finding, ...], ...]:

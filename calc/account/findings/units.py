@@ -69,7 +69,7 @@ def mixed_systems(project: Project) -> Iterator[Remark]:
                 "between the two would not show. See that the unit is the one of the source"
             )
             for path, stated in fewer:
-                yield Remark(path, stated.mark.place, text)
+                yield Remark(path, stated.mark, text)
 
 
 def _units(values: list[tuple[str, Stated]]) -> str:
@@ -92,7 +92,7 @@ def both_gallons(project: Project) -> Iterator[Remark]:
                 f"written in '{stated.unit}', where others are written in {us}: the imperial gallon is a fifth larger. "
                 "See that each is the gallon of its source"
             )
-            yield Remark(path, stated.mark.place, text)
+            yield Remark(path, stated.mark, text)
 
 
 CHECKS = (

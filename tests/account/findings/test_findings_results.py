@@ -196,7 +196,7 @@ def test_paths_that_do_not_close(tmp_path: Path, monkeypatch: pytest.MonkeyPatch
     wrong = View.whole(replace(account.ledger.find("paths.closing_error", "base")[0], values=np.array([2e-5])))
     monkeypatch.setattr(account.ledger, "view", lambda *_: wrong)
     (found,) = numerical.open_paths(solved_of(account))
-    assert (found.subject, found.place) == ("cases.base", account.project.cases["base"].mark.place)
+    assert (found.subject, found.mark) == ("cases.base", account.project.cases["base"].mark)
 
 
 def test_another_answer_from_another_start(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
