@@ -37,7 +37,7 @@ class CaseColumns:
         What the chain took; rows are the open pipes.
     closing_error : View
         Of energy, rows are the open pipes.
-    pressure_head : View
+    pressure_head, pressure : View
         At junctions with an elevation.
     """
 
@@ -48,6 +48,7 @@ class CaseColumns:
     terms: PipeTerms[View]
     closing_error: View
     pressure_head: View
+    pressure: View
 
 
 def joined(first: View, second: View) -> View:
@@ -157,10 +158,10 @@ def enter_flows(ledger: Ledger, network: Network, solution: Solution, case: str)
         head_loss=results.head_loss,
     )
     _enter_ratios(books, terms, results)
-    pressure_head = _enter_pressures(books, network, head)
+    pressures = _enter_pressures(books, network, head)
     _enter_velocity_heads(books, network, results, open_pipes, terms)
     _enter_balances(books, network, flow, closing)
-    return CaseColumns(terms.rows, head, flow, results, terms, closing, pressure_head)
+    return CaseColumns(terms.rows, head, flow, results, terms, closing, *pressures)
 
 
 def _enter_heads(ledger: Ledger, network: Network, solution: Solution, case: str) -> View:
@@ -220,23 +221,23 @@ def _enter_ratios(books: Accountant, terms: PipeTerms[View], results: PipeResult
     )
 
 
-def _enter_pressures(books: Accountant, network: Network, head: View) -> View:
+def _enter_pressures(books: Accountant, network: Network, head: View) -> tuple[View, View]:
     junctions = [network.nodes[int(k)] for k in network.unknown]
     elevation = books.ledger.view("junctions.elevation", books.case, junctions)
     stated = np.flatnonzero(elevation.which != ABSENT)
     at = elevation.take(stated)
     if not len(stated):
-        return at
+        return at, at
     total = head.take(network.unknown[stated])
     pressure_head = books.apply("junctions.pressure_head", energy.pressure_head, head=total, elevation=at)
-    books.apply(
+    pressure = books.apply(
         "junctions.pressure",
         energy.pressure,
         density=books.ledger.shared("fluid.density", books.case),
         gravity=books.ledger.shared("site.gravity", books.case),
         pressure_head=pressure_head,
     )
-    return pressure_head
+    return pressure_head, pressure
 
 
 def _enter_velocity_heads(

@@ -36,12 +36,13 @@ def results(account: Account) -> dict[str, Any]:
                 "value": verdict.value.value,
                 "limit": verdict.limit.value,
                 "margin": verdict.margin.value,
-                "unit": verdict.criterion.kind.unit,
+                "unit": verdict.limit.column.kind.unit,
                 "met": verdict.met,
             }
             for judged in account.verdicts
             for verdict in judged.verdicts
         ],
+        "not_judged": [judged.id for judged in account.verdicts if judged.governing is None],
         "findings": [{"id": f.id, "subject": f.subject, "place": f.place, "text": f.text} for f in account.findings],
         "studies": {},
     }

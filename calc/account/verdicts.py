@@ -11,10 +11,9 @@ from calc.account.books import enter_stated
 from calc.account.flows import CaseColumns, restricted
 from calc.criteria import ALL, Criterion, Outcome
 from calc.equation import Labels, Law
-from calc.kinds import NUMBER, PRESSURE
+from calc.kinds import NUMBER
 from calc.ledger import Accountant, Judged, Ledger, Spot, View
 from calc.ledger.column import ABSENT
-from calc.physics import energy
 from calc.problems import Unresolved
 from calc.project import BASE, Project, cases_of, subjects_of
 
@@ -60,10 +59,8 @@ def enter_verdicts(ledger: Ledger, project: Project, cases: Mapping[str, CaseCol
         record = project.criteria.get(criterion.id)
         if record is None:
             continue
-        by_pressure = record.text("kind") == PRESSURE.name
-        name = "criteria.limit_pressure" if by_pressure else "criteria.limit"
-        kind = PRESSURE if by_pressure else criterion.kind
-        enter_stated(ledger, name, kind, [criterion.id], [record.stated["limit"]], case=BASE)
+        kind = next(kind for kind in criterion.kinds if kind.name == record.text("kind"))
+        enter_stated(ledger, "criteria.limit", kind, [criterion.id], [record.stated["limit"]], case=BASE)
         subjects = subjects_of(project, record)
         verdicts = [
             verdict
@@ -81,16 +78,19 @@ def _judge(
     """Judge the subjects that have a value in a case: a shut pipe has none, nor a node without elevation."""
     books = _Once(ledger, case)
     results = columns.results
-    outcome = Outcome(results.velocity, results.friction_loss, columns.terms.length, columns.pressure_head)
-    every: View = criterion.value(books, outcome)
+    outcome = Outcome(
+        results.velocity, results.friction_loss, columns.terms.length, columns.pressure_head, columns.pressure
+    )
+    limit = _limit(criterion, ledger, case)
+    kind = limit.sources[0].kind
+    every: View = criterion.values[kind](books, outcome)
     valued = {row for row, which in zip(every.rows, every.which.tolist(), strict=True) if which != ABSENT}
     rows = [row for row in subjects if row in valued]
     if not rows:
         return []
     value = restricted(every, rows)
-    limit = _limit(criterion, books)
     name = f"{criterion.group}.{criterion.id}-margin"
-    margin = books.apply(name, criterion.margin, value=value, limit=limit)
+    margin = books.apply(name, criterion.margin(kind), value=value, limit=limit)
     origin = Judged(margin)
     met = ledger.enter(f"{criterion.group}.{criterion.id}-met", NUMBER, rows, margin.values >= 0, origin, case=case)
     return [
@@ -118,20 +118,10 @@ class _Once(Accountant):
         return View.assembled(standing, owner.rows) if standing else super().apply(name, law, by=by, **inputs)
 
 
-def _limit(criterion: Criterion, books: Accountant) -> View:
-    """Return the limit to judge by; one given as a pressure becomes a head of the liquid of the case."""
-    ledger, case = books.ledger, books.case
-    for column in ledger.find("criteria.limit", case):
-        if criterion.id in column.index:
-            return ledger.serving(column, column.index[criterion.id])
-    head = Accountant(ledger, case).apply(
-        "criteria.limit_head",
-        energy.head_of_pressure,
-        pressure=ledger.view("criteria.limit_pressure", case, [criterion.id]),
-        density=ledger.shared("fluid.density", case),
-        gravity=ledger.shared("site.gravity", case),
-    )
-    return ledger.serving(head.sources[0])
+def _limit(criterion: Criterion, ledger: Ledger, case: str) -> View:
+    """Return the limit to judge by, one for all rows."""
+    column = next(column for column in ledger.find("criteria.limit", case) if criterion.id in column.index)
+    return ledger.serving(column, column.index[criterion.id])
 
 
 def _governed(ledger: Ledger, criterion: Criterion, verdicts: list[Verdict]) -> CriterionVerdict:
@@ -152,7 +142,7 @@ def _governed(ledger: Ledger, criterion: Criterion, verdicts: list[Verdict]) -> 
         np.zeros(len(verdicts), dtype=np.int64),
         [criterion.id],
         words="least margin of all subjects and cases: it governs",
-        kind=criterion.kind,
+        kind=columns[0].kind,
     )
     governing = min(verdicts, key=lambda v: v.margin.value)
     return CriterionVerdict(criterion.id, criterion, tuple(verdicts), governing, Spot(least, 0))

@@ -45,7 +45,7 @@ def _rows(judged: CriterionVerdict, display: Display) -> Iterator[list[str]]:
 
 
 def _row(name: str, verdict: Verdict, display: Display) -> list[str]:
-    kind = verdict.criterion.kind
+    kind = verdict.limit.column.kind
     limit = f"{verdict.criterion.sense} {with_unit(verdict.limit.value, kind, display)}"
     value = with_unit(verdict.value.value, kind, display)
     margin = with_unit(verdict.margin.value, kind, display).partition(" (")[0]

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from functools import cache
 from typing import Any, Generic, TypeVar
 
 from calc.equation import Equation, Reference, Symbol, equation
@@ -18,13 +19,14 @@ PROJECT_CRITERION = Reference("project criterion", "Limit set by the project")
 class Outcome(Generic[T]):
     """The results that criteria judge.
 
-    Rows are pipes for the first three, junctions with an elevation for the last.
+    Rows are pipes for the first three, junctions with an elevation for the last two.
     """
 
     velocity: T
     friction_loss: T
     length: T
     pressure_head: T
+    pressure: T
 
 
 @dataclass(frozen=True)
@@ -41,28 +43,28 @@ class Criterion:
         The components it applies to.
     sense : str
         ``at most`` or ``at least``.
-    kinds : tuple of Kind
-        Kinds in which the limit may be given; the value judged is of the first.
-    value : callable
-        From an evaluator and an `Outcome` to the quantity judged, never negative for speeds and gradients.
-    margin : Equation
-        From ``value`` and ``limit``; the criterion is met when it is not negative.
+    values : mapping of Kind to callable
+        By each kind in which the limit may be given, from an evaluator and an `Outcome` to the quantity judged, of
+        that same kind; never negative for speeds and gradients.
+    margin : callable
+        From a kind to the equation of the margin in it, from ``value`` and ``limit``; the criterion is met when it
+        is not negative.
     """
 
     id: str
     title: str
     group: str
     sense: str
-    kinds: tuple[Kind, ...]
-    value: Callable[[Any, Outcome[Any]], Any]
-    margin: Equation
+    values: Mapping[Kind, Callable[[Any, Outcome[Any]], Any]]
+    margin: Callable[[Kind], Equation]
 
     @property
-    def kind(self) -> Kind:
-        """The kind of the value judged."""
-        return self.kinds[0]
+    def kinds(self) -> tuple[Kind, ...]:
+        """The kinds in which the limit may be given."""
+        return tuple(self.values)
 
 
+@cache
 def margin_below(kind: Kind) -> Equation:
     """Return the margin of a value under a limit, for a kind of quantity."""
 
@@ -80,6 +82,7 @@ def margin_below(kind: Kind) -> Equation:
     return margin_below_limit
 
 
+@cache
 def margin_above(kind: Kind) -> Equation:
     """Return the margin of a value over a limit, for a kind of quantity."""
 

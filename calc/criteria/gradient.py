@@ -26,7 +26,6 @@ GRADIENT_MAX = Criterion(
     "Greatest friction gradient",
     "pipes",
     "at most",
-    (GRADIENT,),
-    _gradient,
-    margin_below(GRADIENT),
+    {GRADIENT: _gradient},
+    margin_below,
 )

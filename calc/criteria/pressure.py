@@ -1,4 +1,4 @@
-"""Least and greatest pressure at a junction, judged as pressure head."""
+"""Least and greatest pressure at a junction, judged in the kind in which the limit is given: a head or a pressure."""
 
 from __future__ import annotations
 
@@ -15,21 +15,25 @@ def _pressure_head(on: Evaluator[T], outcome: Outcome[T]) -> T:  # noqa: ARG001 
     return outcome.pressure_head
 
 
+def _pressure(on: Evaluator[T], outcome: Outcome[T]) -> T:  # noqa: ARG001 - the form of every criterion
+    return outcome.pressure
+
+
+_VALUES = {HEAD: _pressure_head, PRESSURE: _pressure}
+
 PRESSURE_MIN = Criterion(
     "pressure-min",
     "Least pressure",
     "junctions",
     "at least",
-    (HEAD, PRESSURE),
-    _pressure_head,
-    margin_above(HEAD),
+    _VALUES,
+    margin_above,
 )
 PRESSURE_MAX = Criterion(
     "pressure-max",
     "Greatest pressure",
     "junctions",
     "at most",
-    (HEAD, PRESSURE),
-    _pressure_head,
-    margin_below(HEAD),
+    _VALUES,
+    margin_below,
 )

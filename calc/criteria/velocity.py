@@ -16,9 +16,5 @@ def _speed(on: Evaluator[T], outcome: Outcome[T]) -> T:
     return on.apply("pipes.speed", speed, velocity=outcome.velocity)
 
 
-VELOCITY_MAX = Criterion(
-    "velocity-max", "Greatest velocity", "pipes", "at most", (VELOCITY,), _speed, margin_below(VELOCITY)
-)
-VELOCITY_MIN = Criterion(
-    "velocity-min", "Least velocity", "pipes", "at least", (VELOCITY,), _speed, margin_above(VELOCITY)
-)
+VELOCITY_MAX = Criterion("velocity-max", "Greatest velocity", "pipes", "at most", {VELOCITY: _speed}, margin_below)
+VELOCITY_MIN = Criterion("velocity-min", "Least velocity", "pipes", "at least", {VELOCITY: _speed}, margin_above)

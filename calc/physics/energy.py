@@ -58,16 +58,3 @@ def pressure_head(*, head, elevation):
 def pressure(*, density, gravity, pressure_head):
     """Pressure at a node."""
     return density * gravity * pressure_head
-
-
-@equation(
-    gives=s.PRESSURE_HEAD,
-    source=HYDROSTATICS,
-    valid="gauge",
-    pressure=s.PRESSURE,
-    density=s.DENSITY,
-    gravity=s.GRAVITY,
-)
-def head_of_pressure(*, pressure, density, gravity):
-    """Pressure as a head of the liquid."""
-    return pressure / (density * gravity)

@@ -73,7 +73,7 @@ def _read(
     else:
         reader.note(
             key.mark, "missing-key", f"{path}.limit", "'limit' is missing",
-            f"a criterion with 'limit: {criterion.kind.example}'",
+            f"a criterion with 'limit: {criterion.kinds[0].example}'",
         )  # fmt: skip
     basis = reader.basis(member, path)
     if "limit" in stated and any((basis.source, basis.page, basis.grade, basis.note)):

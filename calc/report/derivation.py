@@ -127,7 +127,7 @@ def _sum(origin: Combined, row: int, display: Display) -> Parts:
     return tuple(part for part in parts if part != "")
 
 
-UNTABLED = ("factor_turbulent", "factor_laminar", "limit_head", "speed", "friction_gradient")
+UNTABLED = ("factor_turbulent", "factor_laminar", "speed", "friction_gradient")
 """Derived quantities that no table of a case holds: worked in front of the first line that needs them."""
 
 

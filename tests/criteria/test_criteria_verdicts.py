@@ -80,16 +80,24 @@ def test_pressure_as_head_is_judged_where_the_elevation_is_known(tmp_path: Path)
     assert not verdict.met
 
 
-def test_a_limit_in_bar_is_judged_as_a_head_of_the_liquid(tmp_path: Path) -> None:
-    account, found = judged(tmp_path, "  pressure-max: {limit: 6.0 bar}\n  pressure-min: {limit: 200 kPa}")
-    # By hand: 6.0 bar over 998 kg/m3 and 9.81 m/s2 are 600000/9790.38 = 61.28465... m.
-    highest = [one.limit.value for one in found["pressure-max"].verdicts]
-    assert highest == pytest.approx([600000 / 9790.38] * 3, rel=1e-12)
-    lowest = [one.limit.value for one in found["pressure-min"].verdicts]
-    assert lowest == pytest.approx([200000 / 9790.38] * 3, rel=1e-12)
-    text = "\n".join(trace(account.ledger, found["pressure-max"].verdicts[0].limit))
-    assert "h_p = p / (ρ * g)" in text
+def test_a_limit_in_bar_is_judged_as_a_pressure(tmp_path: Path) -> None:
+    account, found = judged(tmp_path, "  pressure-max: {limit: 6.0 bar, cases: base}")
+    (verdict,) = found["pressure-max"].verdicts
+    assert verdict.limit.value == 600000.0
+    # By hand: a pressure head of HEAD - 5 m in a liquid of 998 kg/m3 under 9.81 m/s2, 9790.38 Pa a metre.
+    assert verdict.value.value == pytest.approx((HEAD - 5) * 9790.38, abs=1e-3)
+    assert verdict.margin.value == pytest.approx(600000 - (HEAD - 5) * 9790.38, abs=1e-3)
+    text = "\n".join(trace(account.ledger, verdict.margin))
+    assert "p = ρ * g * h_p" in text
     assert "given as '6.0 bar' at criteria.yaml:2:25, 6 × 100000" in text
+
+
+def test_a_limit_means_the_same_as_a_head_and_as_a_pressure(tmp_path: Path) -> None:
+    met = []
+    for limit in (f"{HEAD - 5.001!r} m", f"{(HEAD - 5.001) * 9790.38!r} Pa", f"{(HEAD - 4.999) * 9790.38!r} Pa"):
+        _, found = judged(tmp_path, f"  pressure-min: {{limit: {limit}, cases: base}}")
+        met.append(found["pressure-min"].met)
+    assert met == [True, True, False]
 
 
 def test_a_limit_that_is_exactly_met_is_met(tmp_path: Path) -> None:
@@ -128,7 +136,7 @@ def test_every_criterion_is_judged_on_arrays_as_on_columns(tmp_path: Path) -> No
   velocity-max: {limit: 3 m/s}
   velocity-min: {limit: 0.1 m/s}
   pressure-min: {limit: 20 m}
-  pressure-max: {limit: 60 m}
+  pressure-max: {limit: 600 kPa}
   gradient-max: {limit: 10 m/km}
 """
     account, found = judged(tmp_path, criteria)
@@ -136,14 +144,19 @@ def test_every_criterion_is_judged_on_arrays_as_on_columns(tmp_path: Path) -> No
     columns = account.cases["base"].columns
     assert columns is not None
     views = Outcome(
-        columns.results.velocity, columns.results.friction_loss, columns.terms.length, columns.pressure_head
+        columns.results.velocity,
+        columns.results.friction_loss,
+        columns.terms.length,
+        columns.pressure_head,
+        columns.pressure,
     )
     arrays = Outcome(*(view.values for view in vars(views).values()))
     for criterion in ALL:
-        values = value_of(criterion.value(ARRAYS, arrays)).tolist()
+        kind = found[criterion.id].verdicts[0].limit.column.kind
+        values = value_of(criterion.values[kind](ARRAYS, arrays)).tolist()
         told = [one.value.value for one in found[criterion.id].verdicts if one.case == "base"]
         assert told == pytest.approx(values, rel=1e-15)
         assert criterion.sense in ("at most", "at least")
         limit = found[criterion.id].verdicts[0].limit.value
-        margin = criterion.margin.body(value=values[0], limit=limit)
+        margin = criterion.margin(kind).body(value=values[0], limit=limit)
         assert margin == pytest.approx(limit - values[0] if criterion.sense == "at most" else values[0] - limit)

@@ -190,8 +190,6 @@ def test_heads_and_pressures() -> None:
     ten = np.array([10.0])
     pressure = energy.pressure.body(density=np.array([1000.0]), gravity=np.array([9.81]), pressure_head=ten)
     assert pressure[0] == pytest.approx(98100.0, rel=1e-15)
-    back = energy.head_of_pressure.body(pressure=pressure, density=np.array([1000.0]), gravity=np.array([9.81]))
-    assert back[0] == pytest.approx(10.0, rel=1e-15)
     assert energy.pressure_head.body(head=np.array([31.0]), elevation=ten)[0] == 21.0
     closing = energy.closing_error.body(head_from=np.array([31.0]), head_to=ten, head_loss=np.array([20.5]))
     assert closing[0] == 0.5
