@@ -57,6 +57,9 @@ def _lines(account: Account, purpose: str, written: Path) -> Iterator[str]:
     unmet = [judged.id for judged in account.verdicts if not judged.met]
     if unmet:
         yield f"  not met: {', '.join(unmet)}"
+    unjudged = [judged.id for judged in account.verdicts if judged.governing is None]
+    if unjudged:
+        yield f"  not judged, for want of a subject: {', '.join(unjudged)}"
     if account.findings:
         yield f"  findings: {len(account.findings)}"
 

@@ -12,7 +12,7 @@ from accounts import Draft, accounted
 
 from calc.account import Account, results
 
-TOP = {"format", "project", "digest", "cases", "verdicts", "findings", "studies"}
+TOP = {"format", "project", "digest", "cases", "verdicts", "not_judged", "findings", "studies"}
 CASE = {
     "converged",
     "method",

@@ -16,6 +16,9 @@ from typing import Any
 import pytest
 from cli_folders import EXACT, JOINED, SMALLEST
 
+from calc import pipeline
+from calc.report.document import Heading
+
 Inside = Callable[..., tuple[int, str, str]]
 Write = Callable[..., Path]
 
@@ -147,9 +150,11 @@ def test_inspect_lists_findings_by_place(inside: Inside, demo: Path, write: Writ
     status, said, remarks = inside("inspect", demo)
     assert (status, remarks) == (0, "")
     assert said.splitlines()[-1] == "no problems; 1 finding"
-    assert said.startswith("network.yaml:45: D03 Inputs without a source: pipes.sedge-link: roughness has no source: ")
+    assert said.startswith("network.yaml:45:24: D03 Inputs without a source: pipes.sedge-link: roughness has no ")
     said = inside("inspect", write(SMALLEST))[1]
-    assert all(re.match(r"network\.yaml:\d+: D\d\d ", line) for line in said.splitlines()[:-1])
+    heads = [line for line in said.splitlines()[:-1] if not re.match(r" +\d* \| ", line)]
+    assert heads
+    assert all(re.match(r"network\.yaml:\d+:\d+: D\d\d ", line) for line in heads)
     assert re.fullmatch(r"no problems; \d+ findings", said.splitlines()[-1])
 
 
@@ -189,3 +194,37 @@ def test_progress_shows_on_a_terminal_alone(demo: Path) -> None:
     os.close(leader)
     assert "solving peak" in shown
     assert shown.endswith("\r\x1b[K")  # and leaves nothing behind
+
+
+UNJUDGED = (
+    SMALLEST.replace("pipes:", "junctions: {}\npipes:")
+    + "criteria:\n  velocity-max: {limit: 99 m/s}\n  pressure-min: {limit: 10 m}\n"
+)
+
+
+def test_a_criterion_without_a_subject_is_told_everywhere(inside: Inside, write: Callable[[str], Path]) -> None:
+    """There is no junction whose pressure could be judged: neither met nor not met, and no failure."""
+    folder = write(UNJUDGED)
+    status, said, remarks = inside("solve", folder)
+    assert (status, remarks) == (0, "")
+    assert re.search(r"pressure-min +not judged +no subject with a solution\n", said)
+    assert "1 of 1 verdicts met" in said
+    found = json.loads(inside("solve", folder, "--json")[1])
+    assert found["not_judged"] == ["pressure-min"]
+    assert {verdict["criterion"] for verdict in found["verdicts"]} == {"velocity-max"}
+    document = pipeline.document(pipeline.account(folder), "checking")
+    headings = [
+        "".join(map(str, block.parts))
+        for section in document.sections
+        for block in section.blocks
+        if isinstance(block, Heading)
+    ]
+    assert "Least pressure: not judged" in headings
+
+
+@pytest.mark.pdf
+def test_an_issue_tells_what_was_not_judged(inside: Inside, write: Callable[[str], Path]) -> None:
+    status, said, _ = inside("issue", write(UNJUDGED))
+    assert status == 0
+    assert "  not judged, for want of a subject: pressure-min\n" in said
+    assert "not met" not in said

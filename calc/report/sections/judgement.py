@@ -30,7 +30,7 @@ def compose_judgement(composer: Composer) -> None:
 def _criterion(sheet: Sheet, judged: CriterionVerdict) -> None:
     composer = sheet.composer
     not_met = sum(not verdict.met for verdict in judged.verdicts)
-    verdict: Parts = ((": not met in some case",) if not_met else (": met",)) if judged.verdicts else (": no subject",)
+    verdict: Parts = ((": not met in some case",) if not_met else (": met",)) if judged.verdicts else (": not judged",)
     sheet.add(Heading((judged.criterion.title, *verdict)))
     if judged.governing is None or judged.least_margin is None:
         sheet.add(Paragraph(("No component that it applies to has a value in a solved case.",)))
