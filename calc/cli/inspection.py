@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import argparse
 import json
-import re
 from collections.abc import Iterable, Iterator
 from pathlib import Path
 from typing import Any
@@ -17,7 +16,6 @@ from calc.problems import Problem, ProblemsFound, underlined
 from calc.project import Project
 
 FORMAT = "headtrace-inspection/1"
-_PLACE = re.compile(r"(?P<file>.+?):(?P<line>[0-9]+)(?::(?P<column>[0-9]+))?")
 
 
 def run(asked: argparse.Namespace) -> Outcome:
@@ -29,36 +27,22 @@ def run(asked: argparse.Namespace) -> Outcome:
         if not asked.json:
             raise
         return Outcome(Status.WRONG_CALL, as_data(found.problems, ()))
-    findings = [(finding, _mark(finding, project)) for finding in input_findings(project)]
+    findings = input_findings(project)
     if asked.json:
         return Outcome(said=as_data((), findings))
     count = len(findings)
-    lines = [line for finding, mark in findings for line in _lines(finding, mark, project)]
+    lines = [line for finding in findings for line in _lines(finding, project)]
     return Outcome(said="\n".join([*lines, f"no problems; {count} finding{'s' * (count != 1)}"]))
 
 
-def _mark(finding: Finding, project: Project) -> Mark | None:
-    """Return where a finding stands; of a whole line, all that is written there."""
-    match = _PLACE.fullmatch(finding.place)
-    if match is None:
-        return None
-    file, line = match["file"], int(match["line"])
-    lines = project.texts.get(file, "").splitlines()
-    written = lines[line - 1].rstrip() if line <= len(lines) else ""
-    begin = len(written) - len(written.lstrip())
-    if match["column"]:
-        return Mark(file, line, int(match["column"]))
-    return Mark(file, line, begin + 1, max(1, len(written) - begin))
-
-
-def _lines(finding: Finding, mark: Mark | None, project: Project) -> Iterator[str]:
-    place = finding.place or finding.subject
-    yield f"{place}: {finding.id} {TITLES[finding.id]}: {finding.subject}: {finding.text}"
+def _lines(finding: Finding, project: Project) -> Iterator[str]:
+    mark = finding.mark
+    yield f"{mark or finding.place}: {finding.id} {TITLES[finding.id]}: {finding.subject}: {finding.text}"
     if mark is not None:
         yield from underlined(mark, project.texts.get(mark.file, "").splitlines())
 
 
-def as_data(problems: Iterable[Problem], findings: Iterable[tuple[Finding, Mark | None]]) -> str:
+def as_data(problems: Iterable[Problem], findings: Iterable[Finding]) -> str:
     """Return an inspection as JSON.
 
     ``{"format": "headtrace-inspection/1", "problems": […], "findings": […], "counts": {"problems": n, …}}``.
@@ -82,11 +66,11 @@ def as_data(problems: Iterable[Problem], findings: Iterable[tuple[Finding, Mark 
         {
             "id": finding.id,
             "title": TITLES[finding.id],
-            **_place(mark),
+            **_place(finding.mark),
             "subject": finding.subject,
             "text": finding.text,
         }
-        for finding, mark in findings
+        for finding in findings
     ]
     counts = {"problems": len(wrong), "findings": len(doubtful)}
     return json.dumps({"format": FORMAT, "problems": wrong, "findings": doubtful, "counts": counts}, indent=1)

@@ -61,8 +61,8 @@ def test_a_problem_on_a_terminal_is_red_and_underlined(write: Callable[[str], Pa
 
 def test_a_finding_on_a_terminal_has_another_colour(write: Callable[[str], Path]) -> None:
     said = on_a_terminal(write(SMALLEST), stderr=False)
-    assert "\x1b[1;33mnetwork.yaml:5\x1b[0m: D" in said
-    assert "\x1b[4;33mmain: {from: upper" in said
+    assert "\x1b[1;33mnetwork.yaml:5:3\x1b[0m: D" in said
+    assert "\x1b[4;33mmain\x1b[0m: {from: upper" in said
     assert "31m" not in said
     assert re.fullmatch(r"no problems; [0-9]+ findings", ESCAPE.sub("", said).splitlines()[-1])
 
@@ -142,4 +142,4 @@ def test_findings_as_data(inside: Inside, write: Callable[[str], Path]) -> None:
         head = f"{finding['id']} {finding['title']}: {finding['subject']}: {finding['text']}"
         assert head in words
     lines = SMALLEST.splitlines()
-    assert f"  5 | {lines[4]}\n    |   {'^' * len(lines[4].strip())}\n" in words
+    assert f"  5 | {lines[4]}\n    |   {'^' * len('main')}\n" in words
