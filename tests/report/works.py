@@ -132,6 +132,42 @@ cases:
   low: {title: Low upper pool with the middle shut, with: {reservoirs.upper-pool.level: 205 m, pipes.middle.open: false}}
 """
 
+FORMS = """\
+reservoirs: {combe: {level: 182 m}, lode: {level: 168.5 m}}
+junctions: {lock: {elevation: 120 m, inflow: 4 L/s}}
+pipes:
+  combe-main:
+    from: combe
+    to: lock
+    length: 1900 m
+    bore: {size: DN300, standard: EN 545, class: C40}
+    roughness: {material: cement-mortar-lined}
+    ends: {from: square}
+    fittings:
+      - {kind: bend, angle: 60 deg, radius_ratio: 1.5, count: 2}
+      - {kind: step, onward_bore: 254.6 mm}
+      - {kind: step, onward_bore: 400 mm}
+      - {kind: taper, onward_bore: 400 mm, angle: 20 deg}
+      - {kind: taper, onward_bore: 250 mm, angle: 60 deg, bore: 300 mm}
+      - {Kv: 2400}
+  lode-main:
+    from: lode
+    to: lock
+    length: 6200 ft
+    size: 12 in
+    standard: AWWA C151
+    class: PC350
+    lining: 0.2 in
+    law: hazen-williams
+    hazen_williams_c: {material: ductile-iron-lined}
+    fittings: [{Cv: 5200}, {Kv: 650 L/s, bore: 250 mm}, {kind: bend, angle: 0.5 rad, radius_ratio: 3}]
+  lode-link: {from: lock, to: lode, length: 1700 m, outside_diameter: 323.8 mm, wall: 9.53 mm, roughness: 0.05 mm}
+cases:
+  scaled: {title: Smaller bore, times: {pipes.combe-main.bore: 0.9}}
+  wide: {title: Wider bore, after: scaled, with: {pipes.combe-main.bore: 420 mm, pipes.lode-main.bore: 15 in}}
+  rough: {title: Old pipe, with: {"pipes.*.roughness": {material: old-cast-iron}}}
+"""
+
 US = "display: {units: US}\n"
 
 
@@ -156,10 +192,12 @@ TEXTS = {
     "dry": DRY,
     "great": GREAT,
     "ring": RING,
+    "forms": FORMS,
     "transition-us": US + TRANSITION.replace("LAW", "colebrook-white"),
     "laws-us": US + LAWS,
     "empirical-us": US + EMPIRICAL,
     "ring-us": US + RING,
+    "forms-us": US + FORMS,
     "loop-us": US.replace("}", ", flow: cfs, length: mi}") + LOOP,
 }
 NAMES = ("demo", *TEXTS)
