@@ -108,6 +108,16 @@ def test_laminar_pipes_are_named_with_their_cases(tmp_path: Path) -> None:
     assert all("in transition in case base" in one.text for one in found)
 
 
+def test_cases_are_told_in_words(tmp_path: Path) -> None:
+    cases = (
+        "cases: {mild: {with: {fluid.viscosity: {value: 70 mm²/s, source: S1}}}, thin: {with: {fluid.viscosity: "
+        "{value: 1.3 mm²/s, source: S1}}}}\n"
+    )
+    found = of("D33", account_of(tmp_path, spoiled(OIL, added=cases)))
+    assert found
+    assert all("in transition in cases base and mild:" in one.text for one in found)
+
+
 def test_a_law_of_turbulent_flow_in_laminar_flow_is_told_apart(tmp_path: Path) -> None:
     found = dict(remarks("D33", tmp_path, spoiled(OIL, hazen(130))))
     assert "does not hold" in found["pipes.upper"]
@@ -179,6 +189,20 @@ def test_a_loose_tolerance_is_named_where_it_stands(tmp_path: Path) -> None:
     (found,) = of("D43", account_of(tmp_path / "loose", spoiled(added="solver: {tolerance: 0.1 L/s}\n")))
     assert (found.subject, found.place) == ("cases.base", "network.yaml:32")
     assert of("D43", account_of(tmp_path / "close", spoiled(added="solver: {tolerance: 1e-5 L/s}\n"))) == []
+
+
+def test_a_search_without_a_history_is_named(tmp_path: Path) -> None:
+    account = account_of(tmp_path, SOUND)
+    bare = {name: replace(case, history=[]) for name, case in account.cases.items()}
+    (found,) = numerical.loose_tolerance(solved_of(account, cases=bare))
+    assert "left no history" in found.text
+    assert list(numerical.loose_tolerance(solved_of(account))) == []
+
+
+def test_works_without_a_junction_have_one_answer(tmp_path: Path) -> None:
+    text = SOUND.replace("to: cross", "to: tarn").replace("ends: {from: square}", "ends: {from: square, to: square}")
+    text = text[: text.index("  lower:")].replace(text[text.index("junctions:") : text.index("pipes:")], "")
+    assert account_of(tmp_path, text).findings == ()
 
 
 def test_junctions_that_do_not_balance(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
