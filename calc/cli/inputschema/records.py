@@ -66,6 +66,14 @@ def told(values: Values, field: Field, path: str) -> Json:
     }
 
 
+def described(one: Schema, name: str) -> Json:
+    """Return what a field of a schema is, without what may stand there."""
+    field = one.field(name)
+    if field is None:
+        raise TypeError(f"{one.group} has no field {name}")
+    return {"description": describe(field.words, field.form, field.example), "examples": [field.example]}
+
+
 def describe(words: str, form: Form, example: str, usual: str = "") -> str:
     """Return what a field is, in words: kind and range, an example, the default."""
     parts = [words[:1].upper() + words[1:], _kind(form), f"Example: {example}" if example else ""]

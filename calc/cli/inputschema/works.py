@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
-from calc.cli.inputschema.records import as_json, describe, example_of, mapping, record, told
-from calc.cli.inputschema.values import IDENTIFIER, SCALAR, Json, Values, closed
+from dataclasses import replace
+
+from calc.cli.inputschema import losses
+from calc.cli.inputschema.dimensions import dimensions, rules
+from calc.cli.inputschema.records import as_json, describe, example_of, mapping, record
+from calc.cli.inputschema.values import IDENTIFIER, SCALAR, Json, Values
 from calc.components import SCHEMAS, Ends, Fittings, Schema
 from calc.components.pipe import LAW_INPUT
 from calc.physics.friction import LAW_NAMES
-from calc.project import fittings, settings, shipped, sizes
+from calc.project import settings, shipped
 from calc.project.works import NEEDED
 
 GROUP_WORDS = {
@@ -29,37 +33,17 @@ def component(values: Values, one: Schema) -> Json:
     own: dict[str, Json] = {}
     for field in one.fields:
         if isinstance(field.form, Ends):
-            own[field.name] = {"description": field.words, **_ends(values)}
+            words = f"{field.words[:1].upper()}{field.words[1:]}. Example: {{from: square}}"
+            own[field.name] = {"description": words, **losses.ends(values)}
         elif isinstance(field.form, Fittings):
             words = f"{field.words[:1].upper()}{field.words[1:]}, each by kind or by coefficient."
-            own[field.name] = {"description": words, "type": ["array", "null"], "items": _fitting(values)}
-    if one.group == "pipes":
-        own["bore"] = _bore(values, one)
-    found = record(values, one, one.group, own)
-    if one.group == "pipes":
-        found["allOf"] = [*found.get("allOf", []), *map(_law_input, LAW_INPUT), *_sizes()]
+            own[field.name] = {"description": words, "type": ["array", "null"], "items": losses.fitting(values)}
+    if one.group != "pipes":
+        return {**record(values, one, one.group, own), "description": f"A {one.singular}."}
+    apart = replace(one, excludes=tuple(pair for pair in one.excludes if "bore" not in pair))
+    found = record(values, apart, one.group, own | dimensions(values, one))
+    found["allOf"] = [*found.get("allOf", []), *map(_law_input, LAW_INPUT), *rules(values, one)]
     return {**found, "description": f"A {one.singular}."}
-
-
-def _bore(values: Values, pipe: Schema) -> Json:
-    """Return a bore: a quantity, or a size in the shipped tables."""
-    within = {field.name: told(values, field, "") for field in pipe.fields if field.name in sizes.WITHIN}
-    plain = next(told(values, field, "") for field in pipe.fields if field.name == "bore")
-    size = {"type": "object", **closed({**within, **values.basis()}, list(sizes.NAMES))}
-    named = {"type": "object", "anyOf": [{"required": [name]} for name in sizes.NAMES]}
-    kept: Json = {name: plain.pop(name) for name in ("description", "examples", "default") if name in plain}
-    return {**kept, "if": named, "then": size, "else": plain}
-
-
-def _sizes() -> list[Json]:
-    """Return what size, standard and class hold one another to, and an outside diameter."""
-    others = [name for name in sizes.NAMES if name != "size"]
-    named = {"anyOf": [{"required": [name]} for name in others]}
-    return [
-        {"if": {"required": ["size"]}, "then": {"required": others}},
-        {"if": named, "then": {"required": ["size"]}},
-        {"if": {"required": ["outside_diameter"]}, "then": {"required": ["wall"]}},
-    ]
 
 
 def _group(one: Schema, member: Json) -> Json:
@@ -80,14 +64,8 @@ def _group(one: Schema, member: Json) -> Json:
     }
 
 
-def says(name: str, word: str) -> Json:
-    """Return the condition that a field says a word, alone or with what it rests on."""
-    held = {"properties": {"value": {"const": word}}, "required": ["value"], "type": "object"}
-    return {"properties": {name: {"anyOf": [{"const": word}, held]}}, "required": [name]}
-
-
 def _law_input(law: str) -> Json:
-    return {"if": says("law", law), "then": {"required": [LAW_INPUT[law]]}}
+    return {"if": losses.says("law", law), "then": {"required": [LAW_INPUT[law]]}}
 
 
 def default_laws() -> list[Json]:
@@ -108,35 +86,6 @@ def default_laws() -> list[Json]:
         }
         for law in LAW_NAMES
     ]
-
-
-def _fitting(values: Values) -> Json:
-    schema = fittings.schema()
-    field = schema.field("kind")
-    listed = getattr(field.form, "options", ()) if field else ()
-    words = {"oneOf": [{"const": name, "description": _what(name)} for name in listed]}
-    kind = {"description": f"Kind in the shipped table: {', '.join(listed)}.", **values.word(words)}
-    found = record(values, schema, "fittings", {"kind": kind, **values.basis()})
-    return {**found, "type": "object", "description": "A fitting."}
-
-
-def _what(kind: str) -> str:
-    row = shipped.fittings().get(kind) or shipped.computed_fittings().get(kind)
-    return kind if row is None else row.title.text
-
-
-def _ends(values: Values) -> Json:
-    shapes = {
-        "oneOf": [
-            {"const": name, "description": f"{row.title.text}: entry {row.forward.written}, exit {row.reverse.written}"}
-            for name, row in shipped.ends().items()
-        ]
-    }
-    own = record(values, fittings.OWN_END, "ends", values.basis())
-    words = "Loss where the pipe {} in a reservoir, by shape or as {{entry: 0.5, exit: 1.0}}. Example: square"
-    end = {"anyOf": [shapes, own], "examples": ["square"]}
-    ends = {"from": "begins", "to": "ends"}
-    return mapping({name: {"description": words.format(verb), **end} for name, verb in ends.items()})
 
 
 def whole(values: Values) -> dict[str, Json]:
