@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import cache
 from pathlib import Path
 from tempfile import TemporaryDirectory
@@ -12,7 +13,8 @@ from accounts import ROOT, accounted
 from calc import pipeline
 from calc.account import Account, keep_account, open_books
 from calc.report.document import Document
-from calc.solve import Settings, solve
+from calc.solve import solve
+from calc.solve.section import settings_of
 
 DEMO = ROOT / "projects" / "ostrel-transfer-main"
 
@@ -129,7 +131,7 @@ pipes:
   lower-main: {from: fold, to: lower-pool, length: 1500 m, bore: 200 mm, roughness: 0.15 mm, ends: {to: square}}
   hut-lane: {from: yard, to: hut, length: 60 m, bore: 25 mm, roughness: 0.01 mm}
 cases:
-  low: {title: Low upper pool with the middle shut, with: {reservoirs.upper-pool.level: 205 m, pipes.middle.open: false}}
+  low: {title: Low upper pool, with: {reservoirs.upper-pool.level: 205 m, pipes.middle.open: false}}
 """
 
 FORMS = """\
@@ -220,6 +222,6 @@ def given_up(folder: Path, case: str, after: int) -> Work:
     ledger = open_books(project)
     solved = pipeline.solve_cases(project, ledger)
     network = solved[case][0]
-    solved[case] = (network, solve(network, Settings(limit=after)))
+    solved[case] = (network, solve(network, replace(settings_of(project), limit=after)))
     account = keep_account(project, ledger, solved)
     return Work(case, account, pipeline.document(account, "checking"))

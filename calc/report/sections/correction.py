@@ -30,6 +30,7 @@ from calc.solve import Corrections, Loop
 ABREAST = 6
 """Loops whose corrections fit beside one another; of more, a sweep is told by its largest."""
 LEVEL_FIGURES = 9
+RISE_FIGURES = 8
 FIGURES: dict[Kind, int] = {FLOW: 7, HEAD: 8}
 """Figures of the largest flow and loss of the table; the others have as many decimals, so that they can be added."""
 
@@ -90,7 +91,7 @@ class _Page:
         decimals = self.decimals.get(kind)
         unit = self.composer.display.coherent(kind)
         if decimals is None:
-            return Format(unit, significant=6)
+            return Format(unit, significant=RISE_FIGURES)
         return Format(unit, decimals, sign=sign, bound=10.0**-decimals if residual else None)
 
     def _number(self, spot: Spot, sign: str = "", *, residual: bool = False) -> Number:
