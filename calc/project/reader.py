@@ -225,8 +225,9 @@ class Reader(Notes):
 
 def taken(value: Stated, said: str, basis: Basis) -> Stated:
     """Return a shipped value that a project took by a name: its own source, the name and place, the table's source."""
-    told = ": ".join(part for part in (basis.source, said) if part)
-    return replace(value, basis=replace(basis, source=f"{told}; {value.basis.source}"))
+    named = f"{basis.source}, p. {basis.page}" if basis.source and basis.page else basis.source
+    told = ": ".join(part for part in (named, said) if part)
+    return replace(value, basis=replace(basis, source=f"{told}; {value.basis.source}", page=""))
 
 
 _NAMES = {"unknown-law": "friction law", "unknown-kind": "kind"}
