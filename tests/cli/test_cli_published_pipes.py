@@ -130,6 +130,34 @@ def test_discharge_at_a_gradient(tmp_path: Path, case: dict[str, Any]) -> None:
     compare({"V": velocity, "V_iterated": velocity, "Q": told.of("main")}, case["expected"])
 
 
+FITTINGS = {
+    "K-EXP-25": (0.05, "kind: step, onward_bore: 0.2 m"),
+    "K-EXP-50": (0.1, "kind: step, onward_bore: 0.2 m"),
+    "K-EXP-75": (0.15, "kind: step, onward_bore: 0.2 m"),
+    "K-BC-25": (0.1, "kind: step, onward_bore: 0.2 m"),
+    "K-FL-03": (0.1, "kind: step, onward_bore: 0.2 m"),
+    "VA-09": (0.1, "Kv: 200"),
+    "VA-10": (4 * 0.0254, "Cv: 400"),
+}
+"""Bore of the pipe and YAML of the fitting, for cases that state the ratio of areas or a flow coefficient."""
+
+
+def test_coefficients_of_fittings(tmp_path: Path) -> None:
+    cases = published("fittings")
+    works = Works()
+    for name, (bore, fitting) in FITTINGS.items():
+        works.reservoirs.setdefault("pond", 0.0)
+        works.junction(f"end-{name}", 0.004)
+        works.pipe(name, "pond", f"end-{name}", {"L_m": 1.0, "D_m": bore, "f": 0.02}, f", fittings: [{{{fitting}}}]")
+        ratio = cases[name]["inputs"].get("A1_A2")
+        assert ratio is None or ratio == pytest.approx((bore / 0.2) ** 2)
+    told = works.solved(tmp_path)
+    for name in FITTINGS:
+        heads = told.of(name, "velocity") ** 2 / (2 * works.gravity)
+        (expected,) = cases[name]["expected"].values()
+        compare({"K": told.of(name, "fitting_loss") / heads}, {"K": expected})
+
+
 def test_the_shipped_constants_are_those_of_the_cases() -> None:
     # tests/published/README: Hazen–Williams 10.67, 1.852, 4.8704 unless a case states its own
     assert SHIPPED == (10.67, 1.852, 4.8704)

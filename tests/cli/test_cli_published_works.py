@@ -37,7 +37,7 @@ def star(case: dict[str, Any], constants: Constants | None = None) -> Works:
     return works
 
 
-@pytest.mark.parametrize("method", ["bracketing", "newton"])
+@pytest.mark.parametrize("method", ["bracketing", "newton", "loop-correction"])
 @pytest.mark.parametrize("case", STARS, ids=named)
 def test_reservoirs_at_one_junction(tmp_path: Path, case: dict[str, Any], method: str) -> None:
     told = star(case).solved(tmp_path, method)
@@ -65,10 +65,12 @@ def link_id(name: str) -> str:
     return f"link-{name.replace('>', '-to-')}"
 
 
+@pytest.mark.parametrize("method", ["newton", "loop-correction"])
 @pytest.mark.parametrize("case", NETS, ids=named)
-def test_loops_and_lines_of_junctions(tmp_path: Path, case: dict[str, Any]) -> None:
+def test_loops_and_lines_of_junctions(tmp_path: Path, case: dict[str, Any], method: str) -> None:
     inputs = case["inputs"]
-    told = looped(inputs).solved(tmp_path)
+    told = looped(inputs).solved(tmp_path, method)
+    assert told.base["method"] == method
     got = {f"Q_{link['id']}": told.of(link_id(link["id"])) for link in inputs["links"]}
     got |= {f"H_{name}": told.head(f"node-{name}") for name in inputs["nodes"]}
     compare(got, case["expected"])
