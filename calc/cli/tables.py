@@ -134,7 +134,7 @@ def _standard(one: Standard) -> list[str]:
     recalled = [f"{RECALLED} this value {standards.MEMORY}"] if marked else []
     sources = dict.fromkeys([one.source, *(each.source for each in one.classes.values())])
     return [
-        *_wrapped(f"Under the classes stands the {one.wall}."),
+        *_wrapped(f"Under the classes stands the {one.wall}. Dimensions are in {sizes[0].outside_diameter.unit}."),
         "",
         *columns(rows, "<" + ">" * (len(walls) + 3), 0),
         "",
@@ -147,10 +147,9 @@ def _standard(one: Standard) -> list[str]:
 
 
 def _size_row(size: Size, walls: Sequence[str]) -> list[str]:
-    held = [_marked(size.walls.get(wall)) for wall in walls]
     outer = size.outside_diameter
-    name = ", ".join((size.name, *size.also[:1]))
-    return [name, _marked(outer), _marked(size.lining), *held, str(outer.mark.line)]
+    held = [_marked(stated, outer.unit) for stated in (outer, size.lining, *map(size.walls.get, walls))]
+    return [", ".join((size.name, *size.also[:1])), *held, str(outer.mark.line)]
 
 
 def _class_row(one: PipeClass, sizes: Sequence[Size]) -> list[str]:
@@ -165,10 +164,12 @@ def _si(stated: Stated) -> float:
     return stated.si
 
 
-def _marked(stated: Stated | None) -> str:
+def _marked(stated: Stated | None, unit: str = "") -> str:
+    """Return a value as written, without a unit that is said for the whole table, with the mark of a recalled one."""
     if stated is None:
         return "–"
-    return f"{stated.written}{RECALLED}" if stated.basis.source.endswith(standards.MARK) else stated.written
+    text = stated.written.removesuffix(f" {unit}")
+    return f"{text}{RECALLED}" if stated.basis.source.endswith(standards.MARK) else text
 
 
 TABLES: dict[str, tuple[str, Callable[[], list[str]]]] = {

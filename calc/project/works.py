@@ -3,16 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 
-from calc.components import Quantity, Record, Stated, junction, pipe, reservoir
+from calc.components import Count, Name, Quantity, Record, Schema, Stated, junction, pipe, reservoir
 from calc.components.pipe import LAW_INPUT
 from calc.marks import Mark
 from calc.project import shipped
 from calc.project.fittings import read_ends, read_fittings
 from calc.project.notes import empty
-from calc.project.reader import Reader
+from calc.project.reader import BASIS_KEYS, Reader
 from calc.project.records import Fields, Parts, read_fields, read_group
 from calc.project.sizes import read_dimensions, unfolded
 from calc.project.wording import quoted
@@ -62,7 +62,7 @@ def read_works(reader: Reader, folder: Path, top: Mapping[str, Entry], friction:
         before = len(reader.problems)
         for key, member in _members(reader, works, folder, top.get(name), f"a {schema.singular}"):
             path = f"{name}.{key.text}"
-            stated, _ = read_fields(reader, schema, member, path, key.mark)
+            stated, _ = _read_row(reader, schema, member, path, key.mark, works)
             _complete_node(reader, name, stated, member, path)
             if key.text in nodes:
                 found = f"{quoted(key.text)} is also the id of a reservoir, at {nodes[key.text]}"
@@ -140,6 +140,20 @@ def _members(
     return read_group(reader, node, path, what)
 
 
+def _read_row(  # noqa: PLR0917 - as fields are read
+    reader: Reader, schema: Schema, member: MappingNode, path: str, mark: Mark, works: Works
+) -> tuple[Fields, Parts]:
+    """Read the fields of a component; in a table, its columns source, page, grade and note hold for a row."""
+    if all(file.name != member.mark.file for file in works.tables):
+        return read_fields(reader, schema, member, path, mark)
+    stated, parts = read_fields(reader, schema, member, path, mark, extra=BASIS_KEYS)
+    basis = reader.basis(member, path)
+    for one in schema.fields:
+        if one.name in stated and isinstance(one.form, Quantity | Count | Name):
+            stated[one.name] = replace(stated[one.name], basis=basis)
+    return stated, parts
+
+
 def _complete_node(reader: Reader, group: str, stated: Fields, member: MappingNode, path: str) -> None:
     if group == "junctions" and not {"withdrawal", "inflow"} & set(member.keys()):
         default = shipped.defaults()["junctions.withdrawal"]
@@ -153,7 +167,7 @@ def _complete_node(reader: Reader, group: str, stated: Fields, member: MappingNo
 def _read_pipe(reader: Reader, key: Scalar, member: MappingNode, works: Works, friction: Stated | None) -> Record:
     path = f"pipes.{key.text}"
     member = unfolded(reader, member, path)
-    stated, parts = read_fields(reader, pipe.SCHEMA, member, path, key.mark)
+    stated, parts = _read_row(reader, pipe.SCHEMA, member, path, key.mark, works)
     for name in ("parallel", "open"):
         if name not in stated:
             stated[name] = reader.defaults[f"pipes.*.{name}"] = shipped.defaults()[f"pipes.{name}"]

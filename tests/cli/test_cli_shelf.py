@@ -77,8 +77,11 @@ def test_a_standard_says_every_row_with_its_line(inside: Inside, name: str) -> N
     lines = text.splitlines()
     for size, row in standard["sizes"].items():
         shown = next(line for line in said.splitlines() if re.match(rf"{re.escape(size)}(,| {{2,}})", line))
+        cells = shown.replace("*", "").split()
         for written in (row["outside_diameter"], row["lining"], *row["wall"].values()):
-            assert written in shown
+            number, unit = written.split()
+            assert number in cells
+            assert f"Dimensions are in {unit}." in said.replace("\n", " ")
         assert lines[int(shown.split()[-1]) - 1].startswith(f"      {size}:")
     for key, entry in standard["classes"].items():
         shown = next(line for line in said.splitlines() if line.startswith(f"{key}  "))
