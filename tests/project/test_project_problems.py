@@ -9,7 +9,7 @@ import pytest
 from project_folders import SOUND, problems_in, with_line
 
 from calc import units
-from calc.problems import WIDEST, ProblemsFound, show
+from calc.problems import WIDEST, ProblemsFound, nearest, show
 from calc.project import CODES
 
 
@@ -70,3 +70,10 @@ def test_of_a_long_line_the_part_at_fault_is_shown(tmp_path: Path, before: int, 
     assert line[carets.index("^") : carets.index("^") + carets.count("^")] == "wide"
     assert line.startswith(" 12 | …") == (before > 0)
     assert line.endswith("…") == (after > 0)
+
+
+def test_of_words_equally_near_the_one_that_begins_alike_is_meant() -> None:
+    assert nearest("C4O", ["C30", "C40", "C64"]) == "did you mean 'C40'?"
+    assert nearest("DN40", ["DN400", "DN450", "DN600"]) == "did you mean 'DN400'?"
+    assert nearest("roughnes", ["roughness", "bore"]) == "did you mean 'roughness'?"
+    assert nearest("weir", ["roughness", "bore"]) == ""
