@@ -9,7 +9,7 @@ import numpy as np
 
 from calc.account.flows import filled
 from calc.components import Record
-from calc.components.fitting import FormTerms, coefficients, computed_kind
+from calc.components.fitting import ON_ANY_BORE, FormTerms, coefficients, computed_kind
 from calc.equation import Reference, Symbol, equation
 from calc.kinds import FLOW
 from calc.ledger import Accountant, Column, Derived, Ledger
@@ -54,14 +54,15 @@ def enter_bores(ledger: Ledger, project: Project) -> None:
 
 
 def enter_coefficients(ledger: Ledger, project: Project, case: str) -> None:
-    """Enter the coefficients of fittings of computed kinds: all of them, or in a case those whose pipe changes bore."""
+    """Enter the coefficients of fittings of computed kinds: all of them, or in a case those that a new bore changes."""
     bores = [column for column in ledger.columns if column.name == "pipes.bore" and column.case == case]
     changed = {row for column in bores for row in column.rows}
     chosen = [
         (pipe.id, part)
         for pipe in project.pipes.values()
         for part in in_order(pipe)
-        if computed_kind(part.stated) and (case == BASE or (pipe.id in changed and stands_on_pipe(pipe, part)))
+        if (kind := computed_kind(part.stated))
+        if case == BASE or (pipe.id in changed and stands_on_pipe(pipe, part) and kind not in ON_ANY_BORE)
     ]
     if chosen:
         _apply(Accountant(ledger, case), [pipe for pipe, _ in chosen], [part for _, part in chosen])

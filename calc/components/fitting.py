@@ -56,6 +56,9 @@ NEEDS = {
 FLOW_COEFFICIENTS = ("Kv", "Cv")
 """Computed kinds that are no words of ``kind``: their field says it."""
 
+ON_ANY_BORE = ("bend",)
+"""Computed kinds whose coefficient is the same on any bore."""
+
 FORM_FIELDS = ("angle", "radius_ratio", "onward_bore")
 """Fields of which only a computed kind makes anything."""
 
