@@ -22,6 +22,7 @@ from calc.report.document import (
     TableColumn,
     named_unit,
 )
+from calc.report.sections.schedule import add_schedule
 
 CONVENTIONS = (
     "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
@@ -83,9 +84,7 @@ def _units(display: Display) -> list[Parts]:
         "What stands in another unit is converted on a line of its own: the quantity divided by the worth of one unit."
     )
     if display.system != SI.system:
-        worked += (
-            " Empirical laws are worked in SI, what they take converted before them, what they give after."
-        )
+        worked += " Empirical laws are worked in SI, what they take converted before them, what they give after."
     data = (
         "The data files of this package (results, ledger, tables) are in SI. Published cases in the software record "
         "are in the units in which they were published."
@@ -169,6 +168,7 @@ def _schematic(sheet: Sheet) -> None:
     sheet.add(Figure(sheet.composer.figure_number(), caption, drawing))
     if len(sheet.composer.account.project.pipes) > MOST_NAMED:
         sheet.add(Paragraph(("Pipes not named in the figure stand in the tables of each case.",), "small"))
+    add_schedule(sheet, case)
 
 
 MOST_NAMED = 40
