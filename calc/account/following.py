@@ -33,8 +33,8 @@ def withdrawal_of_inflow(*, inflow: Any) -> Any:  # noqa: ANN401
 
 def enter_withdrawals(ledger: Ledger, project: Project, case: str) -> None:
     """Enter the withdrawals of junctions whose inflow this case states."""
-    stated = [c for c in ledger.columns if c.name == "junctions.inflow" and c.case == case]
-    rows = [row for row in project.junctions if any(row in column.index for column in stated)]
+    stated = [column for column in ledger.find("junctions.inflow", case) if column.case == case]
+    rows = [row for row in project.junctions if any(row in column.index for column in stated)] if stated else []
     if rows:
         view = ledger.view("junctions.inflow", case, rows)
         Accountant(ledger, case).apply("junctions.withdrawal", withdrawal_of_inflow, inflow=view)
@@ -55,14 +55,14 @@ def enter_bores(ledger: Ledger, project: Project) -> None:
 
 def enter_coefficients(ledger: Ledger, project: Project, case: str) -> None:
     """Enter the coefficients of fittings of computed kinds: all of them, or in a case those that a new bore changes."""
-    bores = [column for column in ledger.columns if column.name == "pipes.bore" and column.case == case]
+    bores = [column for column in ledger.find("pipes.bore", case) if column.case == case]
     changed = {row for column in bores for row in column.rows}
     chosen = [
         (pipe.id, part)
-        for pipe in project.pipes.values()
+        for pipe in (project.pipes[name] for name in project.pipes if name in changed)
         for part in in_order(pipe)
         if (kind := computed_kind(part.stated))
-        if case == BASE or (pipe.id in changed and stands_on_pipe(pipe, part) and kind not in ON_ANY_BORE)
+        if case == BASE or (stands_on_pipe(pipe, part) and kind not in ON_ANY_BORE)
     ]
     if chosen:
         _apply(Accountant(ledger, case), [pipe for pipe, _ in chosen], [part for _, part in chosen])

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from functools import lru_cache
 
 from calc.components import Quantity, Record, Schema, Stated, Text, Word
 from calc.components.fields import Field
@@ -19,6 +20,7 @@ from calc.yamlfile import Mapping, Node, Scalar
 COEFFICIENT = Quantity(NUMBER, at_least=0.0)
 
 
+@lru_cache(maxsize=1)
 def schema() -> Schema:
     """Return the schema of a fitting with the kinds of the shipped table."""
     kinds = Word((*shipped.fittings(), *(name for name in NEEDS if name not in FLOW_COEFFICIENTS)))

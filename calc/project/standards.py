@@ -65,6 +65,7 @@ def matching(written: str, rows: Iterable[PipeClass | Size | Standard]) -> PipeC
     return next((row for row in rows if wanted in map(_plain, (row.name, *getattr(row, "also", ())))), None)
 
 
+@lru_cache(maxsize=4096)
 def _plain(name: str) -> str:
     return "".join(name.split()).casefold()
 

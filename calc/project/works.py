@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
-from calc.components import Count, Name, Quantity, Record, Schema, Stated, junction, pipe, reservoir
+from calc.components import NO_BASIS, Count, Name, Quantity, Record, Schema, Stated, junction, pipe, reservoir
 from calc.components.pipe import LAW_INPUT
 from calc.marks import Mark
 from calc.project import shipped
@@ -148,7 +148,7 @@ def _read_row(  # noqa: PLR0917 - as fields are read
         return read_fields(reader, schema, member, path, mark)
     stated, parts = read_fields(reader, schema, member, path, mark, extra=BASIS_KEYS)
     basis = reader.basis(member, path)
-    for one in schema.fields:
+    for one in schema.fields if basis != NO_BASIS else ():
         if one.name in stated and isinstance(one.form, Quantity | Count | Name):
             stated[one.name] = replace(stated[one.name], basis=basis)
     return stated, parts
