@@ -193,7 +193,8 @@ def converted(sheet: Sheet, spot: Spot, unit: str, *before: Part) -> list[Row]:
         operands = {name: operand(one, source, figures) for name, one in spots.items()}
         if _repeats(law, operands, result):
             break
-    words = (spot.column.quantity.replace("_", " ").capitalize(), " in ", named_unit(unit))
+    quantity = "margin" if spot.column.quantity.endswith("-margin") else spot.column.quantity.replace("_", " ")
+    words = (quantity.capitalize(), " in ", named_unit(unit))
     stands = tuple(one.id for one in spots.values())
     cells = ((*before, *words, Formula(law, operands, result)), (result,), (named_unit(unit),))
     return [sheet.row(*cells, (Cite(stands),), ("",))]
