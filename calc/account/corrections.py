@@ -20,7 +20,7 @@ from calc.ledger import Accountant, Column, Ledger, Program, Spot, View
 from calc.ledger.column import ABSENT
 from calc.solve import Corrections, Loop
 from calc.solve.loop_rules import LOSS_EXPONENT, QUADRATIC, loop_correction, loss_rate, path_excess
-from calc.solve.loops import around, direction
+from calc.solve.loops import around, brought
 
 ALL_IN_FULL = 60
 """Corrections up to which each is entered in full."""
@@ -124,13 +124,9 @@ class _Table:
     def _brought(self, pipe: int) -> Iterator[tuple[int, int]]:
         """Yield what the start flow of a pipe is the sum of: place among closing flows, then withdrawals, and sign."""
         loops = self.corrections.loops
-        for k, loop in enumerate(loops):
-            if pipe in loop.pipes:
-                yield k, loop.signs[loop.pipes.index(pipe)] * direction(loop)
-        for k, node in enumerate(self.network.unknown.tolist()):
-            for step, sign in self.corrections.trails[node]:
-                if step == pipe:
-                    yield len(loops) + k, sign
+        closing, drawn = brought(self.network, self.corrections.trails, loops)
+        table = np.concatenate([closing, drawn[self.network.unknown]])[:, pipe]
+        yield from ((int(k), int(table[k])) for k in np.flatnonzero(table))
 
     def _limits(self) -> list[TransitionLimits[View]]:
         """Return Darcy f at the ends of the transition for the pipes of each loop, entered once with the start."""

@@ -10,7 +10,7 @@ from calc.equation import ARRAYS, value_of
 from calc.solve.branch import Array, Branches
 from calc.solve.iteration import Iteration
 from calc.solve.loop_rules import LOSS_EXPONENT, QUADRATIC, loss_rate, path_excess
-from calc.solve.loops import Trail, around, continuous, direction, find_loops, trails
+from calc.solve.loops import Trail, around, brought, direction, find_loops, trails
 from calc.solve.solution import Loop, Settings
 
 REST = 1e-9
@@ -34,7 +34,7 @@ class LoopMethod:
         self.network, self.branches = network, branches
         self.iteration = Iteration(network, branches)
         self.along: tuple[Trail, ...] = trails(network, self.iteration.quadratic)
-        self.loops: tuple[Loop, ...] = find_loops(network, self.along)
+        self.loops: tuple[Loop, ...] = find_loops(network, self.along, self.iteration.quadratic)
         self.around = around(self.loops, len(network.open))
         level = network.level
         ends = [(loop.nodes[0], loop.nodes[-1]) for loop in self.loops]
@@ -90,14 +90,15 @@ class LoopMethod:
         drop = self.iteration.grid.drop(head, none)
         moving = network.open & (np.abs(drop) > REST * float(np.ptp(head)))
         rough = self.branches.flows(np.where(moving, drop, 0.0))
-        closing = np.array([direction(loop) * _rounded(float(rough[loop.closing])) for loop in self.loops])
-        flow = continuous(network, self.along, self.loops, closing)
+        closing = np.array([_rounded(float(rough[loop.closing])) for loop in self.loops])
+        of_closing, of_withdrawals = brought(network, self.along, self.loops)
+        flow = closing @ of_closing + network.withdrawal @ of_withdrawals
         lost, rate = self.evaluate(flow)
         for k, loop in enumerate(self.loops):
             if not np.abs(self.around[k]) @ rate and (excess := self.loss_around(k, lost)[1]):
                 driven = np.where(np.arange(len(flow)) == loop.closing, -direction(loop) * excess, 0.0)
-                closing[k] = direction(loop) * _rounded(float(self.branches.flows(driven)[loop.closing]))
-        return continuous(network, self.along, self.loops, closing)
+                closing[k] = _rounded(float(self.branches.flows(driven)[loop.closing]))
+        return np.asarray(closing @ of_closing + network.withdrawal @ of_withdrawals, dtype=np.float64)
 
     def heads(self, lost: Array) -> Array:
         """Return the heads that the losses along the forest leave, m."""

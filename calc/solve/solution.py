@@ -150,7 +150,7 @@ class Loop:
     Attributes
     ----------
     closing : int
-        The pipe outside the forest of pipes that closes it; of the loops, it alone has it.
+        The pipe outside the forest of pipes that closes it; no loop before has it.
     pipes, signs : tuple of int
         The pipes in the order of the walk; +1 where one is walked from its ``from`` to its ``to``, else -1.
     nodes : tuple of int

@@ -119,9 +119,10 @@ class _Page:
         self.sheet.table(f"loops-{self.case.id}", columns, rows)
         said = (
             "A forest of pipes grows from the reservoirs, pipes of least resistance first, until it holds every "
-            "junction; each open pipe left over closes one loop, or one path from the higher of two reservoirs to the "
-            "lower. A pipe walked along is walked from its beginning to its end. In the sense of a loop, flows and "
-            "losses are positive the way it is walked."
+            "junction. Each open pipe left over closes one loop, by the way of least resistance through the forest and "
+            "the pipes that closed loops before; a way that passes from one reservoir to another makes it a path, from "
+            "the higher level to the lower. A pipe walked along is walked from its beginning to its end. In the sense "
+            "of a loop, flows and losses are positive the way it is walked."
         )
         self.sheet.add(Paragraph((said,), "small"))
 
