@@ -40,8 +40,8 @@ def run(asked: argparse.Namespace) -> Outcome:
         _make(folder, contents)
     lines = [
         f"{folder}: begun from {sample.name} ({names})",
-        "Its places and figures are invented: put yours in their stead. An editor that reads YAML schemas",
-        f"completes, explains and checks what you type, by {SCHEMA}. Then:",
+        "Its places and figures are invented: put yours in their stead, the works in network.yaml first. An editor",
+        f"that reads YAML schemas completes, explains and checks what you type, by {SCHEMA}. Then:",
         f"  {NAME} inspect {folder}",
         f"  {NAME} issue {folder}",
     ]
@@ -58,7 +58,9 @@ def _sample(name: str) -> Path:
     known = samples()
     if name not in known:
         listed = ", ".join(known)
-        raise WrongCall(f"there is no sample '{name}'", f"one of {listed}", nearest(name[:100], list(known)))
+        begun = [one for one in known if name and one.startswith(name)]
+        hint = f"did you mean '{begun[0]}'?" if len(begun) == 1 else nearest(name[:100], list(known))
+        raise WrongCall(f"there is no sample '{name}'", f"one of {listed}", hint)
     return known[name]
 
 
