@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import argparse
 import json
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
@@ -13,7 +13,6 @@ from calc.account import TITLES, Finding, input_findings
 from calc.cli.outcome import Outcome, Status
 from calc.marks import Mark
 from calc.problems import Problem, ProblemsFound, underlined
-from calc.project import Project
 
 FORMAT = "headtrace-inspection/1"
 
@@ -31,15 +30,16 @@ def run(asked: argparse.Namespace) -> Outcome:
     if asked.json:
         return Outcome(said=as_data((), findings))
     count = len(findings)
-    lines = [line for finding in findings for line in _lines(finding, project)]
+    written = {name: text.splitlines() for name, text in project.texts.items()}
+    lines = [line for finding in findings for line in _lines(finding, written)]
     return Outcome(said="\n".join([*lines, f"no problems; {count} finding{'s' * (count != 1)}"]))
 
 
-def _lines(finding: Finding, project: Project) -> Iterator[str]:
+def _lines(finding: Finding, written: Mapping[str, Sequence[str]]) -> Iterator[str]:
     mark = finding.mark
     yield f"{mark or finding.place}: {finding.id} {TITLES[finding.id]}: {finding.subject}: {finding.text}"
     if mark is not None:
-        yield from underlined(mark, project.texts.get(mark.file, "").splitlines())
+        yield from underlined(mark, written.get(mark.file, ()))
 
 
 def as_data(problems: Iterable[Problem], findings: Iterable[Finding]) -> str:
