@@ -35,12 +35,51 @@ def test_a_folder_with_only_a_network_solves(inside: Inside, write: Write) -> No
     assert row[:5] == ["link", "low", "high", "−10.000", f"−{EXACT_VELOCITY:.3f}"]
 
 
-@pytest.mark.parametrize(("unit", "factor", "decimals"), [("m³/s", 1.0, 5), ("m3/h", 3600.0, 2), ("ML/d", 86.4, 3)])
+FOOT, GALLON = 0.3048, 231 * 0.0254**3
+"""The international foot and the US gallon of 231 cubic inches, by their definitions."""
+
+
+@pytest.mark.parametrize(
+    ("unit", "factor", "decimals"),
+    [
+        ("m³/s", 1.0, 5),
+        ("m3/h", 3600.0, 2),
+        ("ML/d", 86.4, 3),
+        ("gpm", 60 / GALLON, 1),
+        ("cfs", FOOT**-3, 4),
+        ("MGD", 86400 / GALLON / 1e6, 4),
+    ],
+)
 def test_flows_are_shown_in_the_unit_asked_for(
     inside: Inside, write: Write, unit: str, factor: float, decimals: int
 ) -> None:
     said = inside("solve", write(EXACT + f"display: {{flow: {unit}}}\n"))[1]
-    assert f"high gives {EXACT_FLOW * factor:.{decimals}f} {unit.replace('m3', 'm³')} to low" in said
+    printed = {"m3/h": "m³/h", "cfs": "ft³/s"}.get(unit, unit)
+    assert f"high gives {EXACT_FLOW * factor:.{decimals}f} {printed} to low" in said
+
+
+def test_us_units_are_shown_where_a_project_asks_for_them(inside: Inside, write: Write) -> None:
+    text = EXACT + "display: {units: US}\ncriteria: {velocity-max: {limit: 1 ft/s}, gradient-max: {limit: 15 m/km}}\n"
+    status, said, _ = inside("solve", write(text))
+    assert status == 1
+    assert f"high gives {EXACT_FLOW * 60 / GALLON:.1f} gpm to low" in said
+    row = next(line.split() for line in said.splitlines() if line.startswith("  link "))
+    assert row[3:5] == [f"−{10 / FOOT:.3f}", f"−{EXACT_VELOCITY / FOOT:.3f}"]
+    assert re.search(r"differences < 1 × 10\^−5 gpm and < 1 × 10\^−6 ft", said)
+    flat = " ".join(said.split())
+    assert f"{EXACT_VELOCITY / FOOT:.3f} ft/s at most 1.000 ft/s" in flat
+    assert "10.00 ft/1000 ft (1 in 100) at most 15.00 ft/1000 ft (1 in 67)" in flat  # ten metres in a kilometre
+    for unit in (" L/s", " m ", " m/s", " m/km"):
+        assert unit not in flat
+
+
+def test_data_is_in_si_whatever_is_shown(inside: Inside, write: Write) -> None:
+    told = [
+        json.loads(inside("solve", write(EXACT + f"display: {{units: {units}}}\n", units), "--json")[1])
+        for units in ("SI", "US")
+    ]
+    assert told[0]["cases"] == told[1]["cases"]
+    assert told[1]["cases"]["base"]["branches"]["link"]["head_loss"] == pytest.approx(-10.0, abs=1e-9)
 
 
 def test_a_trickle_is_not_shown_as_nothing(inside: Inside, write: Write) -> None:
