@@ -206,7 +206,7 @@ def test_each_number_of_a_ledger_replays(twins: dict[str, Account], documents: d
 def test_the_same_numbers_stand_in_both_packages(documents: dict[str, Document]) -> None:
     """Read from the pages, converted by the definitions: a table in US units is that in SI."""
     compared = 0
-    for key in ("pipes-base", "losses-base", "junctions-base", "properties", "pipes-warm"):
+    for key in ("schedule", "pipes-base", "losses-base", "junctions-base", "properties", "pipes-warm"):
         for si, us in zip(table(documents["si"], key).rows, table(documents["us"], key).rows, strict=True):
             for one, other in zip(si.cells, us.cells, strict=True):
                 a, b = figure_of(one), figure_of(other)
@@ -228,7 +228,7 @@ def same(a: Number, b: Number) -> bool:
 @pytest.mark.parametrize("name", ["dual", "dual-si"])
 def test_parallel_columns_tell_the_same(documents: dict[str, Document], name: str) -> None:
     pairs = 0
-    keys = ("pipes-", "losses-", "fittings-", "junctions-", "verdicts-", "criteria", "flows", "properties")
+    keys = ("schedule", "pipes-", "losses-", "fittings-", "junctions-", "verdicts-", "criteria", "flows", "properties")
     for key in keys:
         for held in tables(documents[name], key):
             found = list(twice(held))
@@ -404,6 +404,19 @@ def test_levels_on_a_drawing_are_those_printed_beside_them() -> None:
     # the works state these levels in metres
     stated = {"hill": 250.0, "mill": 231.0, "weir": 222.25}
     assert {one.name: one.level * FOOT for one in drawing.reservoirs} == pytest.approx(stated, rel=1e-12)
+
+
+def test_the_schedule_tells_each_pipe_as_stated() -> None:
+    rows = {
+        plain(row.cells[0]): [plain(cell) for cell in row.cells[1:]]
+        for row in table(work("laws-us").document, "schedule").rows
+    }
+    heads = [(plain(one.head), one.unit) for one in table(work("laws-us").document, "schedule").columns[3:7]]
+    assert heads == [("length", "ft"), ("bore", "in"), ("roughness", "ft"), ("f, C or n", "")]
+    # 2100 m, 300 mm and 0.0185; 950 m, 250 mm and 0.3 mm, as the works state them
+    fixed = ["hill", "meet", f"{2100 / FOOT:.1f}", f"{0.3 / INCH:.3f}", "–", "0.0185", "fixed"]
+    rough = ["meet", "mill", f"{950 / FOOT:.1f}", f"{0.25 / INCH:.3f}", f"{0.0003 / FOOT:.6f}", "–", "haaland"]
+    assert (rows["fixed-main"], rows["haaland-main"]) == (fixed, rough)
 
 
 def test_the_conventions_name_the_units_and_inputs_their_system() -> None:

@@ -7,9 +7,11 @@ from calc.components.pipe import LAW_INPUT
 from calc.ledger import Spot
 from calc.report.composer import NOTHING, Sheet, column, figure_column, name
 from calc.report.document import Heading, Paragraph, Parts, Row
+from calc.report.formats import shortest
 from calc.report.selection import shown_inputs
 
-SIZES = ("length", "bore")
+FIGURES = 6
+SIZES, ROUGHNESS = ("length", "bore"), "roughness"
 
 
 def add_schedule(sheet: Sheet, case: CaseAccount) -> None:
@@ -17,31 +19,34 @@ def add_schedule(sheet: Sheet, case: CaseAccount) -> None:
     composer = sheet.composer
     shown = shown_inputs(composer.account)
     names = [pipe for pipe in composer.account.project.pipes if shown is None or pipe in shown]
-    columns = (
+    laws = {pipe: case.network.pipes.law.word(case.network.pipes.rows.index(pipe)) for pipe in names}
+    rough = [LAW_INPUT[law] == ROUGHNESS for law in laws.values()]
+    columns = [
         column("pipe", role="statement"),
         column("from", 26, edge=True),
         column("to", 26),
         figure_column("length", composer.unit("length"), 22, edge=True),
         figure_column("bore", composer.unit("bore"), 18),
-        figure_column("roughness", composer.unit("roughness"), 22),
-        figure_column("f, C or n", width=18),
+        *([figure_column(ROUGHNESS, composer.unit(ROUGHNESS), 22)] if any(rough) else []),
+        *([figure_column("f, C or n", width=18)] if not all(rough) else []),
         column("law", 32, edge=True),
-    )
+    ]
+    kinds = [sort for sort in (True, False) if sort in rough]
     sheet.add(Heading(("Schedule of pipes",)))
-    sheet.results("schedule", columns, [_row(sheet, case, pipe) for pipe in names])
+    sheet.results("schedule", columns, [_row(sheet, case, pipe, law, kinds) for pipe, law in laws.items()])
     sheet.add(Paragraph(("What a case changes stands among the inputs.",), "small"))
 
 
-def _row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
-    composer = sheet.composer
-    record, pipes = composer.account.project.pipes[pipe], case.network.pipes
-    law = pipes.law.word(pipes.rows.index(pipe))
-    wanted = LAW_INPUT[law]
-    fields = (*SIZES, *((wanted, "") if wanted == "roughness" else ("", wanted)))
+def _row(sheet: Sheet, case: CaseAccount, pipe: str, law: str, kinds: list[bool]) -> Row:
+    """Return the row of a pipe; ``kinds`` says which columns of friction there are: of roughness, of coefficients."""
+    composer, wanted = sheet.composer, LAW_INPUT[law]
+    record = composer.account.project.pipes[pipe]
+    fields = (*SIZES, *(wanted if (wanted == ROUGHNESS) is sort else "" for sort in kinds))
     cells: list[Parts] = [(name(pipe),), (name(record.text("from")),), (name(record.text("to")),)]
     for field in fields:
         spot = _stated(sheet, case, pipe, field) if field else None
-        cells.append((composer.number(spot),) if spot else (NOTHING,))
+        form = shortest(spot.value, "", FIGURES) if spot and not spot.column.kind.unit else None
+        cells.append((composer.number(spot, form),) if spot else (NOTHING,))
     return sheet.row(*cells, (law,))
 
 
