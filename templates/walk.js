@@ -1,235 +1,252 @@
-"use strict";
-// A number's derivation, one level at a time, down to the place in a file where it was written.
-// The address of the page is the id of the number, so that Back and Forward walk too.
+// The page: the address says what is shown, so that Back and Forward are the browser's. A click or Enter acts; hovering
+// and focus only tell.
 (function () {
-  const read = (id) => JSON.parse(document.getElementById(id).textContent);
-  const books = read("ledger").columns;
-  const names = read("names");
-  const panel = document.getElementById("walk");
-  const said = document.getElementById("walk-said");
-  const THIN = "\u202f", MINUS = "\u2212";
-  let returnTo = null, keyed = false;
-
-  const idOf = (k, r) => {  // a section that stands once has no row; a column of "#n" belongs to that trial
-    const column = books[k], [group, ...rest] = column.name.split("."), of = column.of || "";
-    const [subject, trial] = !of ? [column.rows[r], ""] : of.startsWith("#") ? [column.rows[r], of] : [of, "#" + column.rows[r]];
-    const words = [group, subject, rest.join(".")].filter(Boolean).join(".");
-    return words + (column.case ? "@" + column.case : "") + trial;
+  const $ = (selector) => document.querySelector(selector);
+  const book = readBook(JSON.parse($("#book").textContent)), set = makeSetting(book);
+  const main = $("main"), panel = $("#account"), body = document.body;
+  const tell = (text) => {
+    $("#told").textContent = "";
+    setTimeout(() => { $("#told").textContent = text; }, 30);
   };
-  const at = new Map();
-  books.forEach((column, k) => column.rows.forEach((_, r) => {
-    const id = idOf(k, r);
-    if (!at.has(id)) { at.set(id, { k, r, id }); }
-  }));
+  const ledger = makeLeaves(book, set, main), account = makeAccount(book, set, panel, tell, marks);
+  let current = -1, keyed = false, following = -1;
 
-  // --- words and numbers
-  function written(value, figures) {
-    if (value === 0) { return "0"; }
-    const size = Math.abs(value);
-    let text;
-    if (size >= 1e-3 && size < 1e7) {
-      text = Number(size.toPrecision(figures)).toString();
-    } else {
-      const [mantissa, power] = Number(size.toPrecision(figures)).toExponential().split("e");
-      text = `${mantissa} \u00d7 10^${String(Number(power)).replace("-", MINUS)}`;
-    }
-    const [whole, rest] = text.split(".");
-    const grouped = /^\d{5,}$/.test(whole) ? whole.replace(/\B(?=(\d{3})+$)/g, THIN) : whole;
-    return (value < 0 ? MINUS : "") + grouped + (rest === undefined ? "" : "." + rest);
-  }
-  function numeral(text) {  // a power of ten is raised
-    const [mantissa, power] = text.split("10^");
-    const span = make("span", power === undefined ? text : mantissa + "10");
-    if (power !== undefined) { span.append(make("span", "^", "h"), make("sup", power)); }
-    return span;
-  }
-  function amount(spot, figures) {
-    const column = books[spot.k];
-    const span = make("span", numeral(written(column.values[spot.r], figures)), "nw");
-    if (column.unit) { span.append(make("span", THIN + column.unit, "u")); }
-    return span;
-  }
-  const called = (column) => names.words[column.name] || column.name.split(".").slice(1).join(" ").replace(/_/g, " ");
-
-  // --- elements
-  function make(tag, content, manner) {
-    const element = document.createElement(tag);
-    if (manner) { element.className = manner; }
-    for (const part of [].concat(content)) { element.append(part); }
-    return element;
-  }
-  function letter(text) {
-    const bars = text.startsWith("|") && text.endsWith("|");
-    const [stem, below] = text.replace(/^\||\|$/g, "").split("_");
-    const span = make("span", [bars ? "|" : "", make("i", stem)], "sy");
-    if (below) { span.append(make("sub", below.replace("-", MINUS))); }
-    if (bars) { span.append("|"); }
-    return span;
-  }
-  function link(href, content, manner) {
-    const a = make("a", content, manner);
-    a.href = href;
-    return a;
-  }
-  function placed(text) {  // file:line:column as a link into the listing, where there is one
-    const [, file, line] = /^(.*):(\d+):\d+$/.exec(text) || [];
-    const target = file && document.getElementById(`at-${file}:${line}`);
-    return target ? link("#" + encodeURIComponent(target.id), text, "linked") : text;
+  const inSight = () => main.offsetParent !== null;
+  const hash = (id) => `#${encodeURIComponent(id)}`;
+  const here = () => { try { return decodeURIComponent(location.hash.slice(1)); } catch { return ""; } };
+  function go(id, byKey) {
+    keyed = byKey;
+    if (here() === id) { follow(); } else { location.hash = encodeURIComponent(id); }
   }
 
-  // --- origins
-  function input(view, r) {
-    if (view.column !== undefined) {
-      const row = Array.isArray(view.rows) ? view.rows[r] : view.row !== undefined ? view.row : r;
-      return { k: view.column, r: row };
+  // --- where it goes: counted by section, marked in the margin
+  function marks(i, place) {
+    place.hidden = i === null;
+    if (i === null) { following = -1; ledger.mark(new Set()); return; }
+    following = i;
+    const reached = book.reach(i), lines = reached.map(book.line).filter(Boolean), sections = new Map();
+    for (const line of new Set(lines)) {
+      const section = line.split(".")[0], held = sections.get(section) || { count: 0, first: line };
+      sections.set(section, { count: held.count + 1, first: held.first });
     }
-    return view.columns[r] === null ? null : { k: view.columns[r], r: view.rows[r] };
-  }
-  function listed(title, entries) {
-    const list = make("ul", entries.map(({ spot, sign }) => {
-      const column = books[spot.k], id = idOf(spot.k, spot.r);
-      const what = make("span", [called(column), make("small", id)], "what");
-      return make("li", link("#" + encodeURIComponent(id), [make("span", sign || "", "sign"), what, make("span", amount(spot, 7), "amount")]));
-    }));
-    return entries.length ? [make("h3", title), list] : [];
-  }
-  function filled(equation, spots, result, title, note) {
-    const template = document.querySelector(`template[data-equation="${CSS.escape(equation)}"]`);
-    if (!template) { return []; }
-    const copy = template.content.cloneNode(true);
-    for (const slot of copy.querySelectorAll(".slot")) {
-      const spot = spots.get(slot.dataset.name) || (result && slot.dataset.name === result.unknown ? result.spot : null);
-      const below = spot && books[spot.k].values[spot.r] < 0;
-      slot.replaceChildren(...(spot ? [below ? "(" : "", amount(spot, 7), below ? ")" : ""] : ["?"]));
-    }
-    return [make("h3", "formula"), make("p", title), copy.querySelector(".symbols"), note, make("h3", "numbers put in, in SI"), copy.querySelector(".worked")];
-  }
-  function derived(origin, spot) {
-    const letters = names.letters[origin.equation] || {};
-    const inputs = new Map(Object.entries(origin.inputs).map(([name, view]) => [name, input(view, spot.r)]).filter(([name, one]) => one && name in letters));
-    const regime = origin.regime ? `, ${origin.regime}` : "";
-    return [
-      ...filled(origin.equation, inputs, origin.root_of ? { unknown: origin.root_of, spot } : null, origin.title + regime,
-        make("p", `Source: ${origin.source}. Range: ${origin.range}.`, "note")),
-      make("p", [origin.root_of ? "zero at " : "= ", amount(spot, 9)]),
-      ...listed("inputs", [...inputs].map(([name, one]) => ({ spot: one, sign: letter(letters[name]) }))),
-    ];
-  }
-  function stated(origin, spot) {
-    const how = origin.kind === "library" ? "as shipped with the program" : "as written";
-    const parts = [make("h3", how), make("p", origin.written[spot.r], "as-written"), make("p", ["at ", placed(origin.marks[spot.r])])];
-    if (origin.kind === "converted") {
-      const offset = origin.offsets[spot.r] ? ` + ${written(origin.offsets[spot.r], 12)}` : "";
-      const turned = `${written(origin.numbers[spot.r], 12)} ${origin.units[spot.r]} \u00d7 ${written(origin.factors[spot.r], 12)}${offset} = `;
-      parts.push(make("p", [turned, amount(spot, 12)]));
-    }
-    if (origin.bases[spot.r]) { parts.push(make("p", `Basis: ${origin.bases[spot.r]}`, "note")); }
-    return parts;
-  }
-  function combined(origin, spot) {
-    const terms = [];
-    origin.into.forEach((row, k) => {
-      const one = row === spot.r ? input(origin.terms, k) : null;
-      if (one) { terms.push({ spot: one, sign: origin.operation === "sum" ? (origin.signs[k] < 0 ? MINUS : "+") : "" }); }
+    const entries = [...sections].map(([section, held]) => {
+      const a = set.make("a", "", `${section} ${ledger.named(section)}`);
+      a.href = `#line-${held.first}`;
+      return set.make("li", "", set.make("span", "", a), set.make("span", "v", `${held.count} ${held.count === 1 ? "line" : "lines"}`));
     });
-    return [make("h3", origin.operation), make("p", origin.meaning), ...listed("terms", terms)];
-  }
-  function solved(origin, spot) {
-    const column = books[spot.k], subject = column.of || column.rows[spot.r], proofs = [];
-    books.forEach((other, k) => {
-      if (!origin.proof.includes(other.name) || other.of || other.case !== column.case) { return; }
-      const r = other.rows.indexOf(subject);
-      if (r >= 0) { proofs.push({ spot: { k, r } }); }
-    });
-    const rests = Object.values(origin.inputs).map(view => ({ spot: input(view, spot.r) })).filter(one => one.spot);
-    return [make("h3", "found by iteration"), make("p", origin.statement), make("p", `${origin.method}, ${origin.iterations} iterations`, "note"), ...listed("proof", proofs), ...listed("rests on", rests)];
-  }
-  function origins(spot) {
-    const origin = books[spot.k].origin;
-    switch (origin.kind) {
-      case "derived": return derived(origin, spot);
-      case "total": return combined(origin, spot);
-      case "solved": return solved(origin, spot);
-      case "judged": return [make("h3", "verdict"), make("p", `met where the margin is not negative: ${books[spot.k].values[spot.r] ? "met" : "not met"}`), ...listed("margin", [input(origin.margin, spot.r)].filter(Boolean).map((one) => ({ spot: one })))];
-      case "program": return [make("h3", "of the program"), make("p", origin.statement)];
-      default: return stated(origin, spot);
-    }
+    const said = `${reached.length} numbers depend on it, on ${new Set(lines).size} lines`;
+    place.replaceChildren(set.make("p", "", `${said}, marked `, set.make("span", "sign-mk", "\u203a"), " in the margin."), set.make("ul", "plain", entries));
+    ledger.mark(new Set(lines));
+    tell(said);
   }
 
-  // --- the panel
-  function show(spot) {
-    const column = books[spot.k], printed = anchor(spot.id);
-    const unit = printed ? printed.dataset.as.split("|")[0] : "";
-    const value = printed ? [numeral(printed.textContent), make("span", unit ? THIN + unit : "", "u")] : amount(spot, 7);
-    const line = names.at[spot.id];
-    const heading = make("h2", called(column));
-    heading.tabIndex = -1;
-    const inside = keyed || panel.contains(document.activeElement);
-    keyed = false;
-    said.replaceChildren(
-      heading, make("p", spot.id, "id"), make("p", value, "value"),
-      make("p", ["in full ", amount(spot, 17)], "full"),
-      ...(line ? [make("p", ["on line ", link("#line-" + line, line, "linked")], "note")] : []),
-      ...origins(spot));
-    panel.hidden = false;
+  // --- what the address says
+  function leave() {
+    body.classList.remove("turned-to");
+    takePlace();
+  }
+  function takePlace() {  // where the account is a leaf of its own it is the matter of the page
+    const alone = body.classList.contains("turned-to") && !inSight();
+    panel.toggleAttribute("role", alone);
+    if (alone) { panel.setAttribute("role", "main"); }
+    panel.querySelector("h2").setAttribute("aria-level", alone ? "1" : "2");
+    panel.querySelectorAll("h3").forEach((one) => one.setAttribute("aria-level", alone ? "2" : "3"));
+  }
+  function open(i) {
+    const anchor = set.printed(i)?.anchor || null, unit = anchor && ledger.unitOf(anchor), inside = panel.contains(document.activeElement) || keyed;
+    const again = current === i && following === i;
+    current = i;
+    if (anchor) {
+      ledger.show(ledger.leafOf(anchor));
+      ledger.rove(unit);
+    } else if (ledger.shown() < 0) { ledger.show(0); }
+    ledger.point(anchor);
+    if (!again && following >= 0) { following = -1; ledger.mark(new Set()); }
+    const title = account.show(i, marks);
+    body.classList.add("turned-to");
     panel.scrollTop = 0;
-    document.body.classList.add("walking");
-    mark(spot.id);
-    if (inside) { heading.focus({ preventScroll: true }); }
-    if (printed && !visible(printed)) { printed.scrollIntoView({ block: "center" }); }
+    takePlace();
+    set.reachable(panel);
+    contents();
+    if (inSight()) {
+      if (unit) { bring(unit); }
+      if (inside) { title.focus({ preventScroll: true }); }
+    } else {
+      scrollTo(0, 0);
+      title.focus({ preventScroll: true });
+    }
+    keyed = false;
   }
-  function close() {
-    panel.hidden = true;
-    document.body.classList.remove("walking");
-    mark(null);
-    if (returnTo) { returnTo.focus({ preventScroll: true }); }
+  function bring(unit) {
+    const box = unit.getBoundingClientRect(), top = $("header.top").getBoundingClientRect().bottom;
+    if (box.top < Math.max(top, 0) || box.bottom > innerHeight - 16) { unit.scrollIntoView({ block: "center" }); }
   }
-  const anchors = [...document.querySelectorAll("data.n")];
-  const anchor = (id) => anchors.find((one) => one.value === id);
-  function mark(id) {
-    for (const one of anchors) { one.toggleAttribute("aria-current", one.value === id); }
-  }
-  function visible(element) {
-    const box = element.getBoundingClientRect();
-    const floor = matchMedia("(max-width: 1179px)").matches ? innerHeight * 0.48 : innerHeight;
-    return box.top >= 0 && box.bottom <= floor;
+  function reveal(element) {  // a section, a line without a number, a line of a file
+    const k = ledger.leafOf(element);
+    leave();
+    ledger.show(k);
+    main.querySelectorAll(".at").forEach((one) => one.classList.remove("at"));
+    if (element.id.startsWith("at-")) { element.classList.add("at"); }
+    if (element.id.startsWith("line-")) { ledger.rove(element); } else { ledger.rove(ledger.lines()[0], true); }
+    contents();
+    if (element.matches("section")) { scrollTo(0, 0); } else { element.scrollIntoView({ block: "center" }); }
+    const target = element.matches("section") ? element.querySelector("h1") : element.querySelector(".lno") || element;
+    if (!target.matches("a")) { target.tabIndex = -1; }
+    target.focus({ preventScroll: true });
   }
   function follow() {
-    const id = decodeURIComponent(location.hash.slice(1));
-    const spot = at.get(id);
-    if (spot) { show(spot); } else if (id) { document.getElementById(id)?.scrollIntoView(); } else { close(); }
+    const asked = here(), element = asked && document.getElementById(asked), inMain = element && main.contains(element), i = asked ? book.find(asked) : undefined;
+    if (i !== undefined) { open(i); return; }
+    const own = inMain && asked.startsWith("line-") ? ledger.own(element) : null;
+    if (own) { open(ledger.spot(own)); return; }
+    if (inMain && element.id) { reveal(element); return; }
+    const part = /^leaf-(\d+)$/.exec(asked);
+    if (part && ledger.leaves[part[1] - 1]) { turnTo(part[1] - 1); return; }
+    leave();
+    if (ledger.shown() < 0 || !asked) { turnTo(Math.max(ledger.shown(), 0), true); }
+    toLine();
   }
-  function go(id) {
-    if (decodeURIComponent(location.hash.slice(1)) === id) { follow(); } else { location.hash = encodeURIComponent(id); }
+  function turnTo(k, quiet) {
+    leave();
+    ledger.show(k);
+    ledger.rove(ledger.lines()[0], true);
+    contents();
+    if (!quiet) {
+      scrollTo(0, 0);
+      const title = ledger.leaves[k].section.querySelector("h1");
+      title.tabIndex = -1;
+      title.focus({ preventScroll: true });
+    }
+  }
+  function toLine() {  // back from the account to the line in hand
+    leave();
+    const unit = ledger.roving();
+    if (!unit || current < 0) { return; }
+    bring(unit);
+    (unit.querySelector("[aria-current]") || unit.querySelector(".lno, data"))?.focus({ preventScroll: true });
   }
 
-  for (const one of anchors) {
-    if (at.has(one.value)) {
-      one.tabIndex = 0;
-      one.setAttribute("role", "button");
-      one.setAttribute("aria-label", `${one.textContent}, ${one.value}`);
-    }
+  // --- leaves and cases
+  const leafId = (k) => (ledger.leaves[k].part > 1 ? `leaf-${k + 1}` : ledger.leaves[k].section.id);
+  const turn = set.make("nav", "turn"), choice = $("#leaf"), cases = $("#case");
+  turn.setAttribute("aria-label", "Leaves");
+  main.append(turn);
+  ledger.leaves.forEach((leaf, k) => choice.append(new Option(ledger.said(leaf), k)));
+  book.cases.forEach(([held]) => cases.append(new Option(held, held)));
+  cases.closest("label").hidden = book.cases.length < 2;
+  function contents() {
+    const k = ledger.shown(), a = (to, said, manner) => {
+      const made = set.make("a", manner, said);
+      made.href = hash(leafId(to));
+      return made;
+    };
+    choice.value = String(k);
+    set.reachable(ledger.leaves[k].section);
+    const held = (current >= 0 && book.caseOf(current)) || ledger.caseShown();
+    if (held) { cases.value = held; }
+    turn.replaceChildren(...[k > 0 && a(k - 1, `\u2039 ${ledger.said(ledger.leaves[k - 1])}`, "pv"), k + 1 < ledger.leaves.length && a(k + 1, `${ledger.said(ledger.leaves[k + 1])} \u203a`, "nx")].filter(Boolean));
   }
-  for (const list of document.querySelectorAll(".ad")) {  // addresses become links to their lines
-    for (const run of list.querySelectorAll(".nw")) {
-      run.replaceChildren(...run.textContent.split(/(\d+\.\d+)/).map((part) => (/^\d+\.\d+$/.test(part) ? link("#line-" + part, part) : part)));
-    }
+  function leafBy(n) {
+    const k = ledger.shown() + n;
+    if (ledger.leaves[k]) { go(leafId(k), true); } else { tell(n > 0 ? "The last leaf" : "The first leaf"); }
   }
+  function switchCase(held) {
+    const same = current >= 0 && book.caseOf(current) ? book.inCase(current, held) : undefined, k = ledger.caseLeaf(held);
+    if (same !== undefined) { go(book.id(same)); } else if (k >= 0) { go(leafId(k)); }
+    tell(`Case ${held}`);
+  }
+  choice.addEventListener("change", () => go(leafId(Number(choice.value))));
+  cases.addEventListener("change", () => switchCase(cases.value));
+
+  // --- lines, one by one; the column is kept
+  function step(n) {
+    const all = ledger.lines(), k = all.indexOf(ledger.roving()), unit = all[k + n];
+    if (!unit) {
+      if (!ledger.leaves[ledger.shown() + n]) { tell(n > 0 ? "The last line" : "The first line"); return; }
+      ledger.show(ledger.shown() + n);
+      contents();
+      take(ledger.lines()[n > 0 ? 0 : ledger.lines().length - 1]);
+      return;
+    }
+    const cell = document.activeElement.closest?.("td") || ledger.roving()?.querySelector("[aria-current]")?.closest("td");
+    const column = cell && cell.closest("tr") === ledger.roving() && !cell.matches(".no") ? cell.cellIndex : -1;
+    take(unit, column > 0 && unit.cells?.[column]?.querySelector("data:not(.eq data)"));
+  }
+  function take(unit, kept) {
+    if (!unit) { return; }
+    const anchor = kept || ledger.own(unit);
+    ledger.rove(unit);
+    bring(unit);
+    if (anchor) {
+      history.replaceState(null, "", hash(book.id(ledger.spot(anchor))));
+      current = ledger.spot(anchor);
+      ledger.point(anchor);
+      if (matchMedia("(min-width: 68rem)").matches) { account.show(current, marks); }
+    }
+    (kept || unit.querySelector(".lno") || anchor)?.focus({ preventScroll: true });
+  }
+
+  // --- clicks and keys
+  makeFind(book, set, ledger.leaves.filter((leaf) => leaf.part < 2).map((leaf) => [ledger.number(leaf.section), leaf.title]), $("#q"), $("#hits"), tell);
   document.addEventListener("click", (event) => {
-    const one = event.target.closest("data.n[tabindex]");
-    if (one) { returnTo = one; go(one.value); }
-  });
-  document.addEventListener("keydown", (event) => {
-    if (event.key === "Escape" && !panel.hidden) { close(); return; }
-    const one = event.target.closest?.("data.n[tabindex]");
-    if (one && (event.key === "Enter" || event.key === " ")) {
+    const anchor = event.target.closest("main data"), a = event.target.closest("a[href^='#']");
+    if (anchor) { go(book.id(ledger.spot(anchor)), event.detail === 0); return; }
+    if (a && !a.matches(".skip")) {
       event.preventDefault();
-      returnTo = one;
-      keyed = true;
-      go(one.value);
+      go(decodeURIComponent(a.hash.slice(1)), event.detail === 0);
     }
   });
-  document.getElementById("walk-close").addEventListener("click", close);
+  main.addEventListener("mouseover", (event) => {
+    const anchor = event.target.closest("data:not([title])");
+    if (anchor) { const i = ledger.spot(anchor); anchor.title = `${book.words(i)}, ${account.about(i)}`; }
+  });
+  let letters = true;
+  $("#letters").addEventListener("change", (event) => { letters = event.target.checked; });
+  const acts = {
+    j: () => step(1), k: () => step(-1), "]": () => leafBy(1), "[": () => leafBy(-1), b: () => history.back(), f: () => history.forward(),
+    o: () => (current >= 0 && !inSight() ? null : current >= 0 ? enter() : null), c: () => panel.querySelector("[data-do=copy]")?.click(), d: () => panel.querySelector("[data-do=where]")?.click(),
+  };
+  function enter() {
+    if (account.current() !== current) { account.show(current, marks); }
+    body.classList.add("turned-to");
+    takePlace();
+    panel.querySelector("h2")?.focus();
+  }
+  document.addEventListener("keydown", (event) => {
+    const { target, key } = event;
+    if (event.ctrlKey || event.metaKey || event.altKey || target.matches("input, select, textarea") || $("#keys").open) { return; }
+    const inLedger = main.contains(target), inAccount = panel.contains(target);
+    if (inAccount && account.walkTree(event)) { event.preventDefault(); return; }
+    if (letters && key === "/") { $("#q").focus(); $("#q").select(); event.preventDefault(); return; }
+    if (letters && key === "?") { $("#keys").showModal(); event.preventDefault(); return; }
+    if (key === "Escape" && inAccount) { toLine(); return; }
+    if (key === "Enter" && target.matches("main data")) { go(book.id(ledger.spot(target)), true); event.preventDefault(); return; }
+    if (!inLedger && !inAccount && target !== body) { return; }
+    if (inLedger && target.closest("tr, li, p, figcaption, div") && (key === "ArrowDown" || key === "ArrowUp") && ledger.roving()?.contains(target)) {
+      step(key === "ArrowDown" ? 1 : -1);
+    } else if (letters && Object.hasOwn(acts, key)) { acts[key](); } else { return; }
+    event.preventDefault();
+  });
+  $("#back").addEventListener("click", () => history.back());
+  $("#forward").addEventListener("click", () => history.forward());
+  $("#print").addEventListener("click", () => print());
+  $("#list").addEventListener("click", () => $("#keys").showModal());
+  $("#shut").addEventListener("click", () => $("#keys").close());
+  $("#return").addEventListener("click", toLine);
+  $(".skip").addEventListener("click", (event) => {
+    event.preventDefault();
+    (ledger.roving()?.querySelector("a, data") || main).focus();
+  });
   addEventListener("hashchange", follow);
-  if (location.hash) { follow(); }
-})();
+  history.scrollRestoration = "manual";
+  const measured = () => {
+    document.documentElement.style.setProperty("--top", `${getComputedStyle($("header.top")).position === "sticky" ? $("header.top").offsetHeight : 0}px`);
+    takePlace();
+    set.reachable(document);
+  };
+  addEventListener("resize", measured);
+  measured();
+  follow();
+  document.fonts.ready.then(measured);
+  document.documentElement.classList.add("ready");
+}());

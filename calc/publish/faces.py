@@ -12,6 +12,9 @@ UPRIGHT, ITALIC, MONO = "LedgerText-Regular", "LedgerText-Italic", "LedgerMono-R
 WORDS = (UPRIGHT, ITALIC, "LedgerText-SemiBold", "LedgerSmall-Regular", "LedgerDisplay-Regular")
 FEATURES = ["kern", "liga", "ccmp", "locl", "mark", "mkmk", "lnum", "tnum", "smcp", "c2sc"]
 """Those that the styles ask for, and those that are always on."""
+KERNED = ("kern", "mark", "mkmk")
+SET_CLOSE = (UPRIGHT, "LedgerDisplay-Regular")
+"""Faces in which the screen sets pairs of letters close: running text and titles; the rest are words and figures."""
 UNKNOWN = 0.6  # em, the width taken for a character that a face lacks
 TAB = 4  # blanks that a tab stands for in a listing
 
@@ -74,16 +77,18 @@ def shown(text: str, *, listing: bool = False) -> str:
 
 
 def cut(face: str, signs: frozenset[int]) -> bytes:
-    """Return a face as a web font that holds only some signs, with their small capitals, figures and ligatures."""
+    """Return a face as a web font that holds only some signs, with their small capitals and figures."""
     from fontTools.subset import Options, Subsetter
     from fontTools.ttLib import TTFont
 
-    options = Options(layout_features=FEATURES, hinting=False, recalc_timestamp=False, notdef_outline=True)
+    features = [feature for feature in FEATURES if feature not in KERNED or face in SET_CLOSE]
+    options = Options(layout_features=features, hinting=False, recalc_timestamp=False, notdef_outline=True)
+    options.name_IDs = []
     made = io.BytesIO()
     with TTFont(places.fonts() / f"{face}.ttf", lazy=True, recalcTimestamp=False) as font:
         cutter = Subsetter(options)
         cutter.populate(unicodes=signs)
         cutter.subset(font)
-        font.flavor = "woff"
+        font.flavor = "woff2"
         font.save(made)
     return made.getvalue()

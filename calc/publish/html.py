@@ -17,10 +17,10 @@ from calc.problems import Unresolved
 from calc.publish import places
 from calc.publish.columns import MEASURE, TURNED, Widths, widths
 from calc.publish.faces import shown
-from calc.publish.markup import hidden, named, own
+from calc.publish.markup import anchored, hidden, named, own
 from calc.publish.parts import Writer
 from calc.publish.tables import Sheet
-from calc.report.document import Block, Document, Figure, Index, Listing, Masthead, Section, Table, collapsed
+from calc.report.document import Block, Document, Figure, Index, Listing, Masthead, Number, Section, Table, collapsed
 
 RUNNING = 80
 """Most characters of a section's title in the head of its pages."""
@@ -173,7 +173,9 @@ def html(
     picture: Callable[[Figure], Markup],
     *,
     head: Markup,
+    top: Markup | None = None,
     tail: Markup | None = None,
+    anchored: Callable[[str, Number], Markup] = anchored,
 ) -> str:
     """Return a document as a page.
 
@@ -184,8 +186,10 @@ def html(
         Holds every number that the document prints.
     picture : callable
         Gives the markup of a figure's drawing.
-    head, tail : Markup
-        What paper or screen add to the head and after the text.
+    head, top, tail : Markup
+        What paper or screen add to the head, before and after the text.
+    anchored : callable
+        Sets a number as the anchor of its id.
 
     Raises
     ------
@@ -194,9 +198,9 @@ def html(
     """
     if document.paper not in MEASURE:
         raise Unresolved(f"no paper is called '{document.paper}'")
-    page = Page(document, Writer(document, ledger), picture)
+    page = Page(document, Writer(document, ledger, anchored), picture)
     template = environment().get_template("package.html")
-    return template.render(**page.words(), head=head, tail=tail or Markup())
+    return template.render(**page.words(), head=head, top=top or Markup(), tail=tail or Markup())
 
 
 def heading(document: Document) -> str:

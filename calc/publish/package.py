@@ -61,7 +61,7 @@ def publish(
     books = exported(ledger)
     found = {"results.json": written_out(results), "ledger.json": written_out(books)}
     sheet = pdf.sheet_html(document, ledger, pictures)
-    page = screen.page(document, ledger, pictures, books)
+    page = screen.page(document, ledger, pictures)
     if seal_document(sheet, document, ledger) != seal_document(page, document, ledger):
         raise IntegrityError("paper and screen do not print the same numbers")
     inside = {name: pdf.Embedded(content, "Source", "Input file as read") for name, content in inputs.items()}

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 
 from markupsafe import Markup
@@ -37,10 +37,13 @@ class Writer:
         Resolves citations.
     ledger : Ledger
         Resolves the ids of numbers.
+    anchored : callable
+        Sets a number as the anchor of an id.
     """
 
     document: Document
     ledger: Ledger
+    anchored: Callable[[str, Number], Markup] = markup.anchored
 
     def said(self, parts: Iterable[Part], measure: float = PAGE, column: str | None = None) -> Markup:
         """Return parts side by side.
@@ -57,7 +60,7 @@ class Writer:
 
     def anchor(self, number: Number) -> Markup:
         """Return a number as an anchor of the id under which the ledger holds it."""
-        return markup.anchored(self.ledger.spot(number.ref).id, number)
+        return self.anchored(self.ledger.spot(number.ref).id, number)
 
     def _part(self, part: Part, measure: float, column: str | None) -> Markup:  # noqa: PLR0911 - one line for each part
         match part:

@@ -13,6 +13,7 @@ from html.parser import HTMLParser
 
 from calc.ledger import Ledger
 from calc.problems import IntegrityError, Unresolved
+from calc.publish.carried import Carried, carried
 from calc.publish.parts import numbers
 from calc.report.document import (
     Block,
@@ -80,8 +81,11 @@ def seal(page: str, ledger: Ledger) -> int:
 
 
 def proved(page: str, ledger: Ledger) -> list[str]:
-    """Return the ids of the numbers on a page in order, each proved as by `seal`."""
-    reader = _Reader(ledger)
+    """Return the ids of the numbers on a page in order, each proved as by `seal`; so is all that the page carries."""
+    held = carried(page)
+    if held is not None:
+        held.prove(ledger)
+    reader = _Reader(ledger, held or Carried())
     reader.feed(page)
     reader.close()
     if reader.stack:
@@ -137,9 +141,10 @@ def _texts(block: Block) -> Iterator[Parts]:
 class _Reader(HTMLParser):
     """Reads a page from its text alone."""
 
-    def __init__(self, ledger: Ledger) -> None:
+    def __init__(self, ledger: Ledger, held: Carried) -> None:
         super().__init__(convert_charrefs=True)
         self.ledger = ledger
+        self.held = held
         self.stack: list[_Open] = []
         self.proved: list[str] = []
         self.last: _Printed | None = None
@@ -153,10 +158,11 @@ class _Reader(HTMLParser):
         classes = set((known.get("class") or "").split())
         over = self.stack[-1] if self.stack else _Open("")
         here = _Open(tag, over.free or bool(classes & EXEMPT) or LISTING in classes, over.unread or tag in UNREAD)
-        if tag == "data" and "n" in classes:
+        if tag == "data":
+            named = known.get("value") or ""
             if any(element.number for element in self.stack):
-                raise IntegrityError(f"a number stands inside another: {known.get('value')}")
-            here.number = _Printed(known.get("value") or "", known.get("data-as") or "")
+                raise IntegrityError(f"a number stands inside another: {named}")
+            here.number = _Printed(named, known["data-as"] or "") if "data-as" in known else self._short(named)
         here.unit = tag == "span" and "u" in classes
         self.stack.append(here)
 
@@ -190,6 +196,10 @@ class _Reader(HTMLParser):
             self._prove_unit(data)
         elif not inside.free and any(character.isdecimal() for character in data):
             raise IntegrityError(f"'{data.strip()}' is printed and has no line in the ledger; near '{self._near()}'")
+
+    def _short(self, key: str) -> _Printed:
+        """Return a number that is named by its position in what the page carries."""
+        return _Printed(*self.held.named(key))
 
     def _prove(self, number: _Printed) -> None:
         try:

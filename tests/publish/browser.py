@@ -1,118 +1,93 @@
-"""A real browser, driven through a pipe by its own protocol."""
+"""A real browser: the system's own Chromium, driven by Playwright, and what it complains of."""
 
 from __future__ import annotations
 
-import base64
 import json
-import os
-import select
 import shutil
-import subprocess
-import time
+from collections.abc import Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass, field
+from importlib import resources
 from pathlib import Path
 from typing import Any
+from urllib.parse import quote
 
-NAMES = ("chromium", "chromium-browser", "google-chrome")
-PATIENCE = 30.0
-KEYS = {"Enter": 13, "Escape": 27, "Tab": 9}
+from playwright.sync_api import Browser, Page, sync_playwright
+
+NAMES = ("chromium", "google-chrome", "google-chrome-stable", "chromium-browser")
+LOCAL = ("file:", "data:", "about:")
 
 
-class Browser:
-    """One page in a browser without a window; its profile is made in ``home``."""
+@contextmanager
+def chromium() -> Iterator[Browser]:
+    program = next((found for name in NAMES if (found := shutil.which(name))), None)
+    assert program, "a Chromium is needed for these tests"
+    with sync_playwright() as driver:
+        browser = driver.chromium.launch(executable_path=program, args=["--no-sandbox"])
+        yield browser
+        browser.close()
 
-    def __init__(self, home: Path) -> None:
-        program = next((found for name in NAMES if (found := shutil.which(name))), None)
-        assert program, "a Chromium is needed for these tests"
-        read_there, self._write = os.pipe()
-        self._read, write_there = os.pipe()
-        flags = "--headless --no-sandbox --disable-gpu --remote-debugging-pipe --no-first-run"
-        command = f'exec "$0" {flags} --user-data-dir="$1" 3<&{read_there} 4>&{write_there}'
-        self._process = subprocess.Popen(
-            ["bash", "-c", command, program, str(home)],
-            pass_fds=(read_there, write_there),
-            stdout=subprocess.DEVNULL,
-            stderr=subprocess.DEVNULL,
+
+@dataclass
+class Watched:
+    """A page that is open, and every error and every address beyond this machine's files that it asked for."""
+
+    page: Page
+    complaints: list[str] = field(default_factory=list)
+    blocked: list[str] = field(default_factory=list)
+
+    def do(self, expression: str, given: Any = None) -> Any:  # noqa: ANN401
+        return self.page.evaluate(expression, given)
+
+    def go(self, ref: str) -> None:
+        """Go to an address within the page, and wait until it is shown."""
+        self.do(
+            "id => new Promise(done => { addEventListener('hashchange', () => setTimeout(done), {once: true}); "
+            "location.hash = encodeURIComponent(id); })",
+            ref,
         )
-        os.close(read_there)
-        os.close(write_there)
-        self._count = 0
-        self._kept = b""
-        self._session = ""
-        self.events: list[dict[str, Any]] = []
-        target = self.call("Target.createTarget", url="about:blank")["targetId"]
-        self._session = self.call("Target.attachToTarget", targetId=target, flatten=True)["sessionId"]
-        for domain in ("Page", "Runtime", "Log", "Network"):
-            self.call(f"{domain}.enable")
 
-    def close(self) -> None:
-        self._process.terminate()
-        self._process.wait(PATIENCE)
-        os.close(self._read)
-        os.close(self._write)
+    @property
+    def ref(self) -> str:
+        """The id in the address."""
+        return str(self.do("decodeURIComponent(location.hash.slice(1))"))
 
-    def call(self, method: str, **params: Any) -> dict[str, Any]:  # noqa: ANN401
-        self._count += 1
-        message = {"id": self._count, "method": method, "params": params}
-        if self._session:
-            message["sessionId"] = self._session
-        os.write(self._write, json.dumps(message).encode() + b"\0")
-        while (heard := self._next()).get("id") != self._count:
-            self.events.append(heard)
-        assert "error" not in heard, heard
-        return dict(heard["result"])
-
-    def _next(self) -> dict[str, Any]:
-        while b"\0" not in self._kept:
-            assert select.select([self._read], [], [], PATIENCE)[0], "the browser does not answer"
-            self._kept += os.read(self._read, 1 << 20)
-        first, _, self._kept = self._kept.partition(b"\0")
-        return dict(json.loads(first))
-
-    def open(self, page: Path, hash_: str = "", width: int = 1280, height: int = 900) -> None:
-        self.call("Emulation.setDeviceMetricsOverride", width=width, height=height, deviceScaleFactor=1, mobile=False)
-        self.call("Page.navigate", url="about:blank")
-        self.call("Page.navigate", url=page.as_uri() + hash_)
-        self.wait(f"document.readyState === 'complete' && location.href.startsWith({json.dumps(page.as_uri())})")
-        self.do("document.fonts.ready.then(() => true)")
-
-    def do(self, expression: str) -> Any:  # noqa: ANN401
-        found = self.call("Runtime.evaluate", expression=expression, returnByValue=True, awaitPromise=True)
-        assert "exceptionDetails" not in found, found["exceptionDetails"]
-        return found["result"].get("value")
-
-    def wait(self, expression: str) -> None:
-        end = time.monotonic() + PATIENCE
-        while not self.do(expression):
-            assert time.monotonic() < end, f"never true: {expression}"
-            time.sleep(0.03)
-
-    def key(self, name: str) -> None:
-        for kind in ("keyDown", "keyUp"):
-            text = "\r" if name == "Enter" and kind == "keyDown" else ""
-            self.call("Input.dispatchKeyEvent", type=kind, key=name, windowsVirtualKeyCode=KEYS[name], text=text)
-
-    def click(self, selector: str) -> None:
-        at = self.do(
-            f"(() => {{ const e = document.querySelector({json.dumps(selector)}); "
-            "e.scrollIntoView({block: 'center'}); "
-            "const b = e.getBoundingClientRect(); return [b.x + b.width / 2, b.y + b.height / 2] })()"
+    def accounted(self, ref: str) -> None:
+        """Wait until the account is that of a number."""
+        self.page.wait_for_function(
+            "id => (document.querySelector('#account .id')?.firstChild.textContent ?? '') === id", arg=ref
         )
-        for kind in ("mousePressed", "mouseReleased"):
-            self.call("Input.dispatchMouseEvent", type=kind, x=at[0], y=at[1], button="left", clickCount=1)
 
-    def picture(self) -> bytes:
-        return base64.b64decode(self.call("Page.captureScreenshot")["data"])
+    def press(self, *keys: str) -> None:
+        for key in keys:
+            self.page.keyboard.press(key)
 
-    def complaints(self) -> list[str]:
-        """Return what went wrong on the page, and every address that it asked for."""
-        said = []
-        for event in self.events:
-            params = event.get("params", {})
-            if event.get("method") == "Runtime.exceptionThrown":
-                said.append(params["exceptionDetails"]["text"])
-            elif event.get("method") == "Log.entryAdded":
-                said.append(params["entry"]["text"])
-            elif event.get("method") == "Network.requestWillBeSent":
-                address = params["request"]["url"]
-                said += [] if address.startswith(("file:", "data:", "about:")) else [address]
-        return said
+    def audit(self) -> list[str]:
+        """Return what axe-core finds, of any grade."""
+        axe = resources.files("axe_playwright_python").joinpath("axe.min.js").read_text(encoding="utf-8")
+        self.do(axe)
+        found = self.do("axe.run(document, {resultTypes: ['violations']})")
+        return [f"{v['impact']}: {v['id']}: {v['nodes'][0]['html'][:120]}" for v in found["violations"]]
+
+
+def opened(browser: Browser, path: Path, ref: str = "", *, width: int = 1280, **how: Any) -> Watched:  # noqa: ANN401
+    """Open a page of its own context; ``how`` is what Playwright makes a context from."""
+    context = browser.new_context(viewport={"width": width, "height": 900}, **how)
+    watched = Watched(context.new_page())
+    page = watched.page
+    page.on("pageerror", lambda error: watched.complaints.append(str(error)))
+    page.on("console", lambda said: watched.complaints.append(said.text) if said.type == "error" else None)
+    page.on("request", lambda asked: None if asked.url.startswith(LOCAL) else watched.complaints.append(asked.url))
+    page.on("requestfailed", lambda asked: watched.blocked.append(asked.url) if asked.failure == "csp" else None)
+    page.goto(path.as_uri() + (f"#{quote(ref)}" if ref else ""))
+    if how.get("java_script_enabled", True):
+        page.wait_for_function("() => document.documentElement.classList.contains('ready')")
+        watched.do("document.fonts.ready.then(() => true)")
+    return watched
+
+
+def carried(path: Path) -> dict[str, Any]:
+    """Return the ledger that a page carries."""
+    text = path.read_text(encoding="utf-8")
+    opening = '<script type="application/json" id="book">'
+    return dict(json.loads(text[text.index(opening) + len(opening) :].partition("</script>")[0]))

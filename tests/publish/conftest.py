@@ -13,7 +13,7 @@ sys.path.insert(0, str(Path(__file__).parent))
 
 import sample
 
-from calc.ledger import Ledger, exported
+from calc.ledger import Ledger
 from calc.publish import pdf, screen
 from calc.publish.package import publish
 from calc.publish.pictures import Picture, all_drawn
@@ -37,7 +37,7 @@ def made(paper: str) -> Made:
     document = sample.document(paper, books)
     pictures = all_drawn(document)
     sheet = pdf.sheet_html(document, books, pictures)
-    page = screen.page(document, books, pictures, exported(books))
+    page = screen.page(document, books, pictures)
     return Made(books, document, pictures, sheet, page, pdf.laid_out(sheet, pictures))
 
 

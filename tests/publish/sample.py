@@ -4,13 +4,27 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 
 from calc import kinds
 from calc.equation import Equation, Implicit
 from calc.kinds import Kind
-from calc.ledger import Accountant, Converted, Given, Judged, Ledger, Library, Program, Solved, View
+from calc.ledger import (
+    Accountant,
+    Column,
+    Combined,
+    Converted,
+    Derived,
+    Given,
+    Judged,
+    Ledger,
+    Library,
+    Program,
+    Solved,
+    View,
+)
 from calc.marks import Mark
 from calc.physics import energy, fitting, friction, velocity, water
 from calc.report import figures
@@ -658,3 +672,17 @@ def _listings() -> list[Block]:
 
 def _index(scribe: Scribe) -> Index:
     return Index(tuple((column.id(row), "4.1") for column in scribe.ledger.columns for row in range(len(column.rows))))
+
+
+def inputs(column: Column, row: int) -> list[str]:
+    """Return the ids of the numbers that a number is computed from, proofs left out."""
+    origin = column.origin
+    views = {Derived: "inputs", Solved: "inputs"}.get(type(origin))
+    found: list[Any] = []
+    if views:
+        found = [view.spot(row) for view in getattr(origin, views).values()]
+    elif isinstance(origin, Combined):
+        found = [origin.terms.spot(int(k)) for k in np.flatnonzero(origin.into == row)]
+    elif isinstance(origin, Judged):
+        found = [origin.margin.spot(row)]
+    return [one[0].id(one[1]) for one in found if one is not None]

@@ -8,13 +8,15 @@ from dataclasses import replace
 import pytest
 import sample
 
-from calc.ledger import Ledger
+from calc import kinds
+from calc.ledger import Ledger, Program
 from calc.problems import IntegrityError
 from calc.publish import pdf
 from calc.publish.seal import printed, proved, seal, seal_document
 from calc.report.document import Document, Paragraph, Section
 
 ANCHOR = re.compile(r'<data class="n" value="([^"]*)" data-as="([^"]*)">(.*?)</data>', re.DOTALL)
+SHORT = re.compile(r"<data value=([\w.]+)>(.*?)</data>", re.DOTALL)
 GRAVITY = '<data class="n" value="site.gravity" data-as="m/s²|d5||">9.80665</data>'
 TAGS = re.compile(r"<[^>]*>")
 
@@ -70,13 +72,41 @@ def test_each_ledger_value_counts(a4) -> None:  # type: ignore[no-untyped-def]  
 
 
 def test_one_digit_in_the_whole_page_fails_it(a4) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
-    for page in (a4.sheet, a4.screen):
-        found = anchors(page)[len(anchors(page)) // 2]
-        digit = next(k for k in range(len(found[3])) if found[3][k].isdecimal())
-        place = found.start(3) + digit
+    for page, sort in ((a4.sheet, ANCHOR), (a4.screen, SHORT)):
+        every = list(sort.finditer(page))
+        found = every[len(every) // 2]
+        inner = found[found.lastindex]
+        place = found.start(found.lastindex) + next(k for k in range(len(inner)) if inner[k].isdecimal())
         altered = page[:place] + other(page[place]) + page[place + 1 :]
         with pytest.raises(IntegrityError):
             seal(altered, a4.ledger)
+
+
+def test_the_screen_names_its_numbers_by_what_it_carries(a4) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    found = list(SHORT.finditer(a4.screen))
+    assert len(found) == len(anchors(a4.sheet))
+    first = found[0]
+    number, form = first[1].split(".")
+    for key in (f"{number}0.{form}", f"{number}.{form}0000", "zzzzz.0", f"-1.{form}", f"{number}.zz", "", "."):
+        with pytest.raises(IntegrityError):
+            seal(a4.screen.replace(first[0], f"<data value={key}>{first[2]}</data>", 1), a4.ledger)
+
+
+def test_each_number_that_the_screen_carries_is_proved(a4) -> None:  # type: ignore[no-untyped-def]  # noqa: ANN001
+    ledger = sample.ledger()
+    for column in ledger.columns:
+        kept = column.values
+        changed = kept.copy()
+        changed[-1] = changed[-1] * (1 + 3e-8) + (changed[-1] == 0) * 1e-9
+        object.__setattr__(column, "values", changed)
+        with pytest.raises(IntegrityError, match="the page carries"):
+            seal(a4.screen, ledger)
+        object.__setattr__(column, "values", kept)
+    ledger.enter("site.more", kinds.LENGTH, [""], [1.0], Program("more"))
+    with pytest.raises(IntegrityError, match="the page carries"):
+        seal(a4.screen, ledger)
+    with pytest.raises(IntegrityError, match="cannot be read"):
+        seal(re.sub(r'"columns":\[\[', '"columns":[[999999,', a4.screen, count=1), a4.ledger)
 
 
 @pytest.mark.parametrize(
