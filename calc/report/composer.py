@@ -69,11 +69,6 @@ class Composer:
         views += [origin.terms for origin in origins if isinstance(origin, Combined)]
         return {id(source) for view in views for source in view.sources}
 
-    @property
-    def flow_unit(self) -> str:
-        """The unit of flows, as printed."""
-        return self.display.unit("flow")
-
     def unit(self, field: str) -> str:
         """Return the unit in which a kind of quantity is displayed, such as that of ``head``."""
         return self.display.unit(field)

@@ -17,7 +17,10 @@ import pypdfium2  # type: ignore[import-untyped]
 import pytest
 from accounts import accounted, written
 
+from calc import pipeline
 from calc.account import results
+from calc.publish.columns import MEASURE, TURNED, widths
+from calc.report.document import Table
 
 pytestmark = pytest.mark.pdf
 
@@ -36,6 +39,11 @@ criteria:
   velocity-max: {limit: 6.5 ft/s}
   pressure-min: {limit: 20 psi}
   gradient-max: {limit: 12 ft/1000 ft}
+"""
+CASES = """
+cases:
+  low: {title: Low levels, with: {reservoirs.knoll.level: 690 ft, reservoirs.brink.level: 648 ft}}
+  peak: {title: Peak withdrawal, times: {junctions.forks.withdrawal: 3}}
 """
 DISPLAY = "display: {units: US, paper: Letter}\n"
 GPM, FOOT = 60 / (231 * 0.0254**3), 0.3048
@@ -59,6 +67,22 @@ def sheets(package: Path) -> list[str]:
     texts = [re.sub(r"[^\S\n]", "", page.get_textpage().get_text_range()) for page in opened]
     opened.close()
     return texts
+
+
+@pytest.mark.parametrize("paper", ["A4", "Letter"])
+@pytest.mark.parametrize(("units", "beside"), [("US", "SI"), ("SI", "US")])
+def test_parallel_columns_find_room(tmp_path: Path, paper: str, units: str, beside: str) -> None:
+    display = f"display: {{units: {units}, beside: {beside}, paper: {paper}}}\n"
+    account = accounted(tmp_path / "forks-mains", WORKS + CASES, project=display)
+    document = pipeline.document(account, "checking")
+    wide = 0
+    for section in document.sections:
+        room = MEASURE[paper] if section.key == "decision" else TURNED[paper]
+        for block in section.blocks:
+            if isinstance(block, Table):
+                assert widths(block, document, close=section.key == "decision").total <= room, block.key
+                wide += widths(block, document).turned(paper)
+    assert wide  # some tables with parallel columns need a sheet turned on its side
 
 
 def read(text: str) -> tuple[float, float]:

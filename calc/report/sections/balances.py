@@ -35,8 +35,8 @@ def _continuity(sheet: Sheet, case: CaseAccount) -> None:
     sheet.add(Heading(("Continuity at junctions",)))
     columns = (
         column("toward the junction", role="statement"),
-        figure_column("in full", composer.flow_unit, 34, edge=True),
-        figure_column("as printed", composer.flow_unit, 28),
+        figure_column("in full", composer.unit("flow"), 34, edge=True),
+        figure_column("as printed", composer.unit("flow"), 28),
         FROM,
     )
     rows: list[Row] = []
@@ -97,7 +97,7 @@ def _said(case: CaseAccount, spot: Spot, sign: float) -> Parts:
 
 def _printed_sum(composer: Composer, case: CaseAccount, junction: str, ids: list[str], texts: list[str]) -> Number:
     """Enter the rounded flows as printed, and their sum, so that the printed column adds up on paper."""
-    ledger, unit = composer.ledger, composer.flow_unit
+    ledger, unit = composer.ledger, composer.unit("flow")
     form = Format(unit, decimals=_decimals(texts))
     standing = [c for c in ledger.find("printed.imbalance", case.id) if c.case == case.id and junction in c.index]
     if standing:
@@ -237,7 +237,7 @@ def _opinions(sheet: Sheet, case: CaseAccount) -> None:
     names = case.network.pipes.rows
     if len(names) > MOST_PIPES or not [c for c in ledger.find("pipes.second_flow", case.id) if c.case == case.id]:
         return
-    unit = composer.flow_unit
+    unit = composer.unit("flow")
     columns = (
         column("pipe", role="statement"),
         figure_column("flow in this ledger", unit, 36, edge=True),

@@ -52,7 +52,7 @@ def add_convergence(sheet: Sheet, case: CaseAccount) -> None:
     if corrections is not None:
         add_corrections(sheet, case, corrections)
         _stopping(sheet, case)
-        limit = _limit_text(sheet.composer, case, Format(sheet.composer.flow_unit, significant=1))
+        limit = _limit_text(sheet.composer, case, Format(sheet.composer.unit("flow"), significant=1))
         correction_figure(sheet, case, corrections, limit)
 
 
@@ -85,7 +85,7 @@ def _trial_table(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
 
 def _flow_table(sheet: Sheet, case: CaseAccount, trials: Trials, branches: list[str]) -> None:
     """Add the flows toward the junction of some branches at every trial."""
-    ledger, flow = sheet.composer.ledger, sheet.composer.flow_unit
+    ledger, flow = sheet.composer.ledger, sheet.composer.unit("flow")
     columns = [column("trial", 10)]
     columns += [TableColumn((name(branch),), unit=flow, align="right", role="value") for branch in branches]
     rows = []
@@ -118,7 +118,7 @@ def _trial_row(  # noqa: PLR0917
         spot = _trial(ledger, "pipes.flow_toward", case.id, branch, t)
         cells.append((composer.number(spot, flow),))
         refs.append(spot.id)
-    cells.append((composer.number(imbalance, Format(composer.flow_unit, significant=6)),))
+    cells.append((composer.number(imbalance, Format(composer.unit("flow"), significant=6)),))
     cells.append(_chosen(sheet, case, trials, t))
     accepted = "sum" if t == trials.accepted else ""
     return sheet.row(*cells, refs=(*refs, imbalance.id), tone=accepted)
@@ -183,7 +183,7 @@ def _texts(composer: Composer, spots: list[Spot | None], form: Format) -> tuple[
 def _trial_figures(sheet: Sheet, case: CaseAccount, trials: Trials) -> None:
     composer, ledger = sheet.composer, sheet.composer.ledger
     junction = case.network.nodes[trials.junction]
-    unit = composer.flow_unit
+    unit = composer.unit("flow")
     display = composer.display
     imbalance: list[Spot | None] = [
         _trial(ledger, "junctions.imbalance", case.id, junction, t) for t in range(len(trials.head))
