@@ -233,13 +233,16 @@ class _Table:
         )
 
     def enter_norms(self) -> None:
-        """Enter the largest correction and excess of each sweep."""
-        if not self.change:
+        """Enter the largest correction and excess of each whole sweep."""
+        loops = len(self.corrections.loops)
+        sweeps = len(self.change) // loops if loops else 0
+        if not sweeps:
             return
-        into = self.corrections.sweep[: len(self.change)] - 1
-        rows = [str(sweep + 1) for sweep in range(int(into[-1]) + 1)]
+        into = np.repeat(np.arange(sweeps), loops)
+        rows = [str(sweep + 1) for sweep in range(sweeps)]
         books = Accountant(self.ledger, self.case, METHOD)
-        for name, spots in (("correction", self.change), ("excess", self.excess)):
+        for name, every in (("correction", self.change), ("excess", self.excess)):
+            spots = every[: sweeps * loops]
             words = f"largest {name} of a loop in this sweep, without sign"
             books.combine(f"sweeps.largest_{name}", "largest size", View.gathered(spots), into, rows, words=words)
 

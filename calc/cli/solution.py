@@ -89,7 +89,7 @@ def _lines(account: Account, found: dict[str, Any]) -> Iterator[str]:
 
 def _case_lines(case: CaseAccount, found: dict[str, Any], display: Display) -> Iterator[str]:
     solution = case.solution
-    work = {"bracketing": "trial"}.get(solution.method, "iteration")
+    work = {"bracketing": "trial", "loop-correction": "sweep"}.get(solution.method, "iteration")
     counted = f"{solution.iterations} {work}{'s' * (solution.iterations != 1)}"
     if not solution.converged:
         yield f"  no solution by {solution.method} after {counted}: {solution.reason}"

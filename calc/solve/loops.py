@@ -5,8 +5,8 @@ Each open pipe left over, again those of least resistance first, closes one loop
 its end back to its beginning, through the forest and the pipes that closed loops before. A way may pass from one
 reservoir to another, and then the loop is a path that their levels close. Loops so have little in common beside the
 pipe that closes each, and what a correction does to the other loops is small: on 3,000 random networks of the tests,
-sweeps were 8.5 in the mean and 82 at most, where a forest of fewest pipes left one network in four without an answer
-after 200.
+sweeps are 8.6 in the mean, 21 at the 99th percentile and 101 at most, where a forest of fewest pipes left one network
+in four without an answer after 200.
 """
 
 from __future__ import annotations

@@ -3,14 +3,18 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 from pathlib import Path
 from typing import NamedTuple
 
+import numpy as np
 import pytest
 from accounts import written
 from pages import Figures, figure_of, plain, section, table, tables
 from works import RING, Work, given_up, work
 
+from calc import pipeline
+from calc.account import keep_account, open_books, results
 from calc.report.document import Figure, Row, Table
 from calc.report.figures import Convergence
 
@@ -168,3 +172,31 @@ def test_what_is_given_up_prints_its_sweeps_and_no_results(given_over: Work) -> 
     stopping = next(block for block in held.blocks if isinstance(block, Table) and block.key == "stopping")
     assert any("not met" in plain(row.cells[-1]) for row in stopping.rows)
     assert len(table(given_over.document, "sweeps-base").rows) == 2
+
+
+def test_sweeps_are_printed_as_far_as_numbers_are_finite(tmp_path: Path) -> None:
+    project = pipeline.read(written(tmp_path, RING))
+    ledger = open_books(project)
+    solved = pipeline.solve_cases(project, ledger)
+    network, found = solved["base"]
+    held = found.corrections
+    assert held is not None
+    at = np.arange(len(held.change))
+    broken = replace(
+        held,
+        change=np.where(at >= 4, np.nan, held.change),
+        flow=np.where(at[:, None] > 4, np.nan, held.flow),
+        error=np.where(np.arange(len(held.error)) >= 1, np.nan, held.error),
+    )
+    solved["base"] = (
+        network,
+        replace(found, converged=False, reason="no longer finite", corrections=broken, flow=np.full(8, np.nan)),
+    )
+    account = keep_account(project, ledger, solved)
+    document = pipeline.document(account, "checking")
+    assert len(table(document, "sweeps-base").rows) == 1
+    assert len(list(blocks(table(document, "sweep-1-base")))) == len(held.loops)
+    assert not list(tables(document, "sweep-2-base"))
+    told = results(account)["cases"]["base"]["history"]
+    assert told[1]["largest_correction"] is not None
+    assert told[-1]["largest_correction"] is None

@@ -64,9 +64,8 @@ class _Page:
         self._start()
         for sweep in self._printed():
             self._sweep(sweep)
-        if len(self.corrections.change):
-            self._worked()
-            self._sweeps()
+        self._worked()
+        self._sweeps()
 
     def _printed(self) -> list[int]:
         """Return the sweeps printed pipe by pipe."""
@@ -263,9 +262,15 @@ class _Page:
             figure_column("largest correction", flow, 28, edge=True),
             figure_column("largest excess", head, 28),
         ]
-        (largest,) = self.ledger.find("sweeps.largest_correction", self.case.id, METHOD)
+        rows = [
+            self._row(int(row), shown)
+            for largest in self.ledger.find("sweeps.largest_correction", self.case.id, METHOD)
+            for row in largest.rows
+        ]
+        if not rows:
+            return
         self.sheet.add(Heading(("Sweeps",)))
-        self.sheet.table(f"sweeps-{self.case.id}", columns, [self._row(int(row), shown) for row in largest.rows])
+        self.sheet.table(f"sweeps-{self.case.id}", columns, rows)
         said = "An excess is what a correction found: head lost round the loop, of a path less the fall of level."
         self.sheet.add(Paragraph((said,), "small"))
 
