@@ -37,6 +37,6 @@ pipes:
 
 
 def samples_and_projects() -> list[Path]:
-    """Return the YAML files of every sample and demonstration project."""
+    """Return the YAML files of every sample, demonstration project and verification case."""
     root = Path(__file__).resolve().parents[2]
-    return sorted([*root.glob("calc/data/samples/*/*.yaml"), *root.glob("projects/*/*.yaml")])
+    return sorted([*root.glob("calc/data/*/*/*.yaml"), *root.glob("projects/*/*.yaml")])

@@ -7,6 +7,7 @@ import copy
 import json
 import re
 from collections.abc import Callable, Iterator
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -17,7 +18,12 @@ from editor import read
 from faulty_folders import FaultyFolder, faulty_folders, sound_folder
 from jsonschema import Draft202012Validator
 
+from calc import pipeline, units
 from calc.cli.schema import schema
+from calc.kinds import FLOW
+from calc.project import shipped
+from calc.report.display import Display
+from calc.solve.solution import Settings
 
 Inside = Callable[..., tuple[int, str, str]]
 DEMO = Path(__file__).resolve().parents[2] / "projects" / "ostrel-transfer-main"
@@ -92,6 +98,27 @@ def test_every_quantity_tells_kind_range_and_example() -> None:
     for words in ("acceleration with its unit", "from 9.7 m/s² to 10 m/s²", "Default: 9.80665 m/s²"):
         assert words in site["description"]
     assert site["default"] == "9.80665 m/s²"
+
+
+def test_defaults_are_those_in_force() -> None:
+    """Sections declare theirs beside the code that takes them, and every one must be what holds without it."""
+    solver, display = (WHOLE["properties"][name]["properties"] for name in ("solver", "display"))
+    assert units.read(solver["tolerance"]["default"], FLOW).value == Settings().tolerance
+    assert solver["narrowing"]["default"] == Settings().narrowing
+    project = pipeline.read(DEMO)
+    shown = Display.of(replace(project.sections["display"], stated={}))
+    assert shown.system == display["units"]["default"]
+    defaults = [rule["default"] for way, rule in walk(WHOLE["properties"]) if "default" in rule and "/with/" not in way]
+    written = {stated.written for stated in shipped.defaults().values()}
+    own = {solver["tolerance"]["default"], solver["narrowing"]["default"], "SI", "A4"}
+    assert {plain(str(one)) for one in defaults} <= {plain(text) for text in written | own}
+
+
+def plain(text: str) -> str | float:
+    try:
+        return float(text)
+    except ValueError:
+        return text.lower()
 
 
 @pytest.mark.parametrize("key", [*WHOLE["properties"]])
