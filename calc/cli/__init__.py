@@ -12,7 +12,8 @@ Why this way
     `call` declares every command and is all that ``--help`` loads; a command's module is imported when it is
     called. A command returns an `Outcome` (status, text, remarks) and prints nothing itself, so the status
     stands before a pipe can break. Whatever goes wrong is turned into an outcome at one place, `faults`: nobody
-    sees a traceback. A new command is one line in `call.COMMANDS` and one module with ``run``.
+    sees a traceback. Colour is added by `colour` as a text is delivered, after control characters have been taken
+    out of it, so that no input can bring any. A new command is one line in `call.COMMANDS` and one module with ``run``.
 """
 
 from calc.cli.command import main
