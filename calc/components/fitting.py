@@ -22,8 +22,8 @@ SCHEMA = Schema(
         Field("kind", Word(()), words="kind in the shipped table, or bend, step or taper"),
         Field("K", Quantity(NUMBER, at_least=0.0), words="loss coefficient, flow forward"),
         Field("K_reverse", Quantity(NUMBER, at_least=0.0), words="loss coefficient, flow in reverse"),
-        Field("Kv", Quantity(FLOW, above=0.0, bare="m³/h"), words="Kv, flow at 1 bar; m³/h unless a unit is stated"),
-        Field("Cv", Quantity(FLOW, above=0.0, bare="gpm"), words="Cv, flow at 1 psi; US gpm unless a unit is stated"),
+        Field("Kv", Quantity(FLOW, at_least=1e-7, bare="m³/h"), words="Kv, flow at 1 bar; m³/h unless a unit stands"),
+        Field("Cv", Quantity(FLOW, at_least=1e-7, bare="gpm"), words="Cv, flow at 1 psi; US gpm unless a unit stands"),
         Field(
             "angle",
             Quantity(ANGLE, above=0.0, at_most=HALF_TURN),

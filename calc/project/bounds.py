@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import math
+
 from calc.components import Quantity
-from calc.kinds import TEMPERATURE, Kind
+from calc.kinds import ANGLE, TEMPERATURE, Kind
 
 COMPUTABLE: dict[str, tuple[float, float]] = {
     "pure number": (-1e9, 1e9),
@@ -58,6 +60,8 @@ def outside(form: Quantity, si: float) -> str:
 
 def show(si: float, kind: Kind) -> str:
     """Return a bound with its unit."""
+    if kind is ANGLE:
+        return f"{round(math.degrees(si), 9):.12g}°"
     if kind is TEMPERATURE:
         return f"{round(si - 273.15, 9):.12g} °C"
     return f"{si:.12g} {kind.unit}".rstrip()

@@ -71,8 +71,8 @@ def _complete(reader: Reader, stated: Fields, member: Mapping, at: str, bore: St
         if name in stated and any((basis.source, basis.page, basis.grade, basis.note)):
             stated[name] = replace(stated[name], basis=basis)
     if computed_kind(stated):
-        if "kind" in stated:
-            stated["title"] = shipped.computed_fittings()[stated["kind"].text].title
+        if "kind" in stated and (form := shipped.computed_fittings().get(stated["kind"].text)):
+            stated["title"] = form.title  # a kind of the table beside Kv or Cv has none, and is told as a problem
     elif "kind" in stated:
         row = shipped.fittings()[stated["kind"].text]
         stated.setdefault("K", row.forward)
@@ -93,6 +93,8 @@ def _check_form(reader: Reader, stated: Fields, member: Mapping, at: str) -> Non
     kind = computed_kind(stated)
     wanted = NEEDS.get(kind, ())
     present = member.keys()
+    if "kind" in present and "kind" not in stated:
+        return  # which is told already
     what = f"'{kind}'" if kind in FLOW_COEFFICIENTS else f"the kind '{kind}'" if kind else ""
     for name in wanted:
         field = FITTING_SCHEMA.field(name)
