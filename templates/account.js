@@ -44,6 +44,7 @@ function makeAccount(book, set, panel, tell) {
       a.href = `#${encodeURIComponent(`at-${file}:${line}`)}`;
       here.setAttribute("aria-label", said);
       here.setAttribute("role", "group");
+      here.tabIndex = 0;
       held.append(make("p", "yn", a), here);
     } else {
       held.append(make("p", "yn", `${origin[0] === "l" ? "shipped with the program: " : ""}${said}`));
@@ -76,7 +77,7 @@ function makeAccount(book, set, panel, tell) {
       case "d": {
         const law = book.law(i), regime = book.texts[origin[2]], chosen = origin[5].length ? book.texts[book.one(origin[5], book.rowOf(i))] : "";
         return [make("p", "yn law", `${law[1]}${regime && !law[1].includes(regime) ? `, ${regime}` : ""}`), ...set.worked(i),
-          ...(chosen ? [make("p", "yn", `chosen by ${chosen}`)] : [])];
+          ...(chosen ? [make("p", "yn", `as stated: ${chosen}`)] : [])];
       }
       case "t": return sum(i);
       case "s": return [make("p", "yn", `Found by iteration: ${book.texts[origin[1]]}.`), make("p", "yn", `${capital(book.texts[origin[2]])}, ${origin[3]} iterations.`)];

@@ -87,7 +87,7 @@ function makeSetting(book) {
   }
   // What is wider than its place can be scrolled by keyboard too.
   function reachable(root) {
-    for (const one of root.querySelectorAll(".hold, .eqs, .yl, figure")) {
+    for (const one of root.querySelectorAll(".hold, .eqs, figure")) {
       if (one.clientWidth && one.scrollWidth > one.clientWidth) { one.tabIndex = 0; } else { one.removeAttribute("tabindex"); }
     }
   }
