@@ -134,6 +134,8 @@ def test_every_law_and_regime_is_worked_somewhere() -> None:
         *("transition_factor", "factor_at_laminar_limit", "darcy_weisbach", "fitting_loss"),
         *("forward_coefficient", "reverse_coefficient", "pressure_head", "pressure", "scaled_value"),
         *("margin_below_limit", "margin_above_limit", "speed", "friction_gradient"),
+        *("bend_coefficient", "sudden_widening", "sudden_narrowing", "gradual_widening", "gradual_narrowing"),
+        *("steep_narrowing", "coefficient_of_kv", "coefficient_of_cv", "bore_within"),
     }
 
 
