@@ -77,8 +77,8 @@ def _units(display: Display) -> list[Parts]:
     for field in TOLD:
         tables += [", " if len(tables) > 1 else "", f"{field} in ", named_unit(display.unit(field))]
     tables.append(".")
-    if display.beside:
-        tables.append(" Results are repeated in parallel columns in the usual units of the other system.")
+    for other in display.beside:
+        tables.append(f" Parallel columns repeat results in the usual {other.system} units, where these are others.")
     worked = (
         f"Worked lines are in the coherent units {COHERENT[display.system]}, in which formulas hold without factors. "
         "What stands in another unit is converted on a line of its own: the quantity divided by the worth of one unit."
