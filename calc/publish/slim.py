@@ -76,7 +76,7 @@ def slim_drawing(svg: str) -> str:
         rest = rest.replace("<g>", "").replace("</g>", "")
     rest = re.sub(r'<path d="([^"]*)"( style="[^"]*")/>', _shape, _UNTURNED.sub("", rest))
     rest = re.sub(r' (x|y)="(-?\d+\.\d+)"', lambda at: f' {at[1]}="{_short(at[2])}"', rest)
-    return _ROOT.sub("", opening) + ">" + re.sub(r">\s+<", "><", rest)
+    return re.sub(r">\s+<", "><", f"{_ROOT.sub('', opening)}>{rest}")
 
 
 def _shape(found: re.Match[str]) -> str:
