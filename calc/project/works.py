@@ -221,12 +221,18 @@ def _expect_some(reader: Reader, works: Works, top: Mapping[str, Entry]) -> None
     """Note that there are no reservoirs or no pipes at all."""
     for name, records in zip(NEEDED, (works.reservoirs, works.pipes), strict=True):
         entry = top.get(name)
-        if records or (entry is not None and not empty(entry.value) and not _hollow(entry)):
+        if records or (entry is not None and not empty(entry.value) and not _hollow(reader, works, entry)):
             continue
         first = top.get("pipes") or top.get("junctions") or next(iter(top.values()), None)
         mark = entry.key.mark if entry else Mark(first.key.mark.file if first else "network.yaml", 1, 1)
         reader.note(mark, f"no-{name}", name, f"there are no {name}", f"at least one under '{name}'")
 
 
-def _hollow(entry: Entry) -> bool:
-    return isinstance(entry.value, MappingNode) and not entry.value.entries
+def _hollow(reader: Reader, works: Works, entry: Entry) -> bool:
+    """Return whether a group has no members: an empty mapping, or a sound table without a row."""
+    if not isinstance(entry.value, MappingNode):
+        return False
+    table = entry.value.get("table")
+    if not isinstance(table, Scalar):
+        return not entry.value.entries
+    return table.text in works.texts and all(problem.mark.file != table.text for problem in reader.problems)

@@ -175,6 +175,9 @@ class _Reading:
             self.report(mark, "bad-heading", words)
             return False
         field, unit = match[1].strip(), (match[2] or "").strip()
+        if field == "id" and unit not in ("", "-"):
+            self.report(mark, "bad-heading", (f"the heading '{shown(cell.text)}'", "'id' alone: it has no unit", ""))
+            return False
         for column in self.columns:
             if column.key.text == field:
                 words = (

@@ -318,6 +318,16 @@ def test_nothing_stands_beside_a_table(tmp_path: Path) -> None:
     assert (str(found.mark), found.code, found.path) == ("network.yaml:2:31", "excluded-pair", "junctions.brae")
 
 
+@pytest.mark.parametrize(("group", "table"), [("reservoirs", "levels"), ("pipes", "pipes")])
+def test_a_table_without_a_row_holds_no_components(tmp_path: Path, group: str, table: str) -> None:
+    """One problem of that group, and none that it follows from: what has no row cannot be solved or remarked on."""
+    header = TABLES[table].splitlines()[0] + "\n"
+    found = problems_in(tmp_path / group, WITH_TABLES, **{**TABLES, table: header})
+    assert [(problem.code, problem.path) for problem in found] == [(f"no-{group}", group)]
+    broken = problems_in(tmp_path / "broken", WITH_TABLES, **{**TABLES, table: header.replace("id", "name")})
+    assert [(problem.code, problem.path) for problem in broken] == [("no-id-column", group)]
+
+
 def test_the_digest_covers_names_and_bytes_of_all_files(tmp_path: Path) -> None:
     project = read(tmp_path / "a", WITH_TABLES, **TABLES)
     total = hashlib.sha256()

@@ -72,6 +72,7 @@ def test_a_heading_may_say_that_there_is_no_unit(tmp_path: Path) -> None:
         ("bore [mm]\n3\n", [("no-id-column", "pipes.csv:1:1", "pipes")]),
         ("id,a,a [m]\n", [("duplicate-heading", "pipes.csv:1:6", "pipes")]),
         ("id,,b]\n", [("bad-heading", "pipes.csv:1:4", "pipes"), ("bad-heading", "pipes.csv:1:5", "pipes")]),
+        ("id [m],a\nx,1\n", [("bad-heading", "pipes.csv:1:1", "pipes")]),
         ("id;a\nb;c\n", [("table-divider", "pipes.csv:1:1", "pipes")]),
         ("id\ta\nb\tc\n", [("table-divider", "pipes.csv:1:1", "pipes")]),
         ('id,"a\n', [("open-quote", "pipes.csv:1:1", "pipes")]),
