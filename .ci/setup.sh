@@ -2,7 +2,7 @@
 #
 # It gives $root (the repository) and $python (the environment's interpreter), and the functions
 #   need_libraries   the system libraries that layout needs
-#   need_browser     a browser and its driver, for the tests that look at the HTML
+#   need_browser     a browser, for the tests that look at the HTML
 #   need_environment EXTRAS   .venv with headtrace installed, editable
 # What is missing is installed with apt as root or by sudo; without either it is named, and exit is 2.
 # shellcheck shell=bash
@@ -122,18 +122,14 @@ find_browser() {
   return 1
 }
 
-find_driver() {
-  command -v chromedriver >/dev/null && timeout 20 chromedriver --version >/dev/null 2>&1
-}
-
 need_browser() {
-  if find_browser >/dev/null && find_driver; then return; fi
-  local what="Chromium or Chrome, with chromedriver"
-  may_install || give_up "$what" chromium chromium-driver
-  apt_install chromium chromium-sandbox chromium-driver || true
-  if find_browser >/dev/null && find_driver; then return; fi
-  say "On Ubuntu apt has no browser of its own: install Chrome or Chromium and chromedriver by other means."
-  give_up "$what" chromium chromium-driver
+  if find_browser >/dev/null; then return; fi
+  local what="Chromium or Chrome"
+  may_install || give_up "$what" chromium
+  apt_install chromium chromium-sandbox || true
+  if find_browser >/dev/null; then return; fi
+  say "On Ubuntu apt has no browser of its own: install Chrome or Chromium by other means."
+  give_up "$what" chromium
 }
 
 # need_environment EXTRAS: '' or '[dev]'. Reuses .venv unless it was made at another path or by an older Python.
