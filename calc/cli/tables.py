@@ -132,7 +132,7 @@ def _standard(one: Standard) -> list[str]:
     rated = [["class", "rated pressure", "also", "line"], *(_class_row(each, sizes) for each in one.classes.values())]
     marked = any(RECALLED in cell for row in (*rows, *rated) for cell in row)
     recalled = [f"{RECALLED} this value {standards.MEMORY}"] if marked else []
-    sources = dict.fromkeys([one.source, *(each.source for each in one.classes.values())])
+    sources = dict.fromkeys([one.source, one.wall_source, *(each.source for each in one.classes.values())])
     return [
         *_wrapped(f"Under the classes stands the {one.wall}. Dimensions are in {sizes[0].outside_diameter.unit}."),
         "",

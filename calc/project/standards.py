@@ -44,12 +44,13 @@ class Size:
 
 @dataclass(frozen=True, slots=True)
 class Standard:
-    """A standard: what it is for, which wall it tabulates, where the values are from, and its rows."""
+    """A standard: what it is for, which wall it tabulates, where values and walls are from, and its rows."""
 
     name: str
     title: str
     wall: str
     source: str
+    wall_source: str
     example: str
     classes: Mapping[str, PipeClass]
     sizes: Mapping[str, Size]
@@ -87,10 +88,11 @@ def _members(node: MappingNode, name: str) -> list[tuple[str, MappingNode]]:
 
 def _standard(reader: Reader, name: str, node: MappingNode) -> Standard:
     title, wall, source, example = (shipped.scalar(node.get(key)).text for key in ("title", "wall", "source", "size"))
-    own = {key: shipped.scalar(one.get("source") or node.get("source")).text for key, one in _members(node, "classes")}
-    classes = {key: _class(reader, key, one, own[key]) for key, one in _members(node, "classes")}
-    sizes = {key: _size(reader, key, one, source, own) for key, one in _members(node, "sizes")}
-    return Standard(name, title, wall, source, example, classes, sizes)
+    of_walls = shipped.scalar(node.get("wall_source") or node.get("source")).text
+    own = {key: shipped.scalar(said).text for key, one in _members(node, "classes") if (said := one.get("source"))}
+    classes = {key: _class(reader, key, one, own.get(key, source)) for key, one in _members(node, "classes")}
+    sizes = {key: _size(reader, key, one, (source, of_walls), own) for key, one in _members(node, "sizes")}
+    return Standard(name, title, wall, source, of_walls, example, classes, sizes)
 
 
 def _class(reader: Reader, name: str, node: MappingNode, source: str) -> PipeClass:
@@ -101,22 +103,27 @@ def _class(reader: Reader, name: str, node: MappingNode, source: str) -> PipeCla
     return PipeClass(name, _texts(node.get("also")), walls, found, source, node.mark.line)
 
 
-def _size(reader: Reader, name: str, node: MappingNode, source: str, own: Mapping[str, str]) -> Size:
-    """Return a size; ``own`` are the sources of classes, each of which holds for its walls and rated pressures."""
+def _size(reader: Reader, name: str, node: MappingNode, sources: tuple[str, str], own: Mapping[str, str]) -> Size:
+    """Return a size.
+
+    ``sources`` are those of the standard's values and of its walls; ``own`` those of classes, each of which holds
+    for its walls and rated pressures.
+    """
+    source, of_walls = sources
 
     def one(field: str, kind: Kind) -> Stated:
         return shipped.stated(reader, shipped.scalar(node.get(field)), kind, _said(source, node, field))
 
-    def several(field: str, kind: Kind) -> dict[str, Stated]:
+    def several(field: str, kind: Kind, general: str) -> dict[str, Stated]:
         group, found = node.get(field), dict[str, Stated]()
         for key, value in group.entries if isinstance(group, MappingNode) else ():
-            said = _said(own.get(key.text, source), node, key.text)
+            said = _said(own.get(key.text, general), node, key.text)
             found[key.text] = shipped.stated(reader, shipped.scalar(value), kind, said)
         return found
 
     outer, lining = one("outside_diameter", BORE), one("lining", THICKNESS)
-    ratings = several("pressure_rating", PRESSURE)
-    return Size(name, _texts(node.get("also")), outer, lining, several("wall", THICKNESS), ratings)
+    walls, ratings = several("wall", THICKNESS, of_walls), several("pressure_rating", PRESSURE, source)
+    return Size(name, _texts(node.get("also")), outer, lining, walls, ratings)
 
 
 def _said(source: str, row: MappingNode, field: str) -> str:

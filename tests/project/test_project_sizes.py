@@ -16,7 +16,7 @@ SIZED = {
     "blanks and capitals": "    bore: {size: dn 400, standard: en545, class: c 40, source: S1, grade: drawing}",
 }
 REFERENCES = "references: {S1: {title: Schedule of pipes}}\n"
-"""DN400 of class C40: 429 mm outside, 6.0 mm least wall, 5 mm of cement mortar (EN 545:2010)."""
+"""DN400 of class C40: 429 mm outside, 6.0 + 1.3 + 0.4 mm nominal wall, 5 mm of cement mortar (EN 545:2010)."""
 
 
 def sized(folder: Path, lines: str, **tables: str) -> Record:
@@ -28,7 +28,7 @@ def test_a_size_gives_dimensions_rating_and_bore(tmp_path: Path, way: str) -> No
     pipe = sized(tmp_path, SIZED[way])
     held = {name: pipe.number(name) for name in ("outside_diameter", "wall", "lining", "pressure_rating", "bore")}
     assert held == pytest.approx(
-        {"outside_diameter": 0.429, "wall": 0.006, "lining": 0.005, "pressure_rating": 4e6, "bore": 0.407}, rel=1e-12
+        {"outside_diameter": 0.429, "wall": 0.0077, "lining": 0.005, "pressure_rating": 4e6, "bore": 0.4036}, rel=1e-12
     )
     wall, bore = pipe.stated["wall"], pipe.stated["bore"]
     assert (wall.shipped, wall.mark.file, wall.basis.grade) == (True, "calc/data/sizes.yaml", "drawing")
@@ -86,7 +86,7 @@ cases:
 def test_cases_change_the_bore_of_a_size_and_take_materials(tmp_path: Path) -> None:
     project = read(tmp_path, REFERENCES + SOUND.replace("    bore: 384.4 mm", SIZED["mapping"]) + CASES)
     bores = {case: Effective(project, case).number("pipes", "upper-main", "bore") for case in project.cases}
-    assert bores == pytest.approx({"base": 0.407, "narrow": 0.9 * 0.407, "relaid": 0.3, "rough": 0.407})
+    assert bores == pytest.approx({"base": 0.4036, "narrow": 0.9 * 0.4036, "relaid": 0.3, "rough": 0.4036})
     assert Effective(project, "rough").number("pipes", "upper-main", "roughness") == pytest.approx(0.0025)
 
 
@@ -158,7 +158,7 @@ FROM_TABLE = REFERENCES + SOUND.partition("pipes:")[0] + "pipes: {table: pipes.c
 def test_a_table_holds_every_scalar_field(tmp_path: Path) -> None:
     pipes = read(tmp_path, FROM_TABLE, pipes=TABLE).pipes
     upper, sedge = pipes["upper-main"], pipes["sedge-link"]
-    assert upper.number("bore") == pytest.approx(0.429 - 2 * (0.006 + 0.009))
+    assert upper.number("bore") == pytest.approx(0.429 - 2 * (0.0077 + 0.009))
     assert (upper.number("roughness"), upper.flag("open", default=False)) == (pytest.approx(6e-5), True)
     assert (sedge.number("hazen_williams_c"), sedge.text("law"), sedge.number("parallel")) == (130, "hazen-williams", 2)
     assert sedge.number("pressure_rating") == pytest.approx(16e5)

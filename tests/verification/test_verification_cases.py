@@ -234,8 +234,9 @@ def bends() -> list[Record]:
 
 
 def test_bores_are_those_of_the_dimensions(checks: dict[str, Check]) -> None:
-    # EN 545:2010 and ISO 4427-2 as on open pages: D = 429 - 2 (6.0 + 5) mm, D = 315 - 2 x 28.6 mm
-    assert checks["size-published/pipes-ductile-bore"].expected == pytest.approx((429 - 2 * (6.0 + 5.0)) / 1000)
+    # EN 545:2010 and ISO 4427-2 as on open pages, the allowance on the least wall from memory
+    wall = 6.0 + 1.3 + 0.001 * 400
+    assert checks["size-allowance/pipes-ductile-bore"].expected == pytest.approx((429 - 2 * (wall + 5.0)) / 1000)
     assert checks["size-published/pipes-plastic-bore"].expected == pytest.approx((315 - 2 * 28.6) / 1000)
     _, inside, _, _ = nearest_pipe(NPS=12, schedule="40")
     assert checks["size-library/pipes-steel-bore"].expected == pytest.approx(inside, rel=1e-12)
