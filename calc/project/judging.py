@@ -121,7 +121,7 @@ def _read_applies(
     written = scalars(reader, part[1], path, "a path, or a list of paths")
     for scalar in written:
         group = scalar.text.partition(".")[0]
-        if group in works and group != criterion.group:
+        if group in {*works, "constants"} - {criterion.group}:
             found = f"{quoted(scalar.text)} are {group}"
             reader.note(scalar.mark, "wrong-group", path, found, f"{criterion.group}, such as '{criterion.group}.*'")
             continue

@@ -74,12 +74,8 @@ def follow(
             return Target("friction", ("",), FRICTION.fields[0])
         case [group, _] if group in SINGLE:
             return _field(reader, written, path, SINGLE[group], Target(group, ("",), None))
-        case ["constants", name, _] if name in CONSTANTS:
-            return _field(reader, written, path, CONSTANTS[name], Target("constants", (name,), None))
-        case ["constants", name, _]:
-            found = f"there are no constants {quoted(name)}"
-            known = tuple(CONSTANTS)
-            reader.note(written.mark, "unknown-path", path, found, f"one of {listed(known)}", reader.near(name, known))
+        case ["constants", name, *field] if len(field) == 1 or (whole and not field):
+            return _constants(reader, written, path, name)
         case [group, pattern] if whole and group in GROUPS and _WORD.fullmatch(pattern):
             return _rows(reader, written, path, works, group)
         case [group, pattern, _] if group in GROUPS and _WORD.fullmatch(pattern):
@@ -113,6 +109,17 @@ def _rows(
     return None
 
 
+def _constants(reader: Reader, written: Scalar, path: str, name: str) -> Target | None:
+    """Return the constants of a law, or the one of them at which a path ends."""
+    if name not in CONSTANTS:
+        found, known = f"there are no constants {quoted(name)}", tuple(CONSTANTS)
+        reader.note(written.mark, "unknown-path", path, found, f"one of {listed(known)}", reader.near(name, known))
+        return None
+    target = Target("constants", (name,), None)
+    whole = written.text.count(".") == 1
+    return target if whole else _field(reader, written, path, CONSTANTS[name], target)
+
+
 def _field(reader: Reader, written: Scalar, path: str, schema: Schema, target: Target) -> Target | None:
     """Return a target with the field that a path ends at."""
     name = written.text.rpartition(".")[2]
@@ -129,7 +136,8 @@ def _field(reader: Reader, written: Scalar, path: str, schema: Schema, target: T
 def _nowhere(reader: Reader, written: Scalar, path: str, group: str, *, whole: bool) -> None:
     known = [*GROUPS, *SINGLE, "constants", "friction"]
     form = "group.id or group.id.field" if whole else "group.id.field"
-    expected = f"{form} with group one of {listed(list(GROUPS))}; or fluid.field, site.field, friction"
+    single = "fluid.field, site.field, constants.law.field, friction"
+    expected = f"{form} with group one of {listed(list(GROUPS))}; or {single}"
     hint = reader.near(group, known) if group not in known else ""
     found = f"{quoted(written.text)} leads nowhere"
     reader.note(written.mark, "unknown-path", path, found, expected, hint)

@@ -7,7 +7,7 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved, by_case, mark_in_folder
+from calc.account.findings.finding import Check, Remark, Solved, assumed, by_case, mark_in_folder
 from calc.components.pipe import LAW_INPUT
 from calc.project import Effective, Project
 
@@ -114,8 +114,7 @@ def groundless_viscosity(project: Project) -> Iterator[Remark]:
         if stated is None:
             continue
         path = f"fluid.{field}"
-        affects = [one for record in project.assumptions.values() for one in record.text("affects").split(", ")]
-        if any(fnmatchcase(path, one) for one in affects):
+        if any(fnmatchcase(path, one) for one in assumed(project)):
             continue
         if stated.shipped:
             text = "the temperature is taken by default, and the viscosity follows from it. State that of the liquid"

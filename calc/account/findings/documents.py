@@ -7,7 +7,7 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved, mark_in_folder
+from calc.account.findings.finding import Check, Remark, Solved, assumed, mark_in_folder, named, parts_of
 from calc.components import Record
 from calc.components.fitting import FORM_FIELDS
 from calc.components.pipe import LAW_INPUT
@@ -70,14 +70,12 @@ def _unsourced(record: Record) -> Iterator[tuple[str, Mark]]:
             continue
         if not stated.basis.source:
             yield name, stated.mark
-    for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
+    for part in parts_of(record):
         for name, stated in part.stated.items():
             if name == "K_reverse" and stated is part.stated.get("K"):
                 continue  # stated once, it holds both ways
             if name in _COEFFICIENTS and not stated.shipped and not stated.basis.source:
-                place = part.id.rpartition("/")[2]
-                where = f"of fitting {place}" if place.isdigit() else f"at '{place}'"
-                yield f"{name} {where}", stated.mark
+                yield f"{name} of {named(part)}", stated.mark
 
 
 BY_DEFAULT = (
@@ -93,12 +91,15 @@ _WEIGHTY = (
     "pipes.*.lining",
 )
 """Defaults that move the answer. The temperature is another check's; the rest say how an input file is read."""
+_NAMED_AS = {"ends.*.exit": "pipes.*.ends"}
+"""The path by which an assumption names a default that has no path of its own among the inputs."""
 
 
 def silent_defaults(project: Project) -> Iterator[Remark]:
     """Yield the defaults in use that move the answer and that no assumption confirms."""
     for subject, mark in _defaults(project, _WEIGHTY).items():
-        yield Remark(subject, mark, BY_DEFAULT)
+        text = BY_DEFAULT.replace("name it", f"name {_NAMED_AS[subject]}") if subject in _NAMED_AS else BY_DEFAULT
+        yield Remark(subject, mark, text)
 
 
 def silent_transition(solved: Solved) -> Iterator[Remark]:
@@ -112,18 +113,21 @@ def silent_transition(solved: Solved) -> Iterator[Remark]:
 def _in_transition(solved: Solved) -> Iterator[bool]:
     for _, case, columns in solved.running:
         pipes, law = case.network.pipes, columns.terms.law
-        smooth = np.array([LAW_INPUT[word] == "roughness" for word in law.words])
+        rough = np.array([LAW_INPUT[word] == "roughness" for word in law.words])
         low = columns.results.reynolds.values < pipes.turbulent_above[0]
-        yield bool(np.any(low & (columns.results.flow_each.values != 0.0) & smooth[law.codes]))
+        yield bool(np.any(low & (columns.results.flow_each.values != 0.0) & rough[law.codes]))
 
 
 def _defaults(project: Project, wanted: tuple[str, ...]) -> dict[str, Mark]:
     """Return the marks of unconfirmed defaults by subject; the constants of one law are one subject."""
-    confirmed = [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
+    confirmed = assumed(project)
     found: dict[str, Mark] = {}
     for path, _ in project.defaults:
-        if any(fnmatchcase(path, pattern) for pattern in wanted) and path not in confirmed:
-            subject = path.rpartition(".")[0] if path.startswith("constants.") else path
+        if not any(fnmatchcase(path, pattern) for pattern in wanted):
+            continue
+        subject = path.rpartition(".")[0] if path.startswith("constants.") else path
+        names = (path, subject, _NAMED_AS.get(path, path))
+        if not any(fnmatchcase(name, one) for name in names for one in confirmed):
             found.setdefault(subject, mark_in_folder(project, path))
     return found
 

@@ -9,6 +9,7 @@ from typing import NamedTuple
 from calc.account.case import CaseAccount
 from calc.account.flows import CaseColumns
 from calc.account.verdicts import CriterionVerdict
+from calc.components import Record
 from calc.ledger import Ledger
 from calc.marks import Mark
 from calc.project import Project
@@ -102,6 +103,22 @@ class CheckOutcome:
     check: Check
     found: int
     unmade: str
+
+
+def assumed(project: Project) -> list[str]:
+    """Return the paths that assumptions affect, ``*`` standing for any part."""
+    return [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
+
+
+def parts_of(record: Record) -> tuple[Record, ...]:
+    """Return the ends and fittings of a pipe; none of anything else."""
+    return (*record.parts.get("ends", ()), *record.parts.get("fittings", ()))
+
+
+def named(part: Record) -> str:
+    """Return a fitting or an end in words: "fitting 2", "the end at 'from'"."""
+    place = part.id.rpartition("/")[2]
+    return f"fitting {place}" if place.isdigit() else f"the end at '{place}'"
 
 
 def mark_in_folder(project: Project, path: str) -> Mark:

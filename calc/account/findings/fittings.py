@@ -7,9 +7,10 @@ from fnmatch import fnmatchcase
 
 import numpy as np
 
-from calc.account.findings.finding import Check, Remark, Solved, by_case
+from calc.account.findings.finding import Check, Remark, Solved, assumed, by_case, named, parts_of
 from calc.components import Record
 from calc.kinds import HEAD
+from calc.physics.coefficient import coefficient_of_cv, coefficient_of_kv
 from calc.project import Project, stands_on_pipe
 
 FARTHEST_BORE = 1.3
@@ -18,17 +19,14 @@ LARGEST_COEFFICIENT = 200.0
 """Loss coefficient above which it looks like a flow coefficient; common practice."""
 OPENEST, TIGHTEST = 0.05, 1000.0
 """Loss coefficients of a wide open and of a nearly shut valve; common practice."""
-DROPS = {"Kv": 1e5, "Cv": 6894.757}
-"""Pressure, Pa, that drives a flow coefficient through: 1 bar, 1 psi (0.45359237 kg · 9.80665 m/s² on 0.0254² m²)."""
-COLD_WATER = 1000.0
-"""Density, kg/m³, at which flow coefficients are measured."""
+_FLOW_COEFFICIENTS = {"Kv": coefficient_of_kv, "Cv": coefficient_of_cv}
 LEAST_HEAD, LEAST_SHARE = 0.1, 0.05
 """Velocity head, m, and its share of the pressure head, above both of which it is not small; common practice."""
 
 
 def without_fittings(project: Project) -> Iterator[Remark]:
     """Yield pipes for which neither a fitting nor an assumption about fittings is stated."""
-    reasoned = [path for one in project.assumptions.values() for path in one.text("affects").split(", ")]
+    reasoned = assumed(project)
     text = (
         "no fittings are stated: bends, valves and meters lose nothing here. State them, or say in an assumption that "
         "affects the 'fittings' of the pipe why they may be left out"
@@ -62,7 +60,7 @@ def unlike_bores(project: Project) -> Iterator[Remark]:
         ratios = [bore / pipe.number("bore") for bore in bores]
         if not any(1.0 / FARTHEST_BORE <= ratio <= FARTHEST_BORE for ratio in ratios):
             text = (
-                f"the coefficient of {_named(part)} stands on a bore far from that of the pipe: a loss goes with the "
+                f"the coefficient of {named(part)} stands on a bore far from that of the pipe: a loss goes with the "
                 "fourth power of it. See on which bore the source gives it; a change of bore has a loss of its own"
             )
             yield Remark(f"pipes.{pipe.id}", own.mark, text)
@@ -77,21 +75,20 @@ def large_coefficients(project: Project) -> Iterator[Remark]:
                 continue
             if stated.si > LARGEST_COEFFICIENT:
                 text = (
-                    f"{name} of {_named(part)} is above two hundred: that is the size of a flow coefficient Kv or Cv. "
+                    f"{name} of {named(part)} is above two hundred: that is the size of a flow coefficient Kv or Cv. "
                     "See which of them the source gives"
                 )
                 yield Remark(f"pipes.{pipe.id}", stated.mark, text)
 
 
 def odd_flow_coefficients(project: Project) -> Iterator[Remark]:
-    """Yield flow coefficients that no valve of the bore has: K = 2 Δp A² / (ρ Kv²) is out of all practice."""
+    """Yield flow coefficients that no valve of the bore has: the loss coefficient they give is out of all practice."""
     for pipe, part in _parts(project):
-        for name, drop in DROPS.items():
+        for name, law in _FLOW_COEFFICIENTS.items():
             stated, bore = part.stated.get(name), part.stated.get("bore")
             if stated is None or bore is None:
                 continue
-            area = np.pi / 4 * bore.si**2
-            coefficient = 2 * drop / COLD_WATER * (area / stated.si) ** 2
+            coefficient = float(law.body(bore=bore.si, **{name: stated.si}))
             if coefficient < OPENEST:
                 size = "a valve that loses less than one wide open"
             elif coefficient > TIGHTEST:
@@ -99,7 +96,7 @@ def odd_flow_coefficients(project: Project) -> Iterator[Remark]:
             else:
                 continue
             text = (
-                f"{name} of {_named(part)} is that of {size}, for its bore. See that it is no loss coefficient and "
+                f"{name} of {named(part)} is that of {size}, for its bore. See that it is no loss coefficient and "
                 "goes with this bore, and whether the source gives Kv or Cv"
             )
             yield Remark(f"pipes.{pipe.id}", stated.mark, text)
@@ -107,13 +104,8 @@ def odd_flow_coefficients(project: Project) -> Iterator[Remark]:
 
 def _parts(project: Project) -> Iterator[tuple[Record, Record]]:
     for pipe in project.pipes.values():
-        for part in (*pipe.parts.get("ends", ()), *pipe.parts.get("fittings", ())):
+        for part in parts_of(pipe):
             yield pipe, part
-
-
-def _named(part: Record) -> str:
-    place = part.id.rpartition("/")[2]
-    return f"fitting {place}" if place.isdigit() else f"the end at '{place}'"
 
 
 def velocity_heads(solved: Solved) -> Iterator[Remark]:

@@ -11,6 +11,8 @@ import numpy.typing as npt
 from calc.account.case import CaseAccount
 from calc.account.findings.finding import Check, Remark, Solved, by_case
 from calc.account.flows import CaseColumns
+from calc.equation import evaluate, value_of
+from calc.physics.friction import colebrook_white
 from calc.project import Effective, Project
 
 Array = npt.NDArray[np.float64]
@@ -95,11 +97,8 @@ def compared(case: CaseAccount, columns: CaseColumns, factor: Array) -> Compared
 
 
 def smooth_factor(reynolds: Array) -> Array:
-    """Return Darcy f of a smooth pipe, Prandtl–Kármán: 1/√f = 2 lg(Re √f / 2.51)."""
-    root = np.full_like(reynolds, 8.0)
-    for _ in range(60):
-        root = 2.0 * np.log10(reynolds / (2.51 * root))
-    return np.asarray(1.0 / root**2)
+    """Return Darcy f of a smooth pipe, Prandtl–Kármán: Colebrook–White without roughness."""
+    return value_of(evaluate(colebrook_white, {"reynolds": reynolds, "roughness": np.zeros(1), "bore": np.ones(1)}))
 
 
 def relative_roughness(factor: Array, reynolds: Array) -> Array:

@@ -10,6 +10,7 @@ import numpy as np
 from calc.account.case import CaseAccount
 from calc.account.findings.finding import Check, Remark, Solved, by_case
 from calc.account.flows import CaseColumns
+from calc.account.opinion import allowed_flow_difference, allowed_head_difference
 from calc.components import Network
 from calc.solve import Settings, solve
 from calc.solve.section import settings_of
@@ -52,11 +53,9 @@ def open_paths(solved: Solved) -> Iterator[Remark]:
     """Yield cases in which losses between reservoirs do not add up to the difference of their levels."""
     text = "the losses along some path do not add up to the difference of levels. Do not rely on this case"
     for name, case, _ in solved.running:
-        level = case.network.level[np.isfinite(case.network.level)]
-        allowed = 1e-6 * float(np.ptp(level)) + 1e-6
         rows = tuple(path.id for path in case.paths)
         error = solved.ledger.view("paths.closing_error", name, rows).values if rows else np.zeros(0)
-        if np.any(np.abs(error) > allowed):
+        if np.any(np.abs(error) > _head_allowed(case)):
             yield Remark(f"cases.{name}", solved.project.cases[name].mark, text)
 
 
@@ -101,11 +100,17 @@ def _agrees(case: CaseAccount, columns: CaseColumns, start: dict[str, float], to
     again = solve(case.network, replace(Settings(), method="newton", tolerance=tolerance, start=start))
     if not again.converged:
         return False
-    level = case.network.level[np.isfinite(case.network.level)]
     head = np.abs(again.head - columns.head.values)
     flow = np.abs(again.flow - columns.flow.values)
     largest = float(np.max(np.abs(columns.flow.values), initial=0.0))
-    return bool(np.all(head <= 1e-6 * np.ptp(level) + 1e-6) and np.all(flow <= 1e-6 * largest + 1e-9))
+    allowed = float(allowed_flow_difference.body(largest_flow=largest))
+    return bool(np.all(head <= _head_allowed(case)) and np.all(flow <= allowed))
+
+
+def _head_allowed(case: CaseAccount) -> float:
+    """Return the difference of head, m, that is allowed between two solutions of a case."""
+    level = case.network.level[np.isfinite(case.network.level)]
+    return float(allowed_head_difference.body(highest=np.max(level), lowest=np.min(level)))
 
 
 def _too_large(solved: Solved) -> str:

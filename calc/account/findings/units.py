@@ -6,7 +6,7 @@ import re
 from collections.abc import Iterator
 from functools import lru_cache
 
-from calc.account.findings.finding import Check, Remark
+from calc.account.findings.finding import Check, Remark, parts_of
 from calc.components import Stated
 from calc.project import Project
 
@@ -44,7 +44,7 @@ def quantities(project: Project) -> Iterator[tuple[str, str, Stated]]:
             for field, stated in record.stated.items():
                 if stated.unit and not stated.shipped:
                     yield f"{path}.{field}", field, stated
-            for part in (*record.parts.get("ends", ()), *record.parts.get("fittings", ())):
+            for part in parts_of(record):
                 own = part.stated.get("bore")
                 if own is not None and own is not record.stated.get("bore"):
                     yield f"{path}.fittings", "bore", own

@@ -82,9 +82,11 @@ def _factor(values: Values) -> Json:
 
 
 def paths(*, whole: bool, group: str = "") -> Json:
-    """Return the schema of a path: to fields, and to ``whole`` components; of one group where one is named."""
+    """Return the schema of a path: to fields, and to ``whole`` records; of one group where one is named."""
     ends = [path for path, _ in fields()] if not group else []
     components = [rf"{name}\.{PATTERN}" for name in ([group] if group else GROUPS)] if whole else []
+    if whole and not group:
+        components += [rf"constants\.{name}" for name in CONSTANTS]
     return {"type": "string", "pattern": f"^(?:{'|'.join([*components, *ends])})$"}
 
 

@@ -10,6 +10,10 @@ from sound_works import PROJECT, SOUND, findings, spoiled
 from calc.account import Finding
 
 BEND = ("    fittings: [{kind: bend-90}]\n", "")
+HAZEN_WILLIAMS = (
+    "roughness: {value: 0.1 mm, source: S1}",
+    "hazen_williams_c: {value: 130, source: S1}\n    law: hazen-williams",
+)
 
 
 def said(folder: Path, text: str, project: str = PROJECT) -> set[tuple[str, str, str]]:
@@ -66,12 +70,31 @@ def test_a_default_that_an_assumption_names_is_not_silent(tmp_path: Path) -> Non
     assert findings(tmp_path, text, PROJECT + reason) == ()
 
 
+@pytest.mark.parametrize(
+    ("subject", "names", "others"),
+    [
+        ("ends.*.exit", "pipes.*.ends", ["pipes.*.fittings"]),
+        ("constants.hazen_williams", "constants.hazen_williams", ["constants.manning", "pipes.*"]),
+    ],
+)
+def test_a_default_of_several_values_is_confirmed_by_one_path(
+    tmp_path: Path, subject: str, names: str, others: list[str]
+) -> None:
+    text = spoiled(("ends: {from: square}", "ends: {from: {entry: 0.5, source: S1}}"), HAZEN_WILLIAMS)
+    for number, path in enumerate((names, *others)):
+        reason = f"assumptions: {{A1: {{text: As in all our mains, affects: ['{path}']}}}}\n"
+        found = {one.subject for one in findings(tmp_path / str(number), text, PROJECT + reason) if one.id == "D05"}
+        assert (subject not in found) == (path == names)
+
+
+def test_the_way_out_of_an_exit_by_default_names_a_path_that_is_followed(tmp_path: Path) -> None:
+    text = spoiled(("ends: {from: square}", "ends: {from: {entry: 0.5, source: S1}}"))
+    (one,) = (one for one in findings(tmp_path, text) if one.subject == "ends.*.exit")
+    assert "or name pipes.*.ends under 'affects' of an assumption" in one.text
+
+
 def test_constants_of_an_empirical_law_are_named_once_where_it_is_used(tmp_path: Path) -> None:
-    law = (
-        "roughness: {value: 0.1 mm, source: S1}",
-        "hazen_williams_c: {value: 130, source: S1}\n    law: hazen-williams",
-    )
-    assert ("D05", "constants.hazen_williams", "taken by default") in said(tmp_path / "used", spoiled(law))
+    assert ("D05", "constants.hazen_williams", "taken by default") in said(tmp_path / "used", spoiled(HAZEN_WILLIAMS))
     assert not any(one[0] == "D05" for one in said(tmp_path / "unused", SOUND))
 
 
