@@ -138,7 +138,7 @@ def widths(table: Table, document: Document, *, close: bool = False) -> Widths:
             continue
         if len(row.cells) != count:
             raise Unresolved(f"table {table.key}, {row.address}: {len(row.cells)} cells, {count} columns")
-        for k, (column, parts) in enumerate(zip(table.columns, row.cells, strict=True)):
+        for k, (column, parts) in enumerate(zip(table.columns, row.placed[0], strict=True)):
             needed[k] = max(needed[k], _cell(column, parts, document))
             lines[k] = max(lines[k], min(LINE, _line(parts, document)))
     asked = tuple(column.width for column in table.columns)

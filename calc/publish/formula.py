@@ -39,11 +39,15 @@ def formula(part: Formula, measure: float, anchor: Anchor) -> Markup:
     Unresolved
         If an operand is missing.
     """
+    head = _head(part.law)
+    return _set(head, head.width + BLANK, _lines(part, measure, anchor))
+
+
+def _lines(part: Formula, measure: float, anchor: Anchor) -> list[tuple[str, Setting]]:
+    """Return the right sides of a formula, each with the sign before it."""
     law = part.law
     equation = law.residual if isinstance(law, Implicit) else law
-    head = _head(law)
-    indent = head.width + BLANK
-    room = max(LEAST, measure * SLACK - indent - width("= "))
+    room = max(LEAST, measure * SLACK - _head(law).width - BLANK - width("= "))
     symbols = Setter(lambda name: mathematics.symbol(equation.takes[name].text), room, worked=False)
     lines = [("=", _whole(symbols, equation.expression))]
     if part.operands is not None:
@@ -56,7 +60,7 @@ def formula(part: Formula, measure: float, anchor: Anchor) -> Markup:
             lines.append(("at", _equal(mathematics.symbol(law.gives.text), result)))
         else:  # a result that is less than a bound says so itself
             lines.append(("" if part.result.text.startswith("<") else "=", result))
-    return _set(head, indent, lines)
+    return lines
 
 
 def _whole(setter: Setter, expression: Expression) -> Setting:

@@ -131,7 +131,8 @@ def _texts(block: Block) -> Iterator[Parts]:
             yield from (parts for _, parts in block.items)
         case Table():
             yield from (column.head for column in block.columns)
-            yield from (cell for row in block.rows for cell in row.cells)
+            for cells, below in (row.placed for row in block.rows):
+                yield from (*cells, below)
         case Figure():
             yield block.caption
         case _:

@@ -73,6 +73,11 @@ class Sheet:
         return [escape(letter) for letter, _ in zip(LETTERS, self.table.columns, strict=False)]
 
     @property
+    def span(self) -> Markup:
+        """The count of its columns."""
+        return escape(str(len(self.table.columns)))
+
+    @property
     def heads(self) -> Iterator[Cell]:
         """The heads; that of a column without words is heard, not seen."""
         for column in self.table.columns:
@@ -98,11 +103,15 @@ class Sheet:
             content = self.writer.said(row.cells[0], self._em(sum(self.widths)))
             yield Cell(Markup("st"), content, span)
             return
-        for column, parts, wide in zip(columns, row.cells, self.widths, strict=True):
+        for column, parts, wide in zip(columns, row.placed[0], self.widths, strict=True):
             content = self.writer.said(parts, self._em(wide), column.unit or None)
             summed = row.tone in ("sum", "proved") and any(_numbers(parts))
             ruled = " dbl" if summed and row.tone == "proved" else " one" if summed else ""
             yield Cell(self._classes(column) + Markup(ruled), content, Markup())
+
+    def below(self, row: Row) -> Markup:
+        """Return the formulas of a row that stand beneath its cells, across all columns."""
+        return self.writer.said(row.placed[1], self._em(sum(self.widths)))
 
     def _classes(self, column: TableColumn) -> Markup:
         if column.role not in ROLES:

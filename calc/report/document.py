@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
-from calc.equation import Equation, Implicit
+from calc.equation import Equation, Expression, Implicit, Operation
 from calc.report import figures
 from calc.report.numbers import Format
 
@@ -80,6 +80,12 @@ class Formula:
     operands: Mapping[str, Number] | None = None
     result: Number | None = None
 
+    @property
+    def long(self) -> bool:
+        """Whether it holds so many symbols and numbers that it asks for the whole width of a table."""
+        equation = self.law.residual if isinstance(self.law, Implicit) else self.law
+        return _count(equation.expression) > MOST_SYMBOLS
+
 
 @dataclass(frozen=True, slots=True)
 class Cite:
@@ -87,6 +93,14 @@ class Cite:
 
     refs: tuple[str, ...]
     into: bool = False
+
+
+MOST_SYMBOLS = 11
+"""Symbols and numbers of a formula that stands in a column; one that holds more stands beneath its line."""
+
+
+def _count(node: Expression) -> int:
+    return sum(map(_count, node.args)) if isinstance(node, Operation) else 1
 
 
 Part = str | Number | Own | Quoted | Strong | Soft | Letter | Formula | Cite
@@ -128,6 +142,14 @@ class Row:
     cells: tuple[Parts, ...]
     refs: tuple[str, ...] = ()
     tone: str = ""
+
+    @property
+    def placed(self) -> tuple[tuple[Parts, ...], Parts]:
+        """Its cells without long formulas, and these, which stand beneath across all columns."""
+        if len(self.cells) == 1:
+            return self.cells, ()
+        below = tuple(part for cell in self.cells for part in cell if isinstance(part, Formula) and part.long)
+        return tuple(tuple(part for part in cell if part not in below) for cell in self.cells), below
 
 
 @dataclass(frozen=True, slots=True)

@@ -5,13 +5,13 @@ from __future__ import annotations
 from calc.account import WITHOUT_SOURCE, following
 from calc.ledger import Column, Converted, Given, Library, Spot
 from calc.report.composer import INTO, Composer, Sheet, column, place
-from calc.report.conversion import WORTH
 from calc.report.derivation import COLUMNS as WORKED
 from calc.report.derivation import lines
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong, TableColumn
 from calc.report.formats import shortest
 from calc.report.numbers import shown, written
 from calc.report.sections.results import kind_of_fitting
+from calc.report.sections.shipped import add_shipped
 from calc.report.selection import shown_inputs
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
@@ -41,11 +41,7 @@ def compose_inputs(composer: Composer) -> None:
             for row in lines(sheet, spot, Quoted(spot.column.rows[spot.row]), ": ")
         ]
         sheet.table(f"followed-{case}", WORKED, followed)
-    shipped = [c for c in given if isinstance(c.origin, Library)]
-    rows = _rows(sheet, shipped)
-    if rows:
-        sheet.add(Heading(("Defaults and shipped tables in use",)))
-        sheet.table("inputs-shipped", columns, rows)
+    add_shipped(sheet, [c for c in given if isinstance(c.origin, Library)], units)
     if shown_inputs(composer.account) is not None:
         said = "Of pipes and junctions, those are listed whose results are printed; the rest stand in the input files "
         sheet.add(Paragraph((said + "with their lines, and in the ledger file of this package.",), "small"))
@@ -109,20 +105,18 @@ def _followed(sheet: Sheet, case: str) -> list[Spot]:
 LARGE = ("pipes", "junctions", "fittings")
 """Groups of which only a part is printed where they are large."""
 
-GATHERED = ("fittings", "criteria", "units")
+GATHERED = ("fittings", "criteria")
 """Groups whose components are small, listed under one heading."""
 
-ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria", "units")
+ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria")
 
 
 def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
     origin = spot.column.origin
-    if not isinstance(origin, Given | Converted | Library):
+    if not isinstance(origin, Given | Converted):
         raise TypeError(f"{spot.id} is no input")
     kind = spot.column.kind
     unit = sheet.composer.display.coherent(kind)
-    if spot.column.name == WORTH and spot.column.rows[spot.row] == unit:
-        unit = kind.unit
     figures = FIGURES if isinstance(origin, Given) and unit == kind.unit else CONVERTED_FIGURES
     form = shortest(shown(spot.value, kind, unit), unit, figures)
     number = Number(spot.id, form, written(spot.value, kind, form))
