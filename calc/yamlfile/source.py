@@ -88,7 +88,9 @@ def _shown(name: str) -> str:
 
 def _refuse_name(name: str) -> tuple[str, str, str, str] | None:
     """Return code and words for a name that is not even looked for."""
-    if not name or not name.isprintable():
+    if not name:
+        return "unreadable", "no file is named here", "the name of a file in the folder: pipes.csv", ""
+    if not name.isprintable():
         return "unreadable", "the file name {} cannot be printed", "a plain name", "rename the file"
     place = PurePosixPath(name)
     if place.is_absolute() or ".." in place.parts or set(name) & set("\\:"):

@@ -19,6 +19,8 @@ if TYPE_CHECKING:
 _HEADING = re.compile(r"([^\[\]]+)(?:\[([^\[\]]*)\])?")
 MOST_COLUMNS = 100
 _NUMBER = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?", re.ASCII)
+_GAPPED = re.compile(r"[+-]?[0-9]+(?:[ ,'_][0-9]+)+(?:\.[0-9]+)?", re.ASCII)
+_GAPS = "write the digits of a number without gaps, and a point before its decimals"
 _CELL = re.compile(r'([ \t]*+)(?:"([^"]*+(?:""[^"]*+)*+)"[ \t]*+|([^",]*+))(,|\Z)')
 
 
@@ -231,7 +233,7 @@ class _Reading:
                     words = (
                         f"'{shown(text)}' stands under {heading}",
                         "a number alone",
-                        "the unit stands in the header",
+                        _GAPS if _GAPPED.fullmatch(text) else "the unit stands in the header",
                     )
                     self.report(mark, "not-a-number", words, key.text, column.key.text)
                 else:

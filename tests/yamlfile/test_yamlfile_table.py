@@ -107,6 +107,26 @@ def test_a_problem_is_shown_with_its_row(tmp_path: Path) -> None:
 
 
 @pytest.mark.parametrize(
+    ("cell", "hint"),
+    [
+        ("1 000", "write the digits of a number without gaps, and a point before its decimals"),
+        ('"1,000.5"', "write the digits of a number without gaps, and a point before its decimals"),
+        ('"0,15"', "write the digits of a number without gaps, and a point before its decimals"),
+        ("1850 m", "the unit stands in the header"),
+        ("many", "the unit stands in the header"),
+    ],
+)
+def test_a_number_with_gaps_is_told_apart_from_one_with_a_unit(tmp_path: Path, cell: str, hint: str) -> None:
+    (found,) = read(tmp_path, f"id,length [m]\na,{cell}\n").problems
+    assert (found.code, found.hint) == ("not-a-number", hint)
+
+
+def test_a_table_without_a_name_is_told_as_that(tmp_path: Path) -> None:
+    (found,) = read_table(tmp_path, Scalar("", Mark("network.yaml", 2, 16)), "pipes").problems
+    assert (found.code, found.found) == ("unreadable", "no file is named here")
+
+
+@pytest.mark.parametrize(
     ("name", "code"),
     [
         ("../secret.csv", "outside-folder"),
