@@ -81,6 +81,7 @@ function makeSetting(book) {
     }
     const tiny = book.figures(i) < 0 || result(i, si).textContent.startsWith("<");
     const last = law[6] ? ["at ", letter(law[5]), " = ", result(i, si)] : [tiny ? "" : "= ", result(i, si)];
+    if (!tiny && shown(i).textContent !== result(i, si).textContent) { last.push(", printed as ", shown(i)); }
     put.removeAttribute("role");
     put.removeAttribute("aria-label");
     return [make("div", "eqs", symbols), make("div", "eqs", put), make("p", "res", last)];
