@@ -93,8 +93,8 @@ def pipe_terms(ledger: Ledger, network: Network, case: str, chosen: Rows) -> Pip
         fittings=_fitting_terms(ledger, network, case, chosen, bore),
         viscosity=ledger.shared("fluid.viscosity", case),
         gravity=ledger.shared("site.gravity", case),
-        laminar_below=ledger.shared("constants.laminar_below", case),
-        turbulent_above=ledger.shared("constants.turbulent_above", case),
+        laminar_below=ledger.shared_of("constants.laminar_below", "transition", case),
+        turbulent_above=ledger.shared_of("constants.turbulent_above", "transition", case),
         constants=_constants(ledger, case),
     )
 
@@ -148,6 +148,7 @@ def enter_flows(ledger: Ledger, network: Network, solution: Solution, case: str)
     head = _enter_heads(ledger, network, solution, case)
     flow = _enter_pipe_flows(ledger, network, solution, case)
     open_pipes = np.flatnonzero(network.open)
+    _enter_across(books, network, head)
     terms = pipe_terms(ledger, network, case, open_pipes)
     results = losses(books, terms, transition_limits(books, terms), flow.take(open_pipes))
     closing = books.apply(
@@ -190,6 +191,19 @@ def _enter_pipe_flows(ledger: Ledger, network: Network, solution: Solution, case
         rows = [names[int(k)] for k in running]
         ledger.enter("pipes.flow", FLOW, rows, solution.flow[running], origin, case=case)
     return ledger.view("pipes.flow", case, names)
+
+
+def _enter_across(books: Accountant, network: Network, head: View) -> None:
+    """Enter the difference of head that shut pipes hold."""
+    shut = np.flatnonzero(~network.open)
+    if len(shut):
+        rows = [network.pipes.rows[int(k)] for k in shut]
+        books.apply(
+            "pipes.head_loss",
+            energy.head_across,
+            head_from=head.take(network.start[shut], rows),
+            head_to=head.take(network.end[shut], rows),
+        )
 
 
 def _enter_ratios(books: Accountant, terms: PipeTerms[View], results: PipeResults[View]) -> None:

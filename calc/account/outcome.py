@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-import numpy as np
-
 from calc.ledger import Ledger
 
 if TYPE_CHECKING:
@@ -129,15 +127,11 @@ REPORTED = {
 def _branches(account: Account, held: CaseAccount) -> dict[str, Any]:
     ledger, network = account.ledger, held.network
     columns = {told: _here(ledger, f"pipes.{name}", held.id) for told, name in REPORTED.items()}
-    head = held.columns.head.values if held.columns else np.zeros(0)
     branches: dict[str, Any] = {}
     for k, name in enumerate(network.pipes.rows):
         start, end = int(network.start[k]), int(network.end[k])
         told: dict[str, Any] = {"kind": "pipe", "from": network.nodes[start], "to": network.nodes[end]}
-        if network.open[k]:
-            told |= {what: values.get(name) for what, values in columns.items()}
-        else:
-            told |= {**dict.fromkeys(REPORTED, 0.0), "friction_factor": None}
-            told["head_loss"] = float(head[start] - head[end])
+        at_rest = {} if network.open[k] else {**dict.fromkeys(REPORTED, 0.0), "friction_factor": None}
+        told |= {what: values.get(name, at_rest.get(what)) for what, values in columns.items()}
         branches[name] = {**told, "state": "open" if network.open[k] else "shut"}
     return branches

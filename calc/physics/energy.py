@@ -22,6 +22,12 @@ def head_loss(*, friction_loss, fitting_loss):
     return friction_loss + fitting_loss
 
 
+@equation(gives=s.HEAD_LOSS, source=BERNOULLI_1738, valid="nothing flows", head_from=s.HEAD_FROM, head_to=s.HEAD_TO)
+def head_across(*, head_from, head_to):
+    """Difference of head across a shut pipe."""
+    return head_from - head_to
+
+
 @equation(
     gives=s.CLOSING_ERROR,
     source=BERNOULLI_1738,

@@ -169,6 +169,15 @@ def test_a_shut_pipe_carries_nothing_and_says_where_it_was_shut(star: Account) -
     assert value(star, "reservoirs.side.outflow@repair") == 0.0
 
 
+def test_a_shut_pipe_holds_the_difference_of_head_between_its_ends(star: Account) -> None:
+    network, head = star.cases["repair"].network, star.cases["repair"].columns.head.values
+    at = network.pipes.rows.index("side-main")
+    spot = star.ledger.spot("pipes.side-main.head_loss@repair")
+    assert spot.value == head[network.start[at]] - head[network.end[at]]
+    assert spot.value != 0
+    assert "Difference of head across a shut pipe" in next(iter(trace(star.ledger, spot)))
+
+
 def test_what_another_case_found_is_not_told_of_a_shut_pipe(star: Account) -> None:
     for quantity in ("velocity", "head_loss", "friction_loss", "reynolds", "closing_error"):
         with pytest.raises(Exception, match="no number has the id"):
