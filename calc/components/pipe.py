@@ -11,7 +11,7 @@ from calc.equation.evaluation import Rows
 from calc.kinds import BORE, HEAD, LENGTH, NUMBER, PRESSURE, ROUGHNESS, THICKNESS
 from calc.physics import energy, fitting, friction, velocity
 
-SET_BORE = "set 'bore' in the case"
+SET_BORE = "set 'bore' in the case, as a plain bore such as '384.4 mm'"
 
 SCHEMA = Schema(
     "pipes",

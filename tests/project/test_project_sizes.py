@@ -96,7 +96,7 @@ def test_cases_do_not_change_dimensions(tmp_path: Path, field: str, how: str) ->
     text = REFERENCES + SOUND.replace("    bore: 384.4 mm", SIZED["mapping"])
     text += f"cases: {{other: {{{how}: {{pipes.upper-main.{field}: 2}}}}}}\n"
     (problem,) = problems_in(tmp_path, text)
-    assert (problem.code, problem.hint) == ("fixed-field", "set 'bore' in the case")
+    assert (problem.code, problem.hint) == ("fixed-field", "set 'bore' in the case, as a plain bore such as '384.4 mm'")
     assert problem.found == f"'{field}' is the same in every case"
 
 
