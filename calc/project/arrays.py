@@ -18,6 +18,7 @@ from calc.physics.coefficient import KINDS
 from calc.physics.friction import LAW_NAMES
 from calc.project.cases import follows_friction, lines_in
 from calc.project.model import Line, Project
+from calc.project.shipped import defaults
 
 Array = npt.NDArray[np.float64]
 Rows = npt.NDArray[np.int64]
@@ -198,6 +199,12 @@ class Effective:
         at = self.inputs.index["constants"].get(law)
         return np.array([np.nan]) if at is None else self.numbers("constants", field)[at : at + 1]
 
+    def limit(self, field: str) -> Array:
+        """Return a limit of the transition, shape (1,); where no law has one the default, which findings judge by."""
+        if "transition" in self.inputs.index["constants"]:
+            return self.constant("transition", field)
+        return np.array([defaults()[f"constants.transition.{field}"].si])
+
     def law(self) -> Labels:
         """Return the friction law of each pipe."""
         codes, follows = self.inputs.law.copy(), self.inputs.follows.copy()
@@ -262,8 +269,8 @@ def _pipe_terms(now: Effective, viscosity: float) -> PipeTerms[Array]:
         fittings=now.inputs.fittings.terms(bore),
         viscosity=np.array([viscosity]),
         gravity=now.numbers("site", "gravity"),
-        laminar_below=now.constant("transition", "laminar_below"),
-        turbulent_above=now.constant("transition", "turbulent_above"),
+        laminar_below=now.limit("laminar_below"),
+        turbulent_above=now.limit("turbulent_above"),
         constants=EmpiricalConstants(
             hazen_williams_coefficient=now.constant("hazen_williams", "coefficient"),
             hazen_williams_flow_exponent=now.constant("hazen_williams", "flow_exponent"),

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Collection, Mapping
 
 from calc.components import Field, Quantity, Record, Schema, Stated, Text
-from calc.components.pipe import LAW_CONSTANTS
+from calc.components.pipe import LAW_CONSTANTS, LAW_INPUT
 from calc.kinds import (
     ACCELERATION,
     DENSITY,
@@ -137,6 +137,8 @@ def in_force(
         Groups of constants that cases change.
     """
     idle = {group for law, group in LAW_CONSTANTS.items() if law not in laws and group not in changed}
+    if TRANSITION.group not in changed and not any(LAW_INPUT.get(law) in ("roughness", None) for law in laws):
+        idle.add(TRANSITION.group)  # the other laws hold at every Reynolds number
     idle = {group for group in idle if all(stated.shipped for stated in constants[group].stated.values())}
     for group in idle:
         for name in constants[group].stated:

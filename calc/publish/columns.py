@@ -30,7 +30,7 @@ TEXT, SMALL, HEAD = (
     8.0 * POINT / DENSE,
     8.75 * POINT,
 )  # mm; the small size is never denser
-LONGEST, LONGEST_ID = 26.0, 36.0  # mm, a word that is longer may be broken; an id
+LONGEST, LONGEST_PLACE, LONGEST_ID = 26.0, 31.0, 36.0  # mm, a word that is longer may be broken; a place; an id
 LONG = 24  # rows from which a table is set dense rather than with broken cells
 BOLD, BAR = 1.07, 2.5  # how much wider semibold is; mm, the reader's bar
 SPACED = 0.05  # em, between small capitals
@@ -199,8 +199,9 @@ def _pieces(parts: Parts, document: Document) -> Iterator[float]:
             case Cite():
                 yield max((SMALL * width(run + ",") * BOLD for run in document.cited(part).split(", ")), default=0.0)
             case str() | Own() | Quoted():
-                size = SMALL * BOLD if isinstance(part, Own) and part.sort == "file" else TEXT
-                most = LONGEST_ID if isinstance(part, Own) and part.sort == "id" else LONGEST
+                sort = part.sort if isinstance(part, Own) else ""
+                size = SMALL * BOLD if sort == "file" else TEXT
+                most = {"id": LONGEST_ID, "file": LONGEST_PLACE}.get(sort, LONGEST)
                 yield from (min(most, size * width(word) * SLACK) for word in _words(part))
             case _:
                 continue

@@ -95,7 +95,7 @@ class Cite:
     into: bool = False
 
 
-MOST_SYMBOLS = 11
+MOST_SYMBOLS = 13
 """Symbols and numbers of a formula that stands in a column; one that holds more stands beneath its line."""
 
 
@@ -314,10 +314,11 @@ class Document:
             refs = [line for ref in cite.refs for line in self.behind.get(ref, (ref,))]
         found = {self.addresses[ref] for ref in refs if ref in self.addresses}
         runs = collapsed(found).split(", ") if found else []
-        return ", ".join(runs) if len(runs) <= MOST_RUNS else f"{', '.join(runs[: MOST_RUNS - 1])}, …"
+        most = MOST_INTO if cite.into else MOST_RUNS
+        return ", ".join(runs) if len(runs) <= most else f"{', '.join(runs[: most - 1])}, …"
 
 
-MOST_RUNS = 4
+MOST_RUNS, MOST_INTO = 4, 3
 """Runs of addresses that a citation prints; where there are more it ends in an ellipsis, and trace tells all."""
 
 

@@ -11,7 +11,7 @@ from works import NAMES, work
 
 from calc import pipeline
 from calc.account import CHECKS, Account, gathered
-from calc.ledger import Combined, Converted, Derived, Given, Judged, Library, Program, Solved, Spot, proofs
+from calc.ledger import Column, Combined, Converted, Derived, Given, Judged, Library, Program, Solved, Spot, proofs
 from calc.ledger.origin import Combined as Total
 from calc.physics.empirical import EMPIRICAL_LAWS
 from calc.report.composer import inputs_of
@@ -24,7 +24,9 @@ from calc.report.document import (
     Heading,
     Index,
     Listing,
+    Number,
     Paragraph,
+    Row,
     SignOff,
     Table,
 )
@@ -217,9 +219,6 @@ def test_each_case_is_told_in_order(name: str) -> None:
             expected += ["trials" if trials else "steps"]
         expected += ["stopping", "Convergence", *(["Balance"] if trials else [])]
         expected += ["derivation", "pipes", "losses"]
-        laws = case.columns.terms.law if case.columns else None
-        empirical = laws is not None and any(laws.word(k) in EMPIRICAL_LAWS for k in range(len(laws.codes)))
-        expected += ["empirical"] if empirical else []
         expected += ["fittings"] if case.columns and case.columns.terms.fittings.rows else []
         expected += ["junctions", "continuity"] if account.project.junctions else []
         expected += ["energy", "second", "opinions"]
@@ -263,8 +262,10 @@ def test_every_given_value_is_listed_with_source_place_and_text(name: str) -> No
     listed = {}
     for held in tables(document, "inputs"):
         for row in held.rows:
-            if row.tone != "group":
-                listed[row.refs[0]] = row
+            for ref in row.refs:
+                assert ref not in listed
+                listed[ref] = held, row
+    sources = {plain(row.cells[0]): plain(row.cells[1]) for held in tables(document, "sources") for row in held.rows}
     for column in account.ledger.columns:
         origin = column.origin
         if not isinstance(origin, Given | Converted | Library):
@@ -272,11 +273,46 @@ def test_every_given_value_is_listed_with_source_place_and_text(name: str) -> No
         for k in range(len(column.rows)):
             if column.group in ("verification", "record"):
                 continue
-            row = listed[column.id(k)]
+            held, row = listed[column.id(k)]
+            number = next(part for part in row.cells[2] if isinstance(part, Number))
+            assert account.ledger.spot(number.ref).value == column.values[k]
             assert plain(row.cells[1]) == origin.written[k]
             assert plain(row.cells[5]) == origin.marks[k].place.removeprefix("calc/")
             said = plain(row.cells[4])
-            assert origin.bases[k] in said or "no source" in said
+            if held.key == "inputs-shipped":
+                key, _, within = said.partition(", ")
+                assert origin.bases[k].endswith("; ".join(word for word in (sources[key], within) if word))
+                assert_named(column, k, row)
+            else:
+                assert origin.bases[k] in said or "no source" in said
+
+
+@pytest.mark.parametrize("name", ["demo", "empirical-us"])
+def test_no_method_and_no_convention_is_told_that_is_not_in_use(name: str) -> None:
+    account, document = work(name).account, work(name).document
+    used = {case.solution.method for case in account.cases.values()}
+    told = [plain(row.cells[0]) for row in table(document, "method").rows]
+    begun = {"bracketing": "Bracketing,", "newton": "Newton,", "loop-correction": "Loop correction,"}
+    assert {method for method, words in begun.items() if any(said.startswith(words) for said in told)} == used
+    said = [plain(row.cells[0]) for row in table(document, "conventions").rows]
+    laws = {pipe.text("law") for pipe in account.project.pipes.values()}
+    assert any("Hazen–Williams and Manning have no friction factor" in words for words in said) == bool(
+        laws & EMPIRICAL_LAWS.keys()
+    )
+    assert any("Darcy f throughout" in words for words in said) == bool(laws - EMPIRICAL_LAWS.keys())
+
+
+def assert_named(column: Column, k: int, row: Row) -> None:
+    """A line that stands for several numbers names each, or what is silent of it; and where each was chosen."""
+    origin, statement = column.origin, plain(row.cells[0])
+    assert isinstance(origin, Library)
+    assert column.quantity.replace("_", " ") in statement
+    if "of all that state none" in statement:
+        assert origin.marks[k].place.startswith("calc/data/defaults.yaml")
+        return
+    assert column.rows[k] in statement or statement.endswith("and others") or not column.rows[k]
+    for place in re.findall(r" at (\S+):(\d+):\d+; ", origin.bases[k]):
+        assert all(word in statement for word in place)
 
 
 @EVERY

@@ -1,14 +1,14 @@
-"""The table that sets empirical laws beside Darcy–Weisbach."""
+"""Factors of friction in the table of losses: Darcy f where a law has one, that of the same loss where it has none."""
 
 from __future__ import annotations
 
 import numpy as np
 import pytest
 from accounts import accounted
-from pages import plain, table, tables
+from pages import plain, table
 
 from calc import pipeline
-from calc.report.document import Document, Table
+from calc.report.document import Document, Masthead, Paragraph, Table
 
 WORKS = """
 site: {gravity: 9.81 m/s²}
@@ -25,48 +25,63 @@ cases:
 """
 
 
+OWN, SAME = "Darcy f", "Darcy f, same loss"
+
+
+def texts(document: Document) -> list[str]:
+    return [plain(block.parts) for one in document.sections for block in one.blocks if isinstance(block, Paragraph)]
+
+
 @pytest.fixture(scope="module")
 def document(tmp_path_factory: pytest.TempPathFactory) -> Document:
     return pipeline.document(accounted(tmp_path_factory.mktemp("works"), WORKS), "checking")
 
 
-def rows(held: Table) -> dict[str, list[str]]:
-    return {plain(row.cells[0]): [plain(cell) for cell in row.cells[1:]] for row in held.rows}
+def rows(held: Table) -> dict[str, dict[str, str]]:
+    heads = [plain(column.head) for column in held.columns]
+    return {plain(row.cells[0]): dict(zip(heads, map(plain, row.cells), strict=True)) for row in held.rows}
 
 
-def test_it_lists_the_pipes_that_follow_such_a_law(document: Document) -> None:
-    told = rows(table(document, "empirical-base"))
-    assert list(told) == ["main", "tail", "even"]
-    assert told["main"][:2] == ["Hazen–Williams C", "130.0"]
-    assert told["tail"][:2] == ["Manning n", "0.0120"]
+def read(text: str) -> float:
+    return float(text.replace("−", "-").replace("\u202f", ""))
 
 
 def test_the_factor_printed_gives_the_loss_printed(document: Document) -> None:
     # h = f (L/D) V²/2g by hand; the figures printed bear about a thousandth
     for name, length, bore in (("main", 1500.0, 0.3), ("tail", 900.0, 0.25)):
-        velocity, _, loss, factor = (
-            float(text.replace("−", "-").replace("\u202f", "").replace("\u2009", "").replace(" ", ""))
-            for text in rows(table(document, "empirical-base"))[name][2:]
-        )
+        told = rows(table(document, "losses-base"))[name]
+        velocity, loss, factor = (read(told[head]) for head in ("velocity", "friction", SAME))
         again = factor * length / bore * velocity * abs(velocity) / (2 * 9.81)
         assert again == pytest.approx(loss, rel=2e-3)
         assert np.sign(velocity) == np.sign(loss)
 
 
-def test_at_rest_there_is_no_such_factor(document: Document) -> None:
-    assert rows(table(document, "empirical-base"))["even"][-1] == "–"
+def test_at_rest_and_shut_there_is_no_such_factor(document: Document) -> None:
+    assert rows(table(document, "losses-base"))["even"][SAME] == "–"
+    assert rows(table(document, "losses-shut"))["main"][SAME] == "–"
 
 
-def test_shut_pipes_are_left_out_and_so_is_an_empty_table(document: Document) -> None:
-    assert list(rows(table(document, "empirical-shut"))) == ["tail", "even"]
-    assert [held.key for held in tables(document, "empirical-")] == ["empirical-base", "empirical-shut"]
-
-
-def test_darcy_f_is_a_dash_in_the_table_of_losses(document: Document) -> None:
+def test_a_law_has_one_factor_or_the_other(document: Document) -> None:
     told = rows(table(document, "losses-base"))
-    assert {name: cells[2] == "–" for name, cells in told.items()} == {
-        "main": True,
-        "tail": True,
-        "side": False,
-        "even": True,
-    }
+    assert {name: cells[OWN] == "–" for name, cells in told.items()} == dict.fromkeys(told, True) | {"side": False}
+    assert {name for name, cells in told.items() if cells[SAME] != "–"} == {"main", "tail"}
+
+
+def test_a_factor_that_no_law_has_is_no_column(document: Document) -> None:
+    assert OWN in next(iter(rows(table(document, "losses-rough")).values()))
+    assert SAME not in next(iter(rows(table(document, "losses-rough")).values()))
+    said = [words for words in texts(document) if "know neither viscosity nor Darcy f" in words]
+    assert len(said) == 2  # base and shut
+
+
+def test_laws_are_told_in_words(document: Document) -> None:
+    first = document.sections[0].blocks[0]
+    assert isinstance(first, Masthead)
+    assert plain(dict(first.facts)["friction law"]) == "Hazen–Williams, Haaland, Manning, Colebrook–White"
+    schedule = rows(table(document, "schedule"))
+    assert [cells["law"] for cells in schedule.values()] == [
+        "Hazen–Williams",
+        "Manning",
+        "Colebrook–White",
+        "Hazen–Williams",
+    ]

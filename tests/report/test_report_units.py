@@ -412,10 +412,10 @@ def test_the_schedule_tells_each_pipe_as_stated() -> None:
         for row in table(work("laws-us").document, "schedule").rows
     }
     heads = [(plain(one.head), one.unit) for one in table(work("laws-us").document, "schedule").columns[3:7]]
-    assert heads == [("length", "ft"), ("bore", "in"), ("roughness", "ft"), ("f, C or n", "")]
+    assert heads == [("length", "ft"), ("bore", "in"), ("roughness", "ft"), ("Darcy f", "")]
     # 2100 m, 300 mm and 0.0185; 950 m, 250 mm and 0.3 mm, as the works state them
-    fixed = ["hill", "meet", f"{2100 / FOOT:.1f}", f"{0.3 / INCH:.3f}", "–", "0.0185", "fixed"]
-    rough = ["meet", "mill", f"{950 / FOOT:.1f}", f"{0.25 / INCH:.3f}", f"{0.0003 / FOOT:.6f}", "–", "haaland"]
+    fixed = ["hill", "meet", f"{2100 / FOOT:.1f}", f"{0.3 / INCH:.3f}", "–", "0.0185", "fixed Darcy f"]
+    rough = ["meet", "mill", f"{950 / FOOT:.1f}", f"{0.25 / INCH:.3f}", f"{0.0003 / FOOT:.6f}", "–", "Haaland"]
     assert (rows["fixed-main"], rows["haaland-main"]) == (fixed, rough)
 
 

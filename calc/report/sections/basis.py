@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator
 
 from calc.account import CaseAccount
+from calc.components.pipe import LAW_CONSTANTS
 from calc.ledger import Derived, Ledger, Spot
 from calc.report import figures
 from calc.report.composer import Composer, Sheet, column, figure_column
@@ -22,7 +23,7 @@ from calc.report.document import (
     TableColumn,
     named_unit,
 )
-from calc.report.sections.schedule import add_schedule
+from calc.report.sections.schedule import add_schedule, laws_of_pipes
 
 CONVENTIONS = (
     "Flow in a branch is positive from its ‘from’ to its ‘to’; velocity and losses carry the sign of the flow.",
@@ -35,13 +36,26 @@ CONVENTIONS = (
         "Pressure head is head less elevation; the velocity head is not deducted, and the largest at the node is "
         "printed beside it. Pressures are gauge unless called absolute."
     ),
-    "With parallel pipes the flow is the total; velocity, Reynolds number, friction factor and fittings are per pipe.",
-    "The friction factor is Darcy f throughout.",
+    "With parallel pipes the flow is the total; velocity, Reynolds number, friction and fittings are per pipe.",
     (
         "A reservoir is held at its level. At a reservoir end the entry loss holds when water leaves the reservoir "
         "and the exit loss when it enters. A coefficient without a reverse value holds both ways."
     ),
 )
+
+
+FACTOR = "The friction factor is Darcy f throughout."
+NO_FACTOR = (
+    "Hazen–Williams and Manning have no friction factor; where Darcy f stands beside them it is the factor of "
+    "Darcy–Weisbach that gives the same loss."
+)
+
+
+def _factor(composer: Composer) -> list[str]:
+    """Say what a friction factor is, as far as the laws of the pipes have one."""
+    laws = {law for case in composer.account.cases.values() for law in laws_of_pipes(case)}
+    own, none = laws - LAW_CONSTANTS.keys(), laws & LAW_CONSTANTS.keys()
+    return [*([FACTOR] if own else []), *([NO_FACTOR] if none else [])]
 
 
 def compose_basis(composer: Composer) -> None:
@@ -55,7 +69,7 @@ def compose_basis(composer: Composer) -> None:
         statements.append(("Levels and elevations are above the datum: ", Quoted(datum), "."))
     else:
         statements.append((Strong(("The datum of levels and elevations is not stated.",), bar=True),))
-    statements += [(text,) for text in CONVENTIONS]
+    statements += [(text,) for text in (*CONVENTIONS, *_factor(composer))]
     statements += _units(composer.display)
     columns = (column("statement", role="statement"),)
     sheet.table("conventions", columns, [sheet.row(parts) for parts in statements])

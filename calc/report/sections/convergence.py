@@ -300,17 +300,17 @@ def _step_table(sheet: Sheet, case: CaseAccount, steps: Steps) -> None:
     flow, head = composer.unit("flow"), composer.unit("head")
     junctions = [network.nodes[k] for k in network.unknown.tolist()]
     shown = junctions if steps.head is not None and len(junctions) <= MOST_HEADS else []
-    columns: list[TableColumn] = [column("iteration", 14)]
+    columns: list[TableColumn] = [column("iteration", 13)]
     columns += [
-        TableColumn(("head ", name(junction)), unit=head, align="right", edge=k == 0, role="value")
+        TableColumn(("head ", name(junction)), unit=head, align="right", width=19, edge=k == 0, role="value")
         for k, junction in enumerate(shown)
     ]
     columns += [
-        figure_column("largest imbalance", flow, 26, edge=True),
+        figure_column("largest imbalance", flow, 19, edge=True),
         column("at", None if not shown else 24),
-        figure_column("largest closing error", head, 26, edge=True),
+        figure_column("largest closing error", head, 19, edge=True),
         column("at", None if not shown else 24),
-        figure_column("largest change", flow, 24, edge=True),
+        figure_column("largest change", flow, 17, edge=True),
     ]
     rows = [_step_row(sheet, case, steps, k, shown) for k in range(len(steps.iteration))]
     sheet.table(f"steps-{case.id}", columns, rows)

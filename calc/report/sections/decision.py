@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from dataclasses import replace
 
 from calc.account import CaseAccount, CriterionVerdict
@@ -25,6 +26,7 @@ from calc.report.document import (
     named_unit,
 )
 from calc.report.numbers import THIN
+from calc.report.sections.schedule import law_words, laws_of_pipes
 
 STATUS = {
     "checking": "Issued for checking – preliminary, not for construction",
@@ -50,7 +52,7 @@ def compose_decision(composer: Composer) -> None:
         ("revision", (Quoted(header.text("revision")), *((", ", Own(date, "date")) if date else ()))),
         ("client", (Quoted(header.text("client") or "not stated"),)),
         ("datum", (Quoted(header.text("datum") or "not stated"),)),
-        ("friction law", (name(project.friction.text),)),
+        ("friction law", (", ".join(_laws(composer)),)),
         ("digest", (Own(composer.account.digest.partition(":")[2][:16], "document"),)),
     ]
     sheet.add(Masthead((Quoted(header.text("title")),), subtitle, STATUS[composer.purpose], tuple(facts)))
@@ -64,6 +66,12 @@ def compose_decision(composer: Composer) -> None:
     )
     sheet.add(SignOff(roles, seal_area=composer.purpose == "record"))
     sheet.close()
+
+
+def _laws(composer: Composer) -> list[str]:
+    """Return the friction laws of the pipes in words, that of most pipes first."""
+    words = Counter(law for case in composer.account.cases.values() for law in laws_of_pipes(case))
+    return [law_words(law) for law, _ in words.most_common()]
 
 
 def _sentence(composer: Composer) -> Parts:

@@ -37,7 +37,7 @@ def _found(sheet: Sheet) -> None:
         column("check", 14),
         column("remark", 30),
         column("subject", 32, edge=True),
-        column("found", role="statement"),
+        column("found", 80, role="statement"),
         column("file and line", 27, edge=True),
     )
     sheet.table("findings", columns, rows)

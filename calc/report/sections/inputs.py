@@ -4,14 +4,14 @@ from __future__ import annotations
 
 from calc.account import WITHOUT_SOURCE, following
 from calc.ledger import Column, Converted, Given, Library, Spot
-from calc.report.composer import INTO, Composer, Sheet, column, place
+from calc.report.composer import Composer, Sheet, column, place
 from calc.report.derivation import COLUMNS as WORKED
 from calc.report.derivation import lines
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong, TableColumn
 from calc.report.formats import shortest
 from calc.report.numbers import shown, written
 from calc.report.sections.results import kind_of_fitting
-from calc.report.sections.shipped import add_shipped
+from calc.report.sections.shipped import INTO_WIDTH, add_shipped
 from calc.report.selection import shown_inputs
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
@@ -60,13 +60,13 @@ UNITS = {"SI": "in SI", "US": "in US units"}
 
 def _columns(units: str) -> tuple[TableColumn, ...]:
     return (
-        column("given", role="statement"),
-        column("as written", 22, edge=True, align="right"),
-        column(units, 18, align="right", role="value"),
-        column("", 10, role="unit"),
-        column("source, page, grade, note", 34, edge=True),
+        column("given", 36, role="statement"),
+        column("as written", 14, edge=True, align="right"),
+        column(units, 12, align="right", role="value"),
+        column("", 4, role="unit"),
+        column("source, page, grade, note", 36, edge=True),
         column("file and line", 30),
-        INTO,
+        TableColumn(("into",), width=INTO_WIDTH, role="into"),
     )
 
 

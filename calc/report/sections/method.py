@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 
+from calc.components.pipe import LAW_INPUT
 from calc.equation import Equation, Implicit, Leaf
 from calc.ledger import Derived
 from calc.report.composer import Composer, Sheet, column
@@ -11,45 +12,61 @@ from calc.report.conversion import empirical, laws_of
 from calc.report.derivation import symbols_of
 from calc.report.display import SI, Display
 from calc.report.document import Formula, Heading, Letter, Own, Paragraph, Parts, Row, Soft
+from calc.report.sections.schedule import laws_of_pipes
 from calc.solve.rules import RULES
 
-STATEMENTS = (
-    (
-        "Unknown are the head at each junction and the flow in each branch. Every branch obeys the balance of energy "
-        "between its ends, every junction the balance of volume."
-    ),
-    (
+UNKNOWN = (
+    "Unknown are the head at each junction and the flow in each branch. Every branch obeys the balance of energy "
+    "between its ends, every junction the balance of volume."
+)
+METHODS = {
+    "bracketing": (
         "Bracketing, where one head is unknown: a trial head is put at the junction, the flow of each branch that "
         "loses the head between its ends is found, and the flows toward the junction are summed less the withdrawal. "
         "The sum falls as the head rises, so a positive sum puts the head sought above the trial and a negative one "
         "below. The search begins at the levels of the reservoirs and widens where the head lies outside them; then "
         "the bracket is narrowed by the rules printed with each case. Every evaluation is a row of its table."
     ),
-    (
+    "newton": (
         "Newton, for any number of junctions and loops: the gradient method of Todini and Pilati, in which heads and "
         "flows are corrected together until every imbalance and every closing error is within its limit. Every "
         "iteration is a row."
     ),
-    (
+    "loop-correction": (
         "Loop correction, for small networks: the hand method of Hardy Cross. Flows that satisfy continuity are "
         "assumed, and each loop or path between reservoirs is corrected in turn, with the flows just corrected, by "
         "what its losses fail to close over the sum of their rises with the flow. The power to which a loss rises is "
-        "taken as two where flow is turbulent and Darcy f is found from it; no correction is shortened. The sweeps "
-        "end when neither corrections nor closing errors are left beyond their limits."
+        "{powers}; no correction is shortened. The sweeps end when neither corrections nor closing errors are left "
+        "beyond their limits."
     ),
-    (
-        "Second opinion: each case is solved again from the same inputs by separate code in another formulation, flows "
-        "around loops that satisfy continuity from the first trial. The two must agree within the differences printed."
-    ),
-    "A case that does not converge has no results.",
+}
+"""What is said of each method, where a case is solved by it."""
+POWERS = {
+    True: "taken as two where flow is turbulent and Darcy f is found from it",
+    False: "that to which the laws raise the flow, friction and fittings weighted by their losses",
+}
+"""The power of loop correction, by whether some law finds Darcy f from the flow."""
+OPINION = (
+    "Second opinion: each case is solved again from the same inputs by separate code in another formulation, flows "
+    "around loops that satisfy continuity from the first trial. The two must agree within the differences printed."
 )
+UNSOLVED = "A case that does not converge has no results."
+
+
+def _statements(composer: Composer) -> list[str]:
+    """Return what is said of the methods in use."""
+    cases = composer.account.cases.values()
+    rough = any(LAW_INPUT[law] == "roughness" for case in cases for law in laws_of_pipes(case))
+    used = {case.solution.method for case in cases}
+    methods = [said.replace("{powers}", POWERS[rough]) for method, said in METHODS.items() if method in used]
+    return [UNKNOWN, *methods, OPINION, UNSOLVED]
 
 
 def compose_method(composer: Composer) -> None:
     """Compose the method and the equations in use."""
     lead = "The relations used, where each comes from, and the range in which it may be trusted."
     sheet = composer.begin("method", "Method and equations", lead)
-    sheet.table("method", (column("method", role="statement"),), [sheet.row((text,)) for text in STATEMENTS])
+    sheet.table("method", (column("method", role="statement"),), [sheet.row((text,)) for text in _statements(composer)])
     _rules(sheet)
     rules = {rule.equation.name for rule in RULES.values()}
     leaves: dict[str, Leaf] = {}
@@ -64,12 +81,9 @@ def compose_method(composer: Composer) -> None:
     sheet.table("equations", columns, [_equation(sheet, leaf, estimates) for leaf in leaves.values()])
     sheet.add(Heading(("Symbols",)))
     _symbols(sheet, _gathered([*laws_in_use(composer), *conversions], composer.display))
-    sheet.add(
-        Paragraph(
-            ("Empirical equations are worked in SI; their inputs are divided by the units shown first.",),
-            "small",
-        )
-    )
+    if any(empirical(leaf) for leaf in leaves.values()):
+        said = "Empirical equations are worked in SI; their inputs are divided by the units shown first."
+        sheet.add(Paragraph((said,), "small"))
     sheet.close()
 
 

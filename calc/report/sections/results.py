@@ -7,12 +7,12 @@ import hashlib
 import numpy as np
 
 from calc.account import CaseAccount
+from calc.components.pipe import LAW_CONSTANTS
 from calc.ledger import Derived, Ledger, Spot
 from calc.report.composer import NOTHING, Composer, Sheet, cited, column, figure_column, name
 from calc.report.derivation import COLUMNS, displayed, lines
 from calc.report.document import Heading, Own, Paragraph, Parts, Row, Soft, Strong, TableColumn
 from calc.report.numbers import Format
-from calc.report.sections.empirical import add_empirical
 from calc.report.selection import shown_junctions, shown_pipes
 from calc.report.tables import junctions_file, pipes_file
 
@@ -112,7 +112,6 @@ def _other_laws(sheet: Sheet, case: CaseAccount, pipe: str) -> list[Row]:
 def add_tables(sheet: Sheet, case: CaseAccount) -> None:
     """Add the tables of pipes, fittings and nodes."""
     _pipes(sheet, case)
-    add_empirical(sheet, case)
     _fittings(sheet, case)
     _nodes(sheet, case)
 
@@ -121,7 +120,7 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     composer = sheet.composer
     names, head, flow = shown_pipes(case), composer.unit("head"), composer.unit("flow")
     sheet.add(Heading(("Pipes: heads and flows",)))
-    columns = (
+    columns: tuple[TableColumn, ...] = (
         column("pipe", role="statement"),
         column("from", 24, edge=True),
         figure_column("head", head, 16.5),
@@ -133,18 +132,22 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     )
     sheet.results(f"pipes-{case.id}", columns, [_pipe_row(sheet, case, pipe) for pipe in names])
     sheet.add(Heading(("Pipes: velocities and losses",)))
+    factors = _factors(case, names)
     columns = (
         column("pipe", role="statement"),
         figure_column("velocity", composer.unit("velocity"), 19.5, edge=True),
         figure_column("Reynolds", width=20),
-        figure_column("Darcy f", width=16),
+        *(figure_column(words, width=18) for words in factors.values()),
         figure_column("friction", head, 19.5, edge=True),
         figure_column("fittings", head, 19.5),
         figure_column("share of fittings", "%", 19.5),
         figure_column("loss", head, 16),
     )
-    sheet.results(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe) for pipe in names])
+    sheet.results(f"losses-{case.id}", columns, [_loss_row(sheet, case, pipe, tuple(factors)) for pipe in names])
     said = "Losses and velocity carry the sign of the flow, positive from ‘from’ to ‘to’."
+    if EQUIVALENT in factors:
+        said += " Hazen–Williams and Manning know neither viscosity nor Darcy f, and are applied at every Reynolds"
+        said += " number; printed is the Darcy f by which Darcy–Weisbach would give the same loss."
     if len(names) < len(case.network.pipes.rows):
         said += " The pipes that lose most head are printed."
     sheet.add(Paragraph((said,), "small"))
@@ -176,19 +179,32 @@ def _pipe_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
     return _told(sheet, case, pipe, cells, ("head_loss", "one_in", "flow"))
 
 
-def _loss_row(sheet: Sheet, case: CaseAccount, pipe: str) -> Row:
-    wanted = ("velocity", "reynolds", "darcy_f", "friction_loss", "fitting_loss", "fitting_share", "head_loss")
+EQUIVALENT = "equivalent_f"
+"""The factor of an empirical law, which takes none: that of the same loss."""
+
+
+def _factors(case: CaseAccount, names: tuple[str, ...]) -> dict[str, str]:
+    """Return the factors that the laws of some pipes have, with the heads of their columns."""
+    law = case.network.pipes.law
+    words = {law.word(case.network.pipes.rows.index(pipe)) for pipe in names}
+    factors = {"darcy_f": "Darcy f"} if words - LAW_CONSTANTS.keys() or not words else {}
+    return factors | ({EQUIVALENT: "Darcy f, same loss"} if words & LAW_CONSTANTS.keys() else {})
+
+
+def _loss_row(sheet: Sheet, case: CaseAccount, pipe: str, factors: tuple[str, ...]) -> Row:
+    wanted = ("velocity", "reynolds", *factors, "friction_loss", "fitting_loss", "fitting_share", "head_loss")
     return _told(sheet, case, pipe, [(name(pipe),)], wanted)
 
 
 def _told(sheet: Sheet, case: CaseAccount, pipe: str, cells: list[Parts], wanted: tuple[str, ...]) -> Row:
     """Return a row with quantities of a pipe; a dash where the law defines no value."""
-    refs = []
+    refs: list[str] = []
     shut = not case.network.open[case.network.pipes.rows.index(pipe)]
     for quantity in wanted:
         spot = _here(sheet.composer.ledger, f"pipes.{quantity}", case.id, pipe)
         if spot is None:
-            cells.append((Soft(("shut",)) if shut and quantity == wanted[0] else NOTHING,))
+            cells.append((Soft(("shut",)) if shut else NOTHING,))
+            shut = False  # said once
             continue
         refs.append(spot.id)
         cells.append((sheet.composer.number(spot),))

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
+
 from calc.account import CaseAccount
 from calc.components.pipe import LAW_INPUT
 from calc.ledger import Spot
@@ -28,7 +30,7 @@ def add_schedule(sheet: Sheet, case: CaseAccount) -> None:
         figure_column("length", composer.unit("length"), 22, edge=True),
         figure_column("bore", composer.unit("bore"), 18),
         *([figure_column(ROUGHNESS, composer.unit(ROUGHNESS), 22)] if any(rough) else []),
-        *([figure_column("f, C or n", width=18)] if not all(rough) else []),
+        *([figure_column(_factor_words(laws.values()), width=18)] if not all(rough) else []),
         column("law", 32, edge=True),
     ]
     kinds = [sort for sort in (True, False) if sort in rough]
@@ -47,7 +49,28 @@ def _row(sheet: Sheet, case: CaseAccount, pipe: str, law: str, kinds: list[bool]
         spot = _stated(sheet, case, pipe, field) if field else None
         form = shortest(spot.value, "", FIGURES) if spot and not spot.column.kind.unit else None
         cells.append((composer.number(spot, form),) if spot else (NOTHING,))
-    return sheet.row(*cells, (law,))
+    return sheet.row(*cells, (law_words(law),))
+
+
+FACTORS = {"friction_factor": "Darcy f", "hazen_williams_c": "C", "manning_n": "n"}
+"""The heads of the fields of friction that are no roughness."""
+
+
+def _factor_words(laws: Iterable[str]) -> str:
+    """Return the head of a column of factors and coefficients of friction."""
+    needed = {LAW_INPUT[law] for law in laws}
+    return " or ".join(words for field, words in FACTORS.items() if field in needed)
+
+
+def laws_of_pipes(case: CaseAccount) -> list[str]:
+    """Return the friction law of each pipe in a case."""
+    pipes = case.network.pipes
+    return [pipes.law.word(k) for k in range(len(pipes.rows))]
+
+
+def law_words(law: str) -> str:
+    """Return the name of a friction law as it is written in text: ``Hazen–Williams``."""
+    return "fixed Darcy f" if law == "fixed" else law.title().replace("-", "–")
 
 
 def _stated(sheet: Sheet, case: CaseAccount, pipe: str, field: str) -> Spot | None:

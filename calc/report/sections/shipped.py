@@ -9,10 +9,10 @@ from string import ascii_lowercase
 
 from calc.components import SCHEMAS
 from calc.ledger import Column, Library, Spot
-from calc.report.composer import INTO, Composer, Sheet, column, place
+from calc.report.composer import Composer, Sheet, column, place
 from calc.report.conversion import WORTH
 from calc.report.derivation import operand
-from calc.report.document import Cite, Heading, Number, Own, Part, Parts, Quoted, Row
+from calc.report.document import Cite, Heading, Number, Own, Part, Parts, Quoted, Row, Soft, TableColumn
 from calc.report.sections.results import kind_of_fitting
 from calc.report.selection import shown_inputs
 
@@ -20,11 +20,13 @@ FIGURES = 8
 MOST_NAMED = 8
 """Components named on a line; the index of ledger ids names all."""
 DEFAULTS = "calc/data/defaults.yaml"
-FITTINGS = "fittings"
+FITTINGS, UNITS = "fittings", "units"
+INTO_WIDTH = 23.0
 GROUPS = (*(schema.group for schema in SCHEMAS), FITTINGS)
 """Groups whose rows are components, of which many may hold one value."""
 
 _TAKEN = re.compile(r"(.+?),? at (\S+):(\d+):\d+; (.+)", re.DOTALL)
+_RANGE = re.compile(r"(.+); (range .+)", re.DOTALL)
 
 
 @dataclass
@@ -33,6 +35,7 @@ class Shared:
 
     chosen: str
     source: str
+    within: str
     kind: str
     by_quantity: dict[str, list[Spot]] = field(default_factory=dict)
     places: dict[str, list[str]] = field(default_factory=dict)
@@ -82,25 +85,37 @@ def add_shipped(sheet: Sheet, columns: Iterable[Column], units: str) -> None:
     groups = gathered(sheet.composer, columns)
     if not groups:
         return
+    worths = groups.pop(UNITS, [])
     keys = _keys(dict.fromkeys(shared.source for lines in groups.values() for shared in lines))
     rows: list[Row] = []
     for group, lines in groups.items():
         rows.append(sheet.group(group))
-        rows += [_row(sheet, shared, keys[shared.source]) for shared in lines]
-    heads = (
-        column("taken", role="statement"),
-        column("as written", 20, edge=True, align="right"),
-        column(units, 18, align="right", role="value"),
-        column("", 10, role="unit"),
-        column("source", 12, edge=True),
-        column("chosen by", 44),
+        rows += [_row(sheet, shared, (Own(keys[shared.source], "source"), *_within(shared))) for shared in lines]
+    if rows:
+        sheet.add(Heading(("Defaults and shipped tables in use",)))
+        sheet.table("inputs-shipped", (column("taken", 80, role="statement"), *_columns(units, "source")), rows)
+        told = [sheet.row((Own(key, "source"),), (Quoted(source),)) for source, key in keys.items()]
+        sheet.table("sources-shipped", (column("source", 14), column("what it is", role="statement")), told)
+    if worths:
+        sheet.add(Heading(("Units in use",)))
+        rows = [_row(sheet, shared, (Quoted(shared.source),)) for shared in worths]
+        sheet.table("inputs-units", (column("one", 18), *_columns(units, "source", 62)), rows)
+
+
+def _columns(units: str, source: str, wide: float | None = 19) -> tuple[TableColumn, ...]:
+    return (
+        column("as written", 14, edge=True, align="right"),
+        column(units, 12, align="right", role="value"),
+        column("", 4, role="unit"),
+        column(source, wide, edge=True),
         column("file and line", 30),
-        INTO,
+        TableColumn(("into",), width=INTO_WIDTH, role="into"),
     )
-    sheet.add(Heading(("Defaults and shipped tables in use",)))
-    sheet.table("inputs-shipped", heads, rows)
-    told = [sheet.row((Own(key, "source"),), (Quoted(source),)) for source, key in keys.items()]
-    sheet.table("sources-shipped", (column("source", 14), column("of shipped values", role="statement")), told)
+
+
+def _within(shared: Shared) -> Parts:
+    """Return the range that the source has for the value, where it has one."""
+    return (", ", Quoted(shared.within)) if shared.within else ()
 
 
 def gathered(composer: Composer, columns: Iterable[Column]) -> dict[str, list[Shared]]:
@@ -127,10 +142,12 @@ def _shared(composer: Composer, spot: Spot) -> tuple[tuple[object, ...], Shared]
         raise TypeError(f"{spot.id} does not ship with the program")
     name, mark = one.rows[spot.row], origin.marks[spot.row].place
     chosen, file, line, source = divided(origin.bases[spot.row])
+    found = _RANGE.fullmatch(source)
+    told, within = (found[1], found[2]) if found else (source, "")
     kind = kind_of_fitting(composer, name) if one.group == FITTINGS and not by_default(mark) else ""
     alone = () if one.group in GROUPS else (name, one.quantity)
     key = (one.group, one.case, mark, origin.written[spot.row], spot.value, chosen, kind, *alone)
-    return key, Shared(chosen, source, kind, {one.quantity: [spot]}, {file: [line]} if file else {})
+    return key, Shared(chosen, told, within, kind, {one.quantity: [spot]}, {file: [line]} if file else {})
 
 
 def by_default(mark: str) -> bool:
@@ -153,16 +170,15 @@ def _keys(sources: Iterable[str]) -> dict[str, str]:
     return keys
 
 
-def _row(sheet: Sheet, shared: Shared, key: str) -> Row:
+def _row(sheet: Sheet, shared: Shared, source: Parts) -> Row:
     refs = tuple(spot.id for spot in shared.spots)
     number = _number(sheet, shared)
     return sheet.row(
-        _taken(shared),
+        (*_taken(shared), *_chosen(shared)),
         (Quoted(shared.written),),
         (number,),
         (number.form.unit,),
-        (Own(key, "source"),),
-        _chosen(shared),
+        source,
         (place(shared.mark.removeprefix("calc/")),),
         (Cite(refs, into=True),),
         refs=refs,
@@ -184,6 +200,8 @@ def _taken(shared: Shared) -> Parts:
     spot = shared.first
     row, group = spot.column.rows[spot.row], spot.column.group
     case: tuple[Part, ...] = (", case ", Quoted(spot.column.case)) if spot.column.case not in ("", "base") else ()
+    if group == UNITS:
+        return (Quoted(row),)
     if group not in GROUPS:
         return (*((Quoted(row), ", ") if row else ()), _words(spot.column.quantity), *case)
     by_rows: dict[tuple[str, ...], list[str]] = {}
@@ -203,11 +221,11 @@ def _taken(shared: Shared) -> Parts:
 def _chosen(shared: Shared) -> Parts:
     """Say what the project named, and where."""
     if not shared.chosen:
-        return ("default",) if by_default(shared.mark) else ("–",)
-    parts: list[Part] = [Quoted(shared.chosen)]
+        return ()
+    parts: list[Part] = ["; ", Quoted(shared.chosen)]
     for file, lines in shared.places.items():
         parts += [", ", place(f"{file}:{', '.join(lines)}")]
-    return tuple(parts)
+    return (Soft(tuple(parts)),)
 
 
 def _words(quantity: str) -> str:
