@@ -8,6 +8,7 @@ between the second and the last are kept by their sums.
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
@@ -19,7 +20,7 @@ from calc.kinds import FLOW, HEAD, LOSS_RATE, NUMBER
 from calc.ledger import Accountant, Column, Ledger, Program, Spot, View
 from calc.ledger.column import ABSENT
 from calc.solve import Corrections, Loop
-from calc.solve.loop_rules import LOSS_EXPONENT, QUADRATIC, loop_correction, loss_rate, path_excess
+from calc.solve.loop_rules import QUADRATIC, loop_correction, loss_exponent, loss_rate, path_excess
 from calc.solve.loops import around, brought
 
 ALL_IN_FULL = 60
@@ -254,18 +255,17 @@ def _exponents(
     results: PipeResults[View],
     moving: np.ndarray[Any, np.dtype[np.int64]],
 ) -> View:
-    found = books.apply(
-        "pipes.loss_exponent",
-        LOSS_EXPONENT,
-        by=terms.law.take(moving),
-        reynolds=results.reynolds.take(moving),
-        laminar_below=terms.laminar_below,
-        turbulent_above=terms.turbulent_above,
-        friction_loss=results.friction_loss.take(moving),
-        head_loss=results.head_loss.take(moving),
-        factor_laminar=limits.laminar,
-        factor_turbulent=limits.turbulent.take(moving),
-        hazen_williams_flow_exponent=terms.constants.hazen_williams_flow_exponent,
+    """Enter the exponents of the pipes in motion, `QUADRATIC` where their law defines none."""
+    found = loss_exponent(
+        books,
+        replace(terms, law=terms.law.take(moving)),
+        replace(limits, turbulent=limits.turbulent.take(moving)),
+        replace(
+            results,
+            reynolds=results.reynolds.take(moving),
+            friction_loss=results.friction_loss.take(moving),
+            head_loss=results.head_loss.take(moving),
+        ),
     )
     square = [found.rows[int(row)] for row in np.flatnonzero(found.which == ABSENT)]
     if not square:

@@ -9,7 +9,7 @@ from calc.components.pipe import losses
 from calc.equation import ARRAYS, value_of
 from calc.solve.branch import Array, Branches
 from calc.solve.iteration import Iteration
-from calc.solve.loop_rules import LOSS_EXPONENT, QUADRATIC, loss_rate, path_excess
+from calc.solve.loop_rules import QUADRATIC, loss_exponent, loss_rate, path_excess
 from calc.solve.loops import Trail, around, brought, direction, find_loops, trails
 from calc.solve.solution import Loop, Settings
 
@@ -45,21 +45,7 @@ class LoopMethod:
         pipes, limits = self.branches.pipes, self.branches.limits
         found = losses(ARRAYS, pipes, limits, flow)
         lost = value_of(found.head_loss)
-        exponent = value_of(
-            ARRAYS.apply(
-                "pipes.loss_exponent",
-                LOSS_EXPONENT,
-                by=pipes.law,
-                reynolds=found.reynolds,
-                laminar_below=pipes.laminar_below,
-                turbulent_above=pipes.turbulent_above,
-                friction_loss=found.friction_loss,
-                head_loss=found.head_loss,
-                factor_laminar=limits.laminar,
-                factor_turbulent=limits.turbulent,
-                hazen_williams_flow_exponent=pipes.constants.hazen_williams_flow_exponent,
-            )
-        )
+        exponent = value_of(loss_exponent(ARRAYS, pipes, limits, found))
         known = np.where(np.isnan(exponent), QUADRATIC, exponent)
         rate = loss_rate.body(exponent=known, head_loss=lost, flow=flow)
         return lost, np.where(self.network.open & (lost != 0), rate, 0.0)

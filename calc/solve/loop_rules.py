@@ -9,10 +9,13 @@ flows and losses of a loop are reckoned in its sense: positive where water goes 
 
 from __future__ import annotations
 
+from typing import TypeVar
+
 import numpy as np
 
 from calc import kinds
-from calc.equation import Bound, Choice, Equation, Reference, Regimes, Symbol, equation
+from calc.components.pipe import PipeResults, PipeTerms, TransitionLimits
+from calc.equation import Bound, Choice, Equation, Evaluator, Reference, Regimes, Symbol, equation
 from calc.physics import symbols as s
 from calc.physics.friction import ROUGH_PIPE_LAWS
 
@@ -100,6 +103,35 @@ LOSS_EXPONENT = Choice(
     },
 )
 """Where it defines none, the exponent is `QUADRATIC`."""
+
+T = TypeVar("T")
+
+
+def loss_exponent(on: Evaluator[T], pipe: PipeTerms[T], limits: TransitionLimits[T], results: PipeResults[T]) -> T:
+    """Return the exponent of the loss of each pipe, where its law defines one.
+
+    Parameters
+    ----------
+    on : Evaluator
+        Arrays in the solver, columns in the ledger.
+    pipe, limits : PipeTerms, TransitionLimits
+        Inputs of the chain, in SI.
+    results : PipeResults
+        What the chain gave for them; their Reynolds numbers and losses are taken.
+    """
+    return on.apply(
+        "pipes.loss_exponent",
+        LOSS_EXPONENT,
+        by=pipe.law,
+        reynolds=results.reynolds,
+        laminar_below=pipe.laminar_below,
+        turbulent_above=pipe.turbulent_above,
+        friction_loss=results.friction_loss,
+        head_loss=results.head_loss,
+        factor_laminar=limits.laminar,
+        factor_turbulent=limits.turbulent,
+        hazen_williams_flow_exponent=pipe.constants.hazen_williams_flow_exponent,
+    )
 
 
 @equation(
