@@ -87,12 +87,16 @@ def _ends() -> list[str]:
     for name, row in shipped.ends().items():
         one, other = row.forward, row.reverse
         rows.append([name, one.written, other.written, row.span, row.title.text, row.key, _place(one)])
-    said = _wrapped(f"exit      {shipped.sources()['exit']}", " " * 10)
+    said = _wrapped(f"exit      {shipped.sources('fittings.yaml')['exit']}", " " * 10)
     return [*columns(rows, "<>>><<<", 0), "", *said, *_key(shipped.ends())]
 
 
 def _key(rows: Mapping[str, Row]) -> list[str]:
-    return [*_sources((row.key for row in rows.values()), shipped.sources()), "", _places("fittings.yaml")]
+    return [
+        *_sources((row.key for row in rows.values()), shipped.sources("fittings.yaml")),
+        "",
+        _places("fittings.yaml"),
+    ]
 
 
 def _defaults() -> list[str]:
@@ -111,7 +115,7 @@ def _materials(table: str) -> list[str]:
     return [
         *columns([["material", "value", "range", "what it is", "source", "place"], *rows], "<>><<<", 0),
         "",
-        *_sources((row.key for row in held), materials.sources()),
+        *_sources((row.key for row in held), shipped.sources(materials.FILE)),
         "",
         _places("materials.yaml"),
     ]

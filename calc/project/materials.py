@@ -12,6 +12,7 @@ from calc.project import shipped
 from calc.project.reader import Reader
 from calc.yamlfile import Mapping as MappingNode
 
+FILE = "materials.yaml"
 KINDS: dict[str, Kind] = {"roughness": ROUGHNESS, "hazen-williams": NUMBER, "manning": NUMBER}
 """By table."""
 
@@ -33,36 +34,23 @@ class Material:
 def tables() -> dict[str, dict[str, Material]]:
     """Return the rows of every table, by its name."""
     reader = Reader()
-    held = shipped.read("materials.yaml")
-    sources = held.get("sources")
-    found: dict[str, dict[str, Material]] = {}
-    for table, kind in KINDS.items():
-        group = held.get(table)
-        found[table] = {
-            key.text: _row(reader, key.text, value, kind, sources)
-            for key, value in (group.entries if isinstance(group, MappingNode) else ())
-            if isinstance(value, MappingNode) and isinstance(sources, MappingNode)
-        }
+    held = shipped.read(FILE)
+    found = {
+        table: {name: _row(reader, name, node, kind) for name, node in shipped.members(held, table)}
+        for table, kind in KINDS.items()
+    }
     shipped.sound(reader)
     return found
 
 
-def _row(reader: Reader, name: str, node: MappingNode, kind: Kind, sources: MappingNode) -> Material:
+def _row(reader: Reader, name: str, node: MappingNode, kind: Kind) -> Material:
     texts = {field: shipped.scalar(node.get(field)) for field in ("title", "value", "low", "high", "source")}
-    source = shipped.scalar(sources.get(texts["source"].text)).text
-    low, high = texts["low"].text, texts["high"].text
-    span = f"{low.removesuffix(kind.example.lstrip('0123456789.'))} to {high}" if low != high else ""
+    source = shipped.sources(FILE)[texts["source"].text]
+    least, most = (shipped.stated(reader, texts[field], kind, source) for field in ("low", "high"))
+    span = f"{least.written.removesuffix(f' {least.unit}')} to {most.written}" if least.si != most.si else ""
     title = shipped.stated(reader, texts["title"], None, source)
     value = shipped.stated(reader, texts["value"], kind, f"{source}; range {span}" if span else source)
-    least, most = (shipped.stated(reader, texts[field], kind, source) for field in ("low", "high"))
-    return Material(name, title, value, least, most, span or low, texts["source"].text)
-
-
-def sources() -> dict[str, str]:
-    """Return the sources by the key that rows name."""
-    node = shipped.read("materials.yaml").get("sources")
-    entries = node.entries if isinstance(node, MappingNode) else ()
-    return {key.text: shipped.scalar(value).text for key, value in entries}
+    return Material(name, title, value, least, most, span or least.written, texts["source"].text)
 
 
 def values(table: str) -> Mapping[str, Stated]:

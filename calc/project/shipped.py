@@ -80,13 +80,10 @@ def computed_fittings() -> dict[str, Computed]:
     """Return the kinds of fitting whose coefficient follows by a law from what is stated of them."""
     reader = Reader()
     found: dict[str, Computed] = {}
-    node = read("fittings.yaml").get("computed")
-    for key, value in node.entries if isinstance(node, Mapping) else ():
-        if isinstance(value, Mapping):
-            texts = {name: scalar(value.get(name)) for name in ("title", "takes", "law", "source")}
-            source = texts["source"].text
-            title, takes, law = (stated(reader, texts[name], None, source) for name in ("title", "takes", "law"))
-            found[key.text] = Computed(key.text, title, takes, law)
+    for kind, node in members(read("fittings.yaml"), "computed"):
+        source = scalar(node.get("source")).text
+        title, takes, law = (stated(reader, scalar(node.get(name)), None, source) for name in ("title", "takes", "law"))
+        found[kind] = Computed(kind, title, takes, law)
     sound(reader)
     return found
 
@@ -104,6 +101,20 @@ def read(name: str) -> Mapping:
     if mapping is None or problems:
         raise ProblemsFound(problems)
     return mapping
+
+
+def members(node: Mapping, name: str) -> list[tuple[str, Mapping]]:
+    """Return the mappings in a group of a shipped file, each with its key."""
+    group = node.get(name)
+    entries = group.entries if isinstance(group, Mapping) else ()
+    return [(key.text, value) for key, value in entries if isinstance(value, Mapping)]
+
+
+@lru_cache(maxsize=8)
+def sources(name: str) -> dict[str, str]:
+    """Return the sources of a shipped file by the key that its rows name."""
+    node = read(name).get("sources")
+    return {key.text: scalar(value).text for key, value in (node.entries if isinstance(node, Mapping) else ())}
 
 
 def sound(reader: Reader) -> None:
@@ -136,34 +147,23 @@ def stated(reader: Reader, written: Scalar, kind: Kind | None, source: str) -> S
 
 def _rows(table: str, forward: str, reverse: str) -> dict[str, Row]:
     reader = Reader()
-    found: dict[str, Row] = {}
-    held = read("fittings.yaml")
-    node, sources = held.get(table), held.get("sources")
-    for key, value in node.entries if isinstance(node, Mapping) and isinstance(sources, Mapping) else ():
-        if isinstance(value, Mapping) and isinstance(sources, Mapping):
-            found[key.text] = _row(reader, key.text, value, sources, (forward, reverse))
+    rows = members(read("fittings.yaml"), table)
+    found = {name: _row(reader, name, node, (forward, reverse)) for name, node in rows}
     sound(reader)
     return found
 
 
-def _row(reader: Reader, name: str, node: Mapping, sources: Mapping, fields: tuple[str, str]) -> Row:
+def _row(reader: Reader, name: str, node: Mapping, fields: tuple[str, str]) -> Row:
     forward, reverse = fields
-    named = scalar(node.get("source"))
+    named, said = scalar(node.get("source")), sources("fittings.yaml")
     low, high = node.get("low"), node.get("high")
     span = f"{scalar(low).text} to {scalar(high).text}" if low is not None and high is not None else ""
-    source = scalar(sources.get(named.text)).text
+    source = said[named.text]
     one = stated(reader, scalar(node.get(forward)), NUMBER, f"{source}{f'; range {span}' if span else ''}")
     back = node.get(reverse)
-    other = one if back is None else stated(reader, scalar(back), NUMBER, scalar(sources.get("exit")).text)
+    other = one if back is None else stated(reader, scalar(back), NUMBER, said["exit"])
     title = stated(reader, scalar(node.get("title")), None, source)
     return Row(name, title, one, other, span, named.text)
-
-
-@lru_cache(maxsize=1)
-def sources() -> dict[str, str]:
-    """Return the sources of fittings and ends by the key that their rows name."""
-    node = read("fittings.yaml").get("sources")
-    return {key.text: scalar(value).text for key, value in (node.entries if isinstance(node, Mapping) else ())}
 
 
 def scalar(node: Node | None) -> Scalar:

@@ -75,23 +75,20 @@ def _plain(name: str) -> str:
 def standards() -> dict[str, Standard]:
     """Return the standards with their tables."""
     reader = Reader()
-    found = {name: _standard(reader, name, node) for name, node in _members(shipped.read("sizes.yaml"), "standards")}
+    held = shipped.read("sizes.yaml")
+    found = {name: _standard(reader, name, node) for name, node in shipped.members(held, "standards")}
     shipped.sound(reader)
     return found
-
-
-def _members(node: MappingNode, name: str) -> list[tuple[str, MappingNode]]:
-    group = node.get(name)
-    entries = group.entries if isinstance(group, MappingNode) else ()
-    return [(key.text, value) for key, value in entries if isinstance(value, MappingNode)]
 
 
 def _standard(reader: Reader, name: str, node: MappingNode) -> Standard:
     title, wall, source, example = (shipped.scalar(node.get(key)).text for key in ("title", "wall", "source", "size"))
     of_walls = shipped.scalar(node.get("wall_source") or node.get("source")).text
-    own = {key: shipped.scalar(said).text for key, one in _members(node, "classes") if (said := one.get("source"))}
-    classes = {key: _class(reader, key, one, own.get(key, source)) for key, one in _members(node, "classes")}
-    sizes = {key: _size(reader, key, one, (source, of_walls), own) for key, one in _members(node, "sizes")}
+    own = {
+        key: shipped.scalar(said).text for key, one in shipped.members(node, "classes") if (said := one.get("source"))
+    }
+    classes = {key: _class(reader, key, one, own.get(key, source)) for key, one in shipped.members(node, "classes")}
+    sizes = {key: _size(reader, key, one, (source, of_walls), own) for key, one in shipped.members(node, "sizes")}
     return Standard(name, title, wall, source, of_walls, example, classes, sizes)
 
 
