@@ -27,6 +27,15 @@ BY_QUANTITY = {
 }
 """Pure numbers written otherwise than their kind."""
 
+NAMED = {"hazen_williams_c": "Hazen–Williams C", "manning_n": "Manning n", "K_reverse": "K in reverse"}
+"""Quantities that are not told by their names in the ledger."""
+
+
+def quantity_words(quantity: str) -> str:
+    """Return a quantity of the ledger in words."""
+    return NAMED.get(quantity, quantity.replace("_", " "))
+
+
 NOISE = 13
 """Figures beyond which a number that ends in zeros, or nearly so, is taken to have no more."""
 

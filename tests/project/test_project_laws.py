@@ -14,6 +14,7 @@ from calc.project.settings import CONSTANTS
 
 BOTH = SOUND.replace("roughness: 0.15 mm", "hazen_williams_c: 130", 1).replace("roughness: 0.15 mm", "manning_n: 0.012")
 BOTH = BOTH.replace("    manning_n", "    law: manning\n    manning_n") + "friction: hazen-williams\n"
+LIMITS = {"laminar_below", "turbulent_above"}
 
 
 def constants(folder: Path, text: str, case: str = "base") -> list[float]:
@@ -35,6 +36,20 @@ def test_constants_stand_by_default_where_a_pipe_needs_them(tmp_path: Path) -> N
     exact = [10.67, 1.852, 4.8704, 4 ** (10 / 3) / np.pi**2, 16 / 3]
     assert constants(tmp_path / "both", BOTH) == pytest.approx(exact, rel=1e-11)
     assert np.all(np.isnan(constants(tmp_path / "none", SOUND)))
+
+
+def test_limits_of_the_transition_are_no_default_where_no_law_has_one(tmp_path: Path) -> None:
+    for name, text, expected in (
+        ("empirical", BOTH, set()),
+        ("stated", BOTH + "constants: {transition: {laminar_below: 2100}}\n", {"turbulent_above"}),
+        ("case", BOTH + "cases: {rough: {with: {'pipes.*.law': haaland, 'pipes.*.roughness': 1 mm}}}\n", LIMITS),
+        ("rough", SOUND, LIMITS),
+    ):
+        project = read(tmp_path / name, text)
+        paths = [path.rpartition(".") for path, _ in project.defaults]
+        assert {field for group, _, field in paths if group == "constants.transition"} == expected
+        # findings judge every law by the end of the transition
+        assert network(project, "base", 1e-6).pipes.turbulent_above.tolist() == [4000.0]
 
 
 def test_published_sets_of_constants_may_be_stated(tmp_path: Path) -> None:

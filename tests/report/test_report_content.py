@@ -306,7 +306,8 @@ def assert_named(column: Column, k: int, row: Row) -> None:
     """A line that stands for several numbers names each, or what is silent of it; and where each was chosen."""
     origin, statement = column.origin, plain(row.cells[0])
     assert isinstance(origin, Library)
-    assert column.quantity.replace("_", " ") in statement
+    words = {"hazen_williams_c": "Hazen–Williams C", "manning_n": "Manning n", "K_reverse": "K in reverse"}
+    assert words.get(column.quantity, column.quantity.replace("_", " ")) in statement
     if "of all that state none" in statement:
         assert origin.marks[k].place.startswith("calc/data/defaults.yaml")
         return
@@ -425,6 +426,9 @@ def test_directions_are_those_of_falling_head(name: str) -> None:
             pipe, source, goal = plain(row.cells[0]), plain(row.cells[1]), plain(row.cells[3])
             fall = work(name).account.ledger.spot(lost.ref).value
             way = "at rest" if fall == 0 else f"to {goal if fall > 0 else source}"
+            if not case.network.open[case.network.pipes.rows.index(pipe)]:
+                way = "shut"
+                assert way in map(plain, row.cells)
             assert plain(row_of(table(document, "flows"), pipe).cells[1 + 2 * k]) == way
 
 

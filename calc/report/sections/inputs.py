@@ -8,7 +8,7 @@ from calc.report.composer import Composer, Sheet, column, place
 from calc.report.derivation import COLUMNS as WORKED
 from calc.report.derivation import lines
 from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong, TableColumn
-from calc.report.formats import shortest
+from calc.report.formats import quantity_words, shortest
 from calc.report.numbers import shown, written
 from calc.report.sections.results import kind_of_fitting
 from calc.report.sections.shipped import INTO_WIDTH, add_shipped
@@ -127,7 +127,7 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
     if basis in GRADES:
         said = (Strong(("no source",), bar=True), Soft((", ", Quoted(basis))))
     return sheet.row(
-        (*_named(sheet, spot, named=named), spot.column.quantity.replace("_", " ")),
+        (*_named(sheet, spot, named=named), quantity_words(spot.column.quantity)),
         (Quoted(origin.written[spot.row]),),
         (number,),
         (unit,),

@@ -148,6 +148,8 @@ def _pipes(sheet: Sheet, case: CaseAccount) -> None:
     if EQUIVALENT in factors:
         said += " Hazen–Williams and Manning know neither viscosity nor Darcy f, and are applied at every Reynolds"
         said += " number; printed is the Darcy f by which Darcy–Weisbach would give the same loss."
+    if not case.network.open.all():
+        said += " The loss of a shut pipe is the difference of head between its ends."
     if len(names) < len(case.network.pipes.rows):
         said += " The pipes that lose most head are printed."
     sheet.add(Paragraph((said,), "small"))

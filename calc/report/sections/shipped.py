@@ -13,6 +13,7 @@ from calc.report.composer import Composer, Sheet, column, place
 from calc.report.conversion import WORTH
 from calc.report.derivation import operand
 from calc.report.document import Cite, Heading, Number, Own, Part, Parts, Quoted, Row, Soft, TableColumn
+from calc.report.formats import quantity_words
 from calc.report.sections.results import kind_of_fitting
 from calc.report.selection import shown_inputs
 
@@ -203,10 +204,10 @@ def _taken(shared: Shared) -> Parts:
     if group == UNITS:
         return (Quoted(row),)
     if group not in GROUPS:
-        return (*((Quoted(row), ", ") if row else ()), _words(spot.column.quantity), *case)
+        return (*((Quoted(row), ", ") if row else ()), quantity_words(spot.column.quantity), *case)
     by_rows: dict[tuple[str, ...], list[str]] = {}
     for quantity, spots in shared.by_quantity.items():
-        by_rows.setdefault(tuple(one.column.rows[one.row] for one in spots), []).append(_words(quantity))
+        by_rows.setdefault(tuple(one.column.rows[one.row] for one in spots), []).append(quantity_words(quantity))
     if by_default(shared.mark):
         every = ", of all that state none"
         return (" and ".join(word for words in by_rows.values() for word in words), every, *case)
@@ -226,7 +227,3 @@ def _chosen(shared: Shared) -> Parts:
     for file, lines in shared.places.items():
         parts += [", ", place(f"{file}:{', '.join(lines)}")]
     return (Soft(tuple(parts)),)
-
-
-def _words(quantity: str) -> str:
-    return quantity.replace("_", " ")
