@@ -31,7 +31,7 @@ TEXT, SMALL, HEAD = (
     8.75 * POINT,
 )  # mm; the small size is never denser
 LONGEST, LONGEST_PLACE, LONGEST_ID = 26.0, 31.0, 36.0  # mm, a word that is longer may be broken; a place; an id
-LONG = 24  # rows from which a table is set dense rather than with broken cells
+LONG, CROWDED = 24, 9  # rows, and columns, from which a table is set dense rather than with broken cells
 BOLD, BAR = 1.07, 2.5  # how much wider semibold is; mm, the reader's bar
 SPACED = 0.05  # em, between small capitals
 SLACK = 1.02
@@ -144,7 +144,8 @@ def widths(table: Table, document: Document, *, close: bool = False) -> Widths:
     asked = tuple(column.width for column in table.columns)
     formulas = any(isinstance(part, Formula) for row in table.rows for cell in row.cells for part in cell)
     made = Widths(asked, tuple(needed), tuple(lines), TICK * table.tick, formulas)
-    return made.fitted(document.paper, close=close or (len(table.rows) > LONG and not formulas))
+    crowded = len(table.rows) > LONG or count >= CROWDED
+    return made.fitted(document.paper, close=close or (crowded and not formulas))
 
 
 def _line(parts: Parts, document: Document) -> float:

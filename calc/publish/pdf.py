@@ -150,7 +150,34 @@ def finished(made: bytes, embedded: Mapping[str, Embedded]) -> bytes:
             file.Root.AF = pikepdf.Array(list(once.values()))
         target = io.BytesIO()
         file.save(target, deterministic_id=True, linearize=False)
-    return target.getvalue()
+    return ended(target.getvalue())
+
+
+def ended(made: bytes) -> bytes:
+    """Return a PDF none of whose pages, drawings and faces ends in a carriage return when compressed.
+
+    With the line feed that follows, a reader may take it for the end of the line before ``endstream`` and count one
+    byte too few. Such a stream gets a line feed more, which none of these sorts minds; files inside stay as they are.
+    """
+    with pikepdf.open(io.BytesIO(made)) as file:
+        ending = [one for one in file.objects if isinstance(one, pikepdf.Stream) and _ends_in_return(one)]
+        if not ending:
+            return made
+        for stream in ending:
+            content = stream.read_bytes() + b"\n"
+            stream.write(content)
+            if "/Length1" in stream:
+                stream.Length1 = len(content)
+        target = io.BytesIO()
+        file.save(target, deterministic_id=True, linearize=False)
+    return ended(target.getvalue())
+
+
+def _ends_in_return(stream: pikepdf.Stream) -> bool:
+    """Return whether a compressed stream that may grow by a line feed ends in a carriage return."""
+    whole = stream.get("/Type") in ("/EmbeddedFile", "/Metadata", "/XRef", "/ObjStm") or "/N" in stream
+    whole = whole or stream.get("/Subtype") == "/Image"
+    return not whole and "/Filter" in stream and stream.read_raw_bytes().endswith(b"\r")
 
 
 @contextmanager

@@ -9,6 +9,7 @@ import os
 import re
 import subprocess
 import sys
+import zlib
 from collections.abc import Iterator
 from dataclasses import replace
 from pathlib import Path
@@ -376,3 +377,22 @@ def test_another_process_place_and_day_give_the_same_bytes(package: dict[str, by
         done = subprocess.run(command, env=surroundings, cwd=home, capture_output=True, text=True, check=False)
         assert done.returncode == 0, done.stderr
         assert dict(line.split() for line in done.stdout.splitlines()) == expected
+
+
+def test_no_stream_of_a_sheet_ends_in_a_carriage_return() -> None:
+    """The last byte of a deflated stream is the lowest of its Adler-32 sum (RFC 1950), so some content gives any."""
+    marks = next(text for k in range(5000) if zlib.adler32(text := b"0 0 m %d 9 l S" % k) & 255 == ord("\r"))
+    with pikepdf.new() as made:
+        page = made.add_blank_page(page_size=(200, 200))
+        page.Contents = made.make_stream(marks)
+        made.attachments["kept.txt"] = pikepdf.AttachedFileSpec(made, marks, filename="kept.txt")
+        target = io.BytesIO()
+        made.save(target, deterministic_id=True)
+    assert b"\r\nendstream" in target.getvalue()
+    changed = pdf.ended(target.getvalue())
+    assert changed == pdf.ended(target.getvalue())
+    with pikepdf.open(io.BytesIO(changed)) as opened:
+        assert not opened.pages[0].Contents.read_raw_bytes().endswith(b"\r")
+        assert opened.pages[0].Contents.read_bytes().split() == marks.split()
+        assert opened.attachments["kept.txt"].get_file().read_bytes() == marks
+    assert pdf.ended(changed) == changed

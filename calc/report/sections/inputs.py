@@ -60,11 +60,11 @@ UNITS = {"SI": "in SI", "US": "in US units"}
 
 def _columns(units: str) -> tuple[TableColumn, ...]:
     return (
-        column("given", 36, role="statement"),
+        column("given", 28, role="statement"),
         column("as written", 14, edge=True, align="right"),
         column(units, 12, align="right", role="value"),
         column("", 4, role="unit"),
-        column("source, page, grade, note", 36, edge=True),
+        column("source, page, grade, note", 34, edge=True),
         column("file and line", 30),
         TableColumn(("into",), width=INTO_WIDTH, role="into"),
     )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from string import ascii_lowercase
 
 from calc.components import SCHEMAS
@@ -22,7 +22,7 @@ MOST_NAMED = 8
 """Components named on a line; the index of ledger ids names all."""
 DEFAULTS = "calc/data/defaults.yaml"
 FITTINGS, UNITS = "fittings", "units"
-INTO_WIDTH = 23.0
+INTO_WIDTH = 21.0
 GROUPS = (*(schema.group for schema in SCHEMAS), FITTINGS)
 """Groups whose rows are components, of which many may hold one value."""
 
@@ -100,10 +100,11 @@ def add_shipped(sheet: Sheet, columns: Iterable[Column], units: str) -> None:
     if worths:
         sheet.add(Heading(("Units in use",)))
         rows = [_row(sheet, shared, (Quoted(shared.source),)) for shared in worths]
-        sheet.table("inputs-units", (column("one", 18), *_columns(units, "source", 62)), rows)
+        rows = [replace(row, cells=row.cells[:-1]) for row in rows]  # nothing in the ledger rests on a unit
+        sheet.table("inputs-units", (column("one", 18), *_columns(units, "source", 80)[:-1]), rows)
 
 
-def _columns(units: str, source: str, wide: float | None = 19) -> tuple[TableColumn, ...]:
+def _columns(units: str, source: str, wide: float = 25) -> tuple[TableColumn, ...]:
     return (
         column("as written", 14, edge=True, align="right"),
         column(units, 12, align="right", role="value"),
