@@ -10,6 +10,7 @@ Hazen–Williams and Manning know no f: their loss is a power of the flow, worke
 from __future__ import annotations
 
 import math
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -107,8 +108,7 @@ def prepare(works: Works) -> Pipes:
     chosen: dict[str, Flags] = {law: np.equal(laws, law) for law in (*TURBULENT, "fixed", *POWERS)}
     gravity, viscosity, bore = works.gravity, works.viscosity, works.bore
     low, high = works.laminar_below, works.turbulent_above
-    rough = chosen["colebrook-white"] | chosen["swamee-jain"] | chosen["haaland"]
-    relative = np.where(rough, works.roughness / bore, 0.0)
+    relative = np.where(_follow(chosen, TURBULENT), works.roughness / bore, 0.0)
     knee = np.zeros(len(bore))
     for law, factor in TURBULENT.items():
         of_law = chosen[law]
@@ -127,7 +127,7 @@ def prepare(works: Works) -> Pipes:
         relative=relative,
         knee=knee,
         chosen=chosen,
-        raised=chosen["hazen-williams"] | chosen["manning"],
+        raised=_follow(chosen, POWERS),
         power=power,
         gain=gain,
     )
@@ -156,8 +156,12 @@ def factors(pipes: Pipes, reynolds: Floats) -> tuple[Floats, Floats]:
 
 def regimes(pipes: Pipes) -> Flags:
     """Return which pipes follow a law that knows laminar and transitional flow."""
-    every: Flags = ~(pipes.chosen["fixed"] | pipes.raised)
-    return every
+    return _follow(pipes.chosen, TURBULENT)
+
+
+def _follow(chosen: Mapping[str, Flags], laws: Iterable[str]) -> Flags:
+    """Return which pipes follow one of some laws."""
+    return np.asarray(np.any([chosen[law] for law in laws], axis=0), dtype=np.bool_)
 
 
 def head_loss(pipes: Pipes, flow: Floats) -> tuple[Floats, Floats]:
