@@ -27,7 +27,6 @@ PUBLISHED_CASES: dict[str, dict[str, Any]] = {
     for name in ("branching", "fittings", "friction", "networks", "systems")
     for case in yaml.safe_load((PUBLISHED / f"{name}.yaml").read_text(encoding="utf-8"))
 }
-CLASSES = {"from-memory", "open-page", "closed-form", "library", "computed", "own-solution"}
 
 
 def test_the_factors_are_those_of_the_published_grid(checks: dict[str, Check]) -> None:

@@ -4,10 +4,8 @@ from __future__ import annotations
 
 from dataclasses import replace
 from pathlib import Path
-from typing import Any
 
 import pytest
-import yaml
 from accounts import PROJECTS, accounted
 
 import calc.verification.running as running_module
@@ -20,13 +18,7 @@ from calc.solve.solution import METHODS
 from calc.verification import TITLES, Check, enter_checks, in_use, run
 from calc.verification.reading import read_cases
 
-PUBLISHED = Path(__file__).parents[1] / "published"
 DATA = Path(verification.__file__).parents[1] / "data" / "verification"
-PUBLISHED_CASES: dict[str, dict[str, Any]] = {
-    case["id"]: case
-    for name in ("branching", "fittings", "friction", "networks", "systems")
-    for case in yaml.safe_load((PUBLISHED / f"{name}.yaml").read_text(encoding="utf-8"))
-}
 CLASSES = {"from-memory", "open-page", "closed-form", "library", "computed", "own-solution"}
 
 

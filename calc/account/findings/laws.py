@@ -10,6 +10,7 @@ import numpy.typing as npt
 
 from calc.account.case import CaseAccount
 from calc.account.findings.finding import Check, Remark, Solved, by_case
+from calc.account.findings.geometry import ROUGHEST
 from calc.account.flows import CaseColumns
 from calc.equation import evaluate, value_of
 from calc.physics.friction import colebrook_white
@@ -23,7 +24,6 @@ NARROWEST = 0.05
 FASTEST = 3.0
 LEAST_REYNOLDS = 1e4
 """Hazen–Williams is fitted to water near 15 °C, above about 50 mm, up to about 3 m/s, well turbulent (from memory)."""
-ROUGHEST = 0.05
 SMOOTHER = 0.98
 """Share of a smooth pipe's Darcy f below which a loss is less than any pipe's; the smooth law is good to 2 %."""
 FULLY_ROUGH = 70.0
