@@ -296,6 +296,14 @@ def test_ductile_iron_outside_and_lining() -> None:
         assert size.lining.si * 1000 == pytest.approx(wanted), size.name
 
 
+@pytest.mark.parametrize("name", list(standards()))
+def test_a_wall_that_is_the_least_allowed_says_so(name: str) -> None:
+    """Plastic pipe is tabulated by its least wall (ISO 4065, AWWA C900), iron and steel by a nominal one."""
+    said = {wall.basis.source for size in standards()[name].sizes.values() for wall in size.walls.values()}
+    plastic = name in {"ISO 4427", "ISO 1452", "AWWA C900"}
+    assert {"least wall, which leaves the greatest bore allowed" in one for one in said} == {plastic}
+
+
 def test_rated_pressures_are_of_the_series() -> None:
     """PN 5, 8, 12.5 and 20 are of the series of plastics (ISO 161), the rest of EN 1333."""
     (row,) = (row for row in ROWS if row["id"] == "PN-SERIES")
