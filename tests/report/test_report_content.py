@@ -285,6 +285,18 @@ def test_every_given_value_is_listed_with_source_place_and_text(name: str) -> No
                 assert_named(column, k, row)
             else:
                 assert origin.bases[k] in said or "no source" in said
+                statement = plain(row.cells[0])
+                several = statement.endswith((" of each", " and others")) or column.rows[k] in statement
+                assert several or len(row.refs) == 1
+
+
+def test_what_one_line_of_a_case_sets_for_all_is_one_row() -> None:
+    account, document = work("demo").account, work("demo").document
+    factors = [column for column in account.ledger.columns if column.quantity == "withdrawal_factor"]
+    assert factors
+    for column in factors:
+        held = [row for one in tables(document, "inputs") for row in one.rows if column.id(0) in row.refs]
+        assert [row.refs for row in held] == [tuple(column.id(k) for k in range(len(column.rows)))]
 
 
 @pytest.mark.parametrize("name", ["demo", "empirical-us"])

@@ -7,11 +7,11 @@ from calc.ledger import Column, Converted, Given, Library, Spot
 from calc.report.composer import Composer, Sheet, column, place
 from calc.report.derivation import COLUMNS as WORKED
 from calc.report.derivation import lines
-from calc.report.document import Cite, Heading, Number, Paragraph, Parts, Quoted, Row, Soft, Strong, TableColumn
+from calc.report.document import Cite, Heading, Number, Paragraph, Part, Parts, Quoted, Row, Soft, Strong, TableColumn
 from calc.report.formats import quantity_words, shortest
 from calc.report.numbers import shown, written
 from calc.report.sections.results import kind_of_fitting
-from calc.report.sections.shipped import INTO_WIDTH, add_shipped
+from calc.report.sections.shipped import INTO_WIDTH, MOST_NAMED, add_shipped
 from calc.report.selection import shown_inputs
 
 GRADES = ("surveyed", "drawing", "manufacturer", "measured", "standard", "assumed")
@@ -71,14 +71,12 @@ def _columns(units: str) -> tuple[TableColumn, ...]:
 
 
 def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
-    """Return rows gathered by component, in the order of the groups."""
-    by_component: dict[tuple[str, str], list[Spot]] = {}
-    shown = shown_inputs(sheet.composer.account)
-    for one in columns:
-        for row, name in enumerate(one.rows):
-            if shown is not None and one.group in LARGE and name.partition("/")[0] not in shown:
-                continue
-            by_component.setdefault((one.group, name), []).append(Spot(one, row))
+    """Return rows gathered by component, in the order of the groups; what one line sets for several is one row."""
+    together = _together(sheet, columns)
+    by_component: dict[tuple[str, str], list[list[Spot]]] = {}
+    for spots in together:
+        column, name = spots[0].column, spots[0].column.rows[spots[0].row]
+        by_component.setdefault((column.group, name if len(spots) == 1 else ""), []).append(spots)
     ordered = sorted(by_component, key=lambda key: ORDER.index(key[0]) if key[0] in ORDER else len(ORDER))
     rows: list[Row] = []
     standing = ""
@@ -87,8 +85,25 @@ def _rows(sheet: Sheet, columns: list[Column]) -> list[Row]:
         if not gathered or group != standing:
             rows.append(sheet.group(group, *((" ", Quoted(name)) if name and not gathered else ())))
         standing = group
-        rows += [_row(sheet, spot, named=gathered) for spot in by_component[group, name]]
+        rows += [_row(sheet, spots, named=gathered) for spots in by_component[group, name]]
     return rows
+
+
+def _together(sheet: Sheet, columns: list[Column]) -> list[list[Spot]]:
+    """Return the numbers of inputs, those together that one place of a file gives to several components."""
+    shown = shown_inputs(sheet.composer.account)
+    found: dict[tuple[object, ...], list[Spot]] = {}
+    for one in columns:
+        origin = one.origin
+        if not isinstance(origin, Given | Converted):
+            continue
+        for row, name in enumerate(one.rows):
+            if shown is not None and one.group in LARGE and name.partition("/")[0] not in shown:
+                continue
+            alone = (name,) if one.group in GATHERED else ()
+            key = (one.name, origin.marks[row].place, float(one.values[row]), *alone)
+            found.setdefault(key, []).append(Spot(one, row))
+    return list(found.values())
 
 
 def _followed(sheet: Sheet, case: str) -> list[Spot]:
@@ -111,7 +126,8 @@ GATHERED = ("fittings", "criteria")
 ORDER = ("reservoirs", "junctions", "pipes", "fittings", "fluid", "site", "constants", "solver", "criteria")
 
 
-def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
+def _row(sheet: Sheet, spots: list[Spot], *, named: bool) -> Row:
+    spot, refs = spots[0], tuple(one.id for one in spots)
     origin = spot.column.origin
     if not isinstance(origin, Given | Converted):
         raise TypeError(f"{spot.id} is no input")
@@ -127,15 +143,28 @@ def _row(sheet: Sheet, spot: Spot, *, named: bool) -> Row:
     if basis in GRADES:
         said = (Strong(("no source",), bar=True), Soft((", ", Quoted(basis))))
     return sheet.row(
-        (*_named(sheet, spot, named=named), quantity_words(spot.column.quantity)),
+        (*_named(sheet, spot, named=named), quantity_words(spot.column.quantity), *_all(sheet, spots)),
         (Quoted(origin.written[spot.row]),),
         (number,),
         (unit,),
         said,
         (place(origin.marks[spot.row].place.removeprefix("calc/")),),
-        (Cite((spot.id,), into=True),),
-        refs=(spot.id,),
+        (Cite(refs, into=True),),
+        refs=refs,
     )
+
+
+def _all(sheet: Sheet, spots: list[Spot]) -> Parts:
+    """Say which components a row stands for, where there are several."""
+    if len(spots) == 1:
+        return ()
+    names = [one.column.rows[one.row] for one in spots]
+    if set(names) >= set(sheet.composer.account.project.group(spots[0].column.group)):
+        return (" of each",)
+    parts: list[Part] = [": "]
+    for name in names[:MOST_NAMED]:
+        parts += [Quoted(name), ", "]
+    return (*parts[:-1], *((" and others",) if len(names) > MOST_NAMED else ()))
 
 
 def _named(sheet: Sheet, spot: Spot, *, named: bool) -> Parts:
