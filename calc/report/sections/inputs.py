@@ -60,7 +60,7 @@ UNITS = {"SI": "in SI", "US": "in US units"}
 
 def _columns(units: str) -> tuple[TableColumn, ...]:
     return (
-        column("given", 28, role="statement"),
+        column("given", 26, role="statement"),
         column("as written", 14, edge=True, align="right"),
         column(units, 12, align="right", role="value"),
         column("", 4, role="unit"),

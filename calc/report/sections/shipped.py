@@ -22,7 +22,7 @@ MOST_NAMED = 8
 """Components named on a line; the index of ledger ids names all."""
 DEFAULTS = "calc/data/defaults.yaml"
 FITTINGS, UNITS = "fittings", "units"
-INTO_WIDTH = 21.0
+INTO_WIDTH = 25.0
 GROUPS = (*(schema.group for schema in SCHEMAS), FITTINGS)
 """Groups whose rows are components, of which many may hold one value."""
 
