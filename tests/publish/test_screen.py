@@ -252,7 +252,7 @@ def test_the_keyboard_traces_to_the_file(show: Open) -> None:
         at.press("Tab")
     at.press("Enter")
     at.accounted(LOSS)
-    assert at.do("document.activeElement.closest('#account') !== null")
+    at.page.wait_for_function("() => document.activeElement.closest('#account') !== null")
     while not at.do("document.activeElement.matches('.tree button.nd')"):
         at.press("Tab")
     folded = at.do("document.querySelectorAll('#account .tree button.nd').length")
