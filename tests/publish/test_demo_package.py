@@ -211,6 +211,12 @@ def test_no_sheet_is_nearly_empty(content: bytes) -> None:
     opened.close()
 
 
+def test_the_register_of_checks_begins_on_the_sheet_of_its_heading(pages: list[str]) -> None:
+    heading = squeezed("Checks made by the program")
+    sheet = next(text for text in map(squeezed, pages) if heading in text)
+    assert squeezed("Inputs without a source") in sheet.partition(heading)[2]
+
+
 def test_every_number_reads_back_from_the_sheets(pages: list[str], said: Said) -> None:
     text = squeezed("".join(pages))
     numbers = list(printed(said.document))
